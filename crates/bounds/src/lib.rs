@@ -1,0 +1,1 @@
+//! How far the numbers move inside the credible surface moisture

@@ -1,0 +1,1 @@
+//! Skew-T geometry and isopleths as a display list

@@ -1,0 +1,1 @@
+//! Readers: TEMP bulletins, station files, columns with units

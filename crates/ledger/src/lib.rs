@@ -1,0 +1,1 @@
+//! Decisions, kept for good

@@ -1,0 +1,1 @@
+//! The document, its commands, undo, results by revision; no window

@@ -1,0 +1,1 @@
+//! A sounding as received, its amendments, and the working profile

@@ -1,0 +1,1 @@
+//! Findings on a received profile, their repairs and what each costs

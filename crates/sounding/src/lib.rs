@@ -1,1 +1,22 @@
-//! A sounding as received, its amendments, and the working profile
+//! A sounding as received, the amendments a forecaster makes, and the working profile that results.
+//!
+//! Data flow one way: a reader makes a [`Sounding`], which is never changed again; [`Profile::received`] orders and
+//! merges its levels; [`Amendments`] applied to that give a [`Working`] profile; [`Numbers`] are computed from it.
+//!
+//! Deliberately absent: file formats, findings, and anything that decides what is true.
+
+mod amend;
+mod numbers;
+mod profile;
+mod received;
+mod station;
+mod sun;
+
+pub use amend::*;
+pub use numbers::*;
+pub use profile::*;
+pub use received::*;
+pub use station::*;
+pub use sun::*;
+
+pub use dewbound_thermo as thermo;

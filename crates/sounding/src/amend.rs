@@ -1,0 +1,157 @@
+//! Amendments: what the forecaster changes, in order, each of which can be switched off.
+
+use crate::{Note, Profile};
+use dewbound_thermo::{Pressure, Temperature};
+use serde::{Deserialize, Serialize};
+
+/// Which humidity is kept while a layer's temperature is bridged.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(rename_all = "snake_case")]
+pub enum BridgeHumidity {
+    /// Relative humidity as received at each level.
+    RelativeHumidity,
+    /// Mixing ratio as received at each level.
+    MixingRatio,
+}
+
+/// One change. Pressures in Pa, temperatures in K.
+#[derive(Debug, Clone, Copy, PartialEq, Serialize, Deserialize)]
+#[serde(rename_all = "snake_case", tag = "kind")]
+pub enum Amendment {
+    /// Surface temperature set.
+    SurfaceTemperature {
+        /// K.
+        temperature_k: f64,
+    },
+    /// Surface dew point set.
+    SurfaceDewpoint {
+        /// K.
+        dewpoint_k: f64,
+    },
+    /// Temperature bridged (linear in ln p) between the two ends.
+    BridgeLayer {
+        /// Lower end, Pa, a level that is believed.
+        bottom_pa: f64,
+        /// Upper end, Pa, a level that is believed.
+        top_pa: f64,
+        /// What is kept of the humidity between them.
+        humidity: BridgeHumidity,
+    },
+    /// Levels strictly between (inclusive of neither end) or, when both ends are equal, the level itself left out.
+    DropLevels {
+        /// Lower end, Pa.
+        bottom_pa: f64,
+        /// Upper end, Pa.
+        top_pa: f64,
+    },
+    /// Mixing ratio made uniform over a layer (capped at saturation).
+    MixMoisture {
+        /// Lower end, Pa.
+        bottom_pa: f64,
+        /// Upper end, Pa.
+        top_pa: f64,
+        /// kg/kg; `None`: the layer's own mean.
+        mixing_ratio: Option<f64>,
+    },
+    /// Everything at pressures below this one disregarded.
+    DisregardAbove {
+        /// Pa.
+        pressure_pa: f64,
+    },
+}
+
+/// How far up a change of the surface values is carried into the environment.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(rename_all = "snake_case")]
+pub enum Reach {
+    /// The surface parcel takes the value; the environment changes in the lowest 10 hPa only, tapering linearly.
+    Level,
+    /// To the top of the mixed layer, w and (where T was raised) theta are the surface's.
+    Mixed,
+    /// The increment of w and theta falls linearly in p to zero at the top of the mixed layer.
+    Tapered,
+}
+
+/// An amendment in the list.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct Entry {
+    /// The change.
+    pub amendment: Amendment,
+    /// Switched on.
+    pub enabled: bool,
+    /// The finding's repair it came from (`rule/repair@bottom`), when it did.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub from_repair: Option<String>,
+}
+
+/// The ordered list and the reach of its surface edits.
+#[derive(Debug, Clone, PartialEq, Default, Serialize, Deserialize)]
+pub struct Amendments {
+    /// In the order applied.
+    pub entries: Vec<Entry>,
+    /// Chosen reach; `None`: the default for this profile (mixed by day with a mixed layer, else level).
+    pub reach: Option<Reach>,
+}
+
+/// Reach as it was actually applied, and why in a line fit to be printed beside the handle.
+#[derive(Debug, Clone, PartialEq)]
+pub struct ReachApplied {
+    /// What was applied.
+    pub reach: Reach,
+    /// One line: chosen or default, and why another was not possible.
+    pub why: String,
+    /// Top of the mixed layer: first level where theta exceeds the surface value by 1 K.
+    pub mixed_top: Option<Pressure>,
+    /// Levels at which w was capped at saturation.
+    pub capped_levels: usize,
+}
+
+/// The profile after its amendments.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Working {
+    /// The amended profile.
+    pub profile: Profile,
+    /// Reach as applied.
+    pub reach: ReachApplied,
+    /// What could not be done as asked, and why.
+    pub notes: Vec<Note>,
+}
+
+/// Whether the sun has been heating the ground: decides the default reach and some grades.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
+pub enum Daylight {
+    /// Solar elevation above 10 degrees at launch or within the hour before.
+    Day,
+    /// Not so.
+    Night,
+    /// No time or no position.
+    #[default]
+    Unknown,
+}
+
+impl Amendments {
+    /// The working profile. Never fails: what can't be applied is noted.
+    pub fn apply(&self, _received: &Profile, _daylight: Daylight) -> Working {
+        todo!()
+    }
+
+    /// The surface temperature these amendments set, if any is enabled.
+    pub fn surface_temperature(&self) -> Option<Temperature> {
+        todo!()
+    }
+
+    /// The surface dew point these amendments set, if any is enabled.
+    pub fn surface_dewpoint(&self) -> Option<Temperature> {
+        todo!()
+    }
+
+    /// The same list with the surface dew point set (its entry replaced, or appended).
+    pub fn with_surface_dewpoint(&self, _dewpoint: Temperature) -> Self {
+        todo!()
+    }
+
+    /// The same list with the surface temperature set (its entry replaced, or appended).
+    pub fn with_surface_temperature(&self, _temperature: Temperature) -> Self {
+        todo!()
+    }
+}

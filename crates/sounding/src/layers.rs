@@ -146,7 +146,7 @@ pub(crate) fn drop_levels(profile: &mut Profile, bottom: f64, top: f64, notes: &
         }
         return;
     }
-    if !(bottom > top) {
+    if bottom.partial_cmp(&top) != Some(std::cmp::Ordering::Greater) {
         refuse(
             notes,
             format!("{what} not dropped"),

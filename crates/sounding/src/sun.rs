@@ -121,10 +121,11 @@ mod tests {
 
     #[test]
     fn day_by_the_hour_before_launch() {
-        let plains = Some(Position {
+        let position = Position {
             latitude: 36.6,
             longitude: -97.5,
-        });
+        };
+        let plains = Some(position);
         // On 2019-05-08 the sun stands at 5.0 degrees there at 12:00 (astropy, above) and passes 10 degrees after that.
         assert_eq!(
             at(Some("2019-05-08T12:00:00Z"), None, plains),
@@ -136,7 +137,6 @@ mod tests {
         );
         // Below 10 degrees at launch, above it 59 minutes earlier: evening of the same day.
         let evening: Timestamp = "2019-05-09T00:45:00Z".parse().unwrap();
-        let position = plains.unwrap();
         assert!(solar_elevation(evening, position) < 10.0);
         assert!(solar_elevation(evening - SignedDuration::from_mins(60), position) > 10.0);
         assert_eq!(

@@ -26,6 +26,8 @@ pub(super) struct Seen {
     mixed: MixedLayer,
     shape: Shape,
     surface_w: f64,
+    /// w the layer leads to at the surface, kg/kg.
+    at_surface: f64,
     /// Fitted w at the lowest and the highest level of the fit, kg/kg.
     fitted: (f64, f64),
     /// Root mean square scatter about the line, kg/kg.
@@ -107,6 +109,7 @@ pub(super) fn seen(view: &View) -> Option<Seen> {
         mixed,
         shape,
         surface_w,
+        at_surface,
         fitted,
         residual: line.residual,
         slope_k,
@@ -120,7 +123,7 @@ impl MoistureSlope {
         let grams = |w: f64| 1000.0 * w;
         let (from, to, at_one_pressure) = match seen.shape {
             Shape::Even => (seen.fitted.0, seen.fitted.1, seen.slope_k),
-            Shape::Jump | Shape::Unresolved => (seen.surface_w, seen.surface_w - self.jump_w(seen), seen.jump_k),
+            Shape::Jump | Shape::Unresolved => (seen.surface_w, seen.at_surface, seen.jump_k),
         };
         let change = grams(from - to);
         let direction = if change >= 0.0 { "falls" } else { "rises" };
@@ -151,18 +154,6 @@ impl MoistureSlope {
         }
     }
 
-    /// Surface w minus the layer's at the ground, kg/kg.
-    fn jump_w(&self, seen: &Seen) -> f64 {
-        let layer = seen.mixed.bottom;
-        let dewpoint = dewpoint_from_mixing_ratio(layer, seen.surface_w.max(1e-6)).k() - seen.jump_k;
-        let e = dewbound_sounding::thermo::Air {
-            pressure: layer,
-            temperature: dewbound_sounding::thermo::Temperature::from_k(dewpoint),
-            dewpoint: dewbound_sounding::thermo::Temperature::from_k(dewpoint),
-        };
-        seen.surface_w - e.mixing_ratio()
-    }
-
     fn evidence(&self, seen: &Seen) -> Vec<Evidence> {
         let grams = |w: f64| 1000.0 * w;
         let mixed = &seen.mixed;
@@ -178,7 +169,7 @@ impl MoistureSlope {
             Evidence::new(
                 "jump_gkg",
                 "mixing ratio, surface minus mixed layer",
-                grams(self.jump_w(seen)),
+                grams(seen.surface_w - seen.at_surface),
                 "g/kg",
                 1,
             ),

@@ -6,9 +6,8 @@ use std::path::Path;
 
 /// Numbers may differ by one in their last digit between machines, whose logarithms differ in the last bit.
 fn same_but_for_rounding(kept: &str, made: &str) -> bool {
-    let words = |text: &str| -> Vec<String> {
-        text.split([' ', ',', '\n']).map(str::to_owned).collect()
-    };
+    let words =
+        |text: &str| -> Vec<String> { text.split([' ', ',', '\n']).map(str::to_owned).collect() };
     let (kept, made) = (words(kept), words(made));
     kept.len() == made.len()
         && kept.iter().zip(&made).all(|(a, b)| {
@@ -30,5 +29,9 @@ fn demo_soundings_are_what_the_generator_makes() {
         );
     }
     let kept = std::fs::read_dir(folder).unwrap().count();
-    assert_eq!(kept, files.len(), "no file in the folder that the generator doesn't make");
+    assert_eq!(
+        kept,
+        files.len(),
+        "no file in the folder that the generator doesn't make"
+    );
 }

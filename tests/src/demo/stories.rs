@@ -151,9 +151,9 @@ fn plains(
         .layer(25.0, 38.0, Mixing(moisture))
         .mixed(mixed, Mixing(moisture - 0.4))
         .layer(150.0, -9.0, Relative(0.55))
-        .layer(2000.0, 7.6, Relative(0.38))
-        .layer(2600.0, 7.6, Relative(0.45))
-        .layer(3400.0, 7.7, Relative(0.40))
+        .layer(2000.0, 7.2, Relative(0.38))
+        .layer(2600.0, 7.0, Relative(0.45))
+        .layer(3400.0, 7.3, Relative(0.40))
         .layer(2600.0, 7.2, Relative(0.35));
     sheared(stratosphere(atmosphere))
 }
@@ -164,7 +164,7 @@ fn clean_and_unstable() -> Vec<Sample> {
 }
 
 fn biased_hygrometer() -> Vec<Sample> {
-    let atmosphere = plains(VELLMARSH, 974.0, (30.4, 16.4), 1350.0, 12.0);
+    let atmosphere = plains(VELLMARSH, 974.0, (30.0, 16.4), 1350.0, 12.0);
     let faults = Faults {
         screen_dewpoint_bias: 3.8,
         ..Faults::default()
@@ -205,9 +205,9 @@ fn sloping_moisture() -> Vec<Sample> {
         .layer(25.0, 36.0, Mixing(14.2))
         .mixed(1650.0, Mixing(9.6))
         .layer(200.0, -6.0, Relative(0.42))
-        .layer(2000.0, 7.8, Relative(0.35))
-        .layer(2500.0, 7.7, Relative(0.40))
-        .layer(3200.0, 7.7, Relative(0.35))
+        .layer(2000.0, 7.4, Relative(0.35))
+        .layer(2500.0, 7.2, Relative(0.40))
+        .layer(3200.0, 7.3, Relative(0.35))
         .layer(2100.0, 7.2, Relative(0.30));
     launch(
         &sheared(stratosphere(atmosphere)),
@@ -262,9 +262,9 @@ fn capped() -> Vec<Sample> {
     let atmosphere = Atmosphere::from_ground(CORRIDEN.elevation, 970.0, 28.8, 22.4)
         .layer(25.0, 30.0, Mixing(17.4))
         .mixed(700.0, Mixing(17.0))
-        .layer(400.0, -11.5, Relative(0.33))
-        .layer(2600.0, 8.6, Relative(0.42))
-        .layer(2300.0, 8.2, Relative(0.38))
+        .layer(450.0, -13.0, Relative(0.30))
+        .layer(2600.0, 8.3, Relative(0.42))
+        .layer(2300.0, 7.6, Relative(0.38))
         .layer(3600.0, 7.6, Relative(0.35))
         .layer(2400.0, 7.0, Relative(0.30));
     launch(
@@ -282,9 +282,9 @@ fn elevated_instability() -> Vec<Sample> {
         .layer(450.0, 2.0, Relative(0.80))
         .layer(300.0, -9.5, Relative(0.86))
         .layer(350.0, 6.2, Relative(0.88))
-        .layer(2500.0, 7.9, Relative(0.45))
-        .layer(2500.0, 7.7, Relative(0.40))
-        .layer(3600.0, 7.6, Relative(0.35))
+        .layer(2500.0, 7.4, Relative(0.45))
+        .layer(2500.0, 7.2, Relative(0.40))
+        .layer(3600.0, 7.3, Relative(0.35))
         .layer(1600.0, 7.0, Relative(0.30));
     launch(
         &sheared(stratosphere(atmosphere)),

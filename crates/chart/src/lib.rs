@@ -19,15 +19,21 @@
 #![cfg_attr(test, allow(clippy::unwrap_used, clippy::expect_used))]
 
 mod background;
+mod barb;
+mod canvas;
+mod curve;
 mod foreground;
 mod geometry;
 mod handles;
+mod hatch;
 mod heights;
 mod input;
+mod isopleths;
 mod palette;
 mod readout;
 mod scene;
 mod svg;
+mod wording;
 
 pub use background::*;
 pub use foreground::*;

@@ -45,10 +45,10 @@ pub fn background(geometry: &Geometry) -> Scene {
     // Moist adiabats are farthest apart low down, dry ones high up: their labels keep to their own rows.
     let moist_row = geometry.y(Pressure::from_hpa(geometry.view().top_hpa.max(270.0)));
     let moist_row = moist_row.clamp(plot.top + 0.1 * plot.height(), plot.bottom - 0.3 * plot.height());
-    row_labels(&mut canvas, &moist, &plot, moist_row, Ink::MoistAdiabat, |v| {
+    row_labels(&mut canvas, &moist, &plot, moist_row, Ink::MoistAdiabatLabel, |v| {
         format!("\u{3b8}w {} °C", trimmed(v))
     });
-    row_labels(&mut canvas, &dry, &plot, plot.top + 0.045 * plot.height() + 6.0, Ink::DryAdiabat, |v| {
+    row_labels(&mut canvas, &dry, &plot, plot.top + 0.045 * plot.height() + 6.0, Ink::DryAdiabatLabel, |v| {
         format!("{} K", trimmed(v))
     });
 
@@ -87,7 +87,7 @@ fn pressure_axis(canvas: &mut Canvas, bars: &[Isopleth], plot: &Rect) {
 fn temperature_axis(canvas: &mut Canvas, therms: &[Isopleth], plot: &Rect) {
     let frame = canvas.frame;
     let foot = Lettering::new(Anchor::Centre, AXIS, Ink::Label);
-    let head = Lettering::new(Anchor::Centre, ON_LINE, Ink::Isotherm);
+    let head = Lettering::new(Anchor::Centre, ON_LINE, Ink::IsothermLabel);
     let title = Point::new(plot.centre().x, plot.bottom + 26.0);
     canvas.text(title, "temperature, °C", Lettering { size: 11.0, ..foot });
     for therm in therms {
@@ -108,7 +108,7 @@ fn temperature_axis(canvas: &mut Canvas, therms: &[Isopleth], plot: &Rect) {
 
 /// Mixing-ratio lines carry their value at their upper ends, the unit once.
 fn mixing_labels(canvas: &mut Canvas, lines: &[Isopleth], plot: &Rect) {
-    let lettering = Lettering::new(Anchor::Centre, ON_LINE, Ink::MixingRatioLine).backed();
+    let lettering = Lettering::new(Anchor::Centre, ON_LINE, Ink::MixingRatioLabel).backed();
     let ends: Vec<(f64, Point)> = lines
         .iter()
         .filter_map(|line| {

@@ -70,12 +70,13 @@ pub(crate) fn isobars(geometry: &Geometry) -> Vec<Isopleth> {
         1000.0, 500.0, 200.0, 100.0, 850.0, 700.0, 300.0, 400.0, 250.0, 150.0, 70.0, 50.0, 30.0,
         20.0, 10.0, 5.0, 2.0, 1.0, 925.0,
     ];
-    let fill = [100.0, 50.0, 10.0, 5.0, 1.0].into_iter().flat_map(|step| {
-        let room = 24.0 / geometry.points_per_efold();
-        // At the foot of the view a step is closest together last; skip families that can't fit anywhere.
-        let worth = step / view.top_hpa > room;
-        multiples(view.top_hpa, view.bottom_hpa, step).filter(move |_| worth)
-    });
+    // Other round pressures where, in the middle of the view, they keep their distance.
+    let middle = (view.top_hpa * view.bottom_hpa).sqrt();
+    let room = 24.0 / geometry.points_per_efold();
+    let fill = [100.0, 50.0, 10.0, 5.0, 1.0]
+        .into_iter()
+        .filter(|step| step / middle > room)
+        .flat_map(|step| multiples(view.top_hpa, view.bottom_hpa, step));
     let mut kept: Vec<Isopleth> = Vec::new();
     for (rank, value) in standard.into_iter().chain(fill).enumerate() {
         let y = geometry.y(Pressure::from_hpa(value));

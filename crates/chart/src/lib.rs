@@ -20,6 +20,7 @@
 
 mod background;
 mod barb;
+mod brackets;
 mod canvas;
 mod curve;
 mod foreground;
@@ -29,10 +30,14 @@ mod hatch;
 mod heights;
 mod input;
 mod isopleths;
+mod legend;
 mod palette;
+mod parcel;
 mod readout;
 mod scene;
+mod surface;
 mod svg;
+mod winds;
 mod wording;
 
 pub use background::*;

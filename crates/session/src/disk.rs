@@ -21,6 +21,29 @@ enum Job {
     Flush(Sender<()>),
 }
 
+impl Job {
+    fn path(&self) -> Option<&Path> {
+        match self {
+            Self::Replace(path, _) | Self::Remove(path) => Some(path),
+            Self::Flush(_) => None,
+        }
+    }
+
+    fn run(&self) -> io::Result<()> {
+        match self {
+            Self::Replace(path, content) => replace(path, content.as_bytes()),
+            Self::Remove(path) => match fs::remove_file(path) {
+                Err(error) if error.kind() != io::ErrorKind::NotFound => Err(error),
+                _ => Ok(()),
+            },
+            Self::Flush(done) => {
+                let _ = done.send(());
+                Ok(())
+            }
+        }
+    }
+}
+
 /// Writes small files on a thread of its own, in the order asked.
 ///
 /// **Invariant:** a reader sees the old content or the new one, never a part. Dropping it waits until all is written.
@@ -35,27 +58,19 @@ impl SmallFiles {
         let (jobs, inbox) = channel::<Job>();
         let (outbox, failures) = channel();
         let thread = std::thread::spawn(move || {
-            for job in inbox {
-                let (path, result) = match job {
-                    Job::Replace(path, content) => {
-                        let result = replace(&path, content.as_bytes());
-                        (path, result)
-                    }
-                    Job::Remove(path) => {
-                        let result = match fs::remove_file(&path) {
-                            Err(error) if error.kind() != io::ErrorKind::NotFound => Err(error),
-                            _ => Ok(()),
-                        };
-                        (path, result)
-                    }
-                    Job::Flush(done) => {
-                        let _ = done.send(());
+            while let Ok(first) = inbox.recv() {
+                let batch: Vec<Job> = std::iter::once(first).chain(inbox.try_iter()).collect();
+                for (index, job) in batch.iter().enumerate() {
+                    // A file that is replaced again right away need not be written twice.
+                    let later = batch.iter().skip(index + 1);
+                    if later.take_while(|job| job.path().is_some()).any(|later| later.path() == job.path()) {
                         continue;
                     }
-                };
-                if let Err(source) = result {
-                    let _ = outbox.send(DiskFailure { path, source });
-                    waker.wake();
+                    if let Err(source) = job.run() {
+                        let path = job.path().map(Path::to_owned).unwrap_or_default();
+                        let _ = outbox.send(DiskFailure { path, source });
+                        waker.wake();
+                    }
                 }
             }
         });
@@ -74,11 +89,16 @@ impl SmallFiles {
         self.send(Job::Remove(path));
     }
 
-    /// Waits until everything asked for so far is on the disk or has failed.
-    pub(crate) fn flush(&self) {
+    /// Receives once everything asked for so far is on the disk or has failed.
+    pub(crate) fn barrier(&self) -> Receiver<()> {
         let (done, wait) = channel();
         self.send(Job::Flush(done));
-        let _ = wait.recv();
+        wait
+    }
+
+    /// Waits for that.
+    pub(crate) fn flush(&self) {
+        let _ = self.barrier().recv();
     }
 
     pub(crate) fn failures(&self) -> Vec<DiskFailure> {

@@ -142,7 +142,9 @@ impl Amendments {
     /// The surface temperature these amendments set, if any is enabled.
     pub fn surface_temperature(&self) -> Option<Temperature> {
         self.last_enabled(|amendment| match *amendment {
-            Amendment::SurfaceTemperature { temperature_k } => Some(Temperature::from_k(temperature_k)),
+            Amendment::SurfaceTemperature { temperature_k } => {
+                Some(Temperature::from_k(temperature_k))
+            }
             _ => None,
         })
     }
@@ -159,14 +161,18 @@ impl Amendments {
     ///
     /// An entry that came from a repair no longer does when its value changes.
     pub fn with_surface_dewpoint(&self, dewpoint: Temperature) -> Self {
-        self.with(Amendment::SurfaceDewpoint { dewpoint_k: dewpoint.k() })
+        self.with(Amendment::SurfaceDewpoint {
+            dewpoint_k: dewpoint.k(),
+        })
     }
 
     /// The same list with the surface temperature set (its entry replaced and enabled, or appended).
     ///
     /// An entry that came from a repair no longer does when its value changes.
     pub fn with_surface_temperature(&self, temperature: Temperature) -> Self {
-        self.with(Amendment::SurfaceTemperature { temperature_k: temperature.k() })
+        self.with(Amendment::SurfaceTemperature {
+            temperature_k: temperature.k(),
+        })
     }
 
     fn last_enabled<T>(&self, value: impl Fn(&Amendment) -> Option<T>) -> Option<T> {
@@ -190,7 +196,11 @@ impl Amendments {
                 entry.amendment = amendment;
                 entry.enabled = true;
             }
-            None => list.entries.push(Entry { amendment, enabled: true, from_repair: None }),
+            None => list.entries.push(Entry {
+                amendment,
+                enabled: true,
+                from_repair: None,
+            }),
         }
         list
     }

@@ -22,17 +22,33 @@ pub(crate) fn apply(amendments: &Amendments, received: &Profile, daylight: Dayli
                     reach = Some(edit_surface(&mut profile, edit, &mut notes));
                 }
             }
-            Amendment::BridgeLayer { bottom_pa, top_pa, humidity } => {
+            Amendment::BridgeLayer {
+                bottom_pa,
+                top_pa,
+                humidity,
+            } => {
                 bridge_layer(&mut profile, bottom_pa, top_pa, humidity, &mut notes);
             }
-            Amendment::DropLevels { bottom_pa, top_pa } => drop_levels(&mut profile, bottom_pa, top_pa, &mut notes),
-            Amendment::MixMoisture { bottom_pa, top_pa, mixing_ratio } => {
+            Amendment::DropLevels { bottom_pa, top_pa } => {
+                drop_levels(&mut profile, bottom_pa, top_pa, &mut notes)
+            }
+            Amendment::MixMoisture {
+                bottom_pa,
+                top_pa,
+                mixing_ratio,
+            } => {
                 mix_moisture(&mut profile, bottom_pa, top_pa, mixing_ratio, &mut notes);
             }
-            Amendment::DisregardAbove { pressure_pa } => disregard_above(&mut profile, pressure_pa, &mut notes),
+            Amendment::DisregardAbove { pressure_pa } => {
+                disregard_above(&mut profile, pressure_pa, &mut notes)
+            }
         }
     }
     // Without a surface edit the reach one would have is still told: it stands beside the handle.
     let reach = reach.unwrap_or_else(|| edit_surface(&mut profile, edit, &mut notes));
-    Working { profile, reach, notes }
+    Working {
+        profile,
+        reach,
+        notes,
+    }
 }

@@ -29,7 +29,12 @@ const FIRST_ROW_TOLERANCE: f64 = 1_500.0;
 ///
 /// `marked`: the row the format calls the surface.
 pub(crate) fn flight(levels: &[Level], rows: &[usize], marked: Option<usize>) -> Option<Flight> {
-    let pressure_of = |row: usize| levels.get(row).and_then(|level| level.pressure).unwrap_or(f64::NAN);
+    let pressure_of = |row: usize| {
+        levels
+            .get(row)
+            .and_then(|level| level.pressure)
+            .unwrap_or(f64::NAN)
+    };
     let mut series: Vec<usize> = rows.to_vec();
     if let Some(mut timed) = series
         .iter()
@@ -91,7 +96,8 @@ impl Flight {
             self.surface = marked;
             return;
         };
-        let (Some(&p_first), Some(&p_launch)) = (pressures.get(first), pressures.get(launch)) else {
+        let (Some(&p_first), Some(&p_launch)) = (pressures.get(first), pressures.get(launch))
+        else {
             return;
         };
         let mut p_surface = p_first;
@@ -137,8 +143,11 @@ fn launch(pressures: &[f64], first: usize) -> Option<usize> {
     let under_way = (first..pressures.len())
         .find(|&at| pressures.get(at).is_some_and(|&p| p < p_first - UNDER_WAY) && gone(at))?;
     let p_under_way = *pressures.get(under_way)?;
-    let further = (under_way..pressures.len())
-        .find(|&at| pressures.get(at).is_some_and(|&p| p < p_under_way - UNDER_WAY))?;
+    let further = (under_way..pressures.len()).find(|&at| {
+        pressures
+            .get(at)
+            .is_some_and(|&p| p < p_under_way - UNDER_WAY)
+    })?;
     // Fall of pressure per row in the ascent proper: the scale of everything below.
     let per_row = UNDER_WAY / (further - under_way).max(1) as f64;
     let reach = ((500.0 / per_row).ceil() as usize).clamp(1, 50);
@@ -160,7 +169,9 @@ fn launch(pressures: &[f64], first: usize) -> Option<usize> {
 fn span(pressures: &[f64]) -> f64 {
     let (low, high) = pressures
         .iter()
-        .fold((f64::INFINITY, f64::NEG_INFINITY), |(low, high), &p| (low.min(p), high.max(p)));
+        .fold((f64::INFINITY, f64::NEG_INFINITY), |(low, high), &p| {
+            (low.min(p), high.max(p))
+        });
     (high - low).max(0.0)
 }
 

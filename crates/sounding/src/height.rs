@@ -49,15 +49,26 @@ impl Profile {
             }
             let below = next.checked_sub(1).and_then(|at| anchors.get(at)).copied();
             let above = anchors.get(next).copied();
-            let value = |anchor: usize| (self.height.get(anchor).copied().flatten(), cumulative.get(anchor).copied().flatten());
+            let value = |anchor: usize| {
+                (
+                    self.height.get(anchor).copied().flatten(),
+                    cumulative.get(anchor).copied().flatten(),
+                )
+            };
             let here = cumulative.get(row).copied().flatten();
             let filled = match (below, above) {
                 (_, Some(anchor)) if anchor == row => continue,
                 (Some(b), Some(a)) => {
-                    let ((Some(z0), c0), (Some(z1), c1)) = (value(b), value(a)) else { continue };
+                    let ((Some(z0), c0), (Some(z1), c1)) = (value(b), value(a)) else {
+                        continue;
+                    };
                     let share = match (c0, here, c1) {
                         (Some(c0), Some(c), Some(c1)) if c1 > c0 => (c - c0) / (c1 - c0),
-                        _ => match (self.pressure.get(b), self.pressure.get(row), self.pressure.get(a)) {
+                        _ => match (
+                            self.pressure.get(b),
+                            self.pressure.get(row),
+                            self.pressure.get(a),
+                        ) {
                             (Some(p0), Some(p), Some(p1)) => (p0 / p).ln() / (p0 / p1).ln(),
                             _ => continue,
                         },
@@ -103,15 +114,21 @@ impl Profile {
         let mut cumulative = vec![None; self.len()];
         let mut below: Option<(usize, f64, f64, f64)> = None;
         for row in 0..self.len() {
-            let (Some(tv), Some(&pressure)) = (self.virtual_temperature(row), self.pressure.get(row)) else {
+            let (Some(tv), Some(&pressure)) =
+                (self.virtual_temperature(row), self.pressure.get(row))
+            else {
                 continue;
             };
             let mut sum = 0.0;
             if let Some((last, p0, tv0, sum0)) = below {
                 let depth = (p0 / pressure).ln();
-                let to = |tv: f64, depth: f64| sum0 + GAS_CONSTANT_DRY / GRAVITY * 0.5 * (tv0 + tv) * depth;
+                let to = |tv: f64, depth: f64| {
+                    sum0 + GAS_CONSTANT_DRY / GRAVITY * 0.5 * (tv0 + tv) * depth
+                };
                 for between in last + 1..row {
-                    if let (Some(&p), Some(slot)) = (self.pressure.get(between), cumulative.get_mut(between)) {
+                    if let (Some(&p), Some(slot)) =
+                        (self.pressure.get(between), cumulative.get_mut(between))
+                    {
                         let part = (p0 / p).ln();
                         *slot = Some(to(tv0 + part / depth * (tv - tv0), part));
                     }

@@ -31,7 +31,11 @@ struct Tally {
 
 impl Tally {
     fn new(many: &'static str, why: &'static str) -> Self {
-        Self { many, why, seen: Vec::new() }
+        Self {
+            many,
+            why,
+            seen: Vec::new(),
+        }
     }
 
     fn add(&mut self, place: Place, what: String) {
@@ -42,7 +46,11 @@ impl Tally {
         let count = self.seen.len();
         let why = self.why.to_string();
         if sampling == Sampling::Coded || count <= 3 {
-            notes.extend(self.seen.into_iter().map(|(place, what)| Note { place, what, why: why.clone() }));
+            notes.extend(self.seen.into_iter().map(|(place, what)| Note {
+                place,
+                what,
+                why: why.clone(),
+            }));
         } else if let Some((place, first)) = self.seen.into_iter().next() {
             notes.push(Note {
                 place,
@@ -56,7 +64,10 @@ impl Tally {
 /// See [`Profile::received`].
 pub(crate) fn received(sounding: &Sounding) -> (Profile, Vec<Note>) {
     let mut notes = Vec::new();
-    let mut unusable = Tally::new("values that can't be used count as missing", "not a number, or outside what air can be");
+    let mut unusable = Tally::new(
+        "values that can't be used count as missing",
+        "not a number, or outside what air can be",
+    );
     let mut saturated = Tally::new(
         "dew points slightly above temperature: counted as saturated",
         "up to 1 K is rounding or slight supersaturation",
@@ -76,10 +87,11 @@ pub(crate) fn received(sounding: &Sounding) -> (Profile, Vec<Note>) {
     saturated.tell(sampling, &mut notes);
     note_without_pressure(&sounding.levels, &clean, &mut notes);
 
-    let mut marked = with_pressure
-        .iter()
-        .copied()
-        .filter(|&row| clean.get(row).is_some_and(|level| level.kind == LevelKind::Surface));
+    let mut marked = with_pressure.iter().copied().filter(|&row| {
+        clean
+            .get(row)
+            .is_some_and(|level| level.kind == LevelKind::Surface)
+    });
     let surface_marked = marked.next();
     let flight = match sampling {
         Sampling::Fine => flight(&clean, &with_pressure, surface_marked),
@@ -116,12 +128,22 @@ pub(crate) fn received(sounding: &Sounding) -> (Profile, Vec<Note>) {
 /// A level with only the values that can be used.
 fn cleaned(index: usize, level: &Level, unusable: &mut Tally, saturated: &mut Tally) -> Level {
     let place = place(level);
-    let mut checked = |value: Option<f64>, range: &std::ops::RangeInclusive<f64>, name: &str, shown: fn(f64) -> String| {
+    let mut checked = |value: Option<f64>,
+                       range: &std::ops::RangeInclusive<f64>,
+                       name: &str,
+                       shown: fn(f64) -> String| {
         let value = value?;
         if range.contains(&value) {
             return Some(value);
         }
-        unusable.add(place, format!("{name} {} of received level {} counts as missing", shown(value), index + 1));
+        unusable.add(
+            place,
+            format!(
+                "{name} {} of received level {} counts as missing",
+                shown(value),
+                index + 1
+            ),
+        );
         None
     };
     let celsius = |k: f64| format!("{:.1} °C", k - 273.15);
@@ -130,8 +152,15 @@ fn cleaned(index: usize, level: &Level, unusable: &mut Tally, saturated: &mut Ta
     let temperature = checked(level.temperature, &TEMPERATURES, "temperature", celsius);
     let mut dewpoint = checked(level.dewpoint, &DEWPOINTS, "dew point", celsius);
     let wind = level.wind.filter(|wind| {
-        let speed = checked(Some(wind.speed), &SPEEDS, "wind speed", |v| format!("{v} m/s"));
-        let direction = checked(Some(wind.direction), &(0.0..=360.0), "wind direction", |d| format!("{d}°"));
+        let speed = checked(Some(wind.speed), &SPEEDS, "wind speed", |v| {
+            format!("{v} m/s")
+        });
+        let direction = checked(
+            Some(wind.direction),
+            &(0.0..=360.0),
+            "wind direction",
+            |d| format!("{d}°"),
+        );
         speed.is_some() && direction.is_some()
     });
     if let (Some(t), Some(td)) = (temperature, dewpoint)
@@ -141,17 +170,34 @@ fn cleaned(index: usize, level: &Level, unusable: &mut Tally, saturated: &mut Ta
             dewpoint = Some(t);
             saturated.add(
                 place,
-                format!("dew point {} above temperature {} at {}: counted as saturated", celsius(td), celsius(t), at(pressure)),
+                format!(
+                    "dew point {} above temperature {} at {}: counted as saturated",
+                    celsius(td),
+                    celsius(t),
+                    at(pressure)
+                ),
             );
         } else {
             dewpoint = None;
             unusable.add(
                 place,
-                format!("dew point {} far above temperature {} at {}: counts as missing", celsius(td), celsius(t), at(pressure)),
+                format!(
+                    "dew point {} far above temperature {} at {}: counts as missing",
+                    celsius(td),
+                    celsius(t),
+                    at(pressure)
+                ),
             );
         }
     }
-    Level { pressure, height, temperature, dewpoint, wind, ..*level }
+    Level {
+        pressure,
+        height,
+        temperature,
+        dewpoint,
+        wind,
+        ..*level
+    }
 }
 
 /// Fine or coded: see [`Profile::received`].
@@ -183,7 +229,10 @@ fn sampling(levels: &[Level]) -> Sampling {
 
 fn note_without_pressure(received: &[Level], clean: &[Level], notes: &mut Vec<Note>) {
     let carries = |level: &Level| {
-        level.height.is_some() || level.temperature.is_some() || level.dewpoint.is_some() || level.wind.is_some()
+        level.height.is_some()
+            || level.temperature.is_some()
+            || level.dewpoint.is_some()
+            || level.wind.is_some()
     };
     let left_out: Vec<&Level> = clean
         .iter()
@@ -191,7 +240,9 @@ fn note_without_pressure(received: &[Level], clean: &[Level], notes: &mut Vec<No
         .filter(|(clean, level)| clean.pressure.is_none() && carries(level))
         .map(|(_, level)| level)
         .collect();
-    let Some(first) = left_out.first() else { return };
+    let Some(first) = left_out.first() else {
+        return;
+    };
     let what = match left_out.len() {
         1 => "1 level without pressure left out".to_string(),
         n => format!("{n} levels without pressure left out"),
@@ -205,12 +256,20 @@ fn note_without_pressure(received: &[Level], clean: &[Level], notes: &mut Vec<No
 
 fn note_left_out(flight: &Flight, levels: &[Level], notes: &mut Vec<Note>) {
     let mut tell = |rows: &[usize], what: &str, why: &str| {
-        let Some(first) = rows.first().and_then(|&row| levels.get(row)) else { return };
+        let Some(first) = rows.first().and_then(|&row| levels.get(row)) else {
+            return;
+        };
         let (low, high) = rows
             .iter()
             .filter_map(|&row| levels.get(row)?.pressure)
-            .fold((f64::INFINITY, 0.0_f64), |(low, high), p| (low.min(p), high.max(p)));
-        let number = if rows.len() == 1 { "1 row".to_string() } else { format!("{} rows", rows.len()) };
+            .fold((f64::INFINITY, 0.0_f64), |(low, high), p| {
+                (low.min(p), high.max(p))
+            });
+        let number = if rows.len() == 1 {
+            "1 row".to_string()
+        } else {
+            format!("{} rows", rows.len())
+        };
         notes.push(Note {
             place: place(first),
             what: format!("{number} {what} left out ({} to {})", hpa(high), hpa(low)),
@@ -222,19 +281,44 @@ fn note_left_out(flight: &Flight, levels: &[Level], notes: &mut Vec<Note>) {
         "of the wait before launch",
         "pressure wanders there without the sonde rising; the first row stands for the surface",
     );
-    tell(&flight.below_surface, "after launch below the surface pressure", "the ascent starts at the surface");
+    tell(
+        &flight.below_surface,
+        "after launch below the surface pressure",
+        "the ascent starts at the surface",
+    );
     if flight.ascending {
-        tell(&flight.other_leg, "of the descent after the top", "the profile is the ascent");
+        tell(
+            &flight.other_leg,
+            "of the descent after the top",
+            "the profile is the ascent",
+        );
     } else {
-        tell(&flight.other_leg, "before the descent", "the profile is the descent");
+        tell(
+            &flight.other_leg,
+            "before the descent",
+            "the profile is the descent",
+        );
     }
 }
 
 /// One row a pressure, falling.
-fn merged(levels: &[Level], mut rows: Vec<usize>, sampling: Sampling, conflicts: &mut Tally) -> Profile {
-    let pressure = |row: &usize| levels.get(*row).and_then(|level| level.pressure).unwrap_or(f64::NAN);
+fn merged(
+    levels: &[Level],
+    mut rows: Vec<usize>,
+    sampling: Sampling,
+    conflicts: &mut Tally,
+) -> Profile {
+    let pressure = |row: &usize| {
+        levels
+            .get(*row)
+            .and_then(|level| level.pressure)
+            .unwrap_or(f64::NAN)
+    };
     rows.sort_by(|a, b| pressure(b).total_cmp(&pressure(a)).then(a.cmp(b)));
-    let mut profile = Profile { sampling, ..Profile::default() };
+    let mut profile = Profile {
+        sampling,
+        ..Profile::default()
+    };
     // The received order decides within a pressure, so groups are gathered before they are merged.
     let mut group: Vec<usize> = Vec::new();
     let mut group_pressure = f64::NAN;
@@ -252,16 +336,31 @@ fn merged(levels: &[Level], mut rows: Vec<usize>, sampling: Sampling, conflicts:
     profile
 }
 
-fn push_group(levels: &[Level], group: &mut Vec<usize>, profile: &mut Profile, conflicts: &mut Tally) {
+fn push_group(
+    levels: &[Level],
+    group: &mut Vec<usize>,
+    profile: &mut Profile,
+    conflicts: &mut Tally,
+) {
     group.sort_unstable();
-    let mut members = group.iter().filter_map(|&row| Some((row, levels.get(row)?)));
-    let Some((first_row, &first)) = members.next() else { return };
+    let mut members = group
+        .iter()
+        .filter_map(|&row| Some((row, levels.get(row)?)));
+    let Some((first_row, &first)) = members.next() else {
+        return;
+    };
     let mut kept = first;
     for (_, level) in members {
         let mut differing = Vec::new();
-        keep_first(&mut kept.height, level.height, 0.5, || differing.push("height"));
-        keep_first(&mut kept.temperature, level.temperature, 0.01, || differing.push("temperature"));
-        keep_first(&mut kept.dewpoint, level.dewpoint, 0.01, || differing.push("dew point"));
+        keep_first(&mut kept.height, level.height, 0.5, || {
+            differing.push("height")
+        });
+        keep_first(&mut kept.temperature, level.temperature, 0.01, || {
+            differing.push("temperature")
+        });
+        keep_first(&mut kept.dewpoint, level.dewpoint, 0.01, || {
+            differing.push("dew point")
+        });
         match (kept.wind, level.wind) {
             (None, wind) => kept.wind = wind,
             (Some(a), Some(b)) if winds_differ(a, b) => differing.push("wind"),
@@ -270,7 +369,11 @@ fn push_group(levels: &[Level], group: &mut Vec<usize>, profile: &mut Profile, c
         if !differing.is_empty() {
             conflicts.add(
                 place(level),
-                format!("{} repeated with other {}; the first received is kept", at(kept.pressure), differing.join(", ")),
+                format!(
+                    "{} repeated with other {}; the first received is kept",
+                    at(kept.pressure),
+                    differing.join(", ")
+                ),
             );
         }
     }
@@ -301,21 +404,39 @@ fn winds_differ(a: Wind, b: Wind) -> bool {
 }
 
 /// The surface row: given, else the lowest that reports temperature or wind; replaced by a complete one close above when incomplete.
-fn choose_surface(profile: &mut Profile, level: Option<usize>, levels: &[Level], notes: &mut Vec<Note>) {
+fn choose_surface(
+    profile: &mut Profile,
+    level: Option<usize>,
+    levels: &[Level],
+    notes: &mut Vec<Note>,
+) {
     let given = level
         .and_then(|row| levels.get(row)?.pressure)
-        .and_then(|p| profile.pressure.iter().position(|&q| (p - q).abs() <= SAME_PRESSURE));
+        .and_then(|p| {
+            profile
+                .pressure
+                .iter()
+                .position(|&q| (p - q).abs() <= SAME_PRESSURE)
+        });
     let lowest = || {
         (0..profile.len()).find(|&row| {
-            matches!(profile.temperature.get(row), Some(Some(_))) || matches!(profile.wind.get(row), Some(Some(_)))
+            matches!(profile.temperature.get(row), Some(Some(_)))
+                || matches!(profile.wind.get(row), Some(Some(_)))
         })
     };
-    let Some(row) = given.or_else(lowest) else { return };
+    let Some(row) = given.or_else(lowest) else {
+        return;
+    };
     profile.surface = Some(row);
     let pressure = profile.pressure.get(row).copied().unwrap_or(f64::NAN);
     if !profile.complete(row) {
         let near = (row + 1..profile.len())
-            .take_while(|&above| profile.pressure.get(above).is_some_and(|&p| pressure - p <= SERVES_WITHIN))
+            .take_while(|&above| {
+                profile
+                    .pressure
+                    .get(above)
+                    .is_some_and(|&p| pressure - p <= SERVES_WITHIN)
+            })
             .find(|&above| profile.complete(above));
         let place = Place::Level(row);
         match near {

@@ -28,8 +28,11 @@ impl Profile {
     /// Pressure where theta first exceeds `limit` above the row `from`, whose theta is `theta_from`.
     pub(crate) fn first_above(&self, from: usize, theta_from: f64, limit: f64) -> Option<Pressure> {
         let mut below = (*self.pressure.get(from)?, theta_from);
-        for (&pressure, &temperature) in self.pressure.iter().zip(&self.temperature).skip(from + 1) {
-            let Some(temperature) = temperature else { continue };
+        for (&pressure, &temperature) in self.pressure.iter().zip(&self.temperature).skip(from + 1)
+        {
+            let Some(temperature) = temperature else {
+                continue;
+            };
             let theta = temperature * (REFERENCE_PRESSURE / pressure).powf(KAPPA);
             if theta > limit {
                 let share = ((limit - below.1) / (theta - below.1)).clamp(0.0, 1.0);

@@ -2,8 +2,8 @@
 
 use crate::Profile;
 use dewbound_thermo::{
-    Ascent, EnvironmentError, HumidityKnown, MIXED_DEPTH, MOST_UNSTABLE_DEPTH, Method, Pressure, lift, mixed_start,
-    most_unstable_start,
+    Ascent, EnvironmentError, HumidityKnown, MIXED_DEPTH, MOST_UNSTABLE_DEPTH, Method, Pressure,
+    lift, mixed_start, most_unstable_start,
 };
 
 /// Which of the three parcels.
@@ -101,14 +101,20 @@ impl Numbers {
         }
         let humidity = environment.humidity();
         numbers.humidity = Some(humidity);
-        if humidity.dry_above.is_some_and(|p| p.pa() > HUMIDITY_HELD_BELOW.pa()) {
+        if humidity
+            .dry_above
+            .is_some_and(|p| p.pa() > HUMIDITY_HELD_BELOW.pa())
+        {
             let held = environment.with_humidity_held();
             let cape = |ascent: &Option<Ascent>| {
                 let start = ascent.as_ref()?.start;
                 lift(&held, start, method).map(|ascent| ascent.cape)
             };
-            numbers.cape_humidity_held =
-                Some([cape(&numbers.surface), cape(&numbers.mixed), cape(&numbers.most_unstable)]);
+            numbers.cape_humidity_held = Some([
+                cape(&numbers.surface),
+                cape(&numbers.mixed),
+                cape(&numbers.most_unstable),
+            ]);
         }
         numbers
     }

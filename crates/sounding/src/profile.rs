@@ -99,7 +99,8 @@ impl Profile {
 
     /// The row has temperature and dew point.
     pub(crate) fn complete(&self, row: usize) -> bool {
-        matches!(self.temperature.get(row), Some(Some(_))) && matches!(self.dewpoint.get(row), Some(Some(_)))
+        matches!(self.temperature.get(row), Some(Some(_)))
+            && matches!(self.dewpoint.get(row), Some(Some(_)))
     }
 
     /// The air a parcel rises through: rows with temperature, from the surface (or, without one, the lowest complete row) upward.
@@ -110,7 +111,8 @@ impl Profile {
     pub fn environment(&self) -> Result<Environment, EnvironmentError> {
         let Some(start) = self.environment_start() else {
             let from = self.surface.unwrap_or(0);
-            let lowest = (from..self.len()).find(|&row| matches!(self.temperature.get(row), Some(Some(_))));
+            let lowest =
+                (from..self.len()).find(|&row| matches!(self.temperature.get(row), Some(Some(_))));
             return Err(match lowest.and_then(|row| self.pressure.get(row)) {
                 Some(&pressure) => EnvironmentError::BottomWithoutHumidity { pressure },
                 None => EnvironmentError::TooFewLevels(0),
@@ -120,7 +122,11 @@ impl Profile {
         let mut pressures = Vec::with_capacity(room);
         let mut temperatures = Vec::with_capacity(room);
         let mut dewpoints = Vec::with_capacity(room);
-        let rows = self.pressure.iter().zip(&self.temperature).zip(&self.dewpoint);
+        let rows = self
+            .pressure
+            .iter()
+            .zip(&self.temperature)
+            .zip(&self.dewpoint);
         for ((&pressure, &temperature), &dewpoint) in rows.skip(start) {
             if let Some(temperature) = temperature {
                 pressures.push(pressure);
@@ -145,9 +151,16 @@ impl Profile {
 /// Changing rows: for the amendments alone.
 impl Profile {
     /// Value of a column at a pressure, linear in ln p between the rows (from `from` up) that have one.
-    pub(crate) fn interpolated(&self, column: &[Option<f64>], from: usize, pressure: f64) -> Option<f64> {
+    pub(crate) fn interpolated(
+        &self,
+        column: &[Option<f64>],
+        from: usize,
+        pressure: f64,
+    ) -> Option<f64> {
         let above = self.pressure.partition_point(|&p| p >= pressure);
-        let below = (from..above).rev().find_map(|row| Some((row, (*column.get(row)?)?)))?;
+        let below = (from..above)
+            .rev()
+            .find_map(|row| Some((row, (*column.get(row)?)?)))?;
         let p_below = *self.pressure.get(below.0)?;
         if p_below - pressure < SAME_PRESSURE {
             return Some(below.1);
@@ -162,8 +175,13 @@ impl Profile {
     /// environment. `None` outside the rows with temperature from the surface up.
     pub(crate) fn row_at(&mut self, pressure: f64) -> Option<usize> {
         let from = self.surface.unwrap_or(0);
-        let near = self.pressure.partition_point(|&p| p > pressure + SAME_PRESSURE);
-        let same = self.pressure.get(near).is_some_and(|&p| (p - pressure).abs() <= SAME_PRESSURE);
+        let near = self
+            .pressure
+            .partition_point(|&p| p > pressure + SAME_PRESSURE);
+        let same = self
+            .pressure
+            .get(near)
+            .is_some_and(|&p| (p - pressure).abs() <= SAME_PRESSURE);
         if same && matches!(self.temperature.get(near), Some(Some(_))) {
             return Some(near);
         }
@@ -178,7 +196,9 @@ impl Profile {
             self.dewpoint.insert(near, None);
             self.wind.insert(near, None);
             self.received.insert(near, None);
-            self.surface = self.surface.map(|row| if row >= near { row + 1 } else { row });
+            self.surface = self
+                .surface
+                .map(|row| if row >= near { row + 1 } else { row });
         }
         if let (Some(t), Some(td)) = (self.temperature.get_mut(near), self.dewpoint.get_mut(near)) {
             *t = Some(temperature);
@@ -197,7 +217,10 @@ impl Profile {
             .map(|(row, _)| row)
             .collect();
         fn pick<T: Copy>(column: &mut Vec<T>, kept: &[usize]) {
-            *column = kept.iter().filter_map(|&row| column.get(row).copied()).collect();
+            *column = kept
+                .iter()
+                .filter_map(|&row| column.get(row).copied())
+                .collect();
         }
         pick(&mut self.pressure, &kept);
         pick(&mut self.height, &kept);
@@ -205,6 +228,8 @@ impl Profile {
         pick(&mut self.dewpoint, &kept);
         pick(&mut self.wind, &kept);
         pick(&mut self.received, &kept);
-        self.surface = self.surface.and_then(|row| kept.iter().position(|&k| k == row));
+        self.surface = self
+            .surface
+            .and_then(|row| kept.iter().position(|&k| k == row));
     }
 }

@@ -5,7 +5,8 @@ use crate::mixed_layer::MIXED_LAYER_LEAST_DEPTH;
 use crate::profile::SAME_PRESSURE;
 use crate::{Daylight, Note, Place, Profile, Reach, ReachApplied};
 use dewbound_thermo::{
-    Air, KAPPA, Pressure, REFERENCE_PRESSURE, Temperature, dewpoint_from_mixing_ratio, potential_temperature,
+    Air, KAPPA, Pressure, REFERENCE_PRESSURE, Temperature, dewpoint_from_mixing_ratio,
+    potential_temperature,
 };
 
 /// Depth over which an edit with the reach of a level tapers, Pa.
@@ -23,10 +24,19 @@ pub(crate) struct SurfaceEdit {
 }
 
 /// Sets the surface values and carries them up; without values only tells the reach they would have.
-pub(crate) fn edit_surface(profile: &mut Profile, edit: SurfaceEdit, notes: &mut Vec<Note>) -> ReachApplied {
-    let surface = profile
-        .surface
-        .and_then(|row| Some((row, *profile.pressure.get(row)?, *profile.temperature.get(row)?, *profile.dewpoint.get(row)?)));
+pub(crate) fn edit_surface(
+    profile: &mut Profile,
+    edit: SurfaceEdit,
+    notes: &mut Vec<Note>,
+) -> ReachApplied {
+    let surface = profile.surface.and_then(|row| {
+        Some((
+            row,
+            *profile.pressure.get(row)?,
+            *profile.temperature.get(row)?,
+            *profile.dewpoint.get(row)?,
+        ))
+    });
     let Some((row, pressure, t_received, td_received)) = surface else {
         if edit.temperature.is_some() || edit.dewpoint.is_some() {
             notes.push(Note {
@@ -43,14 +53,21 @@ pub(crate) fn edit_surface(profile: &mut Profile, edit: SurfaceEdit, notes: &mut
         };
     };
     let mut tell = |what: String, why: &str| {
-        notes.push(Note { place: Place::Level(row), what, why: why.to_string() });
+        notes.push(Note {
+            place: Place::Level(row),
+            what,
+            why: why.to_string(),
+        });
     };
     let mut usable = |value: Option<Temperature>, name: &str| {
         let value = value?;
         if (140.0..=340.0).contains(&value.k()) {
             return Some(value.k());
         }
-        tell(format!("surface {name} {:.1} °C not set", value.c()), "no air is like that");
+        tell(
+            format!("surface {name} {:.1} °C not set", value.c()),
+            "no air is like that",
+        );
         None
     };
     let t = usable(edit.temperature, "temperature").or(t_received);
@@ -74,7 +91,11 @@ pub(crate) fn edit_surface(profile: &mut Profile, edit: SurfaceEdit, notes: &mut
     }
     let (Some(t), Some(td)) = (t, td) else {
         set(profile, row, t, td);
-        let missing = if t.is_none() { "temperature" } else { "dew point" };
+        let missing = if t.is_none() {
+            "temperature"
+        } else {
+            "dew point"
+        };
         tell(
             format!("surface {missing} is still missing"),
             "the surface parcel needs temperature and dew point",
@@ -89,7 +110,8 @@ pub(crate) fn edit_surface(profile: &mut Profile, edit: SurfaceEdit, notes: &mut
         if applied.reach == Reach::Mixed {
             let top = applied.mixed_top.map_or(pressure, Pressure::pa);
             profile.row_at(top);
-            applied.capped_levels = mix(profile, row, top, new, t_received.is_none_or(|old| t > old));
+            applied.capped_levels =
+                mix(profile, row, top, new, t_received.is_none_or(|old| t > old));
         } else {
             applied.why = match applied.reach {
                 Reach::Tapered => "level: no received surface value to taper from".to_string(),
@@ -103,7 +125,11 @@ pub(crate) fn edit_surface(profile: &mut Profile, edit: SurfaceEdit, notes: &mut
     let old = surface_state(pressure, t_old, td_old);
     // An unchanged value has an increment of exactly zero, whatever the rounding of the conversions.
     let increment = Increment {
-        theta: if t == t_old { 0.0 } else { new.theta - old.theta },
+        theta: if t == t_old {
+            0.0
+        } else {
+            new.theta - old.theta
+        },
         w: if td == td_old { 0.0 } else { new.w - old.w },
     };
     let near = pressure - LEVEL_DEPTH;
@@ -125,7 +151,16 @@ pub(crate) fn edit_surface(profile: &mut Profile, edit: SurfaceEdit, notes: &mut
             if increment.theta < 0.0 {
                 // Cooling doesn't mix upward: it stays near the ground.
                 profile.row_at(near);
-                taper(profile, row, pressure, near, Increment { theta: increment.theta, w: 0.0 });
+                taper(
+                    profile,
+                    row,
+                    pressure,
+                    near,
+                    Increment {
+                        theta: increment.theta,
+                        w: 0.0,
+                    },
+                );
             }
             applied.capped_levels = mix(profile, row, top, new, raised);
         }
@@ -133,7 +168,9 @@ pub(crate) fn edit_surface(profile: &mut Profile, edit: SurfaceEdit, notes: &mut
     set(profile, row, Some(t), Some(td));
     if floored > 0 {
         tell(
-            format!("{floored} levels would have lost more moisture than they hold: made dry instead"),
+            format!(
+                "{floored} levels would have lost more moisture than they hold: made dry instead"
+            ),
             "the increment of the surface is larger than their mixing ratio",
         );
     }
@@ -180,12 +217,19 @@ fn set(profile: &mut Profile, row: usize, t: Option<f64>, td: Option<f64>) {
 }
 
 /// The reach in force for this profile, with the surface temperature it will have.
-fn choose(profile: &Profile, pressure: f64, temperature: Option<f64>, edit: SurfaceEdit) -> ReachApplied {
+fn choose(
+    profile: &Profile,
+    pressure: f64,
+    temperature: Option<f64>,
+    edit: SurfaceEdit,
+) -> ReachApplied {
     let mixed_top = temperature.and_then(|t| profile.mixed_top_of(Temperature::from_k(t)));
     let depth = mixed_top.map(|top| pressure - top.pa());
     let (top, unable) = match (temperature, mixed_top, depth) {
         (None, ..) => (None, "no surface temperature".to_string()),
-        (_, Some(top), Some(depth)) if depth >= MIXED_LAYER_LEAST_DEPTH.pa() => (Some(top), String::new()),
+        (_, Some(top), Some(depth)) if depth >= MIXED_LAYER_LEAST_DEPTH.pa() => {
+            (Some(top), String::new())
+        }
         (_, Some(_), Some(depth)) => (
             None,
             format!(
@@ -198,24 +242,53 @@ fn choose(profile: &Profile, pressure: f64, temperature: Option<f64>, edit: Surf
     };
     let (reach, why) = match (edit.reach, top) {
         (Some(Reach::Level), _) => (Reach::Level, "level: chosen".to_string()),
-        (Some(Reach::Mixed), Some(top)) => (Reach::Mixed, format!("mixed to {}: chosen", hpa(top.pa()))),
-        (Some(Reach::Tapered), Some(top)) => (Reach::Tapered, format!("tapered to {}: chosen", hpa(top.pa()))),
+        (Some(Reach::Mixed), Some(top)) => {
+            (Reach::Mixed, format!("mixed to {}: chosen", hpa(top.pa())))
+        }
+        (Some(Reach::Tapered), Some(top)) => (
+            Reach::Tapered,
+            format!("tapered to {}: chosen", hpa(top.pa())),
+        ),
         (Some(Reach::Mixed), None) => (Reach::Level, format!("level, not mixed: {unable}")),
         (Some(Reach::Tapered), None) => (Reach::Level, format!("level, not tapered: {unable}")),
         (None, Some(top)) => match edit.daylight {
-            Daylight::Day => (Reach::Mixed, format!("mixed to {}: default by day", hpa(top.pa()))),
+            Daylight::Day => (
+                Reach::Mixed,
+                format!("mixed to {}: default by day", hpa(top.pa())),
+            ),
             Daylight::Night => (Reach::Level, "level: default at night".to_string()),
-            Daylight::Unknown => (Reach::Level, "level: default, day or night unknown".to_string()),
+            Daylight::Unknown => (
+                Reach::Level,
+                "level: default, day or night unknown".to_string(),
+            ),
         },
         (None, None) => (Reach::Level, format!("level: default, {unable}")),
     };
-    ReachApplied { reach, why, mixed_top, capped_levels: 0 }
+    ReachApplied {
+        reach,
+        why,
+        mixed_top,
+        capped_levels: 0,
+    }
 }
 
 /// Adds the increment, falling linearly in p to zero at `top`, to the rows above the surface.
-fn taper(profile: &mut Profile, surface: usize, p_surface: f64, top: f64, increment: Increment) -> Tapered {
-    let mut done = Tapered { capped: 0, floored: 0 };
-    let rows = profile.pressure.iter().zip(&mut profile.temperature).zip(&mut profile.dewpoint);
+fn taper(
+    profile: &mut Profile,
+    surface: usize,
+    p_surface: f64,
+    top: f64,
+    increment: Increment,
+) -> Tapered {
+    let mut done = Tapered {
+        capped: 0,
+        floored: 0,
+    };
+    let rows = profile
+        .pressure
+        .iter()
+        .zip(&mut profile.temperature)
+        .zip(&mut profile.dewpoint);
     for ((&pressure, temperature), dewpoint) in rows.skip(surface + 1) {
         if pressure <= top {
             break;
@@ -251,7 +324,11 @@ fn taper(profile: &mut Profile, surface: usize, p_surface: f64, top: f64, increm
 /// number of capped rows. A level warmer than the surface's adiabat keeps its temperature: heating from below cools nothing.
 fn mix(profile: &mut Profile, surface: usize, top: f64, new: SurfaceState, warmed: bool) -> usize {
     let mut capped = 0;
-    let rows = profile.pressure.iter().zip(&mut profile.temperature).zip(&mut profile.dewpoint);
+    let rows = profile
+        .pressure
+        .iter()
+        .zip(&mut profile.temperature)
+        .zip(&mut profile.dewpoint);
     for ((&pressure, temperature), dewpoint) in rows.skip(surface + 1) {
         if pressure < top - SAME_PRESSURE {
             break;

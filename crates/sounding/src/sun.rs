@@ -26,7 +26,10 @@ pub fn solar_elevation(time: Timestamp, position: Position) -> f64 {
     let declination = (obliquity.sin() * longitude.sin()).asin();
     let right_ascension = (obliquity.cos() * longitude.sin()).atan2(longitude.cos());
     let sidereal = 280.460_618_37 + 360.985_647_366_29 * days + 0.000_387_933 * t * t;
-    let hour_angle = (sidereal + position.longitude).rem_euclid(360.0).to_radians() - right_ascension;
+    let hour_angle = (sidereal + position.longitude)
+        .rem_euclid(360.0)
+        .to_radians()
+        - right_ascension;
     let latitude = position.latitude.to_radians();
     (latitude.sin() * declination.sin() + latitude.cos() * declination.cos() * hour_angle.cos())
         .clamp(-1.0, 1.0)

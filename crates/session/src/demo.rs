@@ -14,7 +14,6 @@ pub(crate) struct DemoFile {
 }
 
 /// Embeds files of `demo-soundings/`.
-#[allow(unused_macros)]
 macro_rules! files {
     ($($name:literal),* $(,)?) => {
         &[$(DemoFile {
@@ -25,13 +24,23 @@ macro_rules! files {
 }
 
 /// The demo tray.
-pub(crate) const FILES: &[DemoFile] = &[];
+pub(crate) const FILES: &[DemoFile] = files![
+    "brennick-flats-20240613-00z-temp.txt",
+    "corriden-field-20240613-00z-temp.txt",
+    "dunmerrow-20240613-00z-temp-part-a.txt",
+    "hathwyn-20240613-00z-temp.txt",
+    "lowmere-gap-20240613-12z-station-file.txt",
+    "orlo-ridge-20240613-00z-station-file.txt",
+    "sandrel-20240613-00z-columns.csv",
+    "tamsel-creek-20240613-00z-columns.csv",
+    "vellmarsh-20240613-00z-columns.csv",
+];
 
 /// Their station table (`stations.csv` beside them).
-const STATIONS: &str = "";
+const STATIONS: &str = include_str!("../../../demo-soundings/stations.csv");
 
 /// The invented date of the tray; day-and-hour groups are nearest in the past to this.
-pub(crate) const AS_OF: Date = date(2031, 6, 14);
+pub(crate) const AS_OF: Date = date(2024, 6, 13);
 
 /// The demo file with these bytes: it is known by its content, wherever it is opened from.
 pub(crate) fn find(bytes: &[u8]) -> Option<&'static DemoFile> {
@@ -42,7 +51,7 @@ pub(crate) fn find(bytes: &[u8]) -> Option<&'static DemoFile> {
 pub(crate) fn stations() -> &'static StationTable {
     static TABLE: OnceLock<StationTable> = OnceLock::new();
     TABLE.get_or_init(|| {
-        let _ = STATIONS;
-        StationTable::default()
+        let (table, _notes) = StationTable::parse(STATIONS);
+        table
     })
 }

@@ -84,8 +84,16 @@ impl Office {
     }
 
     fn take_stations(&mut self, path: &Path, text: &str, problems: &mut Vec<OfficeProblem>) {
-        let _ = (path, text, problems);
-        todo!()
+        let (table, notes) = StationTable::parse(text);
+        self.stations = table;
+        if !notes.is_empty() {
+            let lines: Vec<String> = notes.iter().map(crate::wording::note).collect();
+            problems.push(OfficeProblem {
+                about: path.display().to_string(),
+                what: lines.join("\n"),
+                remedy: "The other rows serve; correct these and start again".to_owned(),
+            });
+        }
     }
 
     fn take_thresholds(&mut self, path: &Path, text: &str, problems: &mut Vec<OfficeProblem>) {

@@ -1,1 +1,3 @@
-//! How far the numbers move inside the credible surface moisture
+//! How far the numbers move inside the credible surface moisture.
+
+pub use dewbound_trust as trust;

@@ -44,7 +44,9 @@ pub enum ReadError {
         source: std::io::Error,
     },
     /// No reader recognises the content.
-    #[error("{file}: not recognised as TEMP text, an IGRA station file or columns with units; {hint}")]
+    #[error(
+        "{file}: not recognised as TEMP text, an IGRA station file or columns with units; {hint}"
+    )]
     Unrecognised {
         /// File name.
         file: String,

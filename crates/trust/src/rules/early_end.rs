@@ -303,3 +303,71 @@ fn caveat(view: &View, top: Pressure, awaited: bool, clues: &Clues) -> String {
     }
     caveats.join(" ")
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic::{Air0, BOTH, Dice, Scene};
+
+    fn unstable() -> Air0 {
+        Air0 { w: 0.0145, lapse: 0.0072, inversion_k: 1.5, ..Air0::default() }
+    }
+
+    #[test]
+    fn lost_below_the_equilibrium_level_is_doubtful_and_says_at_least() {
+        let mut ascent = unstable().ascent();
+        ascent.end_at(8000.0);
+        for sampling in BOTH {
+            let found = Scene::day(ascent.sampled(sampling)).check(&EarlyEnd);
+            assert_eq!(found.len(), 1);
+            assert_eq!(found[0].grade, Grade::Doubtful);
+            assert!(found[0].summary.contains("lower limit"), "{}", found[0].summary);
+            assert!(found[0].evidence("parcel_excess_k").unwrap() > 0.0);
+            assert!(found[0].repairs.is_empty());
+        }
+    }
+
+    #[test]
+    fn a_full_ascent_is_silent_and_one_past_el_and_tropopause_only_informs() {
+        let ascent = unstable().ascent();
+        for sampling in BOTH {
+            assert!(Scene::day(ascent.sampled(sampling)).check(&EarlyEnd).is_empty());
+        }
+        // Dry and stable: no parcel rises freely; the isothermal layer starts near 12 km.
+        let mut calm = Air0 { w: 0.004, lapse: 0.0066, inversion_k: 6.0, ..Air0::default() }.ascent();
+        calm.end_at(15_500.0);
+        let scene = Scene::day(calm.fine());
+        let found = scene.check(&EarlyEnd);
+        assert_eq!(found[0].grade, Grade::Informative, "{found:#?}");
+        // The tropopause is where the invented air turns isothermal (213 K).
+        let turns = calm.p[calm.t.iter().position(|&t| t <= 213.0).unwrap()] / 100.0;
+        assert!((found[0].evidence("tropopause_hpa").unwrap() - turns).abs() < 3.0);
+    }
+
+    #[test]
+    fn parts_awaited_are_told_apart_from_an_end() {
+        let mut ascent = unstable().ascent();
+        ascent.end_at(14_000.0);
+        let mut sounding = ascent.coded();
+        sounding.completeness = Completeness::LaterPartsNotReceived;
+        let found = Scene::day(sounding).check(&EarlyEnd);
+        assert!(found[0].summary.contains("later parts may still come"), "{}", found[0].summary);
+    }
+
+    #[test]
+    fn icing_in_an_anvil_is_told() {
+        let mut air = unstable();
+        air.cloud = Some((6000.0, 12_000.0));
+        let mut ascent = air.ascent().noisy(&mut Dice::new(3), 0.05, 0.005);
+        ascent.end_at(9000.0);
+        let mut sounding = ascent.fine();
+        // The last 300 m take three times as long.
+        let n = sounding.levels.len();
+        for (extra, level) in sounding.levels.iter_mut().skip(n - 60).enumerate() {
+            level.elapsed = level.elapsed.map(|s| s + 2.0 * extra as f64);
+        }
+        let found = Scene::day(sounding).check(&EarlyEnd);
+        assert!(found[0].guilty.contains("ice on the balloon") && found[0].guilty.contains("slowed"), "{}", found[0].guilty);
+        assert!(found[0].evidence("ascent_rate_top_ms").unwrap() < 0.6 * found[0].evidence("ascent_rate_ms").unwrap());
+    }
+}

@@ -351,3 +351,55 @@ fn repairs(view: &View, bottom: Option<Pressure>, top: Option<Pressure>) -> Vec<
         _ => Vec::new(),
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic::{Air0, Scene, levels};
+    use dewbound_sounding::Wind;
+
+    #[test]
+    fn clean_ascents_are_silent() {
+        for sounding in [Air0::default().ascent().fine(), Air0::default().ascent().coded()] {
+            assert!(Scene::day(sounding).check(&ImpossibleValue).is_empty());
+        }
+    }
+
+    #[test]
+    fn what_cant_be_is_erroneous_and_says_where() {
+        let rows = [(1000.0, 25.0, 15.0), (850.0, 14.0, 5.0), (700.0, 55.0, -8.0), (500.0, -12.0, -2.0), (300.0, -38.0, -55.0)];
+        let found = Scene::day(levels(&rows)).check(&ImpossibleValue);
+        assert_eq!(found.len(), 1, "{found:#?}");
+        assert_eq!(found[0].grade, Grade::Erroneous);
+        assert!(found[0].summary.starts_with("Dew point 10.0 K above the temperature at 500 hPa (line 4)"), "{}", found[0].summary);
+        let mut rows = rows;
+        rows[2].1 = 61.0;
+        rows[3].2 = -30.0;
+        let found = Scene::day(levels(&rows)).check(&ImpossibleValue);
+        assert_eq!(found[0].key(), "impossible-value@700-700");
+        assert!(found[0].summary.contains("61.0 \u{b0}C") && found[0].summary.contains("60 \u{b0}C possible"), "{}", found[0].summary);
+    }
+
+    #[test]
+    fn a_failed_sensor_is_one_finding() {
+        let mut sounding = Air0::default().ascent().fine();
+        for level in sounding.levels.iter_mut().skip(1000).take(400).step_by(2) {
+            level.temperature = Some(150.0);
+        }
+        let found = Scene::day(sounding).check(&ImpossibleValue);
+        assert_eq!(found.len(), 1);
+        assert_eq!(found[0].evidence("levels"), Some(200.0));
+        assert_eq!(found[0].repairs.len(), 1);
+    }
+
+    #[test]
+    fn wind_has_no_cost_in_cape_and_not_a_number_is_told() {
+        let mut sounding = Air0::default().ascent().coded();
+        sounding.levels[3].wind = Some(Wind { direction: 270.0, speed: 220.0 });
+        sounding.levels[5].temperature = Some(f64::NAN);
+        let found = Scene::day(sounding).check(&ImpossibleValue);
+        assert_eq!(found.len(), 2, "{found:#?}");
+        assert!(found[0].wind_only && found[0].summary.contains("220 m/s"));
+        assert!(!found[1].wind_only && found[1].summary.contains("not a number"));
+    }
+}

@@ -294,3 +294,73 @@ fn episodes(sequence: &[(f64, Option<usize>)], waiting: f64, tolerance: f64) -> 
     }
     episodes
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic::{Air0, Scene, levels};
+
+    #[test]
+    fn clean_ascents_are_silent_and_so_are_the_parts_of_a_message() {
+        for sounding in [Air0::default().ascent().fine(), Air0::default().ascent().coded()] {
+            assert!(Scene::day(sounding).check(&LevelOrder).is_empty());
+        }
+        // Standard levels first, significant ones after: each list falls.
+        let mut sounding = levels(&[
+            (1000.0, 25.0, 15.0), (850.0, 14.0, 5.0), (700.0, 5.0, -8.0), (500.0, -12.0, -30.0),
+            (1000.0, 25.0, 15.0), (920.0, 19.0, 12.0), (610.0, -2.0, -20.0),
+        ]);
+        for (i, level) in sounding.levels.iter_mut().enumerate() {
+            level.kind = match i {
+                0 | 4 => LevelKind::Surface,
+                1..=3 => LevelKind::Standard,
+                _ => LevelKind::SignificantThermal,
+            };
+        }
+        assert!(Scene::day(sounding).check(&LevelOrder).is_empty());
+    }
+
+    #[test]
+    fn a_shuffled_level_is_found() {
+        let rows = [(1000.0, 25.0, 15.0), (700.0, 5.0, -8.0), (850.0, 14.0, 5.0), (500.0, -12.0, -30.0)];
+        let found = Scene::day(levels(&rows)).check(&LevelOrder);
+        assert_eq!(found.len(), 1, "{found:#?}");
+        assert!(found[0].summary.contains("once, by up to 150.0 hPa at 700 hPa (line 3)"), "{}", found[0].summary);
+    }
+
+    #[test]
+    fn one_pressure_with_two_values_is_found() {
+        let rows = [(1000.0, 25.0, 15.0), (850.0, 14.0, 5.0), (850.0, 11.0, 5.0), (500.0, -12.0, -30.0)];
+        let found = Scene::day(levels(&rows)).check(&LevelOrder);
+        assert_eq!(found.len(), 1, "{found:#?}");
+        assert_eq!(found[0].evidence("temperature_spread_k").map(|k| (k * 10.0).round()), Some(30.0));
+        let mut alike = rows;
+        alike[2] = (850.0, 14.2, 5.0);
+        assert!(Scene::day(levels(&alike)).check(&LevelOrder).is_empty());
+    }
+
+    #[test]
+    fn a_height_that_runs_backwards_is_found_once() {
+        let mut sounding = Air0::default().ascent().fine();
+        for level in sounding.levels.iter_mut().skip(800).take(100) {
+            level.height = level.height.map(|z| z - 1000.0);
+        }
+        let found = Scene::day(sounding).check(&LevelOrder);
+        assert_eq!(found.len(), 1);
+        assert_eq!(found[0].grade, Grade::Erroneous);
+        assert!((found[0].evidence("height_fall_m").unwrap() - 995.0).abs() < 10.0);
+    }
+
+    #[test]
+    fn a_balloon_that_sinks_for_a_while_is_one_finding() {
+        let mut ascent = Air0::default().ascent();
+        let p: Vec<f64> = ascent.p.clone();
+        let n = 600;
+        for k in 0..60 {
+            // Down by 60 samples and up again, written as the received order has it.
+            ascent.p[n + k] = p[n - k];
+        }
+        let found = Scene::day(ascent.fine()).check(&LevelOrder);
+        assert_eq!(found.iter().filter(|finding| finding.summary.contains("Pressure rises")).count(), 1, "{found:#?}");
+    }
+}

@@ -262,3 +262,102 @@ fn caveat(view: &View, seen: &Seen) -> String {
     caveats.join(" ")
 }
 
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic::{Air0, BOTH, Dice, Scene};
+    use dewbound_sounding::thermo::Temperature;
+    use dewbound_sounding::{Amendment, Sampling};
+
+    /// w falling evenly through the mixed layer so that the dew point at one pressure changes by `k`.
+    fn sloping(seed: u64, k: f64, sampling: Sampling) -> Vec<Finding> {
+        let mut dice = Dice::new(seed);
+        let air = Air0 { mixed_m: dice.between(700.0, 2000.0), ..Air0::random(&mut dice) };
+        let mut ascent = air.ascent();
+        let surface = Pressure::from_pa(ascent.p[0]);
+        let sign = if dice.uniform() < 0.8 { 1.0 } else { -1.0 };
+        let top = ascent.at_height(air.mixed_m);
+        let base = dewpoint_from_mixing_ratio(surface, air.w).k();
+        for i in 0..top {
+            let share = (ascent.p[0] - ascent.p[i]) / (ascent.p[0] - ascent.p[top]);
+            let dewpoint = Temperature::from_k(base - sign * k * share);
+            let w = Air { pressure: surface, temperature: dewpoint, dewpoint }.mixing_ratio();
+            ascent.set_w(i, w);
+        }
+        Scene::day(ascent.noisy(&mut dice, 0.1, 0.01).sampled(sampling)).check(&MoistureSlope)
+    }
+
+    use dewbound_sounding::thermo::{Air, Pressure};
+
+    /// A surface hygrometer off by `k` of dew point.
+    fn biased(seed: u64, k: f64, sampling: Sampling, daylight: Daylight) -> (Scene, f64) {
+        let mut dice = Dice::new(seed);
+        let air = Air0 { mixed_m: dice.between(700.0, 2000.0), ..Air0::random(&mut dice) };
+        let mut ascent = air.ascent().noisy(&mut dice, 0.1, 0.01);
+        let surface = Pressure::from_pa(ascent.p[0]);
+        let true_dewpoint = dewpoint_from_mixing_ratio(surface, air.w).k();
+        let dewpoint = Temperature::from_k(true_dewpoint + k);
+        ascent.set_w(0, Air { pressure: surface, temperature: dewpoint, dewpoint }.mixing_ratio());
+        (Scene::new(ascent.sampled(sampling), daylight), true_dewpoint)
+    }
+
+    #[test]
+    fn an_even_slope_is_told_as_one() {
+        for sampling in BOTH {
+            let found = (0..40).filter(|&seed| !sloping(seed, 4.0, sampling).is_empty()).count();
+            assert!(found >= 38, "{sampling:?}: {found} of 40");
+        }
+        let fine = sloping(3, 4.0, Sampling::Fine);
+        assert!(fine[0].summary.contains("evenly"), "{}", fine[0].summary);
+        assert!(fine[0].innocent.contains("ntrainment") || fine[0].innocent.contains("carried in above"));
+    }
+
+    #[test]
+    fn a_jump_points_to_the_surface_and_the_sonde_implies_the_truth() {
+        for sampling in BOTH {
+            for (k, seeds) in [(3.0, 0..30), (-3.0, 30..60)] {
+                let mut hits = 0;
+                for seed in seeds {
+                    let (scene, truth) = biased(seed, k, sampling, Daylight::Day);
+                    let found = scene.check(&MoistureSlope);
+                    let Some(finding) = found.first() else { continue };
+                    assert!(!finding.summary.contains("evenly"), "{sampling:?} {seed}: {}", finding.summary);
+                    hits += 1;
+                    let Amendment::SurfaceDewpoint { dewpoint_k } = finding.repairs[0].amendments[0] else {
+                        panic!("not a surface dew point")
+                    };
+                    assert!((dewpoint_k - truth).abs() < 1.3, "{sampling:?} {seed}: {dewpoint_k} {truth}");
+                    assert_eq!(finding.repairs[1].id, "believe-surface");
+                }
+                assert!(hits >= 29, "{sampling:?} {k}: {hits} of 30");
+            }
+        }
+    }
+
+    #[test]
+    fn night_is_not_judged_and_unknown_says_so() {
+        let (scene, _) = biased(1, 4.0, Sampling::Fine, Daylight::Night);
+        assert!(scene.check(&MoistureSlope).is_empty());
+        let (scene, _) = biased(1, 4.0, Sampling::Fine, Daylight::Unknown);
+        let found = scene.check(&MoistureSlope);
+        assert_eq!(found[0].grade, Grade::Doubtful);
+        assert!(found[0].caveat.contains("isn't known"));
+    }
+
+    #[test]
+    fn a_jump_is_one_finding_not_two() {
+        let (scene, _) = biased(4, 5.0, Sampling::Fine, Daylight::Day);
+        let rules: Vec<_> = scene.findings().iter().map(|finding| finding.rule).collect();
+        assert_eq!(rules, ["moisture-slope"]);
+    }
+
+    #[test]
+    fn a_ground_inversion_is_no_mixed_layer() {
+        let air = Air0 { contact_k: -4.0, ..Air0::default() };
+        let scene = Scene::day(air.ascent().fine());
+        assert!(MixedLayer::of(&scene.profile, &scene.thresholds).is_none());
+        let mixed = Scene::day(Air0::default().ascent().fine());
+        let layer = MixedLayer::of(&mixed.profile, &mixed.thresholds).unwrap();
+        assert!((layer.bottom.hpa() - layer.top.hpa() - 158.0).abs() < 8.0, "{layer:?}");
+    }
+}

@@ -281,3 +281,68 @@ impl SurfaceMismatch {
         }
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic::{Air0, BOTH, Dice, Scene};
+    use dewbound_sounding::Amendment;
+
+    /// A night with a ground inversion and a surface dew point off by `k`.
+    fn night(seed: u64, k: f64) -> crate::synthetic::Ascent {
+        let mut dice = Dice::new(seed);
+        let air = Air0 { contact_k: dice.between(-5.0, -1.0), ..Air0::random(&mut dice) };
+        let mut ascent = air.ascent().noisy(&mut dice, 0.1, 0.01);
+        let pressure = Pressure::from_pa(ascent.p[0]);
+        let dewpoint = Temperature::from_k(dewpoint_from_mixing_ratio(pressure, air.w).k() + k);
+        let air = dewbound_sounding::thermo::Air { pressure, temperature: dewpoint, dewpoint };
+        ascent.set_w(0, air.mixing_ratio());
+        ascent
+    }
+
+    #[test]
+    fn a_surface_dew_point_off_at_night_is_seen() {
+        for sampling in BOTH {
+            for k in [7.5, -7.5] {
+                let mut seen = 0;
+                let mut judged = 0;
+                for seed in 0..40 {
+                    let scene = Scene::new(night(seed, k).sampled(sampling), Daylight::Night);
+                    // A coded message may have no level near enough to compare with, and says nothing then.
+                    let near = scene.profile.pressure.get(1).is_some_and(|&p| scene.profile.pressure[0] - p <= 6_000.0);
+                    judged += usize::from(near);
+                    seen += usize::from(near && !scene.check(&SurfaceMismatch).is_empty());
+                }
+                assert!(judged >= 15 && seen * 100 >= judged * 95, "{sampling:?} {k}: {seen} of {judged}");
+            }
+        }
+    }
+
+    #[test]
+    fn the_repair_restores_what_the_sonde_leads_to() {
+        let scene = Scene::new(night(3, 8.0).fine(), Daylight::Night);
+        let clean = Scene::new(night(3, 0.0).fine(), Daylight::Night);
+        let found = scene.check(&SurfaceMismatch);
+        let Amendment::SurfaceDewpoint { dewpoint_k } = found[0].repairs[0].amendments[0] else {
+            panic!("not a surface dew point")
+        };
+        let truth = clean.profile.surface_air().unwrap().dewpoint.k();
+        assert!((dewpoint_k - truth).abs() < 1.0, "{dewpoint_k} {truth}");
+        assert!(clean.check(&SurfaceMismatch).is_empty());
+    }
+
+    #[test]
+    fn a_surface_temperature_far_off_by_day_is_seen_and_a_contact_layer_is_not() {
+        for (excess, expected) in [(9.0, 1), (3.0, 0), (-7.0, 1), (-2.0, 0)] {
+            let mut ascent = Air0 { contact_k: 0.0, ..Air0::default() }.ascent().noisy(&mut Dice::new(2), 0.05, 0.01);
+            let w = ascent.w(0);
+            ascent.t[0] += excess;
+            ascent.set_w(0, w);
+            let found = Scene::day(ascent.fine()).check(&SurfaceMismatch);
+            assert_eq!(found.len(), expected, "{excess}: {found:#?}");
+            if let Some(finding) = found.first() {
+                assert!(finding.evidence("theta_difference_k").unwrap() * excess > 0.0);
+            }
+        }
+    }
+}

@@ -258,3 +258,109 @@ impl WetThermometer {
         }
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic::{Air0, BOTH, Dice, Scene, levels};
+    use dewbound_sounding::{Amendment, BridgeHumidity, Sampling};
+
+    fn cloudy(dice: &mut Dice) -> (Air0, f64) {
+        let base = dice.between(2600.0, 4200.0);
+        let top = base + dice.between(300.0, 1500.0);
+        let air = Air0 {
+            cloud: Some((base, top)),
+            rh: dice.between(0.1, 0.4),
+            ..Air0::random(dice)
+        };
+        (air, top)
+    }
+
+    #[test]
+    fn a_wet_thermometer_is_seen_with_its_depth_and_recovery() {
+        for sampling in BOTH {
+            let mut hits = 0;
+            let cases = 40_u64;
+            for seed in 0..cases {
+                let mut dice = Dice::new(100 + seed);
+                let (air, top) = cloudy(&mut dice);
+                // Wet long enough for the thermometer to fall well below the cloud's theta.
+                let wet_for = dice.between(15.0, 40.0);
+                let ascent = air.ascent().wet(top - 20.0, wet_for, 8.0).noisy(&mut dice, 0.1, 0.02);
+                let at_top = ascent.p[ascent.at_height(top)];
+                let found = Scene::day(ascent.sampled(sampling)).check(&WetThermometer);
+                let hit = found.iter().find(|finding| {
+                    finding.bottom.is_some_and(|b| b.pa() > at_top - 3_000.0 && b.pa() < at_top + 3_000.0)
+                });
+                hits += u64::from(hit.is_some());
+            }
+            assert!(hits * 100 >= cases * 95, "{sampling:?}: {hits} of {cases}");
+        }
+    }
+
+    #[test]
+    fn a_cloud_top_without_fault_is_silent() {
+        for sampling in BOTH {
+            for seed in 0..60 {
+                let mut dice = Dice::new(300 + seed);
+                let (air, _) = cloudy(&mut dice);
+                let ascent = air.ascent().noisy(&mut dice, 0.1, 0.02);
+                let found = Scene::day(ascent.sampled(sampling)).check(&WetThermometer);
+                assert!(found.is_empty(), "{sampling:?} seed {seed}: {found:#?}");
+            }
+        }
+    }
+
+    #[test]
+    fn bridges_keep_first_the_humidity_that_was_reported() {
+        let mut dice = Dice::new(5);
+        let air = Air0 { cloud: Some((2600.0, 3600.0)), rh: 0.2, ..Air0::default() };
+        let ascent = air.ascent().wet(3580.0, 30.0, 8.0).noisy(&mut dice, 0.05, 0.01);
+        for (sampling, first) in [
+            (Sampling::Fine, BridgeHumidity::RelativeHumidity),
+            (Sampling::Coded, BridgeHumidity::MixingRatio),
+        ] {
+            let found = Scene::day(ascent.sampled(sampling)).check(&WetThermometer);
+            assert_eq!(found.len(), 1, "{sampling:?}");
+            let Amendment::BridgeLayer { bottom_pa, top_pa, humidity } = found[0].repairs[0].amendments[0] else {
+                panic!("not a bridge")
+            };
+            assert_eq!(humidity, first);
+            assert_eq!(found[0].repairs.len(), 2);
+            let z = |p: f64| ascent.z[ascent.p.partition_point(|&q| q > p)];
+            assert!((z(bottom_pa) - 3580.0).abs() < 60.0, "{}", z(bottom_pa));
+            // Wet for 150 m, then four seconds' time constant: recovered within 100 m of that.
+            assert!(z(top_pa) > 3700.0 && z(top_pa) < 3950.0, "{}", z(top_pa));
+        }
+    }
+
+    #[test]
+    fn colder_than_the_wet_bulb_is_not_the_wet_bulb() {
+        // 8 K too cold at 640 hPa where the wet bulb is about 4 K below the bridged air.
+        let rows = |cold: f64| {
+            [
+                (1000.0, 25.0, 18.0),
+                (850.0, 15.0, 10.0),
+                (660.0, 2.0, 1.8),
+                (640.0, cold, -16.0),
+                (620.0, 0.5, -20.0),
+                (500.0, -10.0, -30.0),
+                (300.0, -38.0, -55.0),
+            ]
+        };
+        assert_eq!(Scene::day(levels(&rows(-2.0))).check(&WetThermometer).len(), 1);
+        assert!(Scene::day(levels(&rows(-9.0))).check(&WetThermometer).is_empty());
+    }
+
+    #[test]
+    fn it_names_the_cause_of_the_superadiabatic_layer() {
+        let air = Air0 { cloud: Some((2600.0, 3600.0)), rh: 0.2, ..Air0::default() };
+        let ascent = air.ascent().wet(3580.0, 30.0, 8.0).noisy(&mut Dice::new(9), 0.05, 0.01);
+        for sampling in BOTH {
+            let scene = Scene::day(ascent.sampled(sampling));
+            assert_eq!(scene.check(&super::super::SuperadiabaticAloft).len(), 1);
+            let rules: Vec<_> = scene.findings().iter().map(|finding| finding.rule).collect();
+            assert_eq!(rules, ["wet-thermometer"], "{sampling:?}");
+        }
+    }
+}

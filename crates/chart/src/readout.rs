@@ -177,7 +177,15 @@ pub(crate) fn paint_cursor(
     }
     let tag = Lettering::new(Anchor::Right, crate::background::AXIS, Ink::Label).strong();
     let value = wording::fixed(pressure.hpa(), 0);
-    // A box hides what it half covers of the labels beneath.
+    // The label of an isobar that the box would cut through goes altogether.
+    for bar in crate::isopleths::isobars(geometry) {
+        if let Some(at) = bar.points.first().filter(|p| (p.y - y).abs() < 19.0) {
+            canvas.fill(
+                Rect::new(plot.left - 43.0, at.y - 8.5, 41.0, 17.0),
+                Ink::Paper,
+            );
+        }
+    }
     panel(canvas, &Rect::new(plot.left - 43.0, y - 10.0, 41.0, 20.0));
     canvas.text(Point::new(plot.left - 6.0, y), &value, tag);
 

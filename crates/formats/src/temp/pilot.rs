@@ -1,7 +1,7 @@
 //! Wind parts PPAA to PPDD (FM 32 to 34): winds at standard surfaces, at given altitudes, and maxima.
 
 use super::{
-    context::{Aside, Context, is_marker, wind_cost},
+    context::{Aside, Context, is_marker},
     framing::{Word, quote},
     groups::{cut, number},
     significant::{self, Significance},
@@ -41,30 +41,16 @@ pub(super) fn standard(words: &[Word], context: &mut Context) -> usize {
             if word.text.starts_with("55") {
                 by_height.get_or_insert(word.line);
             }
-            let winds = surfaces.iter().skip(first).take(count);
-            at += 1;
-            for (index, (_, hectopascals)) in winds.enumerate() {
-                let name = format!("the {hectopascals} hPa level");
-                let Some(&value) = rest.get(index).filter(|value| {
-                    run(value.text, surfaces).is_none() && !opens_maximum(value.text)
-                }) else {
-                    context.note(
-                        word.line,
-                        format!("{name} left without wind"),
-                        "its wind group is missing",
-                    );
-                    break;
-                };
-                let mut level = Level {
+            let opens = |text: &str| run(text, surfaces).is_some() || opens_maximum(text);
+            let names = surfaces.iter().skip(first).take(count);
+            let levels = names
+                .map(|(_, hectopascals)| Level {
                     pressure: Some(f64::from(*hectopascals) * 100.0),
                     kind: LevelKind::Standard,
-                    line: Some(value.line),
                     ..Level::default()
-                };
-                context.wind(&mut level, value, &name);
-                context.levels.push(level);
-                at += 1;
-            }
+                })
+                .collect();
+            at += 1 + winds(word, rest, opens, levels, context);
         } else if opens_maximum(word.text) {
             at += 1 + maximum(word, rest, context);
         } else {
@@ -239,37 +225,26 @@ pub(super) fn by_altitude(words: &[Word], unit: AltitudeUnit, context: &mut Cont
         if group.usual {
             assumed.get_or_insert(word.line);
         }
-        at += 1;
-        for &steps in &group.steps {
-            let surface = steps == 0;
-            let height = f64::from(steps) * group.metres;
-            let name = if surface {
-                "the surface level".to_string()
-            } else {
-                format!("the wind at {height:.0} m")
-            };
-            let Some(&value) = words.get(at).filter(|value| is_wind(value.text, context)) else {
-                context.note(
-                    word.line,
-                    format!("{name} (group {}) left out", quote(&[word])),
-                    "fewer wind groups follow than the altitude group announces",
-                );
-                break;
-            };
-            let mut level = Level {
-                height: (!surface).then_some(height),
-                kind: if surface {
-                    LevelKind::Surface
-                } else {
+        let levels = group
+            .steps
+            .iter()
+            .map(|&steps| Level {
+                height: (steps > 0).then_some(f64::from(steps) * group.metres),
+                kind: if steps > 0 {
                     LevelKind::SignificantWind
+                } else {
+                    LevelKind::Surface
                 },
-                line: Some(value.line),
                 ..Level::default()
-            };
-            context.wind(&mut level, value, &name);
-            context.levels.push(level);
-            at += 1;
-        }
+            })
+            .collect();
+        let rest = words.get(at + 1..).unwrap_or(&[]);
+        // No wind starts with 8 or 9, save 99 for a variable direction.
+        let opens = |text: &str| {
+            text.starts_with(['8', '9']) && !text.starts_with("99")
+                || altitudes(text, unit, false).is_some()
+        };
+        at += 1 + winds(word, rest, opens, levels, context);
     }
     if let Some(line) = assumed {
         context.note(
@@ -282,8 +257,42 @@ pub(super) fn by_altitude(words: &[Word], unit: AltitudeUnit, context: &mut Cont
     at
 }
 
-/// A group in a wind's place is one unless it clearly opens something else.
-fn is_wind(group: &str, context: &Context) -> bool {
-    let opens = is_marker(group) || group.starts_with(['8', '9']);
-    wind_cost(group, context.unit) == 0 || !opens
+/// Gives each of a run of levels its wind; returns the number of groups taken. `opens` knows a group that starts another
+/// run. With fewer or more winds than levels it can't be told which is whose: then none is used.
+fn winds(
+    head: Word,
+    rest: &[Word],
+    opens: impl Fn(&str) -> bool,
+    levels: Vec<Level>,
+    context: &mut Context,
+) -> usize {
+    let found = rest
+        .iter()
+        .take_while(|word| !is_marker(word.text) && !opens(word.text))
+        .count();
+    let groups = rest.get(..found).unwrap_or(&[]);
+    if found != levels.len() {
+        context.note(
+            head.line,
+            format!(
+                "group {} announces {} winds and {found} follow; set aside: {}",
+                quote(&[head]),
+                levels.len(),
+                quote(groups)
+            ),
+            "it can't be told which wind belongs to which level",
+        );
+        return found;
+    }
+    for (mut level, &word) in levels.into_iter().zip(groups) {
+        let name = match (level.pressure, level.height) {
+            (Some(pressure), _) => format!("the {:.0} hPa level", pressure / 100.0),
+            (None, Some(height)) => format!("the level at {height:.0} m"),
+            (None, None) => "the surface level".into(),
+        };
+        level.line = Some(word.line);
+        context.wind(&mut level, word, &name);
+        context.levels.push(level);
+    }
+    found
 }

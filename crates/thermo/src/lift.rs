@@ -38,7 +38,7 @@ pub struct BuoyantLayer {
 /// - The LFC is the base of the buoyant layer of largest area, which is the LCL when the parcel is buoyant from there
 ///   on. A small layer at the LCL under a cap doesn't make the LFC.
 /// - CIN is all negative area from the start to the LFC. Positive area below the LCL counts for nothing.
-/// - Crossings are roots of the interpolated profile, not levels. Areas below 1e-6 J/kg are rounding: they make no layer
+/// - Crossings are roots of the interpolated profile, not levels. Areas below 1e-4 J/kg are rounding: they make no layer
 ///   and split none.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Ascent {
@@ -64,8 +64,8 @@ pub struct Ascent {
 
 /// A profile that ends at a pressure above this can't show the whole of CAPE.
 const TOP_NEEDED: Pressure = Pressure::from_hpa(200.0);
-/// Areas below this (J/kg) are rounding: they neither make a layer nor split one.
-const NEGLIGIBLE: f64 = 1e-6;
+/// Areas below this (J/kg) are rounding, of values or of the tabulated path: they neither make a layer nor split one.
+const NEGLIGIBLE: f64 = 1e-4;
 
 /// Lifts a parcel from `start` through `environment`. Levels below the start are ignored; from a start below the bottom,
 /// areas are counted from the bottom up. A dew point above the temperature counts as saturation.
@@ -155,9 +155,12 @@ pub(crate) fn assemble(
         start: parcel.start,
         lcl: parcel.lcl,
         theta_e: Temperature::from_k(parcel.ln_theta_e.exp()),
-        cape: buoyant.iter().map(|layer| layer.area).sum(),
-        // Adding zero keeps a cap of nothing from being shown as "-0".
-        cin: largest.map(|(_, _, negative)| (GAS_CONSTANT_DRY * negative).min(0.0) + 0.0),
+        // A sum of nothing is -0.0 in Rust; adding zero keeps that from being shown.
+        cape: buoyant.iter().map(|layer| layer.area).sum::<f64>() + 0.0,
+        cin: largest.map(|(_, _, negative)| {
+            let cin = GAS_CONSTANT_DRY * negative;
+            if cin < -NEGLIGIBLE { cin } else { 0.0 }
+        }),
         lfc: largest.map(|(bottom, _, _)| bottom),
         el: if buoyant_at_top {
             None

@@ -141,7 +141,10 @@ fn all_starts(environment: &Environment) -> Vec<Air> {
 }
 
 fn check_sane(environment: &Environment, ascent: &Ascent) {
-    assert!(ascent.cape.is_finite() && ascent.cape >= 0.0, "{ascent:?}");
+    assert!(
+        ascent.cape.is_finite() && ascent.cape >= 0.0 && ascent.cape.is_sign_positive(),
+        "{ascent:?}"
+    );
     assert!(ascent.theta_e.k().is_finite() && ascent.lcl.temperature.k().is_finite());
     assert!(ascent.lcl.pressure.pa().is_finite() && ascent.lcl.pressure <= ascent.start.pressure);
     assert_eq!(ascent.buoyant.is_empty(), ascent.cin.is_none());
@@ -263,7 +266,7 @@ proptest! {
         let cape = |start| lift(&environment, start, Method::PseudoAdiabat).unwrap().cape;
         prop_assert!(cape(high) >= cape(low) - 0.02, "{} then {}", cape(low), cape(high));
         let exactly = |start| lift_exactly(&environment, start, Method::PseudoAdiabat).unwrap().cape;
-        prop_assert!(exactly(high) >= exactly(low) - 1e-4, "{} then {}", exactly(low), exactly(high));
+        prop_assert!(exactly(high) >= exactly(low) - 1e-3, "{} then {}", exactly(low), exactly(high));
     }
 
     /// The stated bound of the fast path: CAPE and CIN within 0.01 % (or 0.01 J/kg).

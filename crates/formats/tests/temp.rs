@@ -463,7 +463,7 @@ fn faults_cost_their_own_value_only() {
     check(
         "26636",
         "2663x",
-        &["group 2663x not understood as wind; the maximum wind left without wind"],
+        &["group 2663x not understood as wind; the maximum wind (77188) left without wind"],
     );
     // Lost groups.
     check(" 25555", "", &["the 500 hPa level left without wind"]);

@@ -1,7 +1,7 @@
 //! Section 2 of parts A and C: the surface and the standard isobaric surfaces.
 
 use super::{
-    align::{Block, Piece, Scheme, align},
+    align::{Block, MISSING, Piece, STRAY, Scheme, align},
     context::{Context, air_cost, is_marker, is_surface_pressure, wind_cost},
     extremes::is_extreme,
     framing::{Part, Word, quote},
@@ -116,22 +116,27 @@ impl Standard<'_> {
         if is_missing(figures) {
             return 0;
         }
+        let Some(value) = number(figures).filter(|_| text.len() == 5) else {
+            return 3;
+        };
         let plausible = match slot.pascals() {
             None => {
-                matches!(groups::pressure(figures, false), Ok(Some(pressure)) if is_surface_pressure(pressure))
+                let pressure = groups::pressure(figures, false);
+                pressure.is_ok_and(|pressure| pressure.is_some_and(is_surface_pressure))
             }
-            Some(pressure) => number(figures).is_some_and(|figures| {
-                // From 500 hPa up only one reading is near the atmosphere; below, every figure is possible.
-                let tens = f64::from(figures) * 10.0;
+            // From 500 hPa up only one reading is near the atmosphere; below, every figure is possible.
+            Some(pressure) => {
+                let tens = f64::from(value) * 10.0;
                 let standard = standard_atmosphere::height(pressure);
                 let spread = if self.part.upper() { 4_000.0 } else { 1_800.0 };
                 pressure > 50_000.0
                     || (0..=4).any(|leading| {
                         (tens + 10_000.0 * f64::from(leading) - standard).abs() < spread
                     })
-            }),
+            }
         };
-        if plausible && text.len() == 5 { 0 } else { 3 }
+        // A wind whose direction looks like a level's figures gives an absurd height: two strays, no less.
+        if plausible { 0 } else { 2 * STRAY }
     }
 }
 
@@ -154,34 +159,50 @@ impl Scheme for Standard<'_> {
             let skipped = if state <= 1 { 0 } else { index - state };
             let base = self.level_cost(slot, text) + 2 * skipped as u32;
             let promise = promise(self.indicator, slot, self.part);
+            // What a wind costs that is there, and one that isn't.
             let (given, left_out) = match promise {
-                Promise::Given => (0, 5),
+                Promise::Given => (0, MISSING),
                 Promise::Open => (0, 0),
                 Promise::LeftOut => (1, 0),
             };
-            let air = air_cost(self.text(at + 1), slot.pascals());
-            let mut offer = |air: bool, wind: bool, cost: u32| {
+            // A level below the ground is sometimes cut short to its solidi.
+            let bare = if is_missing(cut(text, 2, 5)) {
+                4
+            } else {
+                MISSING + left_out
+            };
+            let air = |offset: usize| air_cost(self.text(at + offset), slot.pascals());
+            let wind = |offset: usize| {
+                let text = self.text(at + offset);
+                let cost = wind_cost(text, self.unit);
+                // Where no wind is due, only a flawless group can be one, and a group sent twice is the next level's.
+                let doubled = !is_missing(text) && text == self.text(at + offset + 1);
+                let undue = promise == Promise::LeftOut && (cost > 0 || doubled);
+                cost + if undue { STRAY } else { 0 }
+            };
+            let mut offer = |length: usize, air: Option<usize>, wind: Option<usize>, cost: u32| {
                 found.push(Block {
                     slot: index,
                     next: index + 1,
+                    length,
                     air,
                     wind,
                     cost: base + cost,
                 });
             };
-            offer(
-                true,
-                true,
-                air + wind_cost(self.text(at + 2), self.unit) + given,
-            );
-            offer(true, false, air + left_out);
-            offer(
-                false,
-                true,
-                7 + wind_cost(self.text(at + 1), self.unit) + given,
-            );
-            offer(false, false, 8);
+            offer(3, Some(1), Some(2), air(1) + wind(2) + given);
+            offer(2, Some(1), None, air(1) + left_out);
+            offer(2, None, Some(1), MISSING + wind(1) + given);
+            offer(1, None, None, bare);
+            // With one group too many among them.
+            offer(4, Some(1), Some(3), air(1) + wind(3) + given + STRAY);
+            offer(4, Some(2), Some(3), air(2) + wind(3) + given + STRAY);
+            offer(3, Some(2), None, air(2) + left_out + STRAY);
         }
+    }
+
+    fn skips(&self, state: usize, slot: usize) -> bool {
+        slot > state
     }
 
     fn end(&self, at: usize) -> Option<u32> {
@@ -209,23 +230,18 @@ pub(super) fn read(words: &[Word], indicator: char, context: &mut Context) -> us
         indicator,
         unit: context.unit,
     };
-    let (pieces, end) = align(&scheme);
-    let strays = pieces.iter().filter_map(|piece| match piece {
-        Piece::Stray(at) => Some(*at),
-        Piece::Level { .. } => None,
-    });
-    context.strays(words, strays);
+    let reading = align(&scheme);
+    let last = reading.levels.last().map(|piece| piece.at);
+    context.unread_top = reading.strays.last().copied() > last;
+    context.strays(words, reading.strays.into_iter());
     let mut coded = Vec::new();
     let mut unpromised = None;
-    for piece in pieces {
-        let Piece::Level { at, block } = piece else {
-            continue;
-        };
-        let (Some(slot), Some(&word)) = (slots.get(block.slot), words.get(at)) else {
+    for piece in reading.levels {
+        let (Some(slot), Some(&word)) = (slots.get(piece.block.slot), words.get(piece.at)) else {
             continue;
         };
         let promise = promise(indicator, slot, context.part);
-        let level = level(&scheme, slot, block, at, promise, context);
+        let level = level(&scheme, slot, piece, promise, context);
         if promise == Promise::LeftOut && level.wind.is_some() {
             unpromised.get_or_insert((word.line, slot.name()));
         }
@@ -247,22 +263,20 @@ pub(super) fn read(words: &[Word], indicator: char, context: &mut Context) -> us
         );
     }
     heights(coded, context);
-    end
+    reading.end
 }
 
 fn level(
     scheme: &Standard,
     slot: &Slot,
-    block: Block,
-    at: usize,
+    piece: Piece,
     promise: Promise,
     context: &mut Context,
 ) -> Level {
-    let words = scheme.words;
     let name = slot.name();
-    let word = |index: usize| words.get(index).copied();
+    let word = |offset: usize| scheme.words.get(piece.at + offset).copied();
     let mut level = Level::default();
-    let Some(first) = word(at) else { return level };
+    let Some(first) = word(0) else { return level };
     level.line = Some(first.line);
     match slot.pascals() {
         Some(pressure) => {
@@ -274,8 +288,10 @@ fn level(
             level.pressure = context.surface_pressure(first);
         }
     }
-    match (word(at + 1), block.air, block.wind) {
-        (Some(only), true, false) if promise == Promise::Given => {
+    let air = piece.block.air.and_then(word);
+    let wind = piece.block.wind.and_then(word);
+    match (air, wind) {
+        (Some(only), None) if promise != Promise::LeftOut && piece.span == 2 => {
             let either = !is_missing(only.text) && wind_cost(only.text, scheme.unit) == 0;
             if either {
                 context.note(
@@ -291,26 +307,40 @@ fn level(
                 context.note(
                     only.line,
                     format!("{name} left without wind"),
-                    "its wind group is missing",
+                    if promise == Promise::Given {
+                        "its wind group is missing"
+                    } else {
+                        "it has no wind group; the date group's last figure leaves open whether it should"
+                    },
                 );
             }
+            return level;
         }
-        (Some(air), true, _) => context.air(&mut level, air, &name),
-        (Some(wind), false, true) => {
-            context.wind(&mut level, wind, &name);
-            context.note(
-                wind.line,
-                format!("{name} left without temperature and dew point"),
-                "its temperature group is missing",
-            );
-        }
-        _ => context.note(
+        (None, Some(wind)) => context.note(
+            wind.line,
+            format!("{name} left without temperature and dew point"),
+            "its temperature group is missing",
+        ),
+        (None, None) => context.note(
             first.line,
             format!("{name} has neither a temperature nor a wind group"),
             "they are missing where they should stand",
         ),
+        (Some(_), _) => {}
     }
-    if let (true, true, Some(wind)) = (block.air, block.wind, word(at + 2)) {
+    let values = scheme.words.get(piece.at + 1..piece.at + piece.span);
+    let air_cost = |text: &str| air_cost(text, slot.pascals());
+    let wind_cost = |text: &str| wind_cost(text, scheme.unit);
+    let certain = context.certain(
+        values.unwrap_or(&[]),
+        &name,
+        air.is_some().then_some(&air_cost),
+        wind.is_some().then_some(&wind_cost),
+    );
+    if let Some(air) = air.filter(|_| certain.air) {
+        context.air(&mut level, air, &name);
+    }
+    if let Some(wind) = wind.filter(|_| certain.wind) {
         context.wind(&mut level, wind, &name);
     }
     level

@@ -6,8 +6,7 @@
 
 mod temp_common;
 
-use dewbound_sounding::Level;
-use temp_common::{ALM, VALE, assert_sound, read};
+use temp_common::{ALM, VALE, assert_sound, bare, body, poorer, read};
 
 /// A small generator of repeatable numbers (Marsaglia's xorshift, 64 bits).
 struct Numbers(u64);
@@ -103,45 +102,6 @@ fn a_broken_report_leaves_the_next_alone() {
             .expect("the intact report");
         assert_eq!(bare(&found.levels), bare(&plain.levels));
     }
-}
-
-fn bare(levels: &[Level]) -> Vec<Level> {
-    let bare = |level: &Level| Level {
-        line: None,
-        ..*level
-    };
-    levels.iter().map(bare).collect()
-}
-
-/// Whether every value of `after` is one of `before`.
-fn poorer(after: &Level, before: &Level) -> bool {
-    let kept = |after: Option<f64>, before: Option<f64>| after.is_none() || after == before;
-    after.kind == before.kind
-        && kept(after.pressure, before.pressure)
-        && kept(after.height, before.height)
-        && kept(after.temperature, before.temperature)
-        && kept(after.dewpoint, before.dewpoint)
-        && (after.wind.is_none() || after.wind == before.wind)
-}
-
-/// Groups of a report as (position, text), heading lines and part headers left out.
-fn body(text: &str) -> Vec<(usize, &str)> {
-    let mut groups = Vec::new();
-    let mut since_letters = 0;
-    let mut at = 0;
-    for piece in text.split_inclusive([' ', '\n', '=']) {
-        let group = piece.trim_end_matches([' ', '\n', '=']);
-        since_letters = if group.len() == 4 {
-            0
-        } else {
-            since_letters + 1
-        };
-        if group.len() == 5 && since_letters > 2 {
-            groups.push((at, group));
-        }
-        at += piece.len();
-    }
-    groups
 }
 
 /// Every group in turn made unreadable, lost, or doubled: at most one level suffers (a run of winds by altitude suffers

@@ -61,6 +61,9 @@ pub(super) struct Reading {
 /// Cost of a group that belongs to no level.
 pub(super) const STRAY: u32 = 6;
 
+/// Cost of one between the groups of a level: a little more, so that a level isn't stitched together from leftovers.
+pub(super) const INSIDE: u32 = STRAY + 1;
+
 /// Cost of a group that should be there and isn't. A garbled group costs less than either (up to 4).
 pub(super) const MISSING: u32 = 5;
 
@@ -71,8 +74,17 @@ enum Step {
     Level(Block),
 }
 
-/// The cheapest reading.
-pub(super) fn align(scheme: &impl Scheme) -> Reading {
+/// The cheapest cost of reading on from each group, when the section starts there.
+pub(super) fn costs(scheme: &impl Scheme) -> Vec<u32> {
+    let table = table(scheme);
+    let starts = table.chunks(scheme.states());
+    starts
+        .map(|states| states.first().map_or(0, |&(cost, _)| cost))
+        .collect()
+}
+
+/// Cheapest cost and first step from each group and state, last groups first.
+fn table(scheme: &impl Scheme) -> Vec<(u32, Step)> {
     let (groups, states) = (scheme.groups(), scheme.states());
     let mut best = vec![(0_u32, Step::End); (groups + 1) * states];
     let mut found = Vec::new();
@@ -104,6 +116,13 @@ pub(super) fn align(scheme: &impl Scheme) -> Reading {
             }
         }
     }
+    best
+}
+
+/// The cheapest reading.
+pub(super) fn align(scheme: &impl Scheme) -> Reading {
+    let (groups, states) = (scheme.groups(), scheme.states());
+    let best = table(scheme);
     let (mut at, mut state) = (0, 0);
     let mut levels: Vec<Piece> = Vec::new();
     let mut strays = Vec::new();

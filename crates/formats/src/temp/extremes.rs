@@ -1,7 +1,7 @@
 //! Sections 3 and 4: tropopauses (88) and maximum winds (77, 66 when it is the top).
 
 use super::{
-    align::{Block, MISSING, Piece, STRAY, Scheme, align},
+    align::{self, Block, INSIDE, MISSING, Piece, Scheme, align},
     context::{Aside, Context, air_cost, is_marker, wind_cost},
     framing::{Word, quote},
     groups::{self, cut, is_missing, number},
@@ -77,12 +77,12 @@ impl Scheme for Extremes<'_> {
             offer(TROPOPAUSE, 2, Some(1), None, air(1) + MISSING);
             offer(TROPOPAUSE, 2, None, Some(1), wind(1) + MISSING);
             offer(TROPOPAUSE, 1, None, None, 2 * MISSING);
-            offer(TROPOPAUSE, 4, Some(1), Some(3), air(1) + wind(3) + STRAY);
-            offer(TROPOPAUSE, 4, Some(2), Some(3), air(2) + wind(3) + STRAY);
+            offer(TROPOPAUSE, 4, Some(1), Some(3), air(1) + wind(3) + INSIDE);
+            offer(TROPOPAUSE, 4, Some(2), Some(3), air(2) + wind(3) + INSIDE);
         } else {
             offer(MAXIMUM_WIND, 2, None, Some(1), wind(1));
             offer(MAXIMUM_WIND, 1, None, None, MISSING);
-            offer(MAXIMUM_WIND, 3, None, Some(2), wind(2) + STRAY);
+            offer(MAXIMUM_WIND, 3, None, Some(2), wind(2) + INSIDE);
         }
     }
 
@@ -95,6 +95,11 @@ impl Scheme for Extremes<'_> {
         let text = self.text(at);
         (is_marker(text) && text != "41414").then_some(0)
     }
+}
+
+/// What reading the sections costs when they start at each group.
+pub(super) fn costs(words: &[Word], unit: Option<f64>, upper: bool) -> Vec<u32> {
+    align::costs(&Extremes { words, unit, upper })
 }
 
 /// Reads the sections; returns the number of groups they took, up to the next section's number.

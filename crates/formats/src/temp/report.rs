@@ -9,8 +9,8 @@ use super::{
     sections::{self, Launch},
     significant, standard,
 };
+use crate::digest;
 use dewbound_sounding::{Digest, Level, Note, Place};
-use sha2::{Digest as _, Sha256};
 
 /// A decoded part.
 #[derive(Debug, Clone, PartialEq)]
@@ -28,8 +28,8 @@ pub(super) struct Report {
     pub unread_top: bool,
     /// From a bulletin marked as a correction.
     pub correction: bool,
-    /// SHA-256 of the part's groups joined by single blanks, from its letters up to its end sign (left out): the same
-    /// part has the same digest however its lines were broken or ended.
+    /// Digest of the part's groups as one line, joined by single blanks, from its letters up to its end sign (left out):
+    /// the same part has the same digest however its lines were broken or ended.
     pub digest: Digest,
 }
 
@@ -84,7 +84,7 @@ pub(super) fn decode(message: &Message) -> Result<Report, Note> {
         aside: context.aside,
         unread_top: context.unread_top,
         correction: message.correction,
-        digest: Sha256::digest(text.join(" ")).into(),
+        digest: digest::of_lines([text.join(" ").as_str()]),
     })
 }
 

@@ -1,7 +1,7 @@
 //! Sections 5 and 6 of parts B and D: levels significant for temperature and humidity, and (21212) for wind.
 
 use super::{
-    align::{Block, MISSING, Piece, STRAY, Scheme, align},
+    align::{Block, INSIDE, MISSING, Piece, Scheme, align},
     context::{Context, air_cost, is_marker, wind_cost},
     framing::{Part, Word, quote},
     groups::{self, cut, is_missing},
@@ -96,7 +96,7 @@ impl Scheme for Significant<'_> {
         offer(2, Some(1), value(1));
         offer(1, None, MISSING);
         // With one group too many between them.
-        offer(3, Some(2), value(2) + STRAY);
+        offer(3, Some(2), value(2) + INSIDE);
     }
 
     fn skips(&self, state: usize, slot: usize) -> bool {
@@ -148,10 +148,7 @@ fn rest<'a, 'w>(words: &'w [Word<'a>], from: usize) -> &'w [Word<'a>] {
 /// Where levels start anew from below: numbers leave the order or begin again while pressure jumps up. A section number
 /// was lost there, and what follows must not be read as temperatures.
 fn restart(words: &[Word], levels: &[Piece], upper: bool) -> Option<usize> {
-    let pressure = |piece: &Piece| {
-        let word = words.get(piece.at)?;
-        groups::pressure(cut(word.text, 2, 5), upper).ok().flatten()
-    };
+    let pressure = |piece: &Piece| level_pressure(words, piece, upper);
     levels.windows(2).find_map(|pair| {
         let [below, above] = pair else { return None };
         let slot = above.block.slot;
@@ -176,17 +173,35 @@ fn section(words: &[Word], significance: Significance, context: &mut Context) ->
     .unwrap_or(reading.end);
     let strays = reading.strays.into_iter().filter(|&at| at < end);
     context.strays(words, strays);
-    let mut expected = 0;
-    for piece in reading
+    let pieces: Vec<Piece> = reading
         .levels
         .into_iter()
-        .take_while(|piece| piece.at < end)
-    {
-        let block = piece.block;
+        .filter(|piece| piece.at < end)
+        .collect();
+    let mut expected = 0;
+    let mut regular_end = 0;
+    let mut below = None;
+    for (index, &piece) in pieces.iter().enumerate() {
         let Some(&word) = words.get(piece.at) else {
             continue;
         };
-        if skipped(expected, block.slot) > 0 {
+        let at = |piece: &Piece| level_pressure(words, piece, context.part.upper());
+        let pressure = at(&piece);
+        let above = pieces.get(index + 1).and_then(at);
+        let regular = piece.at == regular_end && piece.span == 2;
+        regular_end = piece.at + piece.block.length;
+        let falls =
+            |from: Option<f64>, to: Option<f64>| from.zip(to).is_none_or(|(from, to)| from > to);
+        if !regular && !(falls(below, pressure) && falls(pressure, above)) {
+            let groups = words.get(piece.at..regular_end).unwrap_or(&[]);
+            context.note(
+                word.line,
+                format!("{} set aside", quote(groups)),
+                "a group is missing or too many here, and the pressure is out of order: probably no level group",
+            );
+            continue;
+        }
+        if skipped(expected, piece.block.slot) > 0 {
             context.note(
                 word.line,
                 format!(
@@ -197,12 +212,18 @@ fn section(words: &[Word], significance: Significance, context: &mut Context) ->
                 "a level may have been lost",
             );
         }
-        expected = block.next;
+        expected = piece.block.next;
+        below = pressure.or(below);
         if let Some(level) = level(words, word, piece, significance, context) {
             context.levels.push(level);
         }
     }
     end
+}
+
+fn level_pressure(words: &[Word], piece: &Piece, upper: bool) -> Option<f64> {
+    let word = words.get(piece.at)?;
+    groups::pressure(cut(word.text, 2, 5), upper).ok().flatten()
 }
 
 fn level(
@@ -250,10 +271,10 @@ fn level(
     let Some(value) = value else {
         context.note(
             word.line,
-            format!("{name} left without {what}"),
-            "the group that should follow is missing",
+            format!("{name} left out: no {what} group follows it"),
+            "a level group alone tells nothing",
         );
-        return Some(level);
+        return None;
     };
     let unit = context.unit;
     let cost = |text: &str| match significance {

@@ -1,9 +1,9 @@
 //! Section 2 of parts A and C: the surface and the standard isobaric surfaces.
 
 use super::{
-    align::{Block, MISSING, Piece, STRAY, Scheme, align},
+    align::{Block, INSIDE, MISSING, Piece, STRAY, Scheme, align},
     context::{Context, air_cost, is_marker, is_surface_pressure, wind_cost},
-    extremes::is_extreme,
+    extremes::{self, is_extreme},
     framing::{Part, Word, quote},
     groups::{self, cut, is_missing, number},
     heights::{self, Coded},
@@ -104,6 +104,8 @@ struct Standard<'a> {
     part: Part,
     indicator: char,
     unit: Option<f64>,
+    /// Cost of reading tropopauses and maximum winds from each group on.
+    after: Vec<u32>,
 }
 
 impl Standard<'_> {
@@ -124,15 +126,19 @@ impl Standard<'_> {
                 let pressure = groups::pressure(figures, false);
                 pressure.is_ok_and(|pressure| pressure.is_some_and(is_surface_pressure))
             }
-            // From 500 hPa up only one reading is near the atmosphere; below, every figure is possible.
+            // From 500 hPa up only one reading is near the atmosphere; below, every figure is possible. Polar winters lie
+            // farther below the standard atmosphere than the tropics above it.
             Some(pressure) => {
-                let tens = f64::from(value) * 10.0;
+                let (below, above) = if self.part.upper() {
+                    (4_000.0, 2_500.0)
+                } else {
+                    (1_800.0, 1_000.0)
+                };
                 let standard = standard_atmosphere::height(pressure);
-                let spread = if self.part.upper() { 4_000.0 } else { 1_800.0 };
+                let near = standard - below..=standard + above;
+                let tens = f64::from(value) * 10.0;
                 pressure > 50_000.0
-                    || (0..=4).any(|leading| {
-                        (tens + 10_000.0 * f64::from(leading) - standard).abs() < spread
-                    })
+                    || (0..=4).any(|leading| near.contains(&(tens + 10_000.0 * f64::from(leading))))
             }
         };
         // A wind whose direction looks like a level's figures gives an absurd height: two strays, no less.
@@ -195,9 +201,9 @@ impl Scheme for Standard<'_> {
             offer(2, None, Some(1), MISSING + wind(1) + given);
             offer(1, None, None, bare);
             // With one group too many among them.
-            offer(4, Some(1), Some(3), air(1) + wind(3) + given + STRAY);
-            offer(4, Some(2), Some(3), air(2) + wind(3) + given + STRAY);
-            offer(3, Some(2), None, air(2) + left_out + STRAY);
+            offer(4, Some(1), Some(3), air(1) + wind(3) + given + INSIDE);
+            offer(4, Some(2), Some(3), air(2) + wind(3) + given + INSIDE);
+            offer(3, Some(2), None, air(2) + left_out + INSIDE);
         }
     }
 
@@ -207,16 +213,19 @@ impl Scheme for Standard<'_> {
 
     fn end(&self, at: usize) -> Option<u32> {
         let text = self.text(at);
-        if is_marker(text) || text.starts_with("88") && is_extreme(text) {
+        if is_marker(text) {
             return Some(0);
         }
-        // Maximum wind comes after the tropopause: a 77 before an 88 is more likely a temperature.
-        let rest = self.words.get(at..).unwrap_or(&[]);
-        let tropopause_follows = rest
-            .iter()
-            .take_while(|word| !is_marker(word.text))
-            .any(|word| word.text.starts_with("88") && is_extreme(word.text));
-        is_extreme(text).then_some(if tropopause_follows { 6 } else { 0 })
+        // A temperature can look like the start of what follows (77310), so that has to make sense as well; and a maximum
+        // wind before a tropopause never does.
+        let after = *self.after.get(at).filter(|_| is_extreme(text))?;
+        let disorder = !text.starts_with("88")
+            && self
+                .words
+                .iter()
+                .skip(at)
+                .any(|word| word.text.starts_with("88") && is_extreme(word.text));
+        Some(after + if disorder { 3 * STRAY } else { 0 })
     }
 }
 
@@ -229,13 +238,16 @@ pub(super) fn read(words: &[Word], indicator: char, context: &mut Context) -> us
         part: context.part,
         indicator,
         unit: context.unit,
+        after: extremes::costs(words, context.unit, context.part.upper()),
     };
     let reading = align(&scheme);
     let last = reading.levels.last().map(|piece| piece.at);
     context.unread_top = reading.strays.last().copied() > last;
     context.strays(words, reading.strays.into_iter());
-    let mut coded = Vec::new();
+    let mut entries: Vec<Entry> = Vec::new();
     let mut unpromised = None;
+    let mut before_is_whole = true;
+    let mut regular_end = 0;
     for piece in reading.levels {
         let (Some(slot), Some(&word)) = (slots.get(piece.block.slot), words.get(piece.at)) else {
             continue;
@@ -245,15 +257,25 @@ pub(super) fn read(words: &[Word], indicator: char, context: &mut Context) -> us
         if promise == Promise::LeftOut && level.wind.is_some() {
             unpromised.get_or_insert((word.line, slot.name()));
         }
-        coded.push(Coded {
-            pressure: slot.pascals().unwrap_or_default(),
-            figures: slot
-                .pascals()
-                .and_then(|_| height_figures(word, slot, context)),
-            temperature: level.temperature,
-            height: None,
+        let block = piece.block;
+        let values = usize::from(block.air.is_some()) + usize::from(block.wind.is_some());
+        let whole = piece.span == 1 + values
+            && block.air.is_some()
+            && (block.wind.is_some() || promise != Promise::Given);
+        entries.push(Entry {
+            shaky: !(whole && before_is_whole && piece.at == regular_end),
+            coded: slot.pascals().map(|pressure| Coded {
+                pressure,
+                figures: height_figures(word, slot, context),
+                temperature: level.temperature,
+                height: None,
+            }),
+            words: (piece.at, piece.at + block.length),
+            name: slot.name(),
+            level,
         });
-        context.levels.push(level);
+        before_is_whole = whole;
+        regular_end = piece.at + block.length;
     }
     if let Some((line, name)) = unpromised {
         context.note(
@@ -262,8 +284,23 @@ pub(super) fn read(words: &[Word], indicator: char, context: &mut Context) -> us
             &format!("the date group's last figure ({indicator}) says that none is given so high"),
         );
     }
-    heights(coded, context);
+    heights(words, &mut entries, context);
+    context
+        .levels
+        .extend(entries.into_iter().map(|entry| entry.level));
     reading.end
+}
+
+/// A level read, with what is needed to judge it.
+struct Entry {
+    level: Level,
+    /// Absent for the ground.
+    coded: Option<Coded>,
+    /// A group is missing or too many in it or right before it, so that it may be stitched together wrongly.
+    shaky: bool,
+    /// Its groups, from and to.
+    words: (usize, usize),
+    name: String,
 }
 
 fn level(
@@ -366,45 +403,72 @@ fn height_figures(word: Word, slot: &Slot, context: &mut Context) -> Option<u32>
     height
 }
 
-/// Settles the heights of the levels just read, the last ones of the context.
-fn heights(coded: Vec<Coded>, context: &mut Context) {
-    let Some(first) = context.levels.len().checked_sub(coded.len()) else {
-        return;
-    };
-    let (indices, mut coded): (Vec<_>, Vec<_>) = coded
-        .into_iter()
-        .enumerate()
-        .filter(|(_, level)| level.pressure > 0.0)
-        .map(|(index, level)| (first + index, level))
-        .unzip();
-    let doubtful = heights::resolve(&mut coded);
-    for (index, resolved) in indices.iter().zip(&coded) {
-        if let Some(level) = context.levels.get_mut(*index) {
-            level.height = resolved.height;
+/// How far (m) a height may be from what the temperatures imply before a shaky level counts as misread.
+const SHAKY_WITHIN: f64 = 250.0;
+
+/// Settles the heights. A shaky level whose height fits no temperature is taken out: its level group is most likely
+/// another group.
+fn heights(words: &[Word], entries: &mut Vec<Entry>, context: &mut Context) {
+    let misfits = loop {
+        let indices: Vec<usize> = (0..entries.len())
+            .filter(|&index| {
+                entries
+                    .get(index)
+                    .is_some_and(|entry| entry.coded.is_some())
+            })
+            .collect();
+        let mut coded: Vec<Coded> = entries.iter().filter_map(|entry| entry.coded).collect();
+        heights::resolve(&mut coded);
+        let mut misfits = heights::misfits(&coded);
+        for misfit in &mut misfits {
+            misfit.index = indices.get(misfit.index).copied().unwrap_or_default();
         }
-    }
-    let doubts: Vec<_> = doubtful
+        let misread = misfits.iter().find(|misfit| {
+            let shaky = entries.get(misfit.index).is_some_and(|entry| entry.shaky);
+            shaky && misfit.off.abs() > SHAKY_WITHIN
+        });
+        let Some(misread) = misread else {
+            for (entry, resolved) in entries
+                .iter_mut()
+                .filter(|entry| entry.coded.is_some())
+                .zip(coded)
+            {
+                entry.level.height = resolved.height;
+            }
+            break misfits;
+        };
+        let entry = entries.remove(misread.index);
+        let groups = words.get(entry.words.0..entry.words.1).unwrap_or(&[]);
+        context.note(
+            entry.level.line.unwrap_or(1),
+            format!("{} set aside: {}", entry.name, quote(groups)),
+            "a group is missing or too many here, and the height doesn't fit the temperatures: probably not this level's groups",
+        );
+    };
+    let doubts: Vec<(usize, String)> = misfits
         .iter()
-        .filter_map(|&(index, off)| {
-            let level = coded.get(index)?;
-            Some(format!(
+        .filter(|misfit| misfit.judged && misfit.off.abs() > misfit.certain_within)
+        .filter_map(|misfit| {
+            let level = &entries.get(misfit.index)?.level;
+            let text = format!(
                 "{:.0} m at {:.0} hPa ({:.0} m {})",
                 level.height?,
-                level.pressure / 100.0,
-                off.abs(),
-                if off > 0.0 { "too thick" } else { "too thin" }
-            ))
+                level.pressure? / 100.0,
+                misfit.off.abs(),
+                if misfit.off > 0.0 {
+                    "too thick"
+                } else {
+                    "too thin"
+                }
+            );
+            Some((level.line?, text))
         })
         .collect();
-    let line = doubtful
-        .first()
-        .and_then(|(index, _)| indices.get(*index))
-        .and_then(|index| context.levels.get(*index))
-        .and_then(|level| level.line);
-    if let Some(line) = line {
+    if let Some((line, _)) = doubts.first() {
+        let texts: Vec<_> = doubts.iter().map(|(_, text)| text.as_str()).collect();
         context.note(
-            line,
-            format!("heights kept as coded: {}", doubts.join(", ")),
+            *line,
+            format!("heights kept as coded: {}", texts.join(", ")),
             "no reading of the figures fits the thickness that the temperatures from the level below imply",
         );
     }

@@ -310,7 +310,7 @@ fn an_ascent_that_ended_early_is_closed() {
 fn drops_and_their_remarks() {
     let text = "\
 XXAA 57187 99123 70456 04125 99011 27018 09025 00097 26417 09025
-92774 21611 10035 85504 17218 10530 70148 09066 88999 77999
+92774 21611 10035 85504 17218 10530 70148 09456 88999 77999
 31313 09608 81744
 61616 ABC12 0102A NOBODY OB 07
 62626 MBL WND 09530 AEV 20801 TTXX 31313 99012 REL 1230N04560W 174400=
@@ -332,7 +332,7 @@ XXBB 57188 99123 70456 04125 00011 27018 11987 25615 22795 14056
         row(Standard, [925.0, 774.0, 21.6, 20.5, 100.0, 35.0]),
         row(Standard, [850.0, 1504.0, 17.2, 15.4, 105.0, 30.0]),
         // 7 in the date group: winds up to 700 hPa, so this one is missing.
-        row(Standard, [700.0, 3148.0, 9.0, -7.0, NO, NO]),
+        row(Standard, [700.0, 3148.0, 9.4, 3.4, NO, NO]),
         row(Surface, [1011.0, NO, 27.0, 25.2, NO, NO]),
         row(SignificantThermal, [987.0, NO, 25.6, 24.1, NO, NO]),
         row(SignificantThermal, [795.0, NO, 14.0, 8.0, NO, NO]),

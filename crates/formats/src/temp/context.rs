@@ -144,6 +144,23 @@ impl Context {
         certain
     }
 
+    /// Where a temperature and a wind should stand and only one group does: whether it could be the wind. Then it is
+    /// neither.
+    pub fn could_be_either(&mut self, only: Word, name: &str) -> bool {
+        let either = !groups::is_missing(only.text) && wind_cost(only.text, self.unit) == 0;
+        if either {
+            self.note(
+                only.line,
+                format!(
+                    "one group of two is missing at {name}; group {} could be either and is set aside",
+                    quote(&[only])
+                ),
+                "it reads as a temperature and as a wind",
+            );
+        }
+        either
+    }
+
     /// Puts a temperature group into a level.
     pub fn air(&mut self, level: &mut Level, word: Word, name: &str) {
         let air = groups::air(word.text);
@@ -262,9 +279,18 @@ pub(super) fn wind_cost(group: &str, unit: Option<f64>) -> u32 {
         Ok(Some(wind)) if wind.speed > 195.0 => 8,
         Ok(Some(wind)) if wind.speed > 130.0 => 3,
         Ok(_) => 0,
+        Err(_) if is_extreme(group) => 9,
         Err(_) if group.starts_with("99") => 2,
         Err(_) => 4,
     }
+}
+
+/// Whether a group opens a tropopause (88) or a maximum wind (77, 66), or says that there is none (999).
+pub(super) fn is_extreme(group: &str) -> bool {
+    let rest = groups::cut(group, 2, 5);
+    group.len() == 5
+        && matches!(groups::cut(group, 0, 2), "88" | "77" | "66")
+        && (groups::number(rest).is_some() || groups::is_missing(rest))
 }
 
 /// Whether a group is the number of a section: 21212, 31313, 41414, 51515 to 59595, 61616 to 69696.

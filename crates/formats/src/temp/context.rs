@@ -27,6 +27,9 @@ pub(super) struct Context {
     pub unread_top: bool,
 }
 
+/// How unlikely it is that a group is a certain value; `None` when no such value is expected.
+pub(super) type Cost<'a> = Option<&'a dyn Fn(&str) -> u32>;
+
 /// Which values of a level can be told in spite of a group too many.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub(super) struct Certain {
@@ -87,13 +90,7 @@ impl Context {
 
     /// With a group too many, says which values are certain all the same: those that every possible reading agrees on.
     /// `values` are the groups after the level group; the costs are `None` for a value that isn't expected.
-    pub fn certain(
-        &mut self,
-        values: &[Word],
-        name: &str,
-        air: Option<&dyn Fn(&str) -> u32>,
-        wind: Option<&dyn Fn(&str) -> u32>,
-    ) -> Certain {
+    pub fn certain(&mut self, values: &[Word], name: &str, air: Cost, wind: Cost) -> Certain {
         let mut certain = Certain {
             air: true,
             wind: true,
@@ -103,9 +100,7 @@ impl Context {
             return certain;
         }
         let texts: Vec<&str> = values.iter().map(|word| word.text).collect();
-        let fits = |cost: Option<&dyn Fn(&str) -> u32>, text: &str| {
-            cost.is_some_and(|cost| cost(text) == 0)
-        };
+        let fits = |cost: Cost, text: &str| cost.is_some_and(|cost| cost(text) == 0);
         let mut readings: Vec<(Option<&str>, Option<&str>)> = Vec::new();
         for (index, &first) in texts.iter().enumerate() {
             match (air, wind) {

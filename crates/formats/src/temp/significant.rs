@@ -2,7 +2,7 @@
 
 use super::{
     align::{Block, INSIDE, MISSING, Piece, STRAY, Scheme, align},
-    context::{Context, air_cost, is_marker, wind_cost},
+    context::{Context, Cost, air_cost, is_marker, wind_cost},
     framing::{Part, Word, quote},
     groups::{self, cut, is_missing},
 };
@@ -194,7 +194,8 @@ fn section(words: &[Word], significance: Significance, context: &mut Context) ->
         regular_end = piece.at + piece.block.length;
         let falls =
             |from: Option<f64>, to: Option<f64>| from.zip(to).is_none_or(|(from, to)| from > to);
-        if !regular && !(falls(below, pressure) && falls(pressure, above)) {
+        let in_order = falls(below, pressure) && falls(pressure, above);
+        if !regular && !in_order {
             let groups = words.get(piece.at..regular_end).unwrap_or(&[]);
             context.note(
                 word.line,
@@ -302,11 +303,10 @@ fn level(
         Significance::Wind => wind_cost(text, unit),
     };
     let values = words.get(piece.at + 1..piece.at + piece.span);
-    let (air, wind): (Option<&dyn Fn(&str) -> u32>, Option<&dyn Fn(&str) -> u32>) =
-        match significance {
-            Significance::Thermal => (Some(&cost), None),
-            Significance::Wind => (None, Some(&cost)),
-        };
+    let (air, wind): (Cost, Cost) = match significance {
+        Significance::Thermal => (Some(&cost), None),
+        Significance::Wind => (None, Some(&cost)),
+    };
     let certain = context.certain(values.unwrap_or(&[]), &name, air, wind);
     if certain.air && certain.wind {
         match significance {

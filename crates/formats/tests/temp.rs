@@ -537,6 +537,44 @@ fn miscounted_winds() {
     assert_eq!(pressures, [Some(40_000.0), Some(30_000.0), Some(25_000.0)]);
 }
 
+/// Winds whose section number is lost are not read as temperatures; they start anew from below.
+#[test]
+fn winds_without_their_section_number() {
+    let text = "TTDD 2312/ 00451 11842 59764 22465 561// 33201 469// 21212 11900 28526 22700 29030 33510 30015=";
+    let plain = only(text);
+    assert_eq!(plain.levels.len(), 6);
+    for broken in ["21x12 ", ""] {
+        let sounding = only(&text.replace("21212 ", broken));
+        assert_eq!(bare(&sounding.levels), bare(&plain.levels), "{broken}");
+        assert!(said(&sounding).contains("without the section number 21212"));
+    }
+}
+
+/// A ship: call sign, 35.2 S 18.4 E, m/s; and one that hides its call sign.
+#[test]
+fn ships() {
+    let text = "\
+UUAA ABCD7 06121 99352 30184 44258 99015 18240 20508 00127 17640 21010=
+UUBB ABCD7 0612/ 99352 30184 44258 00015 18240 11960 14640 22900 10456=
+UUAA SHIP 06121 99401 30184 47808 99009 12240 25012=
+";
+    let loaded = read("20310630.txt", text);
+    let names: Vec<_> = loaded
+        .soundings
+        .iter()
+        .map(|sounding| sounding.station.text.as_deref())
+        .collect();
+    assert_eq!(names, [Some("ABCD7"), Some("SHIP 40.1S 18.4E")]);
+    let expect = [
+        row(Surface, [1015.0, NO, 18.2, 14.2, 205.0, 8.0]),
+        row(Standard, [1000.0, 127.0, 17.6, 13.6, 210.0, 10.0]),
+        row(Surface, [1015.0, NO, 18.2, 14.2, NO, NO]),
+        row(SignificantThermal, [960.0, NO, 14.6, 10.6, NO, NO]),
+        row(SignificantThermal, [900.0, NO, 10.4, 4.4, NO, NO]),
+    ];
+    compare(&loaded.soundings[0].levels, &expect, 1.0);
+}
+
 /// Winds above the level the indicator names are taken, and said.
 #[test]
 fn winds_beyond_the_indicator() {

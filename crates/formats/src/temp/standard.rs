@@ -474,3 +474,37 @@ fn heights(words: &[Word], entries: &mut Vec<Entry>, context: &mut Context) {
         );
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// Code table 1734, from memory: levels with wind, perhaps, and without, as hPa.
+    #[test]
+    fn what_the_indicator_promises() {
+        let check = |indicator: char, part: Part, given: &[u16], open: &[u16]| {
+            let slots: &[Slot] = if part.upper() { &UPPER } else { &LOWER };
+            let with = |wanted: Promise| -> Vec<u16> {
+                let fitting = slots
+                    .iter()
+                    .filter(|slot| promise(indicator, slot, part) == wanted);
+                fitting.filter_map(|slot| slot.hectopascals).collect()
+            };
+            assert_eq!(with(Promise::Given), given, "{indicator} {part:?}");
+            assert_eq!(with(Promise::Open), open, "{indicator} {part:?}");
+        };
+        check('5', Part::A, &[1000, 925, 850, 700, 500], &[]);
+        check('8', Part::A, &[1000, 925, 850], &[]);
+        check('0', Part::A, &[1000], &[]);
+        check(
+            '2',
+            Part::A,
+            &[1000, 925, 850, 700, 500, 400, 300, 250],
+            &[200],
+        );
+        check('/', Part::A, &[], &[]);
+        check('3', Part::C, &[70, 50, 30], &[]);
+        check('1', Part::C, &[70, 50, 30, 20, 10], &[]);
+        check('x', Part::C, &[], &[70, 50, 30, 20, 10]);
+    }
+}

@@ -3,9 +3,8 @@
 use crate::{Geometry, Point, Rect};
 use dewbound_sounding::Profile;
 
-/// Height of the rows within which only the extremes of a curve are kept, points. Half a point: what a screen of doubled
-/// resolution can show.
-const ROW: f64 = 0.5;
+/// Height of the rows within which only the first, last and extreme points of a curve are kept, points.
+const ROW: f64 = 1.0;
 
 /// Thins a curve to screen rows: of the points in a row the first, the leftmost, the rightmost and the last stay, in
 /// their order. Extremes are kept exactly.
@@ -175,6 +174,12 @@ impl Silhouette {
             if lower.y < self.top || upper.y > self.top + height || !(a.x + b.x).is_finite() {
                 continue;
             }
+            if self.bin(upper.y) == self.bin(lower.y) {
+                let bin = self.bin(upper.y);
+                self.left[bin] = self.left[bin].min(a.x.min(b.x));
+                self.right[bin] = self.right[bin].max(a.x.max(b.x));
+                continue;
+            }
             for bin in self.bin(upper.y)..=self.bin(lower.y) {
                 let start = self.top + bin as f64 * BIN;
                 let at = |y: f64| {
@@ -192,8 +197,14 @@ impl Silhouette {
     /// Leftmost and rightmost x of any curve between two heights; `None` where there is none.
     pub fn between(&self, y0: f64, y1: f64) -> Option<(f64, f64)> {
         let (upper, lower) = (self.bin(y0.min(y1)), self.bin(y0.max(y1)));
-        let left = self.left[upper..=lower].iter().copied().fold(f64::INFINITY, f64::min);
-        let right = self.right[upper..=lower].iter().copied().fold(f64::NEG_INFINITY, f64::max);
+        let left = self.left[upper..=lower]
+            .iter()
+            .copied()
+            .fold(f64::INFINITY, f64::min);
+        let right = self.right[upper..=lower]
+            .iter()
+            .copied()
+            .fold(f64::NEG_INFINITY, f64::max);
         (left <= right).then_some((left, right))
     }
 }
@@ -211,7 +222,9 @@ mod tests {
 
     fn profile(temperatures: &[f64]) -> Profile {
         let n = temperatures.len();
-        let pressure: Vec<f64> = (0..n).map(|i| 100_000.0 * (-2.2 * i as f64 / n as f64).exp()).collect();
+        let pressure: Vec<f64> = (0..n)
+            .map(|i| 100_000.0 * (-2.2 * i as f64 / n as f64).exp())
+            .collect();
         Profile {
             temperature: temperatures.iter().map(|&t| Some(t)).collect(),
             dewpoint: temperatures.iter().map(|&t| Some(t - 5.0)).collect(),
@@ -258,7 +271,11 @@ mod tests {
 
     #[test]
     fn levels_far_outside_are_left_out_but_their_neighbours_are_not() {
-        let view = View { bottom_hpa: 600.0, top_hpa: 400.0, ..View::default() };
+        let view = View {
+            bottom_hpa: 600.0,
+            top_hpa: 400.0,
+            ..View::default()
+        };
         let geometry = Geometry::new(Rect::new(0.0, 0.0, 900.0, 700.0), view);
         let curve = Curves::of(&profile(&[250.0; 200]), &geometry).temperature;
         let plot = geometry.plot();
@@ -273,6 +290,9 @@ mod tests {
         let mut silhouette = Silhouette::new(&plot);
         silhouette.add(&[Point::new(0.0, 100.0), Point::new(100.0, 0.0)]);
         let (left, right) = silhouette.between(50.0, 50.0).unwrap();
-        assert!((left - 48.0).abs() < 1e-9 && (right - 52.0).abs() < 1e-9, "{left} {right}");
+        assert!(
+            (left - 48.0).abs() < 1e-9 && (right - 52.0).abs() < 1e-9,
+            "{left} {right}"
+        );
     }
 }

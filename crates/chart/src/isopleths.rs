@@ -35,6 +35,17 @@ pub(crate) fn spacing(points_per_unit: f64, apart: f64, steps: &[f64]) -> f64 {
         .unwrap_or(1.0)
 }
 
+/// Every 10 K, finer where that leaves wide gaps, 20 K where it is closer than `apart` points.
+fn ten_or_finer(geometry: &Geometry, finer: &[f64], apart: f64) -> f64 {
+    let points_per_kelvin = geometry.points_per_kelvin();
+    let fine = spacing(points_per_kelvin, 100.0, finer);
+    if fine * points_per_kelvin >= 100.0 {
+        fine
+    } else {
+        spacing(points_per_kelvin, apart, &[10.0, 20.0])
+    }
+}
+
 /// Multiples of `step` from `low` to `high`.
 fn multiples(low: f64, high: f64, step: f64) -> impl Iterator<Item = f64> {
     let first = (low / step).ceil();
@@ -45,11 +56,7 @@ fn multiples(low: f64, high: f64, step: f64) -> impl Iterator<Item = f64> {
 /// Isotherms crossing the plot, every so many degC.
 pub(crate) fn isotherms(geometry: &Geometry) -> Vec<Isopleth> {
     let view = geometry.view();
-    let step = spacing(
-        geometry.points_per_kelvin(),
-        58.0,
-        &[0.1, 0.2, 0.5, 1.0, 2.0, 5.0, 10.0, 20.0],
-    );
+    let step = ten_or_finer(geometry, &[0.1, 0.2, 0.5, 1.0, 2.0, 5.0], 52.0);
     let coldest = view.left_c - view.lean_k * view.depth();
     let ends = [view.bottom_hpa, view.top_hpa].map(Pressure::from_hpa);
     multiples(coldest, view.left_c + view.span_k, step)
@@ -129,11 +136,7 @@ fn course(
 /// Dry adiabats: potential temperature in K.
 pub(crate) fn dry_adiabats(geometry: &Geometry) -> Vec<Isopleth> {
     let view = geometry.view();
-    let step = spacing(
-        geometry.points_per_kelvin(),
-        72.0,
-        &[1.0, 2.0, 5.0, 10.0, 20.0],
-    );
+    let step = ten_or_finer(geometry, &[1.0, 2.0, 5.0], 72.0);
     let theta = |hpa: f64, c: f64| {
         (c + 273.15).max(50.0) * (1000.0 / hpa).powf(dewbound_sounding::thermo::KAPPA)
     };
@@ -193,7 +196,9 @@ pub(crate) fn mixing_ratio_lines(geometry: &Geometry) -> Vec<Isopleth> {
     let values: [&[f64]; 3] = [
         &[1.0, 2.0, 4.0, 7.0, 10.0, 14.0, 20.0, 28.0],
         &[0.2, 0.5, 3.0, 5.0, 12.0, 17.0, 24.0, 40.0],
-        &[0.1, 1.5, 6.0, 8.0, 9.0, 11.0, 13.0, 15.0, 16.0, 18.0, 19.0, 22.0, 26.0, 32.0],
+        &[
+            0.1, 1.5, 6.0, 8.0, 9.0, 11.0, 13.0, 15.0, 16.0, 18.0, 19.0, 22.0, 26.0, 32.0,
+        ],
     ];
     let mut kept: Vec<Isopleth> = Vec::new();
     for &value in values.into_iter().flatten() {
@@ -240,11 +245,17 @@ mod tests {
             ..View::default()
         };
         let frame = Rect::new(0.0, 0.0, 1000.0, 800.0);
-        [View::default(), close, far].map(|v| Geometry::new(frame, v)).to_vec()
+        [View::default(), close, far]
+            .map(|v| Geometry::new(frame, v))
+            .to_vec()
     }
 
     /// Points of every isopleth of a family, put through the formula that defines it, give back its value.
-    fn check(family: fn(&Geometry) -> Vec<Isopleth>, value: fn(Pressure, Temperature) -> f64, tolerance: f64) {
+    fn check(
+        family: fn(&Geometry) -> Vec<Isopleth>,
+        value: fn(Pressure, Temperature) -> f64,
+        tolerance: f64,
+    ) {
         for geometry in geometries() {
             let lines = family(&geometry);
             assert!(lines.len() >= 3, "{} lines", lines.len());
@@ -252,7 +263,12 @@ mod tests {
                 for &point in &line.points {
                     let (p, t) = geometry.at(point);
                     let got = value(p, t);
-                    assert!((got - line.value).abs() < tolerance, "{got} on {} at {} hPa", line.value, p.hpa());
+                    assert!(
+                        (got - line.value).abs() < tolerance,
+                        "{got} on {} at {} hPa",
+                        line.value,
+                        p.hpa()
+                    );
                 }
             }
         }
@@ -275,7 +291,11 @@ mod tests {
 
     #[test]
     fn saturation_mixing_ratio_is_constant_on_its_line() {
-        check(mixing_ratio_lines, |p, t| 1000.0 * saturation_mixing_ratio(p, t), 1e-6);
+        check(
+            mixing_ratio_lines,
+            |p, t| 1000.0 * saturation_mixing_ratio(p, t),
+            1e-6,
+        );
     }
 
     #[test]
@@ -285,7 +305,11 @@ mod tests {
                 let expect = theta_e_of_wet_bulb(Temperature::from_c(line.value)).k();
                 for &point in &line.points {
                     let (pressure, temperature) = geometry.at(point);
-                    let air = Air { pressure, temperature, dewpoint: temperature };
+                    let air = Air {
+                        pressure,
+                        temperature,
+                        dewpoint: temperature,
+                    };
                     assert!((air.theta_e().k() - expect).abs() < 1e-3);
                 }
             }
@@ -295,12 +319,21 @@ mod tests {
     #[test]
     fn a_moist_adiabat_passes_through_its_wet_bulb_potential_temperature() {
         let geometry = geometries()[0];
-        let line = moist_adiabats(&geometry).into_iter().find(|l| l.value == 20.0).unwrap();
+        let line = moist_adiabats(&geometry)
+            .into_iter()
+            .find(|l| l.value == 20.0)
+            .unwrap();
         let y = geometry.y(Pressure::from_hpa(1000.0));
-        let at = line.points.windows(2).find(|w| w[0].y >= y && w[1].y <= y).unwrap();
+        let at = line
+            .points
+            .windows(2)
+            .find(|w| w[0].y >= y && w[1].y <= y)
+            .unwrap();
         let s = (at[0].y - y) / (at[0].y - at[1].y);
         let x = at[0].x + s * (at[1].x - at[0].x);
-        let expect = geometry.point(Pressure::from_hpa(1000.0), Temperature::from_c(20.0)).x;
+        let expect = geometry
+            .point(Pressure::from_hpa(1000.0), Temperature::from_c(20.0))
+            .x;
         assert!((x - expect).abs() < 0.1, "{x} {expect}");
     }
 

@@ -96,7 +96,7 @@ impl StationTable {
             });
         };
         for (number, line) in text::lines(text) {
-            if line.trim().is_empty() || line.trim_start().starts_with('#') {
+            if !is_row(line) {
                 continue;
             }
             let Some(layout) = &table.layout else {
@@ -323,6 +323,12 @@ impl StationTable {
     /// Makes room for every column in the text, so that any station can be written.
     fn layout_with_all_columns(&mut self) -> Layout {
         let Some(layout) = &mut self.layout else {
+            // What stood there without a header was not used; as remarks it stays without being taken for a header.
+            for line in &mut self.lines {
+                if is_row(line) {
+                    line.insert_str(0, "# ");
+                }
+            }
             let layout = Layout {
                 delimiter: Delimiter::COMMA,
                 line: self.lines.len(),
@@ -337,7 +343,6 @@ impl StationTable {
             return layout.clone();
         }
         let delimiter = layout.delimiter;
-        let is_row = |line: &str| !line.trim().is_empty() && !line.trim_start().starts_with('#');
         // New columns stand to the right of the longest row, surplus fields included.
         let widest = self
             .lines
@@ -356,18 +361,18 @@ impl StationTable {
             if !is_row(line) {
                 continue;
             }
-            let has = delimiter.fields(line).len();
-            let wanted = if index == layout.line { widest } else { total };
-            line.extend(std::iter::repeat_n(
-                delimiter.char(),
-                wanted.saturating_sub(has),
-            ));
+            // Through fields, so that a quote left open doesn't swallow what is added.
+            let mut fields: Vec<String> = delimiter
+                .fields(line)
+                .into_iter()
+                .map(|field| field.into_owned())
+                .collect();
             if index == layout.line {
-                for name in &missing {
-                    line.push(delimiter.char());
-                    line.push_str(name);
-                }
+                fields.resize(widest, String::new());
+                fields.extend(missing.iter().map(|name| (*name).to_owned()));
             }
+            fields.resize(total.max(fields.len()), String::new());
+            *line = delimiter.join(&fields);
         }
         layout.clone()
     }
@@ -504,6 +509,11 @@ impl Layout {
         }
         self.delimiter.join(&fields)
     }
+}
+
+/// Whether a line is neither blank nor a remark.
+fn is_row(line: &str) -> bool {
+    !line.trim().is_empty() && !line.trim_start().starts_with('#')
 }
 
 /// Given fields replace, absent ones leave what is there.
@@ -774,6 +784,21 @@ elevation_m,name,wmo,icao,lat,lon,wigos,remark
             })
             .unwrap();
         assert!(parse(&table.to_csv()).by_icao("ZZUV").is_some());
+    }
+
+    #[test]
+    fn what_has_no_header_becomes_a_remark_when_a_station_is_added() {
+        let (table, _) = StationTable::parse("01234,A,47,8\n");
+        let table = table
+            .with(Station {
+                wmo: Some("01235".into()),
+                ..Station::default()
+            })
+            .unwrap();
+        assert_eq!(
+            table.to_csv(),
+            "# 01234,A,47,8\nwmo,wigos,icao,name,lat,lon,elevation_m\n01235,,,,,,\n"
+        );
     }
 
     #[test]

@@ -20,7 +20,8 @@ impl Change {
     fn between(with: Option<&Ascent>, without: Option<&Ascent>) -> Self {
         let difference = |number: fn(&Ascent) -> Option<f64>| {
             let (with, without) = (with.and_then(number)?, without.and_then(number)?);
-            Some(with - without)
+            // Adding zero turns a negative zero into a plain one.
+            Some(with - without + 0.0)
         };
         Self {
             cape: difference(|ascent| Some(ascent.cape)),
@@ -110,7 +111,9 @@ pub fn repair_source(finding: &Finding, repair: &Repair) -> String {
 pub fn with_repair(amendments: &Amendments, finding: &Finding, repair: &Repair) -> Amendments {
     let source = repair_source(finding, repair);
     let mut taken = without_alternatives(amendments, finding, Some(repair.id));
-    taken.entries.retain(|entry| entry.from_repair.as_deref() != Some(&source));
+    taken
+        .entries
+        .retain(|entry| entry.from_repair.as_deref() != Some(&source));
     append(&mut taken, repair, &source);
     taken
 }
@@ -150,14 +153,20 @@ fn set_enabled(amendments: &mut Amendments, source: &str, enabled: bool) {
 }
 
 fn append(amendments: &mut Amendments, repair: &Repair, source: &str) {
-    amendments.entries.extend(repair.amendments.iter().map(|&amendment| Entry {
-        amendment,
-        enabled: true,
-        from_repair: Some(source.to_owned()),
-    }));
+    amendments
+        .entries
+        .extend(repair.amendments.iter().map(|&amendment| Entry {
+            amendment,
+            enabled: true,
+            from_repair: Some(source.to_owned()),
+        }));
 }
 
-fn without_alternatives(amendments: &Amendments, finding: &Finding, keep: Option<&str>) -> Amendments {
+fn without_alternatives(
+    amendments: &Amendments,
+    finding: &Finding,
+    keep: Option<&str>,
+) -> Amendments {
     let mut left = amendments.clone();
     for repair in &finding.repairs {
         if Some(repair.id) != keep {
@@ -175,7 +184,12 @@ fn numbers(received: &Profile, amendments: &Amendments, daylight: Daylight) -> N
 ///
 /// `None` when there is nothing to price: the repair changes nothing, or no parcel has a CAPE on both sides.
 /// A repair that is already taken belongs to a finding and is priced by [`price`].
-pub fn cost(repair: &Repair, received: &Profile, amendments: &Amendments, daylight: Daylight) -> Option<Cost> {
+pub fn cost(
+    repair: &Repair,
+    received: &Profile,
+    amendments: &Amendments,
+    daylight: Daylight,
+) -> Option<Cost> {
     if repair.amendments.is_empty() {
         return None;
     }
@@ -190,7 +204,7 @@ pub fn cost(repair: &Repair, received: &Profile, amendments: &Amendments, daylig
 /// Prices every finding on the working profile. `working` are the numbers of `amendments` as they stand (not recomputed).
 ///
 /// For a repair not taken: numbers after taking it minus the working numbers. For the one that is taken: the working
-/// numbers minus the numbers after withdrawing it.
+/// numbers minus the numbers after withdrawing it. Several repairs are priced side by side on the processor's cores.
 pub fn price<'a>(
     findings: &'a [Finding],
     received: &Profile,
@@ -198,34 +212,111 @@ pub fn price<'a>(
     daylight: Daylight,
     working: &Numbers,
 ) -> Vec<Priced<'a>> {
-    findings
+    let jobs = findings
         .iter()
-        .map(|finding| {
-            let applied = applied_repair(amendments, finding);
-            let costs: Vec<Option<Cost>> = finding
-                .repairs
-                .iter()
-                .enumerate()
-                .map(|(index, repair)| {
-                    if repair.amendments.is_empty() || finding.wind_only {
-                        None
-                    } else if applied == Some(index) {
-                        let without = without_repair(amendments, finding, repair);
-                        Cost::between(working, &numbers(received, &without, daylight))
-                    } else {
-                        let with = with_repair(amendments, finding, repair);
-                        Cost::between(&numbers(received, &with, daylight), working)
-                    }
-                })
-                .collect();
-            Priced {
-                finding,
-                headline: headline(&costs),
-                costs,
-                applied,
-            }
+        .enumerate()
+        .flat_map(|(finding, f)| (0..f.repairs.len()).map(move |repair| (finding, repair)))
+        .collect();
+    let mut priced = price_jobs(findings, received, amendments, daylight, working, jobs);
+    for state in &mut priced {
+        state.headline = headline(&state.costs);
+    }
+    priced
+}
+
+/// The same for the headline repairs only, each held at the index given (in the order of `findings`); other costs are left
+/// `None`. For the frames of a drag, in which the choice of headline is held like the order of the cards.
+pub fn price_headlines<'a>(
+    findings: &'a [Finding],
+    received: &Profile,
+    amendments: &Amendments,
+    daylight: Daylight,
+    working: &Numbers,
+    held: &[Option<usize>],
+) -> Vec<Priced<'a>> {
+    let jobs = held
+        .iter()
+        .enumerate()
+        .filter_map(|(finding, &repair)| Some((finding, repair?)))
+        .filter(|&(finding, repair)| {
+            findings
+                .get(finding)
+                .is_some_and(|f| repair < f.repairs.len())
         })
-        .collect()
+        .collect();
+    let mut priced = price_jobs(findings, received, amendments, daylight, working, jobs);
+    for (state, &held) in priced.iter_mut().zip(held) {
+        state.headline = held.filter(|&index| matches!(state.costs.get(index), Some(Some(_))));
+    }
+    priced
+}
+
+/// Fewer repairs than this are priced in turn: starting threads would take as long.
+const WORTH_SHARING: usize = 3;
+
+fn price_jobs<'a>(
+    findings: &'a [Finding],
+    received: &Profile,
+    amendments: &Amendments,
+    daylight: Daylight,
+    working: &Numbers,
+    jobs: Vec<(usize, usize)>,
+) -> Vec<Priced<'a>> {
+    let mut priced: Vec<Priced<'a>> = findings
+        .iter()
+        .map(|finding| Priced {
+            finding,
+            costs: vec![None; finding.repairs.len()],
+            headline: None,
+            applied: applied_repair(amendments, finding),
+        })
+        .collect();
+    let one = |&(finding, repair): &(usize, usize)| -> Option<Cost> {
+        let state = priced.get(finding)?;
+        let finding = state.finding;
+        let wanted = finding.repairs.get(repair)?;
+        if wanted.amendments.is_empty() || finding.wind_only {
+            None
+        } else if state.applied == Some(repair) {
+            let without = without_repair(amendments, finding, wanted);
+            Cost::between(working, &numbers(received, &without, daylight))
+        } else {
+            let with = with_repair(amendments, finding, wanted);
+            Cost::between(&numbers(received, &with, daylight), working)
+        }
+    };
+    let threads = std::thread::available_parallelism()
+        .map_or(1, usize::from)
+        .min(jobs.len());
+    let costs: Vec<Option<Cost>> = if threads < 2 || jobs.len() < WORTH_SHARING {
+        jobs.iter().map(one).collect()
+    } else {
+        let share = jobs.len().div_ceil(threads);
+        let one = &one;
+        std::thread::scope(|scope| {
+            let workers: Vec<_> = jobs
+                .chunks(share)
+                .map(|chunk| scope.spawn(move || chunk.iter().map(one).collect::<Vec<_>>()))
+                .collect();
+            workers
+                .into_iter()
+                .zip(jobs.chunks(share))
+                // A worker that failed leaves its costs unknown.
+                .flat_map(|(worker, chunk)| {
+                    worker.join().unwrap_or_else(|_| vec![None; chunk.len()])
+                })
+                .collect()
+        })
+    };
+    for ((finding, repair), cost) in jobs.into_iter().zip(costs) {
+        if let Some(slot) = priced
+            .get_mut(finding)
+            .and_then(|state| state.costs.get_mut(repair))
+        {
+            *slot = cost;
+        }
+    }
+    priced
 }
 
 /// The repair with the largest |CAPE change|, CIN change breaking ties; the earlier one when both are alike.
@@ -266,8 +357,12 @@ pub fn combined_cost(
     let mut with = amendments.clone();
     let mut any = false;
     for state in priced {
-        let Some(headline) = state.headline else { continue };
-        let Some(repair) = state.finding.repairs.get(headline) else { continue };
+        let Some(headline) = state.headline else {
+            continue;
+        };
+        let Some(repair) = state.finding.repairs.get(headline) else {
+            continue;
+        };
         any = true;
         with = if state.applied == Some(headline) {
             without_alternatives(&with, state.finding, Some(repair.id))
@@ -281,7 +376,10 @@ pub fn combined_cost(
     // Whichever side is the working state has its numbers already.
     let of = |side: &Amendments| (side != amendments).then(|| numbers(received, side, daylight));
     let (with, without) = (of(&with), of(&without));
-    Cost::between(with.as_ref().unwrap_or(working), without.as_ref().unwrap_or(working))
+    Cost::between(
+        with.as_ref().unwrap_or(working),
+        without.as_ref().unwrap_or(working),
+    )
 }
 
 #[cfg(test)]
@@ -291,7 +389,7 @@ mod tests {
     use approx::assert_relative_eq;
     use dewbound_sounding::thermo::Temperature;
 
-    /// A convective day whose surface hygrometer reads 2 g/kg too moist and whose thermometer was wet above a cloud.
+    /// A convective day whose surface hygrometer reads 3 g/kg too moist and whose thermometer was wet above a cloud.
     fn scene() -> Scene {
         let air = Air0 {
             w: 0.0135,
@@ -299,9 +397,12 @@ mod tests {
             cloud: Some((2600.0, 3400.0)),
             ..Air0::default()
         };
-        let mut ascent = air.ascent().wet(3400.0, 20.0, 12.0).noisy(&mut Dice::new(7), 0.05, 0.01);
+        let mut ascent = air
+            .ascent()
+            .wet(3400.0, 20.0, 12.0)
+            .noisy(&mut Dice::new(7), 0.05, 0.01);
         for i in 0..2 {
-            let w = ascent.w(i) + 0.002;
+            let w = ascent.w(i) + 0.003;
             ascent.set_w(i, w);
         }
         Scene::day(ascent.fine())
@@ -321,7 +422,13 @@ mod tests {
             for finding in &findings {
                 for (index, repair) in finding.repairs.iter().enumerate() {
                     let before = working(&scene, &amendments);
-                    let priced = price(std::slice::from_ref(finding), &scene.profile, &amendments, scene.daylight, &before);
+                    let priced = price(
+                        std::slice::from_ref(finding),
+                        &scene.profile,
+                        &amendments,
+                        scene.daylight,
+                        &before,
+                    );
                     let off = applied_repair(&amendments, finding) == Some(index);
                     let toggled = if off {
                         without_repair(&amendments, finding, repair)
@@ -334,7 +441,13 @@ mod tests {
                     } else {
                         Cost::between(&after, &before)
                     };
-                    assert_eq!(priced[0].costs[index], seen, "{} {} in round {round}", finding.key(), repair.id);
+                    assert_eq!(
+                        priced[0].costs[index],
+                        seen,
+                        "{} {} in round {round}",
+                        finding.key(),
+                        repair.id
+                    );
                     amendments = toggled;
                 }
             }
@@ -346,14 +459,26 @@ mod tests {
         let scene = scene();
         let findings = scene.findings();
         let received = working(&scene, &Amendments::default());
-        let all = price(&findings, &scene.profile, &Amendments::default(), scene.daylight, &received);
-        let state = all.iter().find(|state| state.finding.rule == "wet-thermometer").unwrap();
+        let all = price(
+            &findings,
+            &scene.profile,
+            &Amendments::default(),
+            scene.daylight,
+            &received,
+        );
+        let state = all
+            .iter()
+            .find(|state| state.finding.rule == "wet-thermometer")
+            .unwrap();
         let repair = &state.finding.repairs[0];
         let taken = with_repair(&Amendments::default(), state.finding, repair);
         assert_eq!(applied_repair(&taken, state.finding), Some(0));
         let with = working(&scene, &taken);
         let again = price(&findings, &scene.profile, &taken, scene.daylight, &with);
-        let after = again.iter().find(|state| state.finding.rule == "wet-thermometer").unwrap();
+        let after = again
+            .iter()
+            .find(|state| state.finding.rule == "wet-thermometer")
+            .unwrap();
         assert_eq!(after.applied, Some(0));
         assert_eq!(after.costs[0], state.costs[0]);
         // The cold kink makes CAPE too high: bridging it takes CAPE away.
@@ -364,13 +489,19 @@ mod tests {
     fn repairs_of_one_finding_exclude_each_other() {
         let scene = scene();
         let findings = scene.findings();
-        let finding = findings.iter().find(|finding| finding.repairs.len() >= 2).unwrap();
+        let finding = findings
+            .iter()
+            .find(|finding| finding.repairs.len() >= 2)
+            .unwrap();
         let one = with_repair(&Amendments::default(), finding, &finding.repairs[0]);
         let other = with_repair(&one, finding, &finding.repairs[1]);
         assert_eq!(applied_repair(&other, finding), Some(1));
         let back = with_repair(&other, finding, &finding.repairs[0]);
         assert_eq!(applied_repair(&back, finding), Some(0));
-        assert_eq!(back.entries.iter().filter(|entry| entry.enabled).count(), one.entries.len());
+        assert_eq!(
+            back.entries.iter().filter(|entry| entry.enabled).count(),
+            one.entries.len()
+        );
     }
 
     #[test]
@@ -380,7 +511,8 @@ mod tests {
         let start = Amendments::default();
         let before = working(&scene, &start);
         let priced = price(&findings, &scene.profile, &start, scene.daylight, &before);
-        let combined = combined_cost(&priced, &scene.profile, &start, scene.daylight, &before).unwrap();
+        let combined =
+            combined_cost(&priced, &scene.profile, &start, scene.daylight, &before).unwrap();
         let mut accepted = start.clone();
         for state in &priced {
             if let Some(headline) = state.headline {
@@ -393,14 +525,40 @@ mod tests {
         let priced = price(&findings, &scene.profile, &accepted, scene.daylight, &after);
         let priced: Vec<Priced> = priced
             .into_iter()
-            .map(|state| Priced { headline: state.applied.or(state.headline), ..state })
+            .map(|state| Priced {
+                headline: state.applied.or(state.headline),
+                ..state
+            })
             .collect();
-        let again = combined_cost(&priced, &scene.profile, &accepted, scene.daylight, &after).unwrap();
+        let again =
+            combined_cost(&priced, &scene.profile, &accepted, scene.daylight, &after).unwrap();
         assert_relative_eq!(
             again.most_unstable.cape.unwrap(),
             combined.most_unstable.cape.unwrap(),
             epsilon = 1e-9
         );
+    }
+
+    #[test]
+    fn held_headlines_cost_the_same() {
+        let scene = scene();
+        let findings = scene.findings();
+        let none = Amendments::default();
+        let numbers = working(&scene, &none);
+        let all = price(&findings, &scene.profile, &none, scene.daylight, &numbers);
+        let held: Vec<_> = all.iter().map(|state| state.headline).collect();
+        let again = price_headlines(
+            &findings,
+            &scene.profile,
+            &none,
+            scene.daylight,
+            &numbers,
+            &held,
+        );
+        for (all, again) in all.iter().zip(&again) {
+            assert!(all.headline.is_some());
+            assert_eq!(all.headline_cost(), again.headline_cost());
+        }
     }
 
     #[test]
@@ -433,8 +591,14 @@ mod tests {
                 ..Cost::default()
             })
         };
-        assert_eq!(headline(&[None, with(Some(-50.0), None), with(Some(20.0), Some(90.0))]), Some(1));
-        assert_eq!(headline(&[with(Some(0.0), Some(3.0)), with(Some(0.0), Some(-8.0))]), Some(1));
+        assert_eq!(
+            headline(&[None, with(Some(-50.0), None), with(Some(20.0), Some(90.0))]),
+            Some(1)
+        );
+        assert_eq!(
+            headline(&[with(Some(0.0), Some(3.0)), with(Some(0.0), Some(-8.0))]),
+            Some(1)
+        );
         assert_eq!(headline(&[None, None]), None);
     }
 }

@@ -31,10 +31,9 @@ pub struct View<'a> {
 impl<'a> View<'a> {
     /// Derives the column.
     pub fn of(context: &Context<'a>) -> Self {
-        let average = Pressure::from_hpa(context.thresholds.get("fine.average_hpa"));
         Self {
             context: *context,
-            column: Column::of(context.profile, average),
+            column: Column::of(context.profile, context.thresholds),
         }
     }
 
@@ -94,7 +93,9 @@ pub fn findings(context: &Context) -> Vec<Finding> {
     kept.sort_by(|a, b| {
         let bottom = |finding: &Finding| finding.bottom.map_or(f64::NEG_INFINITY, Pressure::pa);
         let top = |finding: &Finding| finding.top.map_or(f64::NEG_INFINITY, Pressure::pa);
-        bottom(b).total_cmp(&bottom(a)).then(top(b).total_cmp(&top(a)))
+        bottom(b)
+            .total_cmp(&bottom(a))
+            .then(top(b).total_cmp(&top(a)))
     });
     kept
 }
@@ -125,7 +126,9 @@ fn one_per_cause(all: Vec<Finding>) -> Vec<Finding> {
 
 fn overlap(a: &Finding, b: &Finding) -> bool {
     match (a.bottom, a.top, b.bottom, b.top) {
-        (Some(a_bottom), Some(a_top), Some(b_bottom), Some(b_top)) => a_bottom > b_top && b_bottom > a_top,
+        (Some(a_bottom), Some(a_top), Some(b_bottom), Some(b_top)) => {
+            a_bottom > b_top && b_bottom > a_top
+        }
         _ => false,
     }
 }
@@ -151,10 +154,137 @@ mod tests {
         let mut ids = std::collections::BTreeSet::new();
         for rule in RULES {
             assert!(ids.insert(rule.id()), "{} twice", rule.id());
-            assert!(rule.id().chars().all(|c| c.is_ascii_lowercase() || c == '-'));
+            assert!(
+                rule.id()
+                    .chars()
+                    .all(|c| c.is_ascii_lowercase() || c == '-')
+            );
             for text in [rule.title(), rule.source(), rule.about()] {
                 assert!(!text.is_empty(), "{}", rule.id());
             }
         }
+    }
+
+    /// Ascents without a fault: noise, rounding, inversions, drying layers, clouds, shallow contact layers by day and ground
+    /// inversions at night.
+    #[test]
+    fn clean_ascents_stay_silent() {
+        use crate::synthetic::{Air0, BOTH, Dice, Scene};
+        use std::collections::BTreeMap;
+        let mut false_alarms: BTreeMap<&str, Vec<String>> = BTreeMap::new();
+        let mut clean = 0;
+        for seed in 0..150 {
+            for sampling in BOTH {
+                let mut dice = Dice::new(5000 + seed);
+                let mut air = Air0::random(&mut dice);
+                let daylight = if dice.uniform() < 0.5 {
+                    Daylight::Day
+                } else {
+                    Daylight::Night
+                };
+                if daylight == Daylight::Night {
+                    air.contact_k = dice.between(-5.0, -0.5);
+                }
+                if dice.uniform() < 0.4 {
+                    let base = dice.between(air.mixed_m + 600.0, 6000.0);
+                    air.cloud = Some((base, base + dice.between(200.0, 2000.0)));
+                }
+                let ascent = air.ascent().noisy(&mut dice, 0.12, 0.015);
+                let scene = Scene::new(ascent.sampled(sampling), daylight);
+                clean += 1;
+                for rule in RULES {
+                    if let Some(finding) = scene.check(*rule).first() {
+                        let told = format!("{seed} {sampling:?} {daylight:?}: {}", finding.summary);
+                        false_alarms.entry(rule.id()).or_default().push(told);
+                    }
+                }
+            }
+        }
+        for (rule, told) in &false_alarms {
+            assert!(
+                told.len() * 100 <= 2 * clean,
+                "{rule}: {} of {clean}\n{}",
+                told.len(),
+                told.join("\n")
+            );
+        }
+    }
+
+    fn rubbish() -> impl proptest::strategy::Strategy<Value = f64> {
+        use proptest::prelude::*;
+        prop_oneof![
+            Just(f64::NAN),
+            Just(f64::INFINITY),
+            Just(-1.0),
+            Just(0.0),
+            100.0..350.0f64,
+            -1e6..1e6f64,
+        ]
+    }
+
+    proptest::proptest! {
+        #![proptest_config(proptest::prelude::ProptestConfig::with_cases(300))]
+
+        /// Whatever a reader lets through: no panic, unique keys, no number in the evidence that isn't one.
+        #[test]
+        fn rubbish_never_panics(
+            levels in proptest::collection::vec(
+                (500.0..105_000.0f64, 180.0..320.0f64, proptest::option::of(rubbish()), 150.0..320.0f64, 0usize..40),
+                0..60,
+            ),
+            sorted: bool,
+            day in 0usize..3,
+        ) {
+            use crate::synthetic::Scene;
+            use dewbound_sounding::{Level, LevelKind, Wind};
+            let mut levels: Vec<Level> = levels
+                .into_iter()
+                .map(|(p, t, odd, td, pick)| Level {
+                    pressure: if pick == 1 { odd } else { Some(p.round()) },
+                    temperature: if pick == 2 { odd } else { Some(t) },
+                    dewpoint: if pick == 3 { odd } else { Some(td.min(t)) },
+                    height: if pick == 4 { odd } else { None },
+                    relative_humidity: if pick == 5 { odd } else { None },
+                    elapsed: if pick == 6 { odd } else { None },
+                    wind: if pick == 7 { odd.map(|speed| Wind { direction: speed, speed }) } else { None },
+                    kind: if pick == 8 { LevelKind::Surface } else { LevelKind::Other },
+                    ..Level::default()
+                })
+                .collect();
+            if sorted {
+                levels.sort_by(|a, b| b.pressure.unwrap_or(0.0).total_cmp(&a.pressure.unwrap_or(0.0)));
+            }
+            let daylight = [Daylight::Day, Daylight::Night, Daylight::Unknown][day];
+            let scene = Scene::new(Sounding { levels, ..Sounding::default() }, daylight);
+            let found = scene.findings();
+            let keys: std::collections::BTreeSet<_> = found.iter().map(Finding::key).collect();
+            proptest::prop_assert_eq!(keys.len(), found.len());
+            for finding in &found {
+                for evidence in &finding.evidence {
+                    proptest::prop_assert!(evidence.value.is_finite(), "{} {}", finding.key(), evidence.key);
+                }
+                let ids: std::collections::BTreeSet<_> = finding.repairs.iter().map(|repair| repair.id).collect();
+                proptest::prop_assert_eq!(ids.len(), finding.repairs.len());
+            }
+            let none = dewbound_sounding::Amendments::default();
+            let priced = crate::price(&found, &scene.profile, &none, daylight, &scene.numbers);
+            proptest::prop_assert_eq!(crate::rank(&priced, false).len(), found.len());
+        }
+    }
+
+    #[test]
+    fn a_failing_thermometer_is_a_handful_of_findings() {
+        use crate::synthetic::{Air0, Dice, Scene};
+        let mut ascent = Air0::default().ascent().noisy(&mut Dice::new(4), 0.1, 0.02);
+        for i in 600..2600 {
+            ascent.t[i] += 6.0 * (i as f64 / 9.0).sin();
+        }
+        let found = Scene::day(ascent.fine()).findings();
+        assert!(
+            (1..=6).contains(&found.len()),
+            "{}: {:?}",
+            found.len(),
+            found.iter().map(Finding::key).collect::<Vec<_>>()
+        );
     }
 }

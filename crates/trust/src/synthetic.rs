@@ -5,7 +5,7 @@
 use crate::{Context, Finding, Rule, Thresholds};
 use dewbound_sounding::thermo::{
     Air, EPSILON, GAS_CONSTANT_DRY, GRAVITY, KAPPA, Pressure, REFERENCE_PRESSURE, Temperature,
-    dewpoint_from_mixing_ratio, dewpoint_from_relative_humidity, saturation_mixing_ratio, saturation_vapour_pressure,
+    dewpoint_from_relative_humidity, saturation_mixing_ratio, saturation_vapour_pressure,
 };
 use dewbound_sounding::{
     Daylight, HumidityReported, Level, LevelKind, Numbers, Profile, Sampling, Sounding,
@@ -27,7 +27,10 @@ impl Dice {
     }
 
     pub fn uniform(&mut self) -> f64 {
-        self.0 = self.0.wrapping_mul(6_364_136_223_846_793_005).wrapping_add(1_442_695_040_888_963_407);
+        self.0 = self
+            .0
+            .wrapping_mul(6_364_136_223_846_793_005)
+            .wrapping_add(1_442_695_040_888_963_407);
         (self.0 >> 11) as f64 / (1u64 << 53) as f64
     }
 
@@ -93,11 +96,17 @@ impl Default for Air0 {
 impl Air0 {
     /// A varied one.
     pub fn random(dice: &mut Dice) -> Self {
+        let surface_hpa = dice.between(880.0, 1015.0);
+        let theta = dice.between(292.0, 312.0);
+        let mixed_m = dice.between(700.0, 2000.0);
+        // No cloud in the mixed layer: there theta would not be constant.
+        let p = 100.0 * surface_hpa * (-mixed_m / 8300.0).exp();
+        let most = 0.85 * saturated(p, theta * (p / REFERENCE_PRESSURE).powf(KAPPA));
         Self {
-            surface_hpa: dice.between(880.0, 1015.0),
-            theta: dice.between(292.0, 312.0),
-            w: dice.between(0.004, 0.008),
-            mixed_m: dice.between(500.0, 2500.0),
+            surface_hpa,
+            theta,
+            w: dice.between(0.004, 0.014).min(most),
+            mixed_m,
             contact_k: dice.between(0.0, 3.0),
             inversion_k: dice.between(1.5, 6.0),
             inversion_m: dice.between(60.0, 300.0),
@@ -127,7 +136,8 @@ impl Air0 {
             } else if above <= self.inversion_m {
                 t_top_of_mixed + self.inversion_k * above / self.inversion_m
             } else {
-                let free = t_top_of_mixed + self.inversion_k - self.lapse * (above - self.inversion_m);
+                let free =
+                    t_top_of_mixed + self.inversion_k - self.lapse * (above - self.inversion_m);
                 // The tropopause and an isothermal stratosphere.
                 free.max(213.0)
             };
@@ -177,7 +187,9 @@ impl Ascent {
     }
 
     pub fn at_height(&self, z: f64) -> usize {
-        self.z.partition_point(|&other| other < z).min(self.z.len() - 1)
+        self.z
+            .partition_point(|&other| other < z)
+            .min(self.z.len() - 1)
     }
 
     pub fn end_at(&mut self, z: f64) {
@@ -209,7 +221,8 @@ impl Ascent {
         for i in start..self.z.len() {
             let since = (i - start) as f64;
             let e = self.rh[i] * saturation_vapour_pressure(Temperature::from_k(self.t[i])).pa();
-            let dewpoint = dewpoint_from_relative_humidity(Temperature::from_k(self.t[i]), self.rh[i]);
+            let dewpoint =
+                dewpoint_from_relative_humidity(Temperature::from_k(self.t[i]), self.rh[i]);
             let wet_bulb = Air {
                 pressure: Pressure::from_pa(self.p[i]),
                 temperature: Temperature::from_k(self.t[i]),
@@ -217,10 +230,15 @@ impl Ascent {
             }
             .wet_bulb()
             .k();
-            let (target, tau) = if since < seconds { (wet_bulb - self.t[i], tau) } else { (0.0, 4.0) };
+            let (target, tau) = if since < seconds {
+                (wet_bulb - self.t[i], tau)
+            } else {
+                (0.0, 4.0)
+            };
             off += (target - off) * (1.0 - (-1.0 / tau).exp());
             self.t[i] += off;
-            self.rh[i] = (e / saturation_vapour_pressure(Temperature::from_k(self.t[i])).pa()).min(1.0);
+            self.rh[i] =
+                (e / saturation_vapour_pressure(Temperature::from_k(self.t[i])).pa()).min(1.0);
             if since > seconds + 60.0 {
                 break;
             }
@@ -231,10 +249,13 @@ impl Ascent {
     /// A thermometer too cold by `bias` from `from` on, coming on over `over` m, for `depth` m.
     pub fn cold(mut self, from: f64, over: f64, depth: f64, bias: f64) -> Self {
         for i in 0..self.z.len() {
-            let on = ((self.z[i] - from) / over).min((from + depth - self.z[i]) / over).clamp(0.0, 1.0);
+            let on = ((self.z[i] - from) / over)
+                .min((from + depth - self.z[i]) / over)
+                .clamp(0.0, 1.0);
             let e = self.rh[i] * saturation_vapour_pressure(Temperature::from_k(self.t[i])).pa();
             self.t[i] -= on * bias;
-            self.rh[i] = (e / saturation_vapour_pressure(Temperature::from_k(self.t[i])).pa()).min(1.0);
+            self.rh[i] =
+                (e / saturation_vapour_pressure(Temperature::from_k(self.t[i])).pa()).min(1.0);
         }
         self
     }
@@ -245,7 +266,11 @@ impl Ascent {
             height: Some(self.z[i] + 150.0),
             temperature: Some(self.t[i]),
             elapsed: Some(self.z[i] / RATE),
-            kind: if i == 0 { LevelKind::Surface } else { LevelKind::Other },
+            kind: if i == 0 {
+                LevelKind::Surface
+            } else {
+                LevelKind::Other
+            },
             ..Level::default()
         }
     }
@@ -277,9 +302,16 @@ impl Ascent {
     /// within 15 % of straight lines in ln p (FM 35 practice, from memory); whole hPa, temperature to 0.2 K, dew-point depression to 0.1 K up to 5 K
     /// and to 1 K beyond.
     pub fn coded(&self) -> Sounding {
+        self.coded_within(1.0)
+    }
+
+    /// The same with significant levels chosen so that temperature is within `tolerance`, K.
+    pub fn coded_within(&self, tolerance: f64) -> Sounding {
         let last = self.z.len() - 1;
         let mut chosen = std::collections::BTreeSet::from([0, last]);
-        for hpa in [1000.0, 925.0, 850.0, 700.0, 500.0, 400.0, 300.0, 250.0, 200.0, 150.0, 100.0] {
+        for hpa in [
+            1000.0, 925.0, 850.0, 700.0, 500.0, 400.0, 300.0, 250.0, 200.0, 150.0, 100.0,
+        ] {
             let i = self.p.partition_point(|&p| p > 100.0 * hpa);
             if i > 0 && i < last {
                 chosen.insert(i);
@@ -294,7 +326,7 @@ impl Ascent {
                     let share = (self.p[i] / self.p[a]).ln() / (self.p[b] / self.p[a]).ln();
                     (column[i] - column[a] - share * (column[b] - column[a])).abs()
                 };
-                let size = |i: usize| line(&self.t, i).max(line(&self.rh, i) / 0.15);
+                let size = |i: usize| (line(&self.t, i) / tolerance).max(line(&self.rh, i) / 0.15);
                 let worst = (a + 1..b).max_by(|&i, &j| size(i).total_cmp(&size(j)));
                 if let Some(i) = worst.filter(|&i| size(i) > 1.0) {
                     added |= chosen.insert(i);
@@ -311,9 +343,14 @@ impl Ascent {
                 continue;
             }
             let t = (self.t[i] * 5.0).round() / 5.0;
-            let td = dewpoint_from_relative_humidity(Temperature::from_k(self.t[i]), self.rh[i]).k();
+            let td =
+                dewpoint_from_relative_humidity(Temperature::from_k(self.t[i]), self.rh[i]).k();
             let depression = (self.t[i] - td).max(0.0);
-            let depression = if depression <= 5.0 { (depression * 10.0).round() / 10.0 } else { depression.round() };
+            let depression = if depression <= 5.0 {
+                (depression * 10.0).round() / 10.0
+            } else {
+                depression.round()
+            };
             levels.push(Level {
                 pressure: Some(p),
                 temperature: Some(t),
@@ -399,7 +436,11 @@ pub fn levels(rows: &[(f64, f64, f64)]) -> Sounding {
             temperature: Some(Temperature::from_c(t).k()),
             dewpoint: Some(Temperature::from_c(td).k()),
             height: (i == 0).then_some(200.0),
-            kind: if i == 0 { LevelKind::Surface } else { LevelKind::Other },
+            kind: if i == 0 {
+                LevelKind::Surface
+            } else {
+                LevelKind::Other
+            },
             line: Some(i + 1),
             ..Level::default()
         })
@@ -409,11 +450,6 @@ pub fn levels(rows: &[(f64, f64, f64)]) -> Sounding {
         temperature_step: 0.2,
         ..Sounding::default()
     }
-}
-
-/// Temperature of air at saturation: what a test needs to place clouds.
-pub fn dewpoint_c(hpa: f64, w: f64) -> f64 {
-    dewpoint_from_mixing_ratio(Pressure::from_hpa(hpa), w).c()
 }
 
 /// Saturation mixing ratio, kg/kg.

@@ -42,6 +42,7 @@ pub(crate) fn sounding(
     }
     let launch = course::count_from_launch(&mut rows, comments.launch, comments.date, &mut notes);
     let course = course::keep_one_course(&mut rows, comments.dropsonde, &mut notes);
+    drop_empty(&mut rows, &mut tally);
     if rows.is_empty() {
         notes.extend(tally.notes());
         notes.push(Note {
@@ -70,6 +71,7 @@ pub(crate) fn sounding(
         level.kind = LevelKind::Surface;
     }
     notes.extend(tally.notes());
+    notes.sort_by_key(|note| note.place);
 
     Ok(Sounding {
         station,
@@ -89,6 +91,21 @@ pub(crate) fn sounding(
         demo: comments.demo,
         ..Sounding::default()
     })
+}
+
+fn drop_empty(rows: &mut Vec<Row>, tally: &mut Tally) {
+    rows.retain(|row| {
+        if row.is_empty() {
+            tally.add(
+                "empty",
+                0,
+                row.line,
+                || "the row holds no measurement and is no level".into(),
+                "",
+            );
+        }
+        !row.is_empty()
+    });
 }
 
 fn lacks_half_the_wind(header: &TableHeader) -> bool {

@@ -9,7 +9,7 @@
 //! # nominal: 2031-05-17T18:00Z     the hour it is filed under
 //! # position: 47.5, 8.25, 430      latitude, longitude, elevation in metres
 //! # heights: above ground          when height_m is not above sea level
-//! # demo: true                     invented data
+//! # demo: true                     invented data; a line that begins with INVENTED DATA says the same
 //! ```
 //!
 //! Other habits met in the wild are understood too: `site: NAME, COUNTRY / 01234`, `site: CODE;Name`,
@@ -74,6 +74,10 @@ impl Comments {
         }
         let lower = text.to_lowercase();
         self.dropsonde |= lower.contains("dropsonde");
+        if lower.starts_with("invented data") {
+            self.demo = true;
+            return;
+        }
         let pairs = pairs(text);
         if !pairs.is_empty() {
             for (key, value) in pairs {
@@ -94,8 +98,8 @@ impl Comments {
         });
     }
 
-    fn entry(&mut self, line: usize, key: &str, value: &str) {
-        let (key, value) = (plain_name(key), value.trim());
+    fn entry(&mut self, line: usize, written: &str, value: &str) {
+        let (key, value) = (plain_name(written), value.trim());
         if value.is_empty() {
             return;
         }
@@ -144,7 +148,7 @@ impl Comments {
                 _ => false,
             },
             _ => {
-                self.unused.push(shortened(&key));
+                self.unused.push(shortened(written.trim()));
                 return;
             }
         };
@@ -386,6 +390,7 @@ mod tests {
         assert_eq!(comments.launch, "2031-05-17T17:31:05Z".parse().ok());
         assert_eq!(comments.nominal, "2031-05-17T18:00:00Z".parse().ok());
         assert!(comments.demo && comments.heights_above_ground);
+        assert!(read("# INVENTED DATA: no such place").demo);
         assert!(comments.notes.is_empty() && comments.unused.is_empty());
     }
 

@@ -30,8 +30,8 @@ impl Row {
         }
     }
 
-    /// Whether anything was measured here: time and place alone are not.
-    fn is_empty(&self) -> bool {
+    /// Whether nothing was measured here: time and place alone make no level.
+    pub fn is_empty(&self) -> bool {
         use Quantity::*;
         [
             Pressure,
@@ -160,16 +160,6 @@ fn read_line(
             row.set(quantity, None);
         }
     }
-    if row.is_empty() {
-        tally.add(
-            "empty",
-            0,
-            line,
-            || "the row holds no measurement and is no level".into(),
-            "",
-        );
-        return None;
-    }
     Some(row)
 }
 
@@ -248,8 +238,9 @@ mod tests {
             false,
         );
         let lines: Vec<_> = rows.iter().map(|row| row.line).collect();
-        assert_eq!(lines, [1, 3]);
-        assert_eq!(notes.len(), 3, "{notes:?}");
+        assert_eq!(lines, [1, 3, 4]);
+        assert_eq!(notes.len(), 2, "{notes:?}");
+        assert!(rows[2].is_empty());
     }
 
     #[test]

@@ -1,7 +1,7 @@
 //! Levels out of order, twice over, or with heights that run backwards.
 
 use super::repair;
-use crate::words::number;
+use crate::words::{layer, number};
 use crate::{Evidence, Finding, Grade, Repair, Rule, View};
 use dewbound_sounding::thermo::Pressure;
 use dewbound_sounding::{Amendment, Level, LevelKind, Sampling};
@@ -87,12 +87,22 @@ impl LevelOrder {
 
     fn reversal(&self, view: &View) -> Option<Finding> {
         let reversals = reversals(view);
-        let worst = reversals.iter().max_by(|a, b| (a.to - a.from).total_cmp(&(b.to - b.from)))?;
+        let worst = reversals
+            .iter()
+            .max_by(|a, b| (a.to - a.from).total_cmp(&(b.to - b.from)))?;
         let rise = (worst.to - worst.from) / 100.0;
-        let lowest = reversals.iter().map(|r| r.to).fold(f64::NEG_INFINITY, f64::max);
-        let highest = reversals.iter().map(|r| r.from).fold(f64::INFINITY, f64::min);
+        let lowest = reversals
+            .iter()
+            .map(|r| r.to)
+            .fold(f64::NEG_INFINITY, f64::max);
+        let highest = reversals
+            .iter()
+            .map(|r| r.from)
+            .fold(f64::INFINITY, f64::min);
         let (bottom, top) = (Pressure::from_pa(lowest), Pressure::from_pa(highest));
-        let line = worst.line.map_or_else(String::new, |line| format!(" (line {line})"));
+        let line = worst
+            .line
+            .map_or_else(String::new, |line| format!(" (line {line})"));
         let times = match reversals.len() {
             1 => "once".to_owned(),
             n => format!("{n} times"),
@@ -134,8 +144,13 @@ impl LevelOrder {
         let pa = |level: &Level| level.pressure.unwrap_or(f64::NAN);
         by_pressure.sort_by(|a, b| pa(b).total_cmp(&pa(a)));
         let spread = |levels: &[&Level], field: fn(&Level) -> Option<f64>| {
-            let values = levels.iter().filter_map(|level| field(level)).filter(|v| v.is_finite());
-            let (low, high) = values.fold((f64::INFINITY, f64::NEG_INFINITY), |(low, high), v| (low.min(v), high.max(v)));
+            let values = levels
+                .iter()
+                .filter_map(|level| field(level))
+                .filter(|v| v.is_finite());
+            let (low, high) = values.fold((f64::INFINITY, f64::NEG_INFINITY), |(low, high), v| {
+                (low.min(v), high.max(v))
+            });
             (high - low).max(0.0)
         };
         by_pressure
@@ -151,9 +166,20 @@ impl LevelOrder {
             .collect()
     }
 
-    fn conflict(&self, view: &View, p: f64, levels: &[&Level], temperature: f64, dewpoint: f64) -> Finding {
+    fn conflict(
+        &self,
+        view: &View,
+        p: f64,
+        levels: &[&Level],
+        temperature: f64,
+        dewpoint: f64,
+    ) -> Finding {
         let pressure = Pressure::from_pa(p);
-        let lines: Vec<String> = levels.iter().filter_map(|level| level.line).map(|line| line.to_string()).collect();
+        let lines: Vec<String> = levels
+            .iter()
+            .filter_map(|level| level.line)
+            .map(|line| line.to_string())
+            .collect();
         let lines = if lines.is_empty() {
             String::new()
         } else {
@@ -196,38 +222,63 @@ impl LevelOrder {
         let profile = view.context.profile;
         let limit = view.threshold("level-order.height_m");
         let from = profile.surface.unwrap_or(0);
-        let mut highest: Option<(f64, f64)> = None;
-        let mut falls: Vec<(f64, f64, f64)> = Vec::new();
-        for (&p, &height) in profile.pressure.iter().zip(&profile.height).skip(from) {
+        let mut highest: Option<(f64, usize)> = None;
+        // Row of the level above which height falls, row of the lower one, by how much.
+        let mut falls: Vec<(usize, usize, f64)> = Vec::new();
+        for (row, &height) in profile.height.iter().enumerate().skip(from) {
             let Some(z) = height else { continue };
             match highest {
-                Some((below, p_below)) if below - z > limit => falls.push((p_below, p, below - z)),
+                Some((below, row_below)) if below - z > limit => {
+                    falls.push((row_below, row, below - z))
+                }
                 Some((below, _)) if below >= z => {}
-                _ => highest = Some((z, p)),
+                _ => highest = Some((z, row)),
             }
         }
-        let &(bottom, _, _) = falls.first()?;
-        let &(_, top, _) = falls.last()?;
+        let &(first, _, _) = falls.first()?;
+        let &(_, last, _) = falls.last()?;
         let worst = falls.iter().map(|fall| fall.2).fold(0.0, f64::max);
+        let pressure = |row: usize| profile.pressure.get(row).copied();
+        let (bottom, top) = (pressure(first)?, pressure(last)?);
+        // Which of them is wrong can't be told from heights alone: the levels with them all out of the way.
+        let believed = first
+            .checked_sub(1)
+            .filter(|&row| row >= from)
+            .and_then(pressure);
+        let repairs = match (believed, pressure(last + 1)) {
+            (Some(below), Some(above)) => vec![Repair {
+                id: "drop-levels",
+                what: format!(
+                    "Drop the levels between {} and {}",
+                    repair::at(below),
+                    repair::at(above)
+                ),
+                amendments: vec![Amendment::DropLevels {
+                    bottom_pa: below,
+                    top_pa: above,
+                }],
+            }],
+            _ => Vec::new(),
+        };
         let (bottom_p, top_p) = (Pressure::from_pa(bottom), Pressure::from_pa(top));
         Some(Finding {
             heights: view.heights(bottom_p, top_p),
             summary: format!(
-                "Height falls by up to {} m while pressure falls, between {} and {}.",
+                "Height falls by up to {} m while pressure falls, {}.",
                 number(worst, 0),
-                repair::at(bottom),
-                repair::at(top)
+                layer(bottom_p, top_p)
             ),
             evidence: vec![
                 Evidence::new("height_fall_m", "height falls by up to", worst, "m", 0),
                 Evidence::new("levels", "levels lower than one beneath them", falls.len() as f64, "", 0),
             ],
-            guilty: "A height or a pressure was miscoded. Temperatures and humidity, and so CAPE, don't depend on the \
-                     heights, but they do on the pressures."
+            guilty: "A height or a pressure was miscoded. A wrong height alone doesn't touch temperature, humidity or CAPE; a \
+                     wrong pressure puts them at the wrong place."
                 .into(),
             innocent: "A single height was miscoded and everything else stands, or the height and pressure sensors \
                        disagree by more than usual."
                 .into(),
+            repairs,
             ..self.blank(Grade::Erroneous, bottom, top)
         })
     }
@@ -237,13 +288,23 @@ impl LevelOrder {
 fn reversals(view: &View) -> Vec<Reversal> {
     let sounding = view.context.sounding;
     let fine = view.context.profile.sampling == Sampling::Fine;
-    let with_pressure = || {
-        sounding
-            .levels
-            .iter()
-            .filter_map(|level| Some((level, level.pressure.filter(|p| p.is_finite() && *p > 0.0)?)))
+    // Fine data also hold the wait before launch and the way down after the burst, which the profile leaves out.
+    let flight = if fine {
+        flight(view)
+    } else {
+        0..sounding.levels.len()
     };
-    let surface = view.context.profile.surface_pressure().map_or(f64::INFINITY, Pressure::pa);
+    let with_pressure = || {
+        let levels = sounding.levels.get(flight.clone()).unwrap_or_default();
+        levels.iter().filter_map(|level| {
+            Some((level, level.pressure.filter(|p| p.is_finite() && *p > 0.0)?))
+        })
+    };
+    let surface = view
+        .context
+        .profile
+        .surface_pressure()
+        .map_or(f64::INFINITY, Pressure::pa);
     let waiting = surface - 100.0 * view.threshold("level-order.prelaunch_hpa");
     // One level in a group of coded levels may be rounded to its neighbour's pressure, not beyond it.
     let tolerance = if fine {
@@ -251,7 +312,11 @@ fn reversals(view: &View) -> Vec<Reversal> {
     } else {
         0.0
     };
-    let groups: &[Option<u8>] = if fine { &[None] } else { &[Some(1), Some(2), Some(3), Some(4)] };
+    let groups: &[Option<u8>] = if fine {
+        &[None]
+    } else {
+        &[Some(1), Some(2), Some(3), Some(4)]
+    };
     let mut reversals = Vec::new();
     for &group in groups {
         let mut sequence: Vec<(f64, Option<usize>)> = with_pressure()
@@ -266,9 +331,24 @@ fn reversals(view: &View) -> Vec<Reversal> {
     reversals
 }
 
+/// The received levels from the surface of the profile to its top, in whichever order they came.
+fn flight(view: &View) -> std::ops::Range<usize> {
+    let profile = view.context.profile;
+    let received = |row: usize| profile.received.get(row).copied().flatten();
+    let surface = received(profile.surface.unwrap_or(0));
+    let top = (0..profile.len()).rev().find_map(received);
+    match (surface, top) {
+        (Some(surface), Some(top)) => surface.min(top)..surface.max(top) + 1,
+        _ => 0..view.context.sounding.levels.len(),
+    }
+}
+
 /// Most steps go up in pressure: a sonde dropped from an aircraft.
 fn falling_sonde(sequence: &[(f64, Option<usize>)]) -> bool {
-    let up = sequence.windows(2).filter(|pair| pair[1].0 > pair[0].0).count();
+    let up = sequence
+        .windows(2)
+        .filter(|pair| pair[1].0 > pair[0].0)
+        .count();
     sequence.len() > 2 && 2 * up > sequence.len()
 }
 
@@ -302,13 +382,21 @@ mod tests {
 
     #[test]
     fn clean_ascents_are_silent_and_so_are_the_parts_of_a_message() {
-        for sounding in [Air0::default().ascent().fine(), Air0::default().ascent().coded()] {
+        for sounding in [
+            Air0::default().ascent().fine(),
+            Air0::default().ascent().coded(),
+        ] {
             assert!(Scene::day(sounding).check(&LevelOrder).is_empty());
         }
         // Standard levels first, significant ones after: each list falls.
         let mut sounding = levels(&[
-            (1000.0, 25.0, 15.0), (850.0, 14.0, 5.0), (700.0, 5.0, -8.0), (500.0, -12.0, -30.0),
-            (1000.0, 25.0, 15.0), (920.0, 19.0, 12.0), (610.0, -2.0, -20.0),
+            (1000.0, 25.0, 15.0),
+            (850.0, 14.0, 5.0),
+            (700.0, 5.0, -8.0),
+            (500.0, -12.0, -30.0),
+            (1000.0, 25.0, 15.0),
+            (920.0, 19.0, 12.0),
+            (610.0, -2.0, -20.0),
         ]);
         for (i, level) in sounding.levels.iter_mut().enumerate() {
             level.kind = match i {
@@ -322,18 +410,39 @@ mod tests {
 
     #[test]
     fn a_shuffled_level_is_found() {
-        let rows = [(1000.0, 25.0, 15.0), (700.0, 5.0, -8.0), (850.0, 14.0, 5.0), (500.0, -12.0, -30.0)];
+        let rows = [
+            (1000.0, 25.0, 15.0),
+            (700.0, 5.0, -8.0),
+            (850.0, 14.0, 5.0),
+            (500.0, -12.0, -30.0),
+        ];
         let found = Scene::day(levels(&rows)).check(&LevelOrder);
         assert_eq!(found.len(), 1, "{found:#?}");
-        assert!(found[0].summary.contains("once, by up to 150.0 hPa at 700 hPa (line 3)"), "{}", found[0].summary);
+        assert!(
+            found[0]
+                .summary
+                .contains("once, by up to 150.0 hPa at 700 hPa (line 3)"),
+            "{}",
+            found[0].summary
+        );
     }
 
     #[test]
     fn one_pressure_with_two_values_is_found() {
-        let rows = [(1000.0, 25.0, 15.0), (850.0, 14.0, 5.0), (850.0, 11.0, 5.0), (500.0, -12.0, -30.0)];
+        let rows = [
+            (1000.0, 25.0, 15.0),
+            (850.0, 14.0, 5.0),
+            (850.0, 11.0, 5.0),
+            (500.0, -12.0, -30.0),
+        ];
         let found = Scene::day(levels(&rows)).check(&LevelOrder);
         assert_eq!(found.len(), 1, "{found:#?}");
-        assert_eq!(found[0].evidence("temperature_spread_k").map(|k| (k * 10.0).round()), Some(30.0));
+        assert_eq!(
+            found[0]
+                .evidence("temperature_spread_k")
+                .map(|k| (k * 10.0).round()),
+            Some(30.0)
+        );
         let mut alike = rows;
         alike[2] = (850.0, 14.2, 5.0);
         assert!(Scene::day(levels(&alike)).check(&LevelOrder).is_empty());
@@ -361,6 +470,13 @@ mod tests {
             ascent.p[n + k] = p[n - k];
         }
         let found = Scene::day(ascent.fine()).check(&LevelOrder);
-        assert_eq!(found.iter().filter(|finding| finding.summary.contains("Pressure rises")).count(), 1, "{found:#?}");
+        assert_eq!(
+            found
+                .iter()
+                .filter(|finding| finding.summary.contains("Pressure rises"))
+                .count(),
+            1,
+            "{found:#?}"
+        );
     }
 }

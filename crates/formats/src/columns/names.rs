@@ -28,6 +28,11 @@ impl Quantity {
     pub const fn index(self) -> usize {
         self as usize
     }
+
+    /// A bit of its own.
+    pub const fn bit(self) -> u16 {
+        1 << self as u16
+    }
 }
 
 /// A unit: how to bring it to SI, and what is plausible in it.

@@ -143,12 +143,12 @@ mod tests {
         assert_eq!(Delimiter(b';').fields("1,5;2"), ["1,5", "2"]);
     }
 
-    /// Against the `csv` crate, on every line of up to seven signs out of those that matter.
+    /// Against the `csv` crate, on every line of up to five signs out of those that matter.
     #[test]
     fn splits_as_a_general_reader_does() {
         const SIGNS: [&str; 4] = ["a", ",", "\"", " "];
         let mut compared = 0;
-        for length in 1..=7 {
+        for length in 1..=5 {
             for number in 0..SIGNS.len().pow(length) {
                 let line: String = (0..length)
                     .map(|place| SIGNS[number / SIGNS.len().pow(place) % SIGNS.len()])
@@ -164,7 +164,7 @@ mod tests {
         }
         assert_eq!(
             compared,
-            (1..=7).map(|length| 4_usize.pow(length)).sum::<usize>()
+            (1..=5).map(|length| 4_usize.pow(length)).sum::<usize>()
         );
     }
 

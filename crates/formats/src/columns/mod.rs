@@ -8,7 +8,7 @@ mod build;
 mod comments;
 mod course;
 mod header;
-mod names;
+pub(crate) mod names;
 mod rows;
 mod units;
 

@@ -8,10 +8,10 @@ use dewbound_formats::{ReadOptions, temp};
 use dewbound_sounding::{
     Completeness, HumidityReported,
     LevelKind::{self, *},
-    Place, Position, Sounding,
+    Place, Position,
 };
 use jiff::civil::date;
-use temp_common::{ALM, Hand, VALE, compare, hand, only, read, said};
+use temp_common::{ALM, Hand, VALE, bare, compare, hand, only, read, said};
 
 const NO: f64 = f64::NAN;
 const KNOT: f64 = 1852.0 / 3600.0;
@@ -216,14 +216,6 @@ fn several_stations_in_one_file() {
     }
 }
 
-fn without_lines(sounding: &Sounding) -> Vec<dewbound_sounding::Level> {
-    let mut levels = sounding.levels.clone();
-    for level in &mut levels {
-        level.line = None;
-    }
-    levels
-}
-
 #[test]
 fn line_ends_and_control_characters_change_nothing() {
     let plain = only(VALE);
@@ -250,13 +242,13 @@ fn line_ends_and_control_characters_change_nothing() {
         let loaded = read("20310630.txt", &text);
         assert!(loaded.notes.is_empty(), "{:?}", loaded.notes);
         let found = &loaded.soundings[0];
-        assert_eq!(without_lines(found), without_lines(&plain));
+        assert_eq!(bare(&found.levels), bare(&plain.levels));
         assert_eq!(found.source.parts, plain.source.parts);
     }
 }
 
-/// The digest is SHA-256 of the groups joined by single blanks. Expected value from coreutils:
-/// `printf 'TTAA 06121 00451 99812 15464 09004' | sha256sum`.
+/// The digest is SHA-256 of the groups as one line, joined by single blanks. Expected value from coreutils:
+/// `echo 'TTAA 06121 00451 99812 15464 09004' | sha256sum`.
 #[test]
 fn digest_of_a_part() {
     let sounding = only("TTAA 06121 00451\r\n99812 15464\r\n  09004 =");
@@ -264,7 +256,7 @@ fn digest_of_a_part() {
     let hex: String = digest.iter().map(|byte| format!("{byte:02x}")).collect();
     assert_eq!(
         hex,
-        "3e269d779bf28d3a63e0ce28a69b4c1e895b2bb5a87799cf08149f4d2960ac2c"
+        "7a87ef528bad27c466598ce6007520eea9a59e86165066a1ed73d7a021957970"
     );
 }
 
@@ -318,7 +310,7 @@ fn an_ascent_that_ended_early_is_closed() {
 fn drops_and_their_remarks() {
     let text = "\
 XXAA 57187 99123 70456 04125 99011 27018 09025 00097 26417 09025
-92774 21611 10035 85504 17218 10530 70148 09066 88999 77999
+92774 21611 10035 85504 17218 10530 70148 09456 88999 77999
 31313 09608 81744
 61616 ABC12 0102A NOBODY OB 07
 62626 MBL WND 09530 AEV 20801 TTXX 31313 99012 REL 1230N04560W 174400=
@@ -340,7 +332,7 @@ XXBB 57188 99123 70456 04125 00011 27018 11987 25615 22795 14056
         row(Standard, [925.0, 774.0, 21.6, 20.5, 100.0, 35.0]),
         row(Standard, [850.0, 1504.0, 17.2, 15.4, 105.0, 30.0]),
         // 7 in the date group: winds up to 700 hPa, so this one is missing.
-        row(Standard, [700.0, 3148.0, 9.0, -7.0, NO, NO]),
+        row(Standard, [700.0, 3148.0, 9.4, 3.4, NO, NO]),
         row(Surface, [1011.0, NO, 27.0, 25.2, NO, NO]),
         row(SignificantThermal, [987.0, NO, 25.6, 24.1, NO, NO]),
         row(SignificantThermal, [795.0, NO, 14.0, 8.0, NO, NO]),
@@ -412,7 +404,7 @@ fn faults_cost_their_own_value_only() {
     let check = |from: &str, to: &str, says: &[&str]| {
         assert_eq!(VALE.matches(from).count(), 1, "{from}");
         let sounding = only(&VALE.replace(from, to));
-        let (before, after) = (without_lines(&plain), without_lines(&sounding));
+        let (before, after) = (bare(&plain.levels), bare(&sounding.levels));
         let kept = before.iter().filter(|level| after.contains(level)).count();
         assert!(
             before.len() - kept <= 1,
@@ -463,7 +455,7 @@ fn faults_cost_their_own_value_only() {
     check(
         "26636",
         "2663x",
-        &["group 2663x not understood as wind; the maximum wind left without wind"],
+        &["group 2663x not understood as wind; the maximum wind (77188) left without wind"],
     );
     // Lost groups.
     check(" 25555", "", &["the 500 hPa level left without wind"]);
@@ -476,7 +468,7 @@ fn faults_cost_their_own_value_only() {
     check(
         " 17258",
         "",
-        &["the significant level 22902 left without temperature"],
+        &["the significant level 22902 left out: no temperature group follows it"],
     );
     check(
         " 33871",
@@ -536,7 +528,7 @@ fn parts_that_contradict_each_other() {
 fn miscounted_winds() {
     for (from, to) in [(" 24542", ""), ("24542", "24542 24542"), ("9205/ ", "")] {
         let sounding = only(&VALE.replace(from, to));
-        let (before, after) = (without_lines(&only(VALE)), without_lines(&sounding));
+        let (before, after) = (bare(&only(VALE).levels), bare(&sounding.levels));
         assert!(after.iter().all(|level| before.contains(level)), "{to}");
         assert!(said(&sounding).contains("can't be told which wind"), "{to}");
     }
@@ -545,11 +537,49 @@ fn miscounted_winds() {
     assert_eq!(pressures, [Some(40_000.0), Some(30_000.0), Some(25_000.0)]);
 }
 
+/// Winds whose section number is lost are not read as temperatures; they start anew from below.
+#[test]
+fn winds_without_their_section_number() {
+    let text = "TTDD 2312/ 00451 11842 59764 22465 561// 33201 469// 21212 11900 28526 22700 29030 33510 30015=";
+    let plain = only(text);
+    assert_eq!(plain.levels.len(), 6);
+    for broken in ["21x12 ", ""] {
+        let sounding = only(&text.replace("21212 ", broken));
+        assert_eq!(bare(&sounding.levels), bare(&plain.levels), "{broken}");
+        assert!(said(&sounding).contains("without the section number 21212"));
+    }
+}
+
+/// A ship: call sign, 35.2 S 18.4 E, m/s; and one that hides its call sign.
+#[test]
+fn ships() {
+    let text = "\
+UUAA ABCD7 06121 99352 30184 44258 99015 18240 20508 00127 17640 21010=
+UUBB ABCD7 0612/ 99352 30184 44258 00015 18240 11960 14640 22900 10456=
+UUAA SHIP 06121 99401 30184 47808 99009 12240 25012=
+";
+    let loaded = read("20310630.txt", text);
+    let names: Vec<_> = loaded
+        .soundings
+        .iter()
+        .map(|sounding| sounding.station.text.as_deref())
+        .collect();
+    assert_eq!(names, [Some("ABCD7"), Some("SHIP 40.1S 18.4E")]);
+    let expect = [
+        row(Surface, [1015.0, NO, 18.2, 14.2, 205.0, 8.0]),
+        row(Standard, [1000.0, 127.0, 17.6, 13.6, 210.0, 10.0]),
+        row(Surface, [1015.0, NO, 18.2, 14.2, NO, NO]),
+        row(SignificantThermal, [960.0, NO, 14.6, 10.6, NO, NO]),
+        row(SignificantThermal, [900.0, NO, 10.4, 4.4, NO, NO]),
+    ];
+    compare(&loaded.soundings[0].levels, &expect, 1.0);
+}
+
 /// Winds above the level the indicator names are taken, and said.
 #[test]
 fn winds_beyond_the_indicator() {
     let sounding = only(&VALE.replace("TTCC 56003", "TTCC 56005"));
-    assert_eq!(without_lines(&sounding), without_lines(&only(VALE)));
+    assert_eq!(bare(&sounding.levels), bare(&only(VALE).levels));
     assert!(said(&sounding).contains("a wind is given at the 30 hPa level"));
 }
 

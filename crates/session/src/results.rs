@@ -1,6 +1,6 @@
 //! What follows from a document: computed inside one command, all of one revision.
 
-use crate::doubt::DoubtKey;
+use crate::doubt::{DoubtKey, Sampling};
 use crate::sounding::{Numbers, Profile, Working};
 use crate::thermo::{Ascent, Method, Pressure, lift};
 use crate::trust::{Cost, Priced, price, rank};
@@ -62,6 +62,8 @@ pub struct Results {
     /// Order by the costs of this revision, whatever is held.
     ranked: Vec<usize>,
     doubt_key: DoubtKey,
+    /// The doubt without the working value, which is the same for every surface dew point.
+    sampled: Arc<Doubt>,
 }
 
 /// A repair seen but not applied.
@@ -78,7 +80,13 @@ pub struct Preview {
 impl Results {
     /// Results of a document, from nothing.
     pub fn of(analysed: &Analysed, document: &Document) -> Self {
-        Self::compute(analysed, document, Revision::default(), None)
+        Self::compute(
+            analysed,
+            document,
+            Revision::default(),
+            None,
+            Sampling::Full,
+        )
     }
 
     /// Results of the document that follows; keeps of `previous` what can't have changed.
@@ -88,8 +96,9 @@ impl Results {
         revision: Revision,
         previous: &Self,
         hold_order: bool,
+        sampling: Sampling,
     ) -> Self {
-        let mut results = Self::compute(analysed, document, revision, Some(previous));
+        let mut results = Self::compute(analysed, document, revision, Some(previous), sampling);
         if hold_order && previous.order.len() == results.order.len() {
             results.order.clone_from(&previous.order);
         }
@@ -108,6 +117,7 @@ impl Results {
         document: &Document,
         revision: Revision,
         previous: Option<&Self>,
+        sampling: Sampling,
     ) -> Self {
         let started = Instant::now();
         let amendments = &document.amendments;
@@ -126,10 +136,19 @@ impl Results {
         let ranked = rank(&priced, at_least(&numbers));
         let cards = priced.iter().map(Card::of).collect();
         let doubt_key = DoubtKey::of(document);
-        let doubt = match previous {
-            Some(previous) if previous.doubt_key == doubt_key => previous.doubt.clone(),
-            _ => Arc::new(Doubt::of(analysed, document)),
+        let sampled = match previous {
+            Some(previous)
+                if previous.doubt_key == doubt_key
+                    && (sampling == Sampling::InFrame || !previous.sampled.coarse) =>
+            {
+                previous.sampled.clone()
+            }
+            _ => Arc::new(Doubt::of(analysed, document, sampling)),
         };
+        let dewpoint = working.profile.surface_air().map(|air| air.dewpoint);
+        let doubt = sampled
+            .including(dewpoint, &numbers)
+            .map_or_else(|| sampled.clone(), Arc::new);
         let which_parcel = sentence::which_parcel(&working.profile, &numbers, &doubt);
         Self {
             revision,
@@ -143,6 +162,7 @@ impl Results {
             computing: started.elapsed(),
             ranked,
             doubt_key,
+            sampled,
         }
     }
 }

@@ -154,8 +154,6 @@ impl<'a> Weighed<'a> {
     fn of(analysed: &'a Analysed, results: &Results) -> Self {
         let sounding = &analysed.sounding;
         let profile = &analysed.profile;
-        let rows = profile.environment_rows();
-        let humid = |row: &usize| matches!(profile.dewpoint.get(*row), Some(Some(_)));
         let parcel = |which| {
             let ascent = results.numbers.parcel(which)?;
             Some(ParcelOut::of(ascent, results.doubt.range(which)))
@@ -172,8 +170,8 @@ impl<'a> Weighed<'a> {
             sounding: About {
                 station: sounding.station.canonical_id(),
                 valid: sounding.times.valid().map(|time| time.to_string()),
-                levels: rows.len(),
-                humidity_missing: rows.iter().filter(|row| !humid(row)).count(),
+                levels: analysed.usable_rows().len(),
+                humidity_missing: analysed.humidity_missing(),
                 top_hpa: profile.top().map(hpa),
             },
             parcels: Parcels {
@@ -234,7 +232,10 @@ impl<'a> FindingOut<'a> {
                 .iter()
                 .map(|evidence| {
                     let decimals = i32::try_from(evidence.decimals).unwrap_or(0) + 2;
-                    (evidence.key.to_owned(), json!(Rounded(evidence.value, decimals)))
+                    (
+                        evidence.key.to_owned(),
+                        json!(Rounded(evidence.value, decimals)),
+                    )
                 })
                 .collect(),
             explains: Explains {
@@ -245,7 +246,11 @@ impl<'a> FindingOut<'a> {
                 .map(|(index, repair)| RepairOut {
                     id: repair.id,
                     what: &repair.what,
-                    cost: card.costs.get(index).and_then(Option::as_ref).map(CostOut::of),
+                    cost: card
+                        .costs
+                        .get(index)
+                        .and_then(Option::as_ref)
+                        .map(CostOut::of),
                 })
                 .collect(),
             cost: card.headline_cost().map(CostOut::of),
@@ -295,7 +300,10 @@ mod tests {
             (f64::INFINITY, 2, "null"),
             (-42.5, 2, "-42.5"),
         ] {
-            assert_eq!(serde_json::to_string(&Rounded(value, decimals)).unwrap(), expected);
+            assert_eq!(
+                serde_json::to_string(&Rounded(value, decimals)).unwrap(),
+                expected
+            );
         }
     }
 }

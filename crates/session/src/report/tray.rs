@@ -8,7 +8,11 @@ use crate::{Item, Session};
 
 /// Station, time, CAPE of the three parcels with range, findings with cost; worst first, like the tray of the desk.
 pub fn tray(session: &Session) -> String {
-    let items: Vec<&Item> = session.tray().iter().filter_map(|row| session.item(row.item)).collect();
+    let items: Vec<&Item> = session
+        .tray()
+        .iter()
+        .filter_map(|row| session.item(row.item))
+        .collect();
     if items.is_empty() {
         return "no soundings\n".to_owned();
     }
@@ -18,9 +22,11 @@ pub fn tray(session: &Session) -> String {
         row.push("findings".to_owned());
         row
     }];
-    rows.extend(items.iter().map(|item| row(item)));
+    // One line says it when all are; among real ones each invented one says it itself.
+    let all_demo = items.iter().all(|item| item.demo());
+    rows.extend(items.iter().map(|item| row(item, !all_demo)));
     let mut text = String::new();
-    if items.iter().all(|item| item.demo()) {
+    if all_demo {
         text.push_str(&format!("{INVENTED}\n"));
     }
     text.push_str(&aligned(&rows));
@@ -31,9 +37,13 @@ pub fn tray(session: &Session) -> String {
     text
 }
 
-fn row(item: &Item) -> Vec<String> {
+fn row(item: &Item, mark_demo: bool) -> Vec<String> {
     let results = item.results();
-    let mark = if item.demo() { " *" } else { "" };
+    let mark = if item.demo() && mark_demo {
+        format!(" ({INVENTED})")
+    } else {
+        String::new()
+    };
     let mut row = vec![
         format!("{}{mark}", item.sounding().station.label()),
         time(item.sounding().times.valid()),
@@ -56,7 +66,9 @@ fn row(item: &Item) -> Vec<String> {
 fn findings(item: &Item) -> String {
     let mut text = String::new();
     for &index in &item.results().order {
-        let (Some(finding), Some(card)) = (item.findings().get(index), item.results().cards.get(index)) else {
+        let (Some(finding), Some(card)) =
+            (item.findings().get(index), item.results().cards.get(index))
+        else {
             continue;
         };
         let layer = layer(finding).map_or_else(String::new, |layer| format!(", {layer}"));
@@ -65,11 +77,19 @@ fn findings(item: &Item) -> String {
         } else {
             wording::cost(card.headline_cost())
         };
-        text.push_str(&format!("  {}: {}{layer}: {cost}\n", grade(finding.grade), finding.title));
+        text.push_str(&format!(
+            "  {}: {}{layer}: {cost}\n",
+            grade(finding.grade),
+            finding.title
+        ));
     }
     if text.is_empty() {
         return text;
     }
-    let mark = if item.demo() { format!(" ({INVENTED})") } else { String::new() };
+    let mark = if item.demo() {
+        format!(" ({INVENTED})")
+    } else {
+        String::new()
+    };
     format!("\n{}{mark}\n{text}", item.sounding().station.label())
 }

@@ -21,6 +21,13 @@ impl Lines {
     }
 }
 
+/// [`Lines`] at once.
+pub(crate) fn of_lines<'a>(lines: impl IntoIterator<Item = &'a str>) -> Digest {
+    let mut all = Lines::default();
+    lines.into_iter().for_each(|line| all.add(line));
+    all.digest()
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;

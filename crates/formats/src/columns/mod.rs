@@ -77,15 +77,17 @@ pub(crate) fn complaint(file: &str, text: &str, only_meaningful: bool) -> Option
                 .iter()
                 .any(|name| name.eq_ignore_ascii_case(id))
         });
-    let what = if station_table {
-        "this is a table of stations, not a sounding; its place is the office folder, as stations.csv".into()
-    } else {
-        header.complaint()
-    };
+    if station_table {
+        return Some(ReadError::LooksLike {
+            file: file.into(),
+            what: "a table of stations, not a sounding",
+            hint: "its place is the office folder, as stations.csv",
+        });
+    }
     Some(ReadError::UnknownHeader {
         file: file.into(),
         line,
-        what,
+        what: header.complaint(),
         found: header.names,
         understood: names::understood(),
     })

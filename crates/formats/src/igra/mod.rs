@@ -174,10 +174,8 @@ impl Record<'_> {
             .iter()
             .find(|level| level.kind == LevelKind::Surface)
             .and_then(|level| level.height);
-        let mut lines = digest::Lines::default();
-        lines.add(self.header);
-        self.rows.iter().for_each(|(_, line)| lines.add(line));
-        let digest = lines.digest();
+        let lines = self.rows.iter().map(|(_, line)| *line);
+        let digest = digest::of_lines(std::iter::once(self.header).chain(lines));
         let humidity = levels.iter().any(|level| level.relative_humidity.is_some());
         let sounding = Sounding {
             station,

@@ -439,11 +439,11 @@ mod tests {
 
     #[test]
     fn coded_temperatures_step_by_a_fifth() {
-        let coded = [38, 42, 26, 14, 20, 4, -7, -43, -93, -217];
+        let coded = [36, 44, 28, 12, 22, 6, -5, -41, -95, -213];
         assert_eq!(temperature_step(&coded), 0.2);
         assert_eq!(temperature_step(&coded[1..]), 0.1, "too few to tell");
         assert_eq!(
-            temperature_step(&[37, 42, 26, 14, 20, 4, -7, -43, -93, -217]),
+            temperature_step(&[37, 44, 28, 12, 22, 6, -5, -41, -95, -213]),
             0.1
         );
     }

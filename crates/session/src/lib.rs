@@ -1,1 +1,58 @@
-//! The document, its commands, undo, results by revision; no window
+//! One desk's document: the tray of soundings, what the forecaster has changed, and every number that follows.
+//!
+//! Everything that changes goes through one door, [`Session::apply`], as a [`Command`]. Results are computed inside
+//! that call and carry the [`Revision`] they belong to, so that whatever is painted next shows one revision only.
+//! Files are read and analysed on a worker and arrive in [`Session::poll`].
+//!
+//! ```no_run
+//! use dewbound_session::{Command, Config, Session, SurfaceQuantity, thermo::Temperature};
+//!
+//! let mut session = Session::new(Config::within(std::path::Path::new("office")));
+//! session.open_demo();
+//! while session.reading() > 0 {
+//!     session.poll();
+//! }
+//! session.apply(Command::SetSurface(SurfaceQuantity::Dewpoint, Temperature::from_c(19.0)));
+//! if let Some(item) = session.current() {
+//!     println!("{}", item.results().which_parcel);
+//! }
+//! ```
+//!
+//! Deliberately absent: anything that paints, pointer positions, the clipboard, dialogs. No egui here.
+
+mod action;
+mod analysed;
+mod command;
+mod config;
+mod demo;
+mod document;
+mod doubt;
+mod item;
+mod message;
+pub mod report;
+mod results;
+mod session;
+mod standing;
+mod tray;
+pub mod wording;
+
+pub use action::*;
+pub use analysed::*;
+pub use command::*;
+pub use config::*;
+pub use document::*;
+pub use doubt::*;
+pub use item::*;
+pub use message::*;
+pub use results::*;
+pub use session::*;
+pub use standing::*;
+pub use tray::*;
+
+pub use dewbound_bounds as bounds;
+pub use dewbound_chart as chart;
+pub use dewbound_formats as formats;
+pub use dewbound_ledger as ledger;
+pub use dewbound_trust as trust;
+pub use dewbound_trust::sounding;
+pub use dewbound_trust::sounding::thermo;

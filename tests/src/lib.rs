@@ -1,1 +1,3 @@
-//! Shared helpers of the end-to-end tests.
+//! What the end-to-end tests share, and the generator of the demo soundings.
+
+pub mod demo;

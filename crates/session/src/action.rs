@@ -152,6 +152,11 @@ actions! {
     Sounding session PinHigh "Pin moister end here" "Use the working dew point as the moister end of the interval." None;
     Sounding session UnpinLow "Unpin drier end" "Let the drier end of the interval follow the candidates again." None;
     Sounding session UnpinHigh "Unpin moister end" "Let the moister end of the interval follow the candidates again." None;
+    Sounding session Accept "Accepted" "The sounding is believed as received." None;
+    Sounding session AcceptAsAmended "Accepted as amended" "The sounding is believed with the amendments in force." None;
+    Sounding session ContaminatedAbove "Contaminated above" "The sounding is not to be believed above a pressure." None;
+    Sounding session Contaminated "Contaminated" "The sounding is not to be believed at all." None;
+    Sounding session NoVerdict "No verdict" "Take the drafted verdict back." None;
     Sounding session Decide "Decide" "Keep this verdict in the ledger, with reasons and initials." ctrl("Enter");
     View window ZoomIn "Larger" "Make everything larger." ctrl("+");
     View window ZoomOut "Smaller" "Make everything smaller." ctrl("-");

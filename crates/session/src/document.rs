@@ -60,6 +60,13 @@ impl Document {
         *self == Self::default()
     }
 
+    /// The same numbers follow from both; they differ in the verdict being drafted at most.
+    pub(crate) fn computes_like(&self, other: &Self) -> bool {
+        self.amendments == other.amendments
+            && self.pins == other.pins
+            && self.picked_level_pa == other.picked_level_pa
+    }
+
     /// The surface value these amendments set, when they do.
     pub fn surface(&self, quantity: SurfaceQuantity) -> Option<Temperature> {
         match quantity {

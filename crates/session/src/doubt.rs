@@ -1,7 +1,8 @@
 //! How far the numbers move inside the credible surface moisture.
 
-use crate::sounding::Parcel;
+use crate::sounding::{Amendment, Amendments, Parcel};
 use crate::thermo::Temperature;
+use crate::{Analysed, Document, Pins};
 
 /// Where a candidate for the true surface dew point comes from.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]
@@ -110,5 +111,31 @@ impl Doubt {
             Parcel::Mixed => mixed,
             Parcel::MostUnstable => most_unstable,
         }
+    }
+}
+
+/// What the doubt depends on: all of the document but the surface dew point.
+#[derive(Debug, Clone, PartialEq)]
+pub(crate) struct DoubtKey {
+    amendments: Amendments,
+    pins: Pins,
+}
+
+impl DoubtKey {
+    pub(crate) fn of(document: &Document) -> Self {
+        let mut amendments = document.amendments.clone();
+        amendments
+            .entries
+            .retain(|entry| entry.enabled && !matches!(entry.amendment, Amendment::SurfaceDewpoint { .. }));
+        Self {
+            amendments,
+            pins: document.pins,
+        }
+    }
+}
+
+impl Doubt {
+    pub(crate) fn of(_analysed: &Analysed, _document: &Document) -> Self {
+        Self::default()
     }
 }

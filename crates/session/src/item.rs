@@ -2,8 +2,10 @@
 
 use crate::sounding::{Daylight, Note, Numbers, Profile, Sounding};
 use crate::thermo::Temperature;
-use crate::trust::Finding;
-use crate::{Analysed, Document, Preview, RepairId, Results, Revision, Standing, SurfaceQuantity};
+use crate::history::History;
+use crate::trust::{Finding, Repair, applied_repair, with_repair, without_repair};
+use crate::{Analysed, Document, Identity, Preview, RepairId, Results, Revision, Standing, SurfaceQuantity};
+use jiff::Timestamp;
 use std::sync::Arc;
 
 /// Identity of an item in the tray; never used twice in one session.
@@ -11,16 +13,22 @@ use std::sync::Arc;
 pub struct ItemId(pub(crate) u64);
 
 /// One sounding of the tray.
+///
+/// **Invariant:** `results` are those of `document`, always.
 #[derive(Debug)]
 pub struct Item {
     pub(crate) id: ItemId,
+    pub(crate) identity: Identity,
     pub(crate) analysed: Arc<Analysed>,
-    pub(crate) document: Document,
-    pub(crate) undo: Vec<Document>,
-    pub(crate) redo: Vec<Document>,
-    pub(crate) gesture: Option<Document>,
+    pub(crate) history: History,
     pub(crate) results: Results,
     pub(crate) standing: Standing,
+    /// The document when nothing is drafted: untouched, or as it was decided.
+    pub(crate) baseline: Document,
+    /// Time of the decision the baseline is from.
+    pub(crate) decided_at: Option<Timestamp>,
+    /// A decision on its way to the disk, with the document it was made on.
+    pub(crate) keeping: Option<(Timestamp, Document)>,
 }
 
 impl Item {
@@ -66,7 +74,7 @@ impl Item {
 
     /// What has been changed.
     pub fn document(&self) -> &Document {
-        &self.document
+        self.history.document()
     }
 
     /// The revision of the document; [`Results::revision`] is always the same.
@@ -89,19 +97,24 @@ impl Item {
         self.analysed.sounding.demo
     }
 
+    /// Something has been changed or drafted that isn't decided.
+    pub fn is_draft(&self) -> bool {
+        *self.document() != self.baseline
+    }
+
     /// A drag is under way.
     pub fn in_gesture(&self) -> bool {
-        self.gesture.is_some()
+        self.history.in_gesture()
     }
 
     /// There is a step to undo.
     pub fn can_undo(&self) -> bool {
-        !self.undo.is_empty()
+        self.history.can_undo()
     }
 
     /// There is a step to redo.
     pub fn can_redo(&self) -> bool {
-        !self.redo.is_empty()
+        self.history.can_redo()
     }
 
     /// Surface value as received.
@@ -114,14 +127,51 @@ impl Item {
         surface_of(&self.results.working.profile, quantity)
     }
 
+    /// By what it is recognised.
+    pub fn identity(&self) -> &Identity {
+        &self.identity
+    }
+
+    /// Whether a repair is among the enabled amendments.
+    pub fn is_applied(&self, repair: RepairId) -> bool {
+        self.finding_and_repair(repair)
+            .is_some_and(|(finding, _)| {
+                applied_repair(&self.document().amendments, finding) == Some(repair.repair)
+            })
+    }
+
     /// Profile and numbers with a repair (or without it, when it is applied); the document stays as it is.
-    pub fn preview(&self, _repair: RepairId) -> Option<Preview> {
-        todo!()
+    pub fn preview(&self, id: RepairId) -> Option<Preview> {
+        let (finding, repair) = self.finding_and_repair(id)?;
+        let amendments = &self.document().amendments;
+        let applied = applied_repair(amendments, finding) == Some(id.repair);
+        let amendments = if applied {
+            without_repair(amendments, finding, repair)
+        } else {
+            with_repair(amendments, finding, repair)
+        };
+        let working = amendments.apply(self.received(), self.daylight());
+        let numbers = Numbers::of(&working.profile);
+        Some(Preview {
+            working,
+            numbers,
+            applied,
+        })
     }
 
     /// The line for the chat or the log: station, time, verdict, CAPE range, reason, caution.
     pub fn copy_line(&self) -> String {
-        todo!()
+        crate::sentence::copy_line(self)
+    }
+
+    pub(crate) fn finding_and_repair(&self, id: RepairId) -> Option<(&Finding, &Repair)> {
+        let finding = self.findings().get(id.finding)?;
+        Some((finding, finding.repairs.get(id.repair)?))
+    }
+
+    /// The surface handle of a quantity can be moved: its row exists and, for the dew point, has a temperature.
+    pub(crate) fn surface_row(&self) -> Option<usize> {
+        self.analysed.profile.surface
     }
 }
 

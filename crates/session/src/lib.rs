@@ -20,20 +20,37 @@
 //!
 //! Deliberately absent: anything that paints, pointer positions, the clipboard, dialogs. No egui here.
 
+#![cfg_attr(test, allow(clippy::unwrap_used, clippy::expect_used))]
+
 mod action;
 mod analysed;
+mod apply;
+mod arrivals;
 mod command;
 mod config;
+mod decide;
 mod demo;
+mod disk;
 mod document;
 mod doubt;
+mod draft;
+mod edit;
+mod history;
+mod identity;
 mod item;
+mod keeper;
 mod message;
+mod office;
+mod opening;
+mod possible;
+mod reading;
 pub mod report;
 mod results;
+mod sentence;
 mod session;
 mod standing;
 mod tray;
+mod wake;
 pub mod wording;
 
 pub use action::*;
@@ -42,8 +59,11 @@ pub use command::*;
 pub use config::*;
 pub use document::*;
 pub use doubt::*;
+pub use identity::*;
 pub use item::*;
 pub use message::*;
+pub use office::{Office, OfficeProblem};
+pub use reading::*;
 pub use results::*;
 pub use session::*;
 pub use standing::*;

@@ -1,13 +1,14 @@
 //! What follows from a document: computed inside one command, all of one revision.
 
-use crate::Doubt;
-use crate::sounding::{Numbers, Working};
-use crate::thermo::Ascent;
-use crate::trust::Cost;
+use crate::doubt::DoubtKey;
+use crate::sounding::{Numbers, Profile, Working};
+use crate::thermo::{Ascent, Method, Pressure, lift};
+use crate::trust::{Cost, Priced, price, rank};
+use crate::{Analysed, Document, Doubt, sentence};
 use std::sync::Arc;
-use std::time::Duration;
+use std::time::{Duration, Instant};
 
-/// Counts the changes of one sounding's document. Undo makes a new revision too.
+/// Counts changes of documents over a whole session. Undo makes a new revision too.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Hash, Default)]
 pub struct Revision(pub u64);
 
@@ -27,6 +28,14 @@ impl Card {
     pub fn headline_cost(&self) -> Option<&Cost> {
         self.costs.get(self.headline?)?.as_ref()
     }
+
+    fn of(priced: &Priced) -> Self {
+        Self {
+            costs: priced.costs.clone(),
+            headline: priced.headline,
+            applied: priced.applied,
+        }
+    }
 }
 
 /// Everything shown for one revision of one sounding.
@@ -42,7 +51,7 @@ pub struct Results {
     pub picked: Option<Ascent>,
     /// One card a finding, same index as [`crate::Item::findings`].
     pub cards: Vec<Card>,
-    /// Order in which the cards are shown: indices, worst first (held while [`crate::Session::hold_order`] says so).
+    /// Order in which the cards are shown: indices, worst first; held while [`crate::Session::hold_order`] says so.
     pub order: Vec<usize>,
     /// Interval, response, ranges.
     pub doubt: Arc<Doubt>,
@@ -50,6 +59,9 @@ pub struct Results {
     pub which_parcel: String,
     /// Computing time of this revision.
     pub computing: Duration,
+    /// Order by the costs of this revision, whatever is held.
+    ranked: Vec<usize>,
+    doubt_key: DoubtKey,
 }
 
 /// A repair seen but not applied.
@@ -59,4 +71,92 @@ pub struct Preview {
     pub working: Working,
     /// Its numbers.
     pub numbers: Numbers,
+    /// The repair is applied at the moment, so this is what it would be without.
+    pub applied: bool,
+}
+
+impl Results {
+    /// Results of a document, from nothing.
+    pub fn of(analysed: &Analysed, document: &Document) -> Self {
+        Self::compute(analysed, document, Revision::default(), None)
+    }
+
+    /// Results of the document that follows; keeps of `previous` what can't have changed.
+    pub(crate) fn next(
+        analysed: &Analysed,
+        document: &Document,
+        revision: Revision,
+        previous: &Self,
+        hold_order: bool,
+    ) -> Self {
+        let mut results = Self::compute(analysed, document, revision, Some(previous));
+        if hold_order && previous.order.len() == results.order.len() {
+            results.order.clone_from(&previous.order);
+        }
+        results
+    }
+
+    /// Lets the order follow the costs again; true when that changed it.
+    pub(crate) fn sort(&mut self) -> bool {
+        let changed = self.order != self.ranked;
+        self.order.clone_from(&self.ranked);
+        changed
+    }
+
+    fn compute(
+        analysed: &Analysed,
+        document: &Document,
+        revision: Revision,
+        previous: Option<&Self>,
+    ) -> Self {
+        let started = Instant::now();
+        let amendments = &document.amendments;
+        let working = amendments.apply(&analysed.profile, analysed.daylight);
+        let numbers = Numbers::of(&working.profile);
+        let picked = document
+            .picked_level()
+            .and_then(|level| picked_ascent(&working.profile, level));
+        let priced = price(
+            &analysed.findings,
+            &analysed.profile,
+            amendments,
+            analysed.daylight,
+            &numbers,
+        );
+        let ranked = rank(&priced, at_least(&numbers));
+        let cards = priced.iter().map(Card::of).collect();
+        let doubt_key = DoubtKey::of(document);
+        let doubt = match previous {
+            Some(previous) if previous.doubt_key == doubt_key => previous.doubt.clone(),
+            _ => Arc::new(Doubt::of(analysed, document)),
+        };
+        let which_parcel = sentence::which_parcel(&working.profile, &numbers, &doubt);
+        Self {
+            revision,
+            working,
+            numbers,
+            picked,
+            cards,
+            order: ranked.clone(),
+            doubt,
+            which_parcel,
+            computing: started.elapsed(),
+            ranked,
+            doubt_key,
+        }
+    }
+}
+
+/// Any of the three is a lower limit only.
+fn at_least(numbers: &Numbers) -> bool {
+    [&numbers.surface, &numbers.mixed, &numbers.most_unstable]
+        .into_iter()
+        .flatten()
+        .any(|ascent| ascent.at_least)
+}
+
+fn picked_ascent(profile: &Profile, level: Pressure) -> Option<Ascent> {
+    let environment = profile.environment().ok()?;
+    let start = environment.at(level)?;
+    lift(&environment, start, Method::default())
 }

@@ -9,6 +9,8 @@ pub enum Standing {
     Undecided,
     /// Something has been changed or drafted, nothing decided.
     Draft,
+    /// The verdict is on its way to the disk; not kept yet.
+    Keeping,
     /// Decided on exactly these data.
     Decided(Decision),
     /// Decided on other message parts of the same ascent.
@@ -21,6 +23,7 @@ impl Standing {
         match self {
             Self::Undecided => "undecided".to_owned(),
             Self::Draft => "draft".to_owned(),
+            Self::Keeping => "being kept".to_owned(),
             Self::Decided(decision) => {
                 format!("{} ({})", decision.verdict.words(), decision.initials)
             }
@@ -37,7 +40,7 @@ impl Standing {
     pub fn decision(&self) -> Option<&Decision> {
         match self {
             Self::Decided(decision) | Self::DecidedOnEarlierData(decision) => Some(decision),
-            Self::Undecided | Self::Draft => None,
+            Self::Undecided | Self::Draft | Self::Keeping => None,
         }
     }
 }

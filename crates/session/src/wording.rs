@@ -1,6 +1,10 @@
 //! Numbers as people read them: one precision a quantity, a real minus sign, the unit always there.
 
+use crate::Extremes;
+use crate::sounding::{Note, Parcel, Place, Sounding};
 use crate::thermo::{Ascent, Pressure, Temperature};
+use crate::trust::{Change, Cost};
+use jiff::{Timestamp, tz::TimeZone};
 
 /// The sentence that goes wherever the numbers go.
 pub const CAUTION: &str =
@@ -57,4 +61,123 @@ pub fn pressure(pressure: Pressure) -> String {
 /// "18.4 °C".
 pub fn celsius(temperature: Temperature) -> String {
     format!("{} °C", number(temperature.c(), 1))
+}
+
+/// Name of a parcel.
+pub fn parcel(parcel: Parcel) -> &'static str {
+    match parcel {
+        Parcel::Surface => "surface",
+        Parcel::Mixed => "mixed",
+        Parcel::MostUnstable => "most unstable",
+    }
+}
+
+/// "1200 to 2400"; one number when both ends read the same. Limits from below keep their mark.
+pub fn range(extremes: &Extremes) -> String {
+    let (least, most) = (number(extremes.least, 0), number(extremes.most, 0));
+    let mark = if extremes.at_least { "≥ " } else { "" };
+    if least == most {
+        format!("{mark}{least}")
+    } else {
+        format!("{mark}{least} to {mark}{most}")
+    }
+}
+
+/// "2031-06-14 12:00 UTC"; "time unknown" without one.
+pub fn time(time: Option<Timestamp>) -> String {
+    time.map_or_else(
+        || "time unknown".to_owned(),
+        |time| time.to_zoned(TimeZone::UTC).strftime("%Y-%m-%d %H:%M UTC").to_string(),
+    )
+}
+
+/// Valid time of a sounding; says so when month and year were assumed.
+pub fn valid_time(sounding: &Sounding) -> String {
+    let text = time(sounding.times.valid());
+    if sounding.times.assumed {
+        format!("{text} (month and year assumed)")
+    } else {
+        text
+    }
+}
+
+/// The change of a cost that counts most: "CAPE −850 J/kg (mixed)"; "cost unknown" without one.
+pub fn cost(cost: Option<&Cost>) -> String {
+    match cost.and_then(worst_change) {
+        Some((which, change)) => {
+            let mut text = format!("CAPE {} ({})", energy_change(change.cape.unwrap_or_default()), parcel(which));
+            if let Some(cin) = change.cin.filter(|cin| cin.abs() >= 0.5) {
+                text.push_str(&format!(", CIN {}", energy_change(cin)));
+            }
+            text
+        }
+        None => "cost unknown".to_owned(),
+    }
+}
+
+/// The parcel whose CAPE changes most, and by how much.
+pub fn worst_change(cost: &Cost) -> Option<(Parcel, Change)> {
+    let mut worst: Option<(Parcel, Change, f64)> = None;
+    for which in Parcel::ALL {
+        let change = cost.parcel(which);
+        if let Some(size) = change.cape.map(f64::abs)
+            && worst.is_none_or(|(.., largest)| size > largest)
+        {
+            worst = Some((which, change, size));
+        }
+    }
+    worst.map(|(which, change, _)| (which, change))
+}
+
+/// "line 12", "level 3", "byte 100"; empty for the file as a whole.
+pub fn place(place: Place) -> String {
+    match place {
+        Place::File => String::new(),
+        Place::Line(line) => format!("line {line}"),
+        Place::Byte(byte) => format!("byte {byte}"),
+        Place::Level(level) => format!("level {level}"),
+    }
+}
+
+/// A note on one line.
+pub fn note(note: &Note) -> String {
+    let mut text = place(note.place);
+    if !text.is_empty() {
+        text.push_str(": ");
+    }
+    text.push_str(&note.what);
+    if !note.why.is_empty() {
+        text.push_str(" (");
+        text.push_str(&note.why);
+        text.push(')');
+    }
+    text
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn numbers_have_a_real_minus_and_no_minus_zero() {
+        for (value, decimals, expected) in
+            [(-3.26, 1, "\u{2212}3.3"), (-0.04, 1, "0.0"), (-0.4, 0, "0"), (12.0, 0, "12"), (-10.0, 0, "\u{2212}10")]
+        {
+            assert_eq!(number(value, decimals), expected);
+        }
+        assert_eq!(energy_change(-0.2), "±0 J/kg");
+        assert_eq!(energy_change(0.6), "+1 J/kg");
+        assert_eq!(energy(Some(1850.4), true), "≥ 1850 J/kg");
+        assert_eq!(energy(None, false), "none");
+    }
+
+    #[test]
+    fn a_range_of_one_value_reads_as_one() {
+        let at = Temperature::from_c(10.0);
+        let mut extremes = Extremes { least: 99.6, least_at: at, most: 100.4, most_at: at, at_least: false };
+        assert_eq!(range(&extremes), "100");
+        extremes.most = 250.0;
+        extremes.at_least = true;
+        assert_eq!(range(&extremes), "≥ 100 to ≥ 250");
+    }
 }

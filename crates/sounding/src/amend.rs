@@ -131,27 +131,77 @@ pub enum Daylight {
 
 impl Amendments {
     /// The working profile. Never fails: what can't be applied is noted.
-    pub fn apply(&self, _received: &Profile, _daylight: Daylight) -> Working {
-        todo!()
+    ///
+    /// Entries act in their order. The surface temperature and dew point act together, at the place of the earlier of the two, so
+    /// that the result doesn't depend on which was set first; of several entries for one quantity the last counts. Surface values equal to
+    /// those already there change nothing at all, whatever the reach.
+    pub fn apply(&self, received: &Profile, daylight: Daylight) -> Working {
+        crate::apply::apply(self, received, daylight)
     }
 
     /// The surface temperature these amendments set, if any is enabled.
     pub fn surface_temperature(&self) -> Option<Temperature> {
-        todo!()
+        self.last_enabled(|amendment| match *amendment {
+            Amendment::SurfaceTemperature { temperature_k } => {
+                Some(Temperature::from_k(temperature_k))
+            }
+            _ => None,
+        })
     }
 
     /// The surface dew point these amendments set, if any is enabled.
     pub fn surface_dewpoint(&self) -> Option<Temperature> {
-        todo!()
+        self.last_enabled(|amendment| match *amendment {
+            Amendment::SurfaceDewpoint { dewpoint_k } => Some(Temperature::from_k(dewpoint_k)),
+            _ => None,
+        })
     }
 
-    /// The same list with the surface dew point set (its entry replaced, or appended).
-    pub fn with_surface_dewpoint(&self, _dewpoint: Temperature) -> Self {
-        todo!()
+    /// The same list with the surface dew point set (its entry replaced and enabled, or appended).
+    ///
+    /// An entry that came from a repair no longer does when its value changes.
+    pub fn with_surface_dewpoint(&self, dewpoint: Temperature) -> Self {
+        self.with(Amendment::SurfaceDewpoint {
+            dewpoint_k: dewpoint.k(),
+        })
     }
 
-    /// The same list with the surface temperature set (its entry replaced, or appended).
-    pub fn with_surface_temperature(&self, _temperature: Temperature) -> Self {
-        todo!()
+    /// The same list with the surface temperature set (its entry replaced and enabled, or appended).
+    ///
+    /// An entry that came from a repair no longer does when its value changes.
+    pub fn with_surface_temperature(&self, temperature: Temperature) -> Self {
+        self.with(Amendment::SurfaceTemperature {
+            temperature_k: temperature.k(),
+        })
+    }
+
+    fn last_enabled<T>(&self, value: impl Fn(&Amendment) -> Option<T>) -> Option<T> {
+        self.entries
+            .iter()
+            .rev()
+            .filter(|entry| entry.enabled)
+            .find_map(|entry| value(&entry.amendment))
+    }
+
+    /// The last entry of this kind replaced, or one appended.
+    fn with(&self, amendment: Amendment) -> Self {
+        let mut list = self.clone();
+        let kind = std::mem::discriminant(&amendment);
+        let same_kind = |entry: &&mut Entry| std::mem::discriminant(&entry.amendment) == kind;
+        match list.entries.iter_mut().rev().find(same_kind) {
+            Some(entry) => {
+                if entry.amendment != amendment {
+                    entry.from_repair = None;
+                }
+                entry.amendment = amendment;
+                entry.enabled = true;
+            }
+            None => list.entries.push(Entry {
+                amendment,
+                enabled: true,
+                from_repair: None,
+            }),
+        }
+        list
     }
 }

@@ -6,13 +6,21 @@
 //! Deliberately absent: file formats, findings, and anything that decides what is true.
 
 mod amend;
+mod apply;
+mod flight;
+mod height;
+mod layers;
+mod merge;
+mod mixed_layer;
 mod numbers;
 mod profile;
+mod reach;
 mod received;
 mod station;
 mod sun;
 
 pub use amend::*;
+pub use mixed_layer::*;
 pub use numbers::*;
 pub use profile::*;
 pub use received::*;

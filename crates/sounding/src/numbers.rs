@@ -1,7 +1,10 @@
 //! The three parcels of a profile.
 
 use crate::Profile;
-use dewbound_thermo::{Ascent, EnvironmentError, HumidityKnown, Pressure};
+use dewbound_thermo::{
+    Ascent, EnvironmentError, HumidityKnown, MIXED_DEPTH, MOST_UNSTABLE_DEPTH, Method, Pressure,
+    lift, mixed_start, most_unstable_start,
+};
 
 /// Which of the three parcels.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -43,10 +46,77 @@ pub struct Numbers {
     pub problem: Option<EnvironmentError>,
 }
 
+/// Humidity that ends below this level (at a higher pressure) is worth a second CAPE with humidity held.
+const HUMIDITY_HELD_BELOW: Pressure = Pressure::from_hpa(500.0);
+
 impl Numbers {
     /// Computes all three.
-    pub fn of(_profile: &Profile) -> Self {
-        todo!()
+    ///
+    /// The mixed parcel starts at the lowest level of the environment: the surface, or the lowest complete level, see [`Numbers::starts_at`].
+    /// The most unstable parcel chooses among received levels; inserted rows are not candidates.
+    pub fn of(profile: &Profile) -> Self {
+        let mut numbers = Self {
+            surface: None,
+            mixed: None,
+            most_unstable: None,
+            most_unstable_row: None,
+            most_unstable_is_surface: false,
+            humidity: None,
+            cape_humidity_held: None,
+            starts_at: None,
+            problem: None,
+        };
+        let environment = match profile.environment() {
+            Ok(environment) => environment,
+            Err(problem) => {
+                numbers.problem = Some(problem);
+                return numbers;
+            }
+        };
+        let method = Method::default();
+        let rows = profile.environment_rows();
+        let surface = profile.surface_air();
+        if surface.is_none() {
+            numbers.starts_at = Some(environment.bottom().pressure);
+        }
+        let surface_row = surface.and(profile.surface);
+        let mixed = mixed_start(&environment, MIXED_DEPTH);
+        let candidate = |level: usize| {
+            rows.get(level).is_some_and(|&row| {
+                Some(row) == surface_row || matches!(profile.received.get(row), Some(Some(_)))
+            })
+        };
+        let unstable = most_unstable_start(&environment, MOST_UNSTABLE_DEPTH, candidate);
+        numbers.surface = surface.and_then(|start| lift(&environment, start, method));
+        numbers.mixed = mixed.and_then(|start| lift(&environment, start, method));
+        if let Some((level, start)) = unstable {
+            numbers.most_unstable_row = rows.get(level).copied();
+            numbers.most_unstable_is_surface =
+                numbers.most_unstable_row.is_some() && numbers.most_unstable_row == surface_row;
+            numbers.most_unstable = if numbers.most_unstable_is_surface {
+                numbers.surface.clone()
+            } else {
+                lift(&environment, start, method)
+            };
+        }
+        let humidity = environment.humidity();
+        numbers.humidity = Some(humidity);
+        if humidity
+            .dry_above
+            .is_some_and(|p| p.pa() > HUMIDITY_HELD_BELOW.pa())
+        {
+            let held = environment.with_humidity_held();
+            let cape = |ascent: &Option<Ascent>| {
+                let start = ascent.as_ref()?.start;
+                lift(&held, start, method).map(|ascent| ascent.cape)
+            };
+            numbers.cape_humidity_held = Some([
+                cape(&numbers.surface),
+                cape(&numbers.mixed),
+                cape(&numbers.most_unstable),
+            ]);
+        }
+        numbers
     }
 
     /// One of the three.

@@ -1,12 +1,16 @@
 //! The air a parcel rises through.
 
-use crate::{Air, Pressure};
+use crate::column::{Column, Levels, theta_and_moisture};
+use crate::saturation::{self, NO_VAPOUR};
+use crate::{Air, GAS_CONSTANT_DRY, GRAVITY, Pressure, Temperature};
 
 /// Why an environment can't be built from these columns.
 #[derive(Debug, Clone, PartialEq, thiserror::Error)]
 pub enum EnvironmentError {
     /// Columns of different length.
-    #[error("{pressures} pressures, {temperatures} temperatures and {dewpoints} dew points: one of each is needed at every level")]
+    #[error(
+        "{pressures} pressures, {temperatures} temperatures and {dewpoints} dew points: one of each is needed at every level"
+    )]
     Lengths {
         /// Count of pressures.
         pressures: usize,
@@ -57,28 +61,197 @@ pub struct HumidityKnown {
     pub dry: usize,
     /// The last known dew point, when levels above it count as dry.
     pub dry_above: Option<Pressure>,
+    /// Levels whose dew point was above the temperature and counts as saturation.
+    pub above_saturation: usize,
 }
 
 /// The air a parcel rises through: temperature and dew point linear in ln p between levels of falling pressure.
 ///
-/// **Invariant:** pressures fall strictly, every value is finite, the lowest level has a dew point.
+/// **Invariant:** pressures fall strictly, every value is finite, the lowest level has a dew point, no dew point is
+/// above the temperature, and the vapour pressure is below half the pressure at every level.
 #[derive(Debug, Clone)]
 pub struct Environment {
-    _private: (),
+    z: Vec<f64>,
+    p: Vec<f64>,
+    t: Vec<f64>,
+    td: Vec<Option<f64>>,
+    /// Levels with humidity, from the bottom.
+    humid: usize,
+    humidity: HumidityKnown,
+    column: Column,
 }
+
+/// Usable pressures, Pa.
+const PRESSURES: std::ops::RangeInclusive<f64> = 0.1..=200_000.0;
+/// Usable temperatures, K.
+const TEMPERATURES: std::ops::RangeInclusive<f64> = 100.0..=400.0;
+/// Usable dew points, K.
+const DEWPOINTS: std::ops::RangeInclusive<f64> = NO_VAPOUR..=400.0;
 
 impl Environment {
     /// From columns of one length: pressure (Pa, falling strictly), temperature (K), dew point (K, `None` = missing).
     ///
     /// A missing dew point is interpolated between known levels (linear in ln p); above the last known one the air
-    /// counts as dry. See [`Environment::humidity`].
-    pub fn new(_pressure: &[f64], _temperature: &[f64], _dewpoint: &[Option<f64>]) -> Result<Self, EnvironmentError> {
-        todo!()
+    /// counts as dry. A dew point above the temperature counts as saturation. See [`Environment::humidity`].
+    pub fn new(
+        pressure: &[f64],
+        temperature: &[f64],
+        dewpoint: &[Option<f64>],
+    ) -> Result<Self, EnvironmentError> {
+        let n = pressure.len();
+        if temperature.len() != n || dewpoint.len() != n {
+            return Err(EnvironmentError::Lengths {
+                pressures: n,
+                temperatures: temperature.len(),
+                dewpoints: dewpoint.len(),
+            });
+        }
+        if n < 2 {
+            return Err(EnvironmentError::TooFewLevels(n));
+        }
+        let mut humidity = HumidityKnown {
+            interpolated: 0,
+            dry: 0,
+            dry_above: None,
+            above_saturation: 0,
+        };
+        let mut td = Vec::with_capacity(n);
+        let mut previous = f64::INFINITY;
+        let mut last_known = 0;
+        for (level, ((&p, &t), &dewpoint)) in
+            pressure.iter().zip(temperature).zip(dewpoint).enumerate()
+        {
+            if !PRESSURES.contains(&p) {
+                return Err(EnvironmentError::Value {
+                    level,
+                    quantity: "pressure",
+                    value: p,
+                    unit: "Pa",
+                });
+            }
+            if p >= previous {
+                return Err(EnvironmentError::Order {
+                    level,
+                    pressure: p,
+                    previous,
+                });
+            }
+            previous = p;
+            if !TEMPERATURES.contains(&t) {
+                return Err(EnvironmentError::Value {
+                    level,
+                    quantity: "temperature",
+                    value: t,
+                    unit: "K",
+                });
+            }
+            td.push(match dewpoint {
+                None => None,
+                // A dew point so high that vapour outweighs dry air is checked where vapour pressure is at hand.
+                Some(value) if DEWPOINTS.contains(&value) => {
+                    last_known = level;
+                    if value > t {
+                        humidity.above_saturation += 1;
+                    }
+                    Some(value.min(t))
+                }
+                Some(value) => {
+                    return Err(EnvironmentError::Value {
+                        level,
+                        quantity: "dew point",
+                        value,
+                        unit: "K",
+                    });
+                }
+            });
+        }
+        if td.first().copied().flatten().is_none() {
+            return Err(EnvironmentError::BottomWithoutHumidity {
+                pressure: pressure[0],
+            });
+        }
+        let z: Vec<f64> = pressure.iter().map(|p| -p.ln()).collect();
+        if let Some(level) = (1..n).find(|&i| z[i] <= z[i - 1]) {
+            // Different in the last bit only: no layer between them.
+            return Err(EnvironmentError::Order {
+                level,
+                pressure: pressure[level],
+                previous: pressure[level - 1],
+            });
+        }
+        humidity.interpolated = fill_between(&z, &mut td[..=last_known]);
+        if last_known + 1 < n {
+            humidity.dry = n - last_known - 1;
+            humidity.dry_above = Some(Pressure::from_pa(pressure[last_known]));
+        }
+        for (level, (&p, td)) in pressure.iter().zip(&td).enumerate() {
+            if let Some(td) = *td
+                && saturation::e_water(td) >= 0.5 * p
+            {
+                return Err(EnvironmentError::Value {
+                    level,
+                    quantity: "dew point",
+                    value: td,
+                    unit: "K",
+                });
+            }
+        }
+        Ok(Self::assemble(
+            z,
+            pressure.to_vec(),
+            temperature.to_vec(),
+            td,
+            last_known + 1,
+            humidity,
+        ))
+    }
+
+    fn assemble(
+        z: Vec<f64>,
+        p: Vec<f64>,
+        t: Vec<f64>,
+        td: Vec<Option<f64>>,
+        humid: usize,
+        humidity: HumidityKnown,
+    ) -> Self {
+        let column = Column::new(&Levels {
+            z: &z,
+            p: &p,
+            t: &t,
+            td: &td,
+        });
+        Self {
+            z,
+            p,
+            t,
+            td,
+            humid,
+            humidity,
+            column,
+        }
+    }
+
+    pub(crate) fn levels(&self) -> Levels<'_> {
+        Levels {
+            z: &self.z,
+            p: &self.p,
+            t: &self.t,
+            td: &self.td,
+        }
+    }
+
+    pub(crate) fn column(&self) -> &Column {
+        &self.column
+    }
+
+    /// -ln p of the lowest and highest level.
+    pub(crate) fn z_range(&self) -> (f64, f64) {
+        (self.z[0], self.z[self.z.len() - 1])
     }
 
     /// Number of levels.
     pub fn len(&self) -> usize {
-        todo!()
+        self.p.len()
     }
 
     /// Never true: an environment has at least two levels.
@@ -88,47 +261,154 @@ impl Environment {
 
     /// Pressures, Pa, falling.
     pub fn pressure(&self) -> &[f64] {
-        todo!()
+        &self.p
     }
 
     /// Temperatures, K.
     pub fn temperature(&self) -> &[f64] {
-        todo!()
+        &self.t
     }
 
     /// Dew points, K, after filling; `None` where the air counts as dry.
     pub fn dewpoint(&self) -> &[Option<f64>] {
-        todo!()
+        &self.td
     }
 
     /// The lowest level.
     pub fn bottom(&self) -> Air {
-        todo!()
+        Air {
+            pressure: Pressure::from_pa(self.p[0]),
+            temperature: Temperature::from_k(self.t[0]),
+            dewpoint: Temperature::from_k(self.td[0].unwrap_or(NO_VAPOUR)),
+        }
+    }
+
+    /// The highest level's pressure.
+    pub fn top(&self) -> Pressure {
+        Pressure::from_pa(self.p[self.p.len() - 1])
+    }
+
+    /// Segment index and z of a pressure inside the profile.
+    fn locate(&self, pressure: Pressure) -> Option<(usize, f64)> {
+        let p = pressure.pa();
+        let inside = p <= self.p[0] && p >= self.p[self.p.len() - 1];
+        if !inside {
+            return None;
+        }
+        let above = self.p.partition_point(|&level| level > p);
+        Some((above.saturating_sub(1), -p.ln()))
     }
 
     /// Air at a pressure inside the profile whose humidity is known there; `None` outside.
-    pub fn at(&self, _pressure: Pressure) -> Option<Air> {
-        todo!()
+    pub fn at(&self, pressure: Pressure) -> Option<Air> {
+        let (i, z) = self.locate(pressure)?;
+        let air = |t: f64, td: f64| {
+            Some(Air {
+                pressure,
+                temperature: Temperature::from_k(t),
+                dewpoint: Temperature::from_k(td.min(t)),
+            })
+        };
+        // A level's own values, untouched by interpolation.
+        for level in [i, i + 1] {
+            if self.p.get(level) == Some(&pressure.pa()) {
+                return air(self.t[level], self.td[level]?);
+            }
+        }
+        let segment = self.levels().segment(i);
+        let (td, slope) = segment.td?;
+        air(segment.temperature(z), td + slope * (z - segment.z))
     }
 
     /// Temperature and virtual temperature (K) at a pressure inside the profile, dry air where humidity is unknown.
-    pub fn virtual_at(&self, _pressure: Pressure) -> Option<(f64, f64)> {
-        todo!()
+    pub fn virtual_at(&self, pressure: Pressure) -> Option<(f64, f64)> {
+        if let Some(air) = self.at(pressure) {
+            return Some((air.temperature.k(), air.virtual_temperature().k()));
+        }
+        let (i, z) = self.locate(pressure)?;
+        let t = self.levels().segment(i).temperature(z);
+        Some((t, t))
     }
 
     /// What is known of the humidity.
     pub fn humidity(&self) -> HumidityKnown {
-        todo!()
+        self.humidity
     }
 
     /// The same air with relative humidity held at its last known value above the last known dew point.
+    ///
+    /// Vapour there is never more, by mixing ratio, than at the last known level: holding relative humidity over
+    /// water through a warm stratosphere would otherwise invent moisture.
     pub fn with_humidity_held(&self) -> Self {
-        todo!()
+        if self.humid >= self.len() {
+            return self.clone();
+        }
+        let last = self.humid - 1;
+        let td_last = self.td[last].unwrap_or(NO_VAPOUR);
+        let e_last = saturation::e_water(td_last);
+        let rh = e_last / saturation::e_water(self.t[last]);
+        let w_last = saturation::mixing_ratio(self.p[last], e_last);
+        let mut td = self.td.clone();
+        for i in self.humid..self.len() {
+            let e = (rh * saturation::e_water(self.t[i]))
+                .min(self.p[i] * w_last / (crate::EPSILON + w_last));
+            td[i] = Some(saturation::dewpoint(e).min(self.t[i]));
+        }
+        let humidity = HumidityKnown {
+            dry: 0,
+            dry_above: None,
+            ..self.humidity
+        };
+        Self::assemble(
+            self.z.clone(),
+            self.p.clone(),
+            self.t.clone(),
+            td,
+            self.len(),
+            humidity,
+        )
     }
 
     /// Integral means over p of theta (K) and mixing ratio (kg/kg) of the interpolated profile between two
     /// pressures (`bottom` > `top`, clipped to the profile); `None` when they don't overlap with known humidity.
-    pub fn layer_mean(&self, _bottom: Pressure, _top: Pressure) -> Option<(f64, f64)> {
-        todo!()
+    pub fn layer_mean(&self, bottom: Pressure, top: Pressure) -> Option<(f64, f64)> {
+        let bottom = bottom.pa().min(self.p[0]);
+        let top = top.pa().max(self.p[self.humid - 1]);
+        if !(bottom > top) {
+            return None;
+        }
+        let (theta, moisture) = theta_and_moisture(&self.levels(), -bottom.ln(), -top.ln());
+        let depth = bottom - top;
+        Some((theta / depth, moisture / depth))
     }
+
+    /// Geopotential thickness (m) between two pressures inside the profile: Rd/g times the integral of virtual
+    /// temperature over ln p. `None` outside; negative when `upper` has the higher pressure.
+    pub fn thickness(&self, lower: Pressure, upper: Pressure) -> Option<f64> {
+        let integral = |pressure: Pressure| {
+            let (_, z) = self.locate(pressure)?;
+            Some(
+                self.column
+                    .integral_in(&self.levels(), self.column.step_at(z), z),
+            )
+        };
+        Some(GAS_CONSTANT_DRY / GRAVITY * (integral(upper)? - integral(lower)?))
+    }
+}
+
+/// Fills gaps between known values, linear in z; returns how many. The first and last value must be known.
+fn fill_between(z: &[f64], values: &mut [Option<f64>]) -> usize {
+    let mut filled = 0;
+    let mut known = 0;
+    for i in 1..values.len() {
+        let (Some(a), Some(b)) = (values[known], values[i]) else {
+            continue;
+        };
+        for k in known + 1..i {
+            values[k] = Some(a + (b - a) * (z[k] - z[known]) / (z[i] - z[known]));
+            filled += 1;
+        }
+        known = i;
+    }
+    filled
 }

@@ -5,15 +5,31 @@
 //!
 //! Deliberately absent: files, stations, times, heights above a station, and any opinion on whether a value is
 //! to be believed. Those live in the crates above.
+#![cfg_attr(test, allow(clippy::unwrap_used, clippy::expect_used))]
 
 mod air;
+mod column;
 mod constants;
 mod environment;
 mod lift;
+mod numeric;
+mod parcels;
+mod path;
+mod pseudoadiabat;
+mod saturation;
+mod scan;
+mod thickness;
 mod units;
 
 pub use air::*;
 pub use constants::*;
 pub use environment::*;
 pub use lift::*;
+pub use parcels::*;
+pub use pseudoadiabat::temperature_on_pseudoadiabat;
+pub use saturation::{
+    dewpoint_from_mixing_ratio, dewpoint_from_relative_humidity, dewpoint_from_vapour_pressure,
+    saturation_mixing_ratio, saturation_vapour_pressure, saturation_vapour_pressure_over_ice,
+};
+pub use thickness::*;
 pub use units::*;

@@ -1,6 +1,10 @@
 //! Parcels and what becomes of them: CAPE, CIN, LCL, LFC, EL.
 
-use crate::{Air, Environment, Lcl, Pressure, Temperature};
+use crate::path::Parcel;
+use crate::pseudoadiabat::{first_guess, solve};
+use crate::saturation::{e_water, mixing_ratio, virtual_temperature};
+use crate::scan::{Run, runs};
+use crate::{Air, Environment, GAS_CONSTANT_DRY, Lcl, Pressure, Temperature};
 
 /// How a saturated parcel cools.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
@@ -45,32 +49,117 @@ pub struct Ascent {
     pub buoyant: Vec<BuoyantLayer>,
 }
 
+/// A profile that ends at a pressure above this can't show the whole of CAPE.
+const TOP_NEEDED: Pressure = Pressure::from_hpa(200.0);
+/// Areas below this (J/kg) are rounding: they neither make a layer nor split one.
+const NEGLIGIBLE: f64 = 1e-6;
+
 /// Lifts a parcel from `start` through `environment`. Levels below the start are ignored.
 ///
 /// `None` when the start lies above the top of the environment or is not finite.
-pub fn lift(_environment: &Environment, _start: Air, _method: Method) -> Option<Ascent> {
-    todo!()
+pub fn lift(environment: &Environment, start: Air, method: Method) -> Option<Ascent> {
+    let parcel = Parcel::new(start)?;
+    if parcel.start.pressure < environment.top() {
+        return None;
+    }
+    let (z_bottom, z_top) = environment.z_range();
+    let z_from = parcel.z_start.max(z_bottom);
+    let z_lcl = parcel.z_lcl.max(z_from);
+    let (column, levels) = (environment.column(), environment.levels());
+
+    let below = runs(&parcel.dry(z_top), column, levels, z_from, z_lcl.min(z_top));
+    let above = if z_lcl < z_top {
+        merged(runs(
+            &parcel.saturated(method, z_top),
+            column,
+            levels,
+            z_lcl,
+            z_top,
+        ))
+    } else {
+        Vec::new()
+    };
+
+    let last = above.last().or(below.last());
+    let buoyant_at_top =
+        last.is_some_and(|run| run.positive && GAS_CONSTANT_DRY * run.area >= NEGLIGIBLE);
+    let pressure_at = |z: f64| {
+        if z == parcel.z_lcl {
+            parcel.lcl.pressure
+        } else if z == z_top {
+            environment.top()
+        } else {
+            Pressure::from_pa((-z).exp())
+        }
+    };
+
+    let mut negative: f64 = below
+        .iter()
+        .filter(|run| !run.positive)
+        .map(|run| run.area)
+        .sum();
+    let mut buoyant = Vec::new();
+    // Base of the largest layer so far, its area, and the negative area beneath it.
+    let mut largest: Option<(Pressure, f64, f64)> = None;
+    for run in &above {
+        if !run.positive {
+            negative += run.area;
+            continue;
+        }
+        let area = GAS_CONSTANT_DRY * run.area;
+        if area < NEGLIGIBLE {
+            continue;
+        }
+        let layer = BuoyantLayer {
+            bottom: pressure_at(run.bottom),
+            top: pressure_at(run.top),
+            area,
+        };
+        if largest.is_none_or(|(_, other, _)| area > other) {
+            largest = Some((layer.bottom, area, negative));
+        }
+        buoyant.push(layer);
+    }
+
+    Some(Ascent {
+        start: parcel.start,
+        lcl: parcel.lcl,
+        theta_e: Temperature::from_k(parcel.ln_theta_e.exp()),
+        cape: buoyant.iter().map(|layer| layer.area).sum(),
+        // Adding zero keeps a cap of nothing from being shown as "-0".
+        cin: largest.map(|(_, _, negative)| (GAS_CONSTANT_DRY * negative).min(0.0) + 0.0),
+        lfc: largest.map(|(bottom, _, _)| bottom),
+        el: if buoyant_at_top {
+            None
+        } else {
+            buoyant.last().map(|layer| layer.top)
+        },
+        at_least: buoyant_at_top || environment.top() > TOP_NEEDED,
+        buoyant,
+    })
 }
 
-/// Depth over which the mixed parcel is averaged unless told otherwise.
-pub const MIXED_DEPTH: Pressure = Pressure::from_hpa(100.0);
-/// Depth searched for the most unstable parcel.
-pub const MOST_UNSTABLE_DEPTH: Pressure = Pressure::from_hpa(300.0);
-
-/// The mixed parcel: integral means over p of theta and w in the lowest `depth`, lifted from the bottom's pressure.
-pub fn mixed_start(_environment: &Environment, _depth: Pressure) -> Option<Air> {
-    todo!()
-}
-
-/// The most unstable parcel: the level of largest theta-e in the lowest `depth`, with its index.
-///
-/// `candidate` says which levels may be chosen (levels inserted by interpolation are not).
-pub fn most_unstable_start(
-    _environment: &Environment,
-    _depth: Pressure,
-    _candidate: impl Fn(usize) -> bool,
-) -> Option<(usize, Air)> {
-    todo!()
+/// Runs with those of negligible area given to their neighbour, so that rounding doesn't split a layer.
+fn merged(runs: Vec<Run>) -> Vec<Run> {
+    let mut kept: Vec<Run> = Vec::with_capacity(runs.len());
+    let mut pending: Option<Run> = None;
+    for mut run in runs {
+        if let Some(small) = pending.take() {
+            run.bottom = small.bottom;
+            run.area += small.area;
+        }
+        let negligible = GAS_CONSTANT_DRY * run.area.abs() < NEGLIGIBLE;
+        match kept.last_mut() {
+            Some(last) if negligible || last.positive == run.positive => {
+                last.top = run.top;
+                last.area += run.area;
+            }
+            None if negligible => pending = Some(run),
+            _ => kept.push(run),
+        }
+    }
+    kept.extend(pending);
+    kept
 }
 
 /// Temperature and virtual temperature of a rising parcel.
@@ -85,6 +174,32 @@ pub struct ParcelState {
 }
 
 /// The parcel's path at the given pressures (any order; those below the start are left out), for drawing.
-pub fn parcel_path(_start: Air, _method: Method, _pressures: &[Pressure]) -> Vec<ParcelState> {
-    todo!()
+pub fn parcel_path(start: Air, method: Method, pressures: &[Pressure]) -> Vec<ParcelState> {
+    let Some(parcel) = Parcel::new(start) else {
+        return Vec::new();
+    };
+    let theta_e = parcel.ln_theta_e.exp();
+    let state = |pressure: &Pressure| {
+        let p = pressure.pa();
+        if !(p > 0.0 && p <= parcel.start.pressure.pa()) {
+            return None;
+        }
+        let z = -p.ln();
+        let (t, w) = if z < parcel.z_lcl {
+            (parcel.dry_temperature(z), parcel.w)
+        } else {
+            match method {
+                Method::PseudoAdiabat => {
+                    let t = solve(parcel.ln_theta_e, p, first_guess(theta_e, p), 1e-9).0;
+                    (t, mixing_ratio(p, e_water(t).min(0.5 * p)))
+                }
+            }
+        };
+        Some(ParcelState {
+            pressure: *pressure,
+            temperature: Temperature::from_k(t),
+            virtual_temperature: Temperature::from_k(virtual_temperature(t, w)),
+        })
+    };
+    pressures.iter().filter_map(state).collect()
 }

@@ -1,7 +1,11 @@
 //! What a repair costs: numbers with it minus numbers without it, on the working profile.
+//!
+//! The cost shown is exactly the change seen when the repair is toggled with [`with_repair`] and [`without_repair`].
+//! The repairs of one finding are alternatives: taking one withdraws the others.
 
 use crate::{Finding, Repair};
-use dewbound_sounding::{Amendments, Daylight, Numbers, Profile};
+use dewbound_sounding::thermo::Ascent;
+use dewbound_sounding::{Amendments, Daylight, Entry, Numbers, Parcel, Profile};
 
 /// Change of one parcel's numbers. `None` where a number is absent on either side.
 #[derive(Debug, Clone, Copy, PartialEq, Default)]
@@ -10,6 +14,19 @@ pub struct Change {
     pub cape: Option<f64>,
     /// CIN, J/kg.
     pub cin: Option<f64>,
+}
+
+impl Change {
+    fn between(with: Option<&Ascent>, without: Option<&Ascent>) -> Self {
+        let difference = |number: fn(&Ascent) -> Option<f64>| {
+            let (with, without) = (with.and_then(number)?, without.and_then(number)?);
+            Some(with - without)
+        };
+        Self {
+            cape: difference(|ascent| Some(ascent.cape)),
+            cin: difference(|ascent| ascent.cin),
+        }
+    }
 }
 
 /// Cost of one repair for each parcel.
@@ -24,9 +41,42 @@ pub struct Cost {
 }
 
 impl Cost {
+    /// Numbers with minus numbers without; `None` when no parcel has a CAPE on both sides.
+    pub fn between(with: &Numbers, without: &Numbers) -> Option<Self> {
+        let change = |parcel| Change::between(with.parcel(parcel), without.parcel(parcel));
+        let cost = Self {
+            surface: change(Parcel::Surface),
+            mixed: change(Parcel::Mixed),
+            most_unstable: change(Parcel::MostUnstable),
+        };
+        cost.cape_magnitude().map(|_| cost)
+    }
+
+    /// The change of one parcel.
+    pub fn parcel(&self, parcel: Parcel) -> Change {
+        match parcel {
+            Parcel::Surface => self.surface,
+            Parcel::Mixed => self.mixed,
+            Parcel::MostUnstable => self.most_unstable,
+        }
+    }
+
     /// Largest absolute CAPE change over the parcels, J/kg; `None` when unknown for all.
     pub fn cape_magnitude(&self) -> Option<f64> {
-        todo!()
+        self.largest(|change| change.cape)
+    }
+
+    /// Largest absolute CIN change over the parcels, J/kg; `None` when unknown for all.
+    pub fn cin_magnitude(&self) -> Option<f64> {
+        self.largest(|change| change.cin)
+    }
+
+    fn largest(&self, number: impl Fn(Change) -> Option<f64>) -> Option<f64> {
+        Parcel::ALL
+            .into_iter()
+            .filter_map(|parcel| number(self.parcel(parcel)))
+            .map(f64::abs)
+            .reduce(f64::max)
     }
 }
 
@@ -43,24 +93,191 @@ pub struct Priced<'a> {
     pub applied: Option<usize>,
 }
 
-/// Prices one repair: numbers with it minus numbers without it.
-pub fn cost(_repair: &Repair, _received: &Profile, _amendments: &Amendments, _daylight: Daylight) -> Option<Cost> {
-    todo!()
+impl Priced<'_> {
+    /// Cost of the headline repair.
+    pub fn headline_cost(&self) -> Option<&Cost> {
+        self.costs.get(self.headline?)?.as_ref()
+    }
+}
+
+/// What [`Entry::from_repair`] says of an amendment that came from a repair: `finding key/repair id`.
+pub fn repair_source(finding: &Finding, repair: &Repair) -> String {
+    format!("{}/{}", finding.key(), repair.id)
+}
+
+/// The amendments with a repair taken: its entries switched on where they stand, else appended in order. Other repairs
+/// of the same finding, being alternatives, are switched off.
+pub fn with_repair(amendments: &Amendments, finding: &Finding, repair: &Repair) -> Amendments {
+    let source = repair_source(finding, repair);
+    let mut taken = without_alternatives(amendments, finding, Some(repair.id));
+    if taken.entries.iter().any(|entry| entry.from_repair.as_deref() == Some(&source)) {
+        set_enabled(&mut taken, &source, true);
+    } else {
+        append(&mut taken, repair, &source);
+    }
+    taken
+}
+
+/// The amendments with a repair withdrawn: its entries switched off where they stand.
+pub fn without_repair(amendments: &Amendments, finding: &Finding, repair: &Repair) -> Amendments {
+    let mut withdrawn = amendments.clone();
+    set_enabled(&mut withdrawn, &repair_source(finding, repair), false);
+    withdrawn
+}
+
+/// Index of the repair of a finding that is among the enabled amendments.
+pub fn applied_repair(amendments: &Amendments, finding: &Finding) -> Option<usize> {
+    let key = finding.key();
+    finding.repairs.iter().position(|repair| {
+        amendments
+            .entries
+            .iter()
+            .any(|entry| entry.enabled && source_is(entry, &key, repair.id))
+    })
+}
+
+fn source_is(entry: &Entry, key: &str, id: &str) -> bool {
+    entry
+        .from_repair
+        .as_deref()
+        .and_then(|source| source.strip_prefix(key)?.strip_prefix('/'))
+        == Some(id)
+}
+
+fn set_enabled(amendments: &mut Amendments, source: &str, enabled: bool) {
+    for entry in &mut amendments.entries {
+        if entry.from_repair.as_deref() == Some(source) {
+            entry.enabled = enabled;
+        }
+    }
+}
+
+fn append(amendments: &mut Amendments, repair: &Repair, source: &str) {
+    amendments.entries.extend(repair.amendments.iter().map(|&amendment| Entry {
+        amendment,
+        enabled: true,
+        from_repair: Some(source.to_owned()),
+    }));
+}
+
+fn without_alternatives(amendments: &Amendments, finding: &Finding, keep: Option<&str>) -> Amendments {
+    let mut left = amendments.clone();
+    for repair in &finding.repairs {
+        if Some(repair.id) != keep {
+            set_enabled(&mut left, &repair_source(finding, repair), false);
+        }
+    }
+    left
+}
+
+fn numbers(received: &Profile, amendments: &Amendments, daylight: Daylight) -> Numbers {
+    Numbers::of(&amendments.apply(received, daylight).profile)
+}
+
+/// Prices one repair on its own: numbers with it at the end of the amendments minus numbers without it.
+///
+/// `None` when there is nothing to price: the repair changes nothing, or no parcel has a CAPE on both sides.
+/// A repair that is already taken belongs to a finding and is priced by [`price`].
+pub fn cost(repair: &Repair, received: &Profile, amendments: &Amendments, daylight: Daylight) -> Option<Cost> {
+    if repair.amendments.is_empty() {
+        return None;
+    }
+    let mut with = amendments.clone();
+    append(&mut with, repair, repair.id);
+    Cost::between(
+        &numbers(received, &with, daylight),
+        &numbers(received, amendments, daylight),
+    )
 }
 
 /// Prices every finding on the working profile. `working` are the numbers of `amendments` as they stand (not recomputed).
+///
+/// For a repair not taken: numbers after taking it minus the working numbers. For the one that is taken: the working
+/// numbers minus the numbers after withdrawing it.
 pub fn price<'a>(
-    _findings: &'a [Finding],
-    _received: &Profile,
-    _amendments: &Amendments,
-    _daylight: Daylight,
-    _working: &Numbers,
+    findings: &'a [Finding],
+    received: &Profile,
+    amendments: &Amendments,
+    daylight: Daylight,
+    working: &Numbers,
 ) -> Vec<Priced<'a>> {
-    todo!()
+    findings
+        .iter()
+        .map(|finding| {
+            let applied = applied_repair(amendments, finding);
+            let costs: Vec<Option<Cost>> = finding
+                .repairs
+                .iter()
+                .enumerate()
+                .map(|(index, repair)| {
+                    if repair.amendments.is_empty() || finding.wind_only {
+                        None
+                    } else if applied == Some(index) {
+                        let without = without_repair(amendments, finding, repair);
+                        Cost::between(working, &numbers(received, &without, daylight))
+                    } else {
+                        let with = with_repair(amendments, finding, repair);
+                        Cost::between(&numbers(received, &with, daylight), working)
+                    }
+                })
+                .collect();
+            Priced {
+                finding,
+                headline: headline(&costs),
+                costs,
+                applied,
+            }
+        })
+        .collect()
 }
 
-/// Order in which cards are shown, worst first: indices into `priced` (design: unknown costs stand above all priced
-/// ones when erroneous or when the result is "at least", else after the last one of >= 100 J/kg).
-pub fn rank(_priced: &[Priced], _at_least: bool) -> Vec<usize> {
-    todo!()
+/// The repair with the largest |CAPE change|, CIN change breaking ties; the earlier one when both are alike.
+fn headline(costs: &[Option<Cost>]) -> Option<usize> {
+    let size = |cost: &Cost| {
+        (
+            cost.cape_magnitude().unwrap_or(0.0),
+            cost.cin_magnitude().unwrap_or(0.0),
+        )
+    };
+    let mut best: Option<(usize, (f64, f64))> = None;
+    for (index, cost) in costs.iter().enumerate() {
+        let Some(cost) = cost else { continue };
+        let size = size(cost);
+        if best.is_none_or(|(_, largest)| size > largest) {
+            best = Some((index, size));
+        }
+    }
+    best.map(|(index, _)| index)
+}
+
+/// Cost of all headline repairs together: numbers with every one of them taken minus numbers with no repair of these
+/// findings taken. `None` when no finding has a priced repair.
+///
+/// While none is taken this is the change seen when all are accepted; when all are, it is what they have changed.
+pub fn combined_cost(
+    priced: &[Priced],
+    received: &Profile,
+    amendments: &Amendments,
+    daylight: Daylight,
+    working: &Numbers,
+) -> Option<Cost> {
+    let mut without = amendments.clone();
+    for state in priced {
+        without = without_alternatives(&without, state.finding, None);
+    }
+    let mut with = without.clone();
+    let mut any = false;
+    for state in priced {
+        if let Some(repair) = state.headline.and_then(|index| state.finding.repairs.get(index)) {
+            with = with_repair(&with, state.finding, repair);
+            any = true;
+        }
+    }
+    if !any {
+        return None;
+    }
+    // Whichever side is the working state has its numbers already.
+    let of = |side: &Amendments| (side != amendments).then(|| numbers(received, side, daylight));
+    let (with, without) = (of(&with), of(&without));
+    Cost::between(with.as_ref().unwrap_or(working), without.as_ref().unwrap_or(working))
 }

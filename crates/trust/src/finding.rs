@@ -29,6 +29,18 @@ pub struct Evidence {
     pub decimals: usize,
 }
 
+impl Evidence {
+    pub(crate) fn new(key: &'static str, label: &'static str, value: f64, unit: &'static str, decimals: usize) -> Self {
+        Self {
+            key,
+            label,
+            value,
+            unit,
+            decimals,
+        }
+    }
+}
+
 /// A repair: amendments that would undo the suspected fault.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Repair {
@@ -40,7 +52,7 @@ pub struct Repair {
     pub amendments: Vec<Amendment>,
 }
 
-/// Layers above this pressure range have nothing to do with CAPE.
+/// What one rule saw in one layer of the received profile, with both explanations and the ways to repair it.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Finding {
     /// Id of the rule.
@@ -76,5 +88,39 @@ impl Finding {
     pub fn key(&self) -> String {
         let hpa = |p: Option<Pressure>| p.map_or_else(|| "-".to_owned(), |p| format!("{:.0}", p.hpa()));
         format!("{}@{}-{}", self.rule, hpa(self.bottom), hpa(self.top))
+    }
+
+    /// Value of one piece of evidence.
+    pub fn evidence(&self, key: &str) -> Option<f64> {
+        self.evidence.iter().find(|e| e.key == key).map(|e| e.value)
+    }
+
+    /// Takes in another finding on the same layer.
+    pub(crate) fn absorb(&mut self, other: Self) {
+        self.grade = self.grade.max(other.grade);
+        self.wind_only &= other.wind_only;
+        for (mine, theirs) in [
+            (&mut self.summary, other.summary),
+            (&mut self.guilty, other.guilty),
+            (&mut self.innocent, other.innocent),
+            (&mut self.caveat, other.caveat),
+        ] {
+            if !theirs.is_empty() && !mine.contains(&theirs) {
+                if !mine.is_empty() {
+                    mine.push(' ');
+                }
+                mine.push_str(&theirs);
+            }
+        }
+        for evidence in other.evidence {
+            if self.evidence.iter().all(|mine| mine.key != evidence.key) {
+                self.evidence.push(evidence);
+            }
+        }
+        for repair in other.repairs {
+            if self.repairs.iter().all(|mine| mine.id != repair.id) {
+                self.repairs.push(repair);
+            }
+        }
     }
 }

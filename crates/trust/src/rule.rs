@@ -1,6 +1,7 @@
 //! The list of rules; help, docs, thresholds and tests all derive from it.
 
-use crate::{Finding, Thresholds};
+use crate::{Column, Finding, Thresholds, rules};
+use dewbound_sounding::thermo::Pressure;
 use dewbound_sounding::{Daylight, Numbers, Profile, Sounding};
 
 /// Everything a rule may look at. Read only.
@@ -18,6 +19,38 @@ pub struct Context<'a> {
     pub thresholds: &'a Thresholds,
 }
 
+/// A context with what all rules derive from it, computed once.
+#[derive(Debug, Clone)]
+pub struct View<'a> {
+    /// The context.
+    pub context: Context<'a>,
+    /// The levels judged.
+    pub column: Column,
+}
+
+impl<'a> View<'a> {
+    /// Derives the column.
+    pub fn of(context: &Context<'a>) -> Self {
+        let average = Pressure::from_hpa(context.thresholds.get("fine.average_hpa"));
+        Self {
+            context: *context,
+            column: Column::of(context.profile, average),
+        }
+    }
+
+    pub(crate) fn threshold(&self, name: &str) -> f64 {
+        self.context.thresholds.get(name)
+    }
+
+    /// Heights above mean sea level of the two ends of a layer, m, when something anchors them.
+    pub(crate) fn heights(&self, bottom: Pressure, top: Pressure) -> Option<(f64, f64)> {
+        Some((
+            self.context.profile.height_at(bottom)?,
+            self.context.profile.height_at(top)?,
+        ))
+    }
+}
+
 /// One rule. Each is a unit struct; [`RULES`] is the list.
 pub trait Rule: Sync {
     /// Id, kebab case.
@@ -30,14 +63,98 @@ pub trait Rule: Sync {
     fn about(&self) -> &'static str;
     /// Names of the thresholds it reads.
     fn thresholds(&self) -> &'static [&'static str];
-    /// Looks.
-    fn check(&self, context: &Context) -> Vec<Finding>;
+    /// Looks at what has been derived already.
+    fn look(&self, view: &View) -> Vec<Finding>;
+    /// Looks, on its own.
+    fn check(&self, context: &Context) -> Vec<Finding> {
+        self.look(&View::of(context))
+    }
 }
 
 /// All rules, in the order checked.
-pub static RULES: &[&dyn Rule] = &[];
+pub static RULES: &[&dyn Rule] = &[
+    &rules::SuperadiabaticAloft,
+    &rules::WetThermometer,
+    &rules::SuperadiabaticContact,
+    &rules::MoistureSlope,
+    &rules::SurfaceMismatch,
+    &rules::EarlyEnd,
+    &rules::ImpossibleValue,
+    &rules::LevelOrder,
+];
 
 /// Everything all rules see on the received profile, in order of falling pressure of their layers.
-pub fn findings(_context: &Context) -> Vec<Finding> {
-    todo!()
+///
+/// Findings that overlap and have one cause are one finding, under the rule that names the cause. Keys
+/// ([`Finding::key`]) are unique.
+pub fn findings(context: &Context) -> Vec<Finding> {
+    let view = View::of(context);
+    let all = RULES.iter().flat_map(|rule| rule.look(&view)).collect();
+    let mut kept = unique_keys(one_per_cause(all));
+    kept.sort_by(|a, b| {
+        let bottom = |finding: &Finding| finding.bottom.map_or(f64::NEG_INFINITY, Pressure::pa);
+        let top = |finding: &Finding| finding.top.map_or(f64::NEG_INFINITY, Pressure::pa);
+        bottom(b).total_cmp(&bottom(a)).then(top(b).total_cmp(&top(a)))
+    });
+    kept
+}
+
+/// The rule in the first column names the cause of what the second one sees in the same layer.
+const NAMES_THE_CAUSE: [(&str, &str); 3] = [
+    ("wet-thermometer", "superadiabatic-aloft"),
+    ("wet-thermometer", "superadiabatic-contact"),
+    ("superadiabatic-contact", "superadiabatic-aloft"),
+];
+
+fn one_per_cause(all: Vec<Finding>) -> Vec<Finding> {
+    let explained: Vec<bool> = all
+        .iter()
+        .map(|finding| {
+            all.iter().any(|other| {
+                NAMES_THE_CAUSE.contains(&(other.rule, finding.rule))
+                    && other.grade >= finding.grade
+                    && overlap(other, finding)
+            })
+        })
+        .collect();
+    all.into_iter()
+        .zip(explained)
+        .filter_map(|(finding, explained)| (!explained).then_some(finding))
+        .collect()
+}
+
+fn overlap(a: &Finding, b: &Finding) -> bool {
+    match (a.bottom, a.top, b.bottom, b.top) {
+        (Some(a_bottom), Some(a_top), Some(b_bottom), Some(b_top)) => a_bottom > b_top && b_bottom > a_top,
+        _ => false,
+    }
+}
+
+/// Two findings of one rule on one layer become one that says both.
+fn unique_keys(all: Vec<Finding>) -> Vec<Finding> {
+    let mut kept: Vec<Finding> = Vec::with_capacity(all.len());
+    for finding in all {
+        match kept.iter_mut().find(|other| other.key() == finding.key()) {
+            Some(other) => other.absorb(finding),
+            None => kept.push(finding),
+        }
+    }
+    kept
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn rules_describe_themselves() {
+        let mut ids = std::collections::BTreeSet::new();
+        for rule in RULES {
+            assert!(ids.insert(rule.id()), "{} twice", rule.id());
+            assert!(rule.id().chars().all(|c| c.is_ascii_lowercase() || c == '-'));
+            for text in [rule.title(), rule.source(), rule.about()] {
+                assert!(!text.is_empty(), "{}", rule.id());
+            }
+        }
+    }
 }

@@ -1,0 +1,144 @@
+//! From a path or from bytes to analysed soundings.
+
+use crate::formats::{self, ReadOptions};
+use crate::sounding::Note;
+use crate::{Analysed, Office, demo};
+use jiff::{Timestamp, civil::Date};
+use std::fs;
+use std::io;
+use std::path::{Path, PathBuf};
+
+/// Soundings of one file, analysed, and the notes that belong to none of them.
+#[derive(Debug, Default)]
+pub struct ReadFile {
+    /// In file order.
+    pub soundings: Vec<Analysed>,
+    /// Notes about the file.
+    pub notes: Vec<Note>,
+}
+
+/// Why nothing could be read.
+#[derive(Debug, thiserror::Error)]
+#[non_exhaustive]
+pub enum ReadFailure {
+    /// The system refused.
+    #[error("can't be read: {0}")]
+    Io(#[from] io::Error),
+    /// No reader could make anything of it.
+    #[error(transparent)]
+    Format(#[from] formats::ReadError),
+    /// A file that holds no sounding.
+    #[error("no sounding in it{}", notes_text(.0))]
+    Empty(Vec<Note>),
+}
+
+impl ReadFailure {
+    /// What to do about it.
+    pub fn remedy(&self) -> &'static str {
+        match self {
+            Self::Io(_) => "Check that the file exists and that you may read it",
+            Self::Format(_) => "Files understood: TEMP text, station files and columns whose header names carry units",
+            Self::Empty(_) => "Check that it is the file you meant",
+        }
+    }
+}
+
+fn notes_text(notes: &[Note]) -> String {
+    let mut text = String::new();
+    for note in notes {
+        text.push_str("; ");
+        text.push_str(&crate::wording::note(note));
+    }
+    text
+}
+
+/// Reads and analyses one file.
+pub fn read_file(path: &Path, office: &Office, as_of: Option<Date>) -> Result<ReadFile, ReadFailure> {
+    let bytes = fs::read(path)?;
+    let modified = fs::metadata(path)
+        .and_then(|metadata| metadata.modified())
+        .ok()
+        .and_then(|time| Timestamp::try_from(time).ok());
+    read_bytes(&path.display().to_string(), &bytes, modified, office, as_of)
+}
+
+/// Reads and analyses bytes. `modified`: their date, for messages that code day and hour only.
+pub fn read_bytes(
+    name: &str,
+    bytes: &[u8],
+    modified: Option<Timestamp>,
+    office: &Office,
+    as_of: Option<Date>,
+) -> Result<ReadFile, ReadFailure> {
+    // The demo files belong to an invented date, whoever opens them and whenever.
+    let demo = demo::find(bytes);
+    let stations = demo.map_or(&office.stations, |_| demo::stations());
+    let options = ReadOptions {
+        as_of: demo.map(|_| demo::AS_OF).or(as_of),
+        modified,
+        stations: Some(stations),
+    };
+    let loaded = formats::read(name, bytes, &options)?;
+    if loaded.soundings.is_empty() {
+        return Err(ReadFailure::Empty(loaded.notes));
+    }
+    let soundings = loaded
+        .soundings
+        .into_iter()
+        .map(|mut sounding| {
+            sounding.demo |= demo.is_some();
+            office.locate(&mut sounding);
+            Analysed::of(sounding, &office.thresholds)
+        })
+        .collect();
+    Ok(ReadFile {
+        soundings,
+        notes: loaded.notes,
+    })
+}
+
+/// The files meant by a path: itself, or the files of a folder and of the folders in it, in order of name. Hidden ones are left out.
+pub fn files_of(path: &Path) -> io::Result<Vec<PathBuf>> {
+    if !path.is_dir() {
+        return Ok(vec![path.to_owned()]);
+    }
+    let mut files = Vec::new();
+    for inner in listed(path)? {
+        if inner.is_dir() {
+            files.extend(listed(&inner)?.into_iter().filter(|path| path.is_file()));
+        } else {
+            files.push(inner);
+        }
+    }
+    Ok(files)
+}
+
+fn listed(folder: &Path) -> io::Result<Vec<PathBuf>> {
+    let mut paths = fs::read_dir(folder)?
+        .map(|entry| entry.map(|entry| entry.path()))
+        .collect::<io::Result<Vec<_>>>()?;
+    paths.retain(|path| {
+        path.file_name()
+            .is_some_and(|name| !name.to_string_lossy().starts_with('.'))
+    });
+    paths.sort();
+    Ok(paths)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn a_folder_means_its_files_and_those_one_folder_down() {
+        let folder = tempfile::tempdir().unwrap();
+        let root = folder.path();
+        fs::create_dir_all(root.join("b/deeper")).unwrap();
+        for name in ["c.txt", "a.txt", ".hidden", "b/one.csv", "b/deeper/two.csv"] {
+            fs::write(root.join(name), "").unwrap();
+        }
+        let expected: Vec<PathBuf> = ["a.txt", "b/one.csv", "c.txt"].map(|name| root.join(name)).into();
+        assert_eq!(files_of(root).unwrap(), expected);
+        assert_eq!(files_of(&root.join("absent")).unwrap(), [root.join("absent")]);
+    }
+}

@@ -1,0 +1,195 @@
+//! A file of one-second rows as a flight: waiting on the ground, one leg that counts, the other leg.
+
+use crate::Level;
+
+/// What of a series of rows belongs to the leg that counts.
+pub(crate) struct Flight {
+    /// Indices of the rows that count, in order of time.
+    pub leg: Vec<usize>,
+    /// The surface, when the leg goes up from it.
+    pub surface: Option<usize>,
+    /// Rows of the wait before launch: left out.
+    pub waiting: Vec<usize>,
+    /// Rows at pressures above the surface's after launch: left out.
+    pub below_surface: Vec<usize>,
+    /// Rows of the other leg: left out.
+    pub other_leg: Vec<usize>,
+    /// The leg goes up.
+    pub ascending: bool,
+}
+
+/// Share of the steps in a leg that must go its way; a random order has one half.
+const STEADY: f64 = 0.75;
+/// The leg is followed back to the launch from where it has left this many Pa behind.
+const UNDER_WAY: f64 = 6_000.0;
+/// A first row this far (Pa) above the start of the steady ascent isn't the surface.
+const FIRST_ROW_TOLERANCE: f64 = 1_500.0;
+
+/// Reads rows (all with pressure, named by index into `levels`, as received) as a flight; `None` when their order is not one.
+///
+/// `marked`: the row the format calls the surface.
+pub(crate) fn flight(levels: &[Level], rows: &[usize], marked: Option<usize>) -> Option<Flight> {
+    let pressure_of = |row: usize| {
+        levels
+            .get(row)
+            .and_then(|level| level.pressure)
+            .unwrap_or(f64::NAN)
+    };
+    let mut series: Vec<usize> = rows.to_vec();
+    if let Some(mut timed) = series
+        .iter()
+        .map(|&row| Some((levels.get(row)?.elapsed.filter(|t| t.is_finite())?, row)))
+        .collect::<Option<Vec<_>>>()
+    {
+        // A stable sort: rows of one time stay as received.
+        timed.sort_by(|a, b| a.0.total_cmp(&b.0));
+        series = timed.into_iter().map(|(_, row)| row).collect();
+    }
+    let pressures: Vec<f64> = series.iter().map(|&row| pressure_of(row)).collect();
+    let top = pressures
+        .iter()
+        .enumerate()
+        .min_by(|a, b| a.1.total_cmp(b.1))
+        .map(|(at, _)| at)?;
+    let (up, down) = (pressures.get(..=top)?, pressures.get(top..)?);
+    let ascending = span(up) >= 0.5 * span(&pressures);
+    let leg_pressures = if ascending { up } else { down };
+    if steadiness(leg_pressures, ascending) < STEADY {
+        return None;
+    }
+    let (leg, other_leg) = if ascending {
+        (series.get(..=top)?, series.get(top + 1..)?)
+    } else {
+        (series.get(top..)?, series.get(..top)?)
+    };
+    if other_leg.len() > 1 && steadiness(if ascending { down } else { up }, !ascending) < STEADY {
+        return None;
+    }
+    let mut flight = Flight {
+        leg: leg.to_vec(),
+        surface: None,
+        waiting: Vec::new(),
+        below_surface: Vec::new(),
+        other_leg: other_leg.to_vec(),
+        ascending,
+    };
+    if ascending {
+        flight.leave_the_ground(levels, up, marked);
+    }
+    Some(flight)
+}
+
+impl Flight {
+    /// Finds the surface and parts the wait from the ascent.
+    fn leave_the_ground(&mut self, levels: &[Level], pressures: &[f64], marked: Option<usize>) {
+        let reports = |row: &usize| {
+            levels
+                .get(*row)
+                .is_some_and(|level| level.temperature.is_some() || level.wind.is_some())
+        };
+        let marked_at = marked.and_then(|row| self.leg.iter().position(|&r| r == row));
+        let Some(mut first) = marked_at.or_else(|| self.leg.iter().position(reports)) else {
+            return;
+        };
+        let Some(launch) = launch(pressures, first) else {
+            // Too short to tell: everything counts and the lowest row is found as in any other data.
+            self.surface = marked;
+            return;
+        };
+        let (Some(&p_first), Some(&p_launch)) = (pressures.get(first), pressures.get(launch))
+        else {
+            return;
+        };
+        let mut p_surface = p_first;
+        if marked_at.is_none() && p_launch - p_first > FIRST_ROW_TOLERANCE {
+            first = launch;
+            p_surface = p_launch;
+        }
+        // A slow start or a pause low down is part of the ascent; a wander up and down is not.
+        let travelled: f64 = pressures
+            .get(first..=launch)
+            .unwrap_or_default()
+            .windows(2)
+            .map(|w| if let [a, b] = w { (a - b).abs() } else { 0.0 })
+            .sum();
+        let waited = first < launch && travelled > 2.0 * (p_surface - p_launch).abs() + 100.0;
+        self.surface = self.leg.get(first).copied();
+        let mut kept = Vec::with_capacity(self.leg.len());
+        for (at, (&row, &pressure)) in self.leg.iter().zip(pressures).enumerate() {
+            let same = (pressure - p_surface).abs() <= crate::profile::SAME_PRESSURE;
+            if at == first || (same && at < launch) {
+                kept.push(row);
+            } else if at < first || (waited && at < launch) {
+                self.waiting.push(row);
+            } else if pressure > p_surface {
+                self.below_surface.push(row);
+            } else {
+                kept.push(row);
+            }
+        }
+        self.leg = kept;
+    }
+}
+
+/// Index where the steady ascent starts, found by following it back from well above the ground.
+fn launch(pressures: &[f64], first: usize) -> Option<usize> {
+    let p_first = *pressures.get(first)?;
+    // Well above the ground: left for good, not by one stray value.
+    let gone = |at: usize| {
+        pressures
+            .get(at..(at + 30).min(pressures.len()))
+            .is_some_and(|next| next.iter().all(|&p| p < p_first - 0.8 * UNDER_WAY))
+    };
+    let under_way = (first..pressures.len())
+        .find(|&at| pressures.get(at).is_some_and(|&p| p < p_first - UNDER_WAY) && gone(at))?;
+    let p_under_way = *pressures.get(under_way)?;
+    let further = (under_way..pressures.len()).find(|&at| {
+        pressures
+            .get(at)
+            .is_some_and(|&p| p < p_under_way - UNDER_WAY)
+    })?;
+    // Fall of pressure per row in the ascent proper: the scale of everything below.
+    let per_row = UNDER_WAY / (further - under_way).max(1) as f64;
+    let reach = ((500.0 / per_row).ceil() as usize).clamp(1, 50);
+    let mut at = under_way;
+    while at > 0 {
+        let back = at.saturating_sub(reach);
+        let (Some(&before), Some(&here)) = (pressures.get(back), pressures.get(at)) else {
+            break;
+        };
+        if before - here <= 0.2 * per_row * (at - back) as f64 {
+            break;
+        }
+        at -= 1;
+    }
+    Some(at)
+}
+
+/// Largest less smallest.
+fn span(pressures: &[f64]) -> f64 {
+    let (low, high) = pressures
+        .iter()
+        .fold((f64::INFINITY, f64::NEG_INFINITY), |(low, high), &p| {
+            (low.min(p), high.max(p))
+        });
+    (high - low).max(0.0)
+}
+
+/// Share of the steps with a change that go the expected way; 1 when nothing changes.
+fn steadiness(pressures: &[f64], falling: bool) -> f64 {
+    let (mut with, mut against) = (0_usize, 0_usize);
+    for pair in pressures.windows(2) {
+        if let [a, b] = pair {
+            if (b < a) == falling && a != b {
+                with += 1;
+            } else if a != b {
+                against += 1;
+            }
+        }
+    }
+    if with + against == 0 {
+        1.0
+    } else {
+        with as f64 / (with + against) as f64
+    }
+}

@@ -1,0 +1,80 @@
+//! Small numerical tools.
+
+/// Integral of `f` over `[a, b]` by the four-point Gauss-Legendre rule (exact for polynomials of degree 7).
+#[inline]
+pub(crate) fn gauss4(a: f64, b: f64, f: impl Fn(f64) -> f64) -> f64 {
+    const X1: f64 = 0.339_981_043_584_856_3;
+    const X2: f64 = 0.861_136_311_594_052_6;
+    const W1: f64 = 0.652_145_154_862_546_1;
+    const W2: f64 = 0.347_854_845_137_453_85;
+    let (mid, half) = (0.5 * (a + b), 0.5 * (b - a));
+    half * (W1 * (f(mid - X1 * half) + f(mid + X1 * half))
+        + W2 * (f(mid - X2 * half) + f(mid + X2 * half)))
+}
+
+/// Integral over a step of length `h` from the values and slopes at its ends (trapezium with end correction;
+/// exact for cubics).
+#[inline]
+pub(crate) fn hermite_integral(h: f64, left: (f64, f64), right: (f64, f64)) -> f64 {
+    h * (0.5 * (left.0 + right.0) + h / 12.0 * (left.1 - right.1))
+}
+
+/// A zero of `f` between `a` and `b`, where its values `fa` and `fb` have opposite signs (or one is zero).
+///
+/// False position with the Illinois weight, falling back on halving: never leaves the bracket, always ends.
+pub(crate) fn zero_between(
+    mut a: f64,
+    mut fa: f64,
+    mut b: f64,
+    mut fb: f64,
+    f: impl Fn(f64) -> f64,
+) -> f64 {
+    if fa == 0.0 {
+        return a;
+    }
+    if fb == 0.0 {
+        return b;
+    }
+    let tolerance = 1e-14 * a.abs().max(b.abs()).max(1.0);
+    let mut last_side = 0i8;
+    for step in 0..80 {
+        let width = b - a;
+        if width.abs() <= tolerance {
+            break;
+        }
+        let mut x = if step % 8 == 7 {
+            0.5 * (a + b)
+        } else {
+            (a * fb - b * fa) / (fb - fa)
+        };
+        if !(x > a.min(b) && x < a.max(b)) {
+            x = 0.5 * (a + b);
+        }
+        let fx = f(x);
+        if fx == 0.0 {
+            return x;
+        }
+        if (fx > 0.0) == (fb > 0.0) {
+            if (b - x).abs() <= tolerance {
+                return x;
+            }
+            b = x;
+            fb = fx;
+            if last_side == 1 {
+                fa *= 0.5;
+            }
+            last_side = 1;
+        } else {
+            if (x - a).abs() <= tolerance {
+                return x;
+            }
+            a = x;
+            fa = fx;
+            if last_side == -1 {
+                fb *= 0.5;
+            }
+            last_side = -1;
+        }
+    }
+    0.5 * (a + b)
+}

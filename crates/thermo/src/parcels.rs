@@ -1,0 +1,61 @@
+//! Where a parcel starts: mixed and most unstable.
+
+use crate::{
+    Air, Environment, Pressure, Temperature, dewpoint_from_mixing_ratio, temperature_on_dry_adiabat,
+};
+
+/// Depth over which the mixed parcel is averaged unless told otherwise.
+pub const MIXED_DEPTH: Pressure = Pressure::from_hpa(100.0);
+/// Depth searched for the most unstable parcel.
+pub const MOST_UNSTABLE_DEPTH: Pressure = Pressure::from_hpa(300.0);
+
+/// The mixed parcel: integral means over p of theta and w in the lowest `depth`, lifted from the bottom's pressure.
+pub fn mixed_start(environment: &Environment, depth: Pressure) -> Option<Air> {
+    let pressure = environment.bottom().pressure;
+    let top = Pressure::from_pa(pressure.pa() - depth.pa());
+    let (theta, w) = environment.layer_mean(pressure, top)?;
+    let temperature = temperature_on_dry_adiabat(Temperature::from_k(theta), pressure);
+    let dewpoint = dewpoint_from_mixing_ratio(pressure, w);
+    Some(Air {
+        pressure,
+        temperature,
+        dewpoint: Temperature::from_k(dewpoint.k().min(temperature.k())),
+    })
+}
+
+/// The most unstable parcel: the level of largest theta-e in the lowest `depth`, with its index.
+///
+/// `candidate` says which levels may be chosen (levels inserted by interpolation are not).
+pub fn most_unstable_start(
+    environment: &Environment,
+    depth: Pressure,
+    candidate: impl Fn(usize) -> bool,
+) -> Option<(usize, Air)> {
+    let limit = environment.bottom().pressure.pa() - depth.pa();
+    let columns = environment
+        .pressure()
+        .iter()
+        .zip(environment.temperature())
+        .zip(environment.dewpoint());
+    let mut best: Option<(f64, usize, Air)> = None;
+    for (level, ((&p, &t), &td)) in columns
+        .enumerate()
+        .take_while(|(_, ((p, _), _))| **p >= limit)
+    {
+        let Some(td) = td else { break };
+        if !candidate(level) {
+            continue;
+        }
+        let air = Air {
+            pressure: Pressure::from_pa(p),
+            temperature: Temperature::from_k(t),
+            dewpoint: Temperature::from_k(td),
+        };
+        let theta_e = air.theta_e().k();
+        // Strictly greater: of equals the lowest.
+        if best.is_none_or(|(largest, _, _)| theta_e > largest) {
+            best = Some((theta_e, level, air));
+        }
+    }
+    best.map(|(_, level, air)| (level, air))
+}

@@ -1,0 +1,174 @@
+//! A rising parcel's virtual temperature as a smooth function of z = -ln p.
+//!
+//! Nodes are solved exactly with their analytic slopes; a cubic Hermite polynomial runs between them. A new method
+//! of ascent supplies its own nodes and nothing else changes.
+
+use crate::pseudoadiabat::solve;
+use crate::saturation::{e_water, mixing_ratio, virtual_temperature};
+use crate::{Air, EPSILON, Method, Temperature, air};
+
+/// Spacing of the nodes in z.
+const SPACING: f64 = 0.05;
+/// Newton stops when its step (K) is below this; the error left is the square of it.
+const STEP: f64 = 1e-6;
+
+/// Piecewise cubic on a uniform grid, with its running integral.
+#[derive(Debug, Clone)]
+pub(crate) struct Cubic {
+    start: f64,
+    /// Polynomials in the share of the step, lowest power first, and the integral up to the step.
+    pieces: Vec<([f64; 4], f64)>,
+}
+
+impl Cubic {
+    /// From nodes (value, slope) at `start`, `start + SPACING`, ... Fewer than two nodes give zero everywhere.
+    fn new(start: f64, nodes: &[(f64, f64)]) -> Self {
+        let mut integral = 0.0;
+        let pieces = nodes
+            .windows(2)
+            .filter_map(|pair| {
+                let [(v0, s0), (v1, s1)] = *pair else {
+                    return None;
+                };
+                let (m0, m1, rise) = (s0 * SPACING, s1 * SPACING, v1 - v0);
+                let c = [v0, m0, 3.0 * rise - 2.0 * m0 - m1, m0 + m1 - 2.0 * rise];
+                let piece = (c, integral);
+                integral += SPACING * (c[0] + c[1] / 2.0 + c[2] / 3.0 + c[3] / 4.0);
+                Some(piece)
+            })
+            .collect();
+        Self { start, pieces }
+    }
+
+    #[inline]
+    fn locate(&self, z: f64) -> (&([f64; 4], f64), f64) {
+        const NONE: &([f64; 4], f64) = &([0.0; 4], 0.0);
+        let share = (z - self.start) * (1.0 / SPACING);
+        let k = (share as usize).min(self.pieces.len().saturating_sub(1));
+        (self.pieces.get(k).unwrap_or(NONE), share - k as f64)
+    }
+
+    /// Value at z.
+    #[inline]
+    pub fn value(&self, z: f64) -> f64 {
+        let ((c, _), s) = self.locate(z);
+        c[0] + s * (c[1] + s * (c[2] + s * c[3]))
+    }
+
+    /// Integral from the first node to z.
+    #[inline]
+    pub fn integral(&self, z: f64) -> f64 {
+        let ((c, before), s) = self.locate(z);
+        before + SPACING * s * (c[0] + s * (c[1] / 2.0 + s * (c[2] / 3.0 + s * c[3] / 4.0)))
+    }
+}
+
+/// What a parcel keeps on its way.
+#[derive(Debug, Clone, Copy)]
+pub(crate) struct Parcel {
+    /// The start, its dew point not above its temperature.
+    pub start: Air,
+    pub lcl: crate::Lcl,
+    pub z_start: f64,
+    pub z_lcl: f64,
+    pub ln_theta_e: f64,
+    /// Mixing ratio below the LCL.
+    pub w: f64,
+    /// Exponent of the dry ascent.
+    exponent: f64,
+}
+
+impl Parcel {
+    /// `None` when the start is not finite or not air: vapour at half the pressure or more.
+    pub fn new(start: Air) -> Option<Self> {
+        let (p, t) = (start.pressure.pa(), start.temperature.k());
+        let td = start.dewpoint.k();
+        let usable =
+            p.is_finite() && p > 0.0 && t.is_finite() && t > 56.0 && td.is_finite() && td > 0.0;
+        if !usable {
+            return None;
+        }
+        let td = td.min(t);
+        let start = Air {
+            dewpoint: Temperature::from_k(td),
+            ..start
+        };
+        let e = e_water(td);
+        if e >= 0.5 * p {
+            return None;
+        }
+        let w = mixing_ratio(p, e);
+        let lcl = start.lcl();
+        let ln_theta_e = air::ln_theta_e(t, p - e, w, lcl.temperature.k());
+        let exponent = air::moist_exponent(w);
+        let z_start = -p.ln();
+        let z_lcl = if td >= t {
+            z_start
+        } else {
+            -lcl.pressure.pa().ln()
+        };
+        let finite = z_lcl.is_finite() && ln_theta_e.is_finite();
+        finite.then_some(Self {
+            start,
+            lcl,
+            z_start,
+            z_lcl,
+            ln_theta_e,
+            w,
+            exponent,
+        })
+    }
+
+    /// Temperature below the LCL at z, K.
+    pub fn dry_temperature(&self, z: f64) -> f64 {
+        self.start.temperature.k() * (self.exponent * (self.z_start - z)).exp()
+    }
+
+    /// Virtual temperature of the unsaturated ascent from the start to `z_end` or the LCL.
+    pub fn dry(&self, z_end: f64) -> Cubic {
+        let end = z_end.min(self.z_lcl);
+        let count = steps(self.z_start, end);
+        let per_kelvin = virtual_temperature(1.0, self.w);
+        let nodes: Vec<_> = (0..=count)
+            .map(|k| {
+                let tv = per_kelvin * self.dry_temperature(self.z_start + k as f64 * SPACING);
+                (tv, -self.exponent * tv)
+            })
+            .collect();
+        Cubic::new(self.z_start, &nodes)
+    }
+
+    /// Virtual temperature of the saturated ascent from the LCL to at least `z_end`.
+    pub fn saturated(&self, method: Method, z_end: f64) -> Cubic {
+        match method {
+            Method::PseudoAdiabat => self.pseudoadiabat(z_end),
+        }
+    }
+
+    fn pseudoadiabat(&self, z_end: f64) -> Cubic {
+        let count = steps(self.z_lcl, z_end);
+        let mut nodes = Vec::with_capacity(count + 1);
+        let mut guess = self.lcl.temperature.k();
+        let mut slope_before = None;
+        for k in 0..=count {
+            let z = self.z_lcl + k as f64 * SPACING;
+            let (t, state) = solve(self.ln_theta_e, (-z).exp(), guess, STEP);
+            let w = state.w;
+            let per_kelvin = virtual_temperature(1.0, w);
+            let share = 1.0 / (1.0 + w);
+            let slope = per_kelvin * state.slope
+                + t * (1.0 / EPSILON - 1.0) * share * share * state.w_slope;
+            nodes.push((per_kelvin * t, slope));
+            // Two-step extrapolation lands within a few mK, so that one Newton step finishes.
+            guess = t + SPACING * (1.5 * state.slope - 0.5 * slope_before.unwrap_or(state.slope));
+            slope_before = Some(state.slope);
+        }
+        Cubic::new(self.z_lcl, &nodes)
+    }
+}
+
+/// Steps of the table from `start` to at least `end`.
+fn steps(start: f64, end: f64) -> usize {
+    // The float-to-integer cast saturates; no profile is taller than a few hundred steps.
+    (((end - start) / SPACING).ceil() as usize).clamp(1, 1000)
+}

@@ -1,0 +1,128 @@
+//! The saturated pseudo-adiabat: constant eq. 39 theta-e of saturated air.
+
+use crate::saturation::{dln_e_water, e_water};
+use crate::{EPSILON, KAPPA, Pressure, REFERENCE_PRESSURE, Temperature};
+
+/// Exponent of the latent heat in eq. 39: (3036/T_L - 1.78) w (1 + 0.448 w).
+#[inline]
+pub(crate) fn latent_term(t_lcl: f64, w: f64) -> f64 {
+    (3036.0 / t_lcl - 1.78) * w * (1.0 + 0.448 * w)
+}
+
+/// ln theta-e of saturated air and what follows from it analytically.
+#[derive(Debug, Clone, Copy)]
+pub(crate) struct Saturated {
+    /// ln theta-e.
+    pub ln_theta_e: f64,
+    /// Its derivative with temperature at constant pressure, 1/K.
+    pub per_kelvin: f64,
+    /// dT/dz along the pseudo-adiabat, z = -ln p, K.
+    pub slope: f64,
+    /// Saturation mixing ratio, kg/kg.
+    pub w: f64,
+    /// Its derivative dw/dz along the pseudo-adiabat.
+    pub w_slope: f64,
+}
+
+/// Saturated air at a temperature and pressure; `None` at and beyond boiling.
+#[inline]
+pub(crate) fn saturated(t: f64, p: f64) -> Option<Saturated> {
+    let e = e_water(t);
+    let dry = p - e;
+    if dry <= 0.0 {
+        return None;
+    }
+    let w = EPSILON * e / dry;
+    let total_over_dry = p / dry;
+    let dln_e = dln_e_water(t);
+    let per_w = (3036.0 / t - 1.78) * (1.0 + 0.896 * w);
+    // dw = w p/(p-e) (d ln e - d ln p), and d ln p = -dz.
+    let w_scale = w * total_over_dry;
+    let per_kelvin = 1.0 / t + KAPPA * dln_e * e / dry - 3036.0 / (t * t) * w * (1.0 + 0.448 * w)
+        + per_w * w_scale * dln_e;
+    let per_z = KAPPA * total_over_dry + per_w * w_scale;
+    let slope = -per_z / per_kelvin;
+    Some(Saturated {
+        ln_theta_e: t.ln() + KAPPA * (REFERENCE_PRESSURE / dry).ln() + latent_term(t, w),
+        per_kelvin,
+        slope,
+        w,
+        w_slope: w_scale * (dln_e * slope + 1.0),
+    })
+}
+
+/// The temperature (K) at which saturated air at `p` has this ln theta-e, and the state there. Newton from `guess`, kept
+/// inside a bracket, until the step is below `tolerance` (K).
+#[inline]
+pub(crate) fn solve(ln_theta_e: f64, p: f64, guess: f64, tolerance: f64) -> (f64, Saturated) {
+    // theta-e is never below the dry theta of the same temperature, so the dry adiabat is an upper limit.
+    let mut high = (ln_theta_e + KAPPA * (p / REFERENCE_PRESSURE).ln()).exp();
+    let mut low = 0.0;
+    let mut t = if guess > low && guess < high {
+        guess
+    } else {
+        high
+    };
+    for _ in 0..100 {
+        let Some(state) = saturated(t, p) else {
+            high = t;
+            t = 0.5 * (low + high);
+            continue;
+        };
+        let excess = state.ln_theta_e - ln_theta_e;
+        if excess > 0.0 {
+            high = t;
+        } else {
+            low = t;
+        }
+        let newton = t - excess / state.per_kelvin;
+        let next = if newton > low && newton < high {
+            newton
+        } else {
+            0.5 * (low + high)
+        };
+        if (newton - t).abs() < tolerance {
+            // The state moves with the last small step to first order only; its temperature is what counts.
+            return (newton, state);
+        }
+        t = next;
+    }
+    (
+        t,
+        saturated(t, p).unwrap_or(Saturated {
+            ln_theta_e,
+            per_kelvin: 1.0 / t,
+            slope: -KAPPA * t,
+            w: 0.0,
+            w_slope: 0.0,
+        }),
+    )
+}
+
+/// A first guess of the pseudo-adiabat's temperature, K.
+pub(crate) fn first_guess(theta_e: f64, p: f64) -> f64 {
+    let ratio = p / REFERENCE_PRESSURE;
+    let pi = ratio.powf(KAPPA);
+    let t_e = theta_e * pi;
+    let x = (273.15 / t_e).powf(1.0 / KAPPA);
+    let k1 = (-38.5 * pi + 137.81) * pi - 53.737;
+    let k2 = (-4.392 * pi + 56.831) * pi - 0.384;
+    let guess = if x * (0.1859 * ratio + 0.6512) > 1.0 {
+        let e = e_water(t_e);
+        let w = EPSILON * e / (p - e).max(0.5 * p);
+        t_e - 2675.0 * w / (1.0 + 2675.0 * w * dln_e_water(t_e))
+    } else if x >= 1.0 {
+        273.15 + k1 - k2 * x
+    } else if x >= 0.4 {
+        273.15 + (k1 - 1.21) - (k2 - 1.21) * x
+    } else {
+        273.15 + (k1 - 2.66) - (k2 - 1.21) * x + 0.58 / x
+    };
+    guess.min(t_e)
+}
+
+/// Temperature at `pressure` on the saturated pseudo-adiabat of constant eq. 39 `theta_e` (exact Newton solution).
+pub fn temperature_on_pseudoadiabat(theta_e: Temperature, pressure: Pressure) -> Temperature {
+    let (theta_e, p) = (theta_e.k(), pressure.pa());
+    Temperature::from_k(solve(theta_e.ln(), p, first_guess(theta_e, p), 1e-10).0)
+}

@@ -1,0 +1,264 @@
+//! Moisture that changes with height where the air is well mixed.
+
+use super::repair;
+use crate::mixed::{Line, MIXED_THRESHOLDS, MixedLayer};
+use crate::words::{layer, number};
+use crate::{Evidence, Finding, Grade, Rule, View};
+use dewbound_sounding::Daylight;
+use dewbound_sounding::thermo::dewpoint_from_mixing_ratio;
+
+/// w changes through a mixed layer that reaches the ground.
+pub struct MoistureSlope;
+
+/// Where the change sits.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+enum Shape {
+    /// Even through the layer.
+    Even,
+    /// Between the surface and the levels above it.
+    Jump,
+    /// Too few levels to tell.
+    Unresolved,
+}
+
+/// What was seen.
+pub(super) struct Seen {
+    mixed: MixedLayer,
+    shape: Shape,
+    surface_w: f64,
+    /// w the layer leads to at the surface, kg/kg.
+    at_surface: f64,
+    /// Fitted w at the lowest and the highest level of the fit, kg/kg.
+    fitted: (f64, f64),
+    /// Root mean square scatter about the line, kg/kg.
+    residual: f64,
+    /// Change of the dew point through the fit (bottom minus top), and at the surface (surface minus layer), both
+    /// brought to surface pressure, K.
+    slope_k: f64,
+    jump_k: f64,
+}
+
+impl Rule for MoistureSlope {
+    fn id(&self) -> &'static str {
+        "moisture-slope"
+    }
+
+    fn title(&self) -> &'static str {
+        "Moisture slopes in a mixed layer"
+    }
+
+    fn source(&self) -> &'static str {
+        "Mahrt 1976, MWR 104; common practice"
+    }
+
+    fn about(&self) -> &'static str {
+        "The mixing ratio changes through a layer of constant theta (within 1 K) at least 30 hPa deep that reaches the \
+         ground, the contact layer left out, while the sun is more than 10 degrees up or was within the last hour. An \
+         even slope may be entrainment; a jump at the lowest levels points to the surface instrument. Not judged at night."
+    }
+
+    fn thresholds(&self) -> &'static [&'static str] {
+        const NAMES: [&str; 7] = [
+            "fine.average_hpa",
+            MIXED_THRESHOLDS[0],
+            MIXED_THRESHOLDS[1],
+            MIXED_THRESHOLDS[2],
+            MIXED_THRESHOLDS[3],
+            "moisture-slope.slope_k",
+            "moisture-slope.jump_k",
+        ];
+        &NAMES
+    }
+
+    fn look(&self, view: &View) -> Vec<Finding> {
+        seen(view).map(|seen| self.finding(view, &seen)).into_iter().collect()
+    }
+}
+
+/// Whether and what the rule sees; the surface-mismatch rule asks too, so that one cause is one finding.
+pub(super) fn seen(view: &View) -> Option<Seen> {
+    if view.context.daylight == Daylight::Night {
+        return None;
+    }
+    let column = &view.column;
+    let mixed = MixedLayer::in_column(column, view.context.thresholds)?;
+    let surface_w = column.mixing_ratio.first().copied().flatten()?;
+    let point = |&level: &usize| Some((column.pressure[level], column.mixing_ratio[level]?));
+    let line = Line::fit(mixed.interior.iter().filter_map(point))?;
+    let (&lowest, &highest) = (mixed.interior.first()?, mixed.interior.last()?);
+    let (p_low, p_high) = (column.pressure[lowest], column.pressure[highest]);
+    let surface = mixed.bottom;
+    let dewpoint = |w: f64| dewpoint_from_mixing_ratio(surface, w.max(1e-6)).k();
+    let fitted = (line.at(p_low), line.at(p_high));
+    // The slope may be carried on to the ground only if it is known over at least that distance.
+    let gap = surface.pa() - p_low;
+    let at_surface = if p_low - p_high >= gap { line.at(surface.pa()) } else { fitted.0 };
+    let slope_k = dewpoint(fitted.0) - dewpoint(fitted.1);
+    let jump_k = dewpoint(surface_w) - dewpoint(at_surface);
+    let slopes = slope_k.abs() >= view.threshold("moisture-slope.slope_k");
+    let jumps = jump_k.abs() >= view.threshold("moisture-slope.jump_k");
+    let shape = match (slopes, jumps) {
+        (_, true) if mixed.interior.len() == 1 => Shape::Unresolved,
+        (true, false) => Shape::Even,
+        (false, true) => Shape::Jump,
+        (true, true) if jump_k.abs() >= slope_k.abs() => Shape::Jump,
+        (true, true) => Shape::Even,
+        (false, false) => return None,
+    };
+    Some(Seen {
+        mixed,
+        shape,
+        surface_w,
+        at_surface,
+        fitted,
+        residual: line.residual,
+        slope_k,
+        jump_k,
+    })
+}
+
+impl MoistureSlope {
+    fn finding(&self, view: &View, seen: &Seen) -> Finding {
+        let mixed = &seen.mixed;
+        let grams = |w: f64| 1000.0 * w;
+        let (from, to, at_one_pressure) = match seen.shape {
+            Shape::Even => (seen.fitted.0, seen.fitted.1, seen.slope_k),
+            Shape::Jump | Shape::Unresolved => (seen.surface_w, seen.at_surface, seen.jump_k),
+        };
+        let change = grams(from - to);
+        let direction = if change >= 0.0 { "falls" } else { "rises" };
+        let span = layer(mixed.bottom, mixed.top);
+        let head = match seen.shape {
+            Shape::Even => format!("Mixing ratio {direction} evenly"),
+            Shape::Jump => format!("Mixing ratio {direction} at the lowest levels"),
+            Shape::Unresolved => format!("Mixing ratio {direction} from the surface to the one level above it"),
+        };
+        Finding {
+            rule: self.id(),
+            title: self.title(),
+            grade: Grade::Doubtful,
+            bottom: Some(mixed.bottom),
+            top: Some(mixed.top),
+            heights: view.heights(mixed.bottom, mixed.top),
+            summary: format!(
+                "{head} by {} g/kg ({} K of dew point at one pressure) in the mixed layer {span}.",
+                number(change.abs(), 1),
+                number(at_one_pressure.abs(), 1)
+            ),
+            evidence: self.evidence(seen),
+            guilty: guilty(seen),
+            innocent: innocent(seen),
+            caveat: caveat(view, seen),
+            repairs: self.repairs(seen),
+            wind_only: false,
+        }
+    }
+
+    fn evidence(&self, seen: &Seen) -> Vec<Evidence> {
+        let grams = |w: f64| 1000.0 * w;
+        let mixed = &seen.mixed;
+        let mut evidence = vec![
+            Evidence::new(
+                "slope_gkg",
+                "fitted mixing ratio, bottom minus top",
+                grams(seen.fitted.0 - seen.fitted.1),
+                "g/kg",
+                1,
+            ),
+            Evidence::new("slope_k", "the same as dew point at surface pressure", seen.slope_k, "K", 1),
+            Evidence::new(
+                "jump_gkg",
+                "mixing ratio, surface minus mixed layer",
+                grams(seen.surface_w - seen.at_surface),
+                "g/kg",
+                1,
+            ),
+            Evidence::new("jump_k", "the same as dew point at surface pressure", seen.jump_k, "K", 1),
+            Evidence::new("scatter_gkg", "scatter about the fitted line", grams(seen.residual), "g/kg", 2),
+            Evidence::new(
+                "depth_hpa",
+                "depth of the mixed layer",
+                mixed.bottom.hpa() - mixed.top.hpa(),
+                "hPa",
+                0,
+            ),
+            Evidence::new("theta_tolerance_k", "theta constant within", mixed.tolerance, "K", 1),
+            Evidence::new("levels", "levels in the fit", mixed.interior.len() as f64, "", 0),
+        ];
+        if let Some(implied) = mixed.implied_dewpoint() {
+            evidence.push(Evidence::new(
+                "implied_dewpoint_c",
+                "surface dew point the mixed layer implies",
+                implied.c(),
+                "\u{b0}C",
+                1,
+            ));
+        }
+        evidence
+    }
+
+    fn repairs(&self, seen: &Seen) -> Vec<crate::Repair> {
+        let mixed = &seen.mixed;
+        let believe_sonde = mixed
+            .implied_dewpoint()
+            .map(|implied| repair::surface_dewpoint("believe-sonde", implied, "believing the sonde"));
+        let believe_surface =
+            repair::mixed_moisture("believe-surface", mixed.bottom, mixed.top, seen.surface_w.max(0.0));
+        believe_sonde.into_iter().chain([believe_surface]).collect()
+    }
+}
+
+fn guilty(seen: &Seen) -> String {
+    let wet = seen.jump_k > 0.0;
+    match seen.shape {
+        Shape::Jump | Shape::Unresolved if wet => {
+            "The surface hygrometer reads too moist (wet or badly ventilated screen, a value from another place), or the \
+             sonde too dry from the start. If the surface is wrong, surface CAPE is too high."
+        }
+        Shape::Jump | Shape::Unresolved => {
+            "The surface hygrometer reads too dry, or the sonde too moist from the start. If the surface is wrong, \
+             surface CAPE is too low."
+        }
+        Shape::Even if seen.slope_k > 0.0 => {
+            "The sonde's humidity sensor drifts dry as it rises (lag, heating of the sensor), or surface and sonde differ \
+             and smoothing has spread it. Air that is mixed in theta should be mixed in moisture."
+        }
+        Shape::Even => {
+            "The sonde's humidity sensor was too dry at first and caught up while rising, or the surface value is too \
+             low. Air that is mixed in theta should be mixed in moisture."
+        }
+    }
+    .into()
+}
+
+fn innocent(seen: &Seen) -> String {
+    match seen.shape {
+        Shape::Jump | Shape::Unresolved if seen.jump_k > 0.0 => {
+            "Evaporation from wet ground or crops under weak mixing, or a shallow upslope, sea-breeze or outflow current, \
+             leaves moister air at the ground."
+        }
+        Shape::Jump | Shape::Unresolved => {
+            "Outflow or downslope air, or dry ground in a moist air mass carried in above it, leaves drier air at the ground."
+        }
+        Shape::Even if seen.slope_k > 0.0 => {
+            "Entrainment of dry air at the top of a growing mixed layer, or advection that changes with height, makes w \
+             fall evenly upward; it is common in heated layers."
+        }
+        Shape::Even => "Moister air carried in above, or drying of the lowest air by advection.",
+    }
+    .into()
+}
+
+fn caveat(view: &View, seen: &Seen) -> String {
+    let mut caveats = Vec::new();
+    if view.context.daylight == Daylight::Unknown {
+        caveats.push(
+            "Day or night isn't known (no position or no launch time): without the sun on the ground nothing need mix moisture.",
+        );
+    }
+    if seen.shape == Shape::Unresolved {
+        caveats.push("One level only above the surface: an even slope can't be told from a jump.");
+    }
+    caveats.join(" ")
+}
+

@@ -1,0 +1,147 @@
+//! The superadiabatic layer in contact with the ground.
+
+use super::{repair, superadiabatic_aloft};
+use crate::layers::{Falling, falling_layers};
+use crate::words::{layer, number};
+use crate::{Evidence, Finding, Grade, Rule, View};
+use dewbound_sounding::Daylight;
+use dewbound_sounding::thermo::{KAPPA, Pressure, REFERENCE_PRESSURE, Temperature};
+
+/// Share of the fall of theta within which the depth of the layer is counted: the rest fades into the mixed layer.
+const MOST_OF_THE_FALL: f64 = 0.8;
+
+/// The heated surface layer: normal by day and shallow, abnormal at night or deep.
+pub struct SuperadiabaticContact;
+
+impl Rule for SuperadiabaticContact {
+    fn id(&self) -> &'static str {
+        "superadiabatic-contact"
+    }
+
+    fn title(&self) -> &'static str {
+        "Superadiabatic layer at the ground"
+    }
+
+    fn source(&self) -> &'static str {
+        "common practice, no source"
+    }
+
+    fn about(&self) -> &'static str {
+        "Theta falls with height from the ground, or from a level less than 50 hPa above it. A shallow layer of this \
+         kind by day is normal and not shown; at night, or deep, or not reaching down to the ground, it is doubtful."
+    }
+
+    fn thresholds(&self) -> &'static [&'static str] {
+        &[
+            "fine.average_hpa",
+            "superadiabatic-contact.theta_drop_k",
+            "superadiabatic-contact.deep_hpa",
+            "superadiabatic-contact.coded_allowance_k",
+            "superadiabatic-aloft.above_surface_hpa",
+            "mixed-layer.contact_hpa",
+        ]
+    }
+
+    fn look(&self, view: &View) -> Vec<Finding> {
+        let column = &view.column;
+        let Some(surface) = column.surface_pressure() else {
+            return Vec::new();
+        };
+        let least = view.threshold("superadiabatic-contact.theta_drop_k");
+        let near = 100.0 * view.threshold("superadiabatic-aloft.above_surface_hpa");
+        // Two such depths are searched so that a layer that starts below the limit is seen whole.
+        let end = column.first_at_or_above(surface - 2.0 * near);
+        falling_layers(&column.smooth_theta, 0..end, least)
+            .into_iter()
+            .filter(|layer| column.pressure[layer.base] > surface - near)
+            .filter_map(|layer| self.finding(view, surface, layer))
+            .collect()
+    }
+}
+
+impl SuperadiabaticContact {
+    fn finding(&self, view: &View, surface: f64, falling: Falling) -> Option<Finding> {
+        let column = &view.column;
+        let theta = &column.smooth_theta;
+        let Falling { base, mut top, drop } = falling;
+        let attached = surface - column.pressure[base] <= 100.0 * view.threshold("mixed-layer.contact_hpa");
+        if attached {
+            top = (base..=top)
+                .find(|&level| theta[level] <= theta[base] - MOST_OF_THE_FALL * drop)
+                .unwrap_or(top);
+        }
+        let depth = (surface - column.pressure[top]) / 100.0;
+        let deep = depth > view.threshold("superadiabatic-contact.deep_hpa");
+        let daylight = view.context.daylight;
+        if attached && daylight == Daylight::Day {
+            let allowance = if column.fine {
+                0.0
+            } else {
+                view.threshold("superadiabatic-contact.coded_allowance_k")
+            };
+            if !deep || drop < view.threshold("superadiabatic-contact.theta_drop_k") + allowance {
+                return None;
+            }
+        }
+        let (bottom_p, top_p) = (
+            Pressure::from_pa(column.pressure[base]),
+            Pressure::from_pa(column.pressure[top]),
+        );
+        let why = match (attached, daylight, deep) {
+            (false, _, _) => "it doesn't reach down to the ground",
+            (true, Daylight::Night, _) => "at night the ground cools the air",
+            (true, Daylight::Unknown, _) => "normal if the sun is heating the ground, not otherwise",
+            (true, Daylight::Day, _) => "deep for a layer heated by the ground",
+        };
+        let repairs = if attached {
+            let warmed_by = theta[top] * (surface / REFERENCE_PRESSURE).powf(KAPPA);
+            vec![repair::surface_temperature(
+                "surface-temperature-from-sonde",
+                Temperature::from_k(warmed_by),
+                "mixed with the air above",
+            )]
+        } else {
+            superadiabatic_aloft::repairs(view, base, top)
+        };
+        Some(Finding {
+            rule: self.id(),
+            title: self.title(),
+            grade: Grade::Doubtful,
+            bottom: Some(bottom_p),
+            top: Some(top_p),
+            heights: view.heights(bottom_p, top_p),
+            summary: format!(
+                "Theta falls by {} K in {}: {why}.",
+                number(drop, 1),
+                layer(bottom_p, top_p)
+            ),
+            evidence: vec![
+                Evidence::new("theta_drop_k", "theta falls by", drop, "K", 1),
+                Evidence::new("depth_hpa", "depth above the ground", depth, "hPa", 0),
+                Evidence::new(
+                    "depth_m",
+                    "depth above the ground",
+                    column.thickness[top] - column.thickness[0],
+                    "m",
+                    0,
+                ),
+            ],
+            guilty: "The surface temperature is too high (a badly ventilated or sunlit screen, a value from another place \
+                     or time), or the sonde still carried the warmth of the launch building. Surface parcels then start \
+                     too warm: too much CAPE, too little inhibition."
+                .into(),
+            innocent: "Cold air flowing over warm water or a warm town, or ground that was in full sun until shortly \
+                       before launch, keeps a superadiabatic layer going."
+                .into(),
+            caveat: match daylight {
+                Daylight::Unknown => {
+                    "Day or night isn't known (no position or no launch time), so an ordinary daytime layer can't be told apart."
+                        .into()
+                }
+                Daylight::Day | Daylight::Night => String::new(),
+            },
+            repairs,
+            wind_only: false,
+        })
+    }
+}

@@ -1,6 +1,14 @@
 //! The sounding on top of the isopleths.
 
-use crate::{Geometry, Picture, Readout, Scene, Touch};
+use crate::canvas::{Canvas, Lettering, clip_polyline};
+use crate::curve::{Curves, Silhouette};
+use crate::parcel::{ParcelPicture, in_sight};
+use crate::readout::{paint_cursor, readout_box};
+use crate::{
+    Anchor, Dash, Geometry, Ink, Picture, Point, Readout, Rect, Scene, Stroke, Touch, brackets,
+    legend, surface, winds,
+};
+use dewbound_sounding::Profile;
 
 /// The painted sounding and what can be touched in it.
 #[derive(Debug, Clone, PartialEq, Default)]
@@ -14,6 +22,181 @@ pub struct Foreground {
 }
 
 /// Curves, parcel, areas, brackets, handles, wind, height scale and cursor. Cheap enough for every frame.
-pub fn foreground(_geometry: &Geometry, _picture: &Picture<'_>) -> Foreground {
-    Foreground::default()
+pub fn foreground(geometry: &Geometry, picture: &Picture<'_>) -> Foreground {
+    let plot = geometry.plot();
+    let mut canvas = Canvas::new(geometry.frame());
+    let mut silhouette = Silhouette::new(&plot);
+
+    let working = Curves::of(picture.working, geometry);
+    let received = differing(picture.received, picture.working).map(|p| Curves::of(p, geometry));
+    let preview = differing(picture.preview, picture.working).map(|p| Curves::of(p, geometry));
+    let parcel = parcel_picture(geometry, picture);
+    for curves in [Some(&working), received.as_ref(), preview.as_ref()].into_iter().flatten() {
+        silhouette.add(&curves.temperature);
+        silhouette.add(&curves.dewpoint);
+    }
+    if let Some(parcel) = &parcel {
+        silhouette.add(&parcel.path);
+        let side = |pick: fn(&(f64, f64, f64)) -> f64| -> Vec<Point> {
+            parcel.band.iter().map(|row| Point::new(pick(row), row.0)).collect()
+        };
+        silhouette.add(&side(|row| row.1));
+        silhouette.add(&side(|row| row.2));
+    }
+
+    if let Some(pa) = surface_pressure(picture) {
+        surface::paint_ground(&mut canvas, geometry, pa);
+    }
+    if let Some(curves) = &received {
+        let stroke = Stroke::dashed(1.3, Dash::Short);
+        canvas.line(&curves.dewpoint, &plot, Ink::ReceivedDewpoint, stroke);
+        canvas.line(&curves.temperature, &plot, Ink::ReceivedTemperature, stroke);
+    }
+    if let Some(parcel) = &parcel {
+        parcel.paint(&mut canvas, &plot);
+    }
+    let stroke = Stroke::solid(2.6);
+    canvas.line(&working.dewpoint, &plot, Ink::Dewpoint, stroke);
+    canvas.line(&working.temperature, &plot, Ink::Temperature, stroke);
+    if let Some(curves) = &preview {
+        let stroke = Stroke::dashed(2.0, Dash::DashDot);
+        canvas.line(&curves.dewpoint, &plot, Ink::PreviewDewpoint, stroke);
+        canvas.line(&curves.temperature, &plot, Ink::PreviewTemperature, stroke);
+    }
+
+    // Labels find their places in order of importance: handles, corner boxes, levels, findings, names of curves.
+    let places = picture.surface.map(|marks| surface::places(geometry, marks)).unwrap_or_default();
+    surface::reserve(&mut canvas, &places);
+    if let Some(place) = readout_box(&plot) {
+        canvas.taken.push(place);
+    }
+    if let Some(drawing) = &picture.parcel {
+        legend::paint(&mut canvas, &plot, drawing);
+    }
+    if let Some(marks) = picture.surface {
+        surface::paint_labels(&mut canvas, geometry, marks, &places, picture.units);
+    }
+    if let Some(parcel) = &parcel {
+        parcel.paint_marks(&mut canvas, &plot, &silhouette);
+    }
+    let discs = brackets::paint(&mut canvas, geometry, picture.brackets, &silhouette);
+    name_curves(&mut canvas, &plot, &working);
+    name_difference(&mut canvas, &plot, received.as_ref(), &working, "as received", [Ink::ReceivedTemperature, Ink::ReceivedDewpoint]);
+    name_difference(&mut canvas, &plot, preview.as_ref(), &working, "preview", [Ink::PreviewTemperature, Ink::PreviewDewpoint]);
+
+    winds::paint(&mut canvas, geometry, picture.working, picture.southern);
+    if let Some(heights) = picture.heights {
+        heights.paint(&mut canvas, geometry, picture.units);
+    }
+    if let Some(stamp) = picture.stamp {
+        let lettering = Lettering::new(Anchor::Left, 13.0, Ink::Stamp).backed().strong();
+        let at = Point::new(plot.left + 8.0, plot.top + 13.0);
+        canvas.text(at, stamp, lettering);
+    }
+    if let Some(marks) = picture.surface {
+        surface::paint_handles(&mut canvas, marks, &places);
+    }
+    let cursor = picture.cursor.filter(|&at| plot.contains(at));
+    let readout = cursor.map(|at| {
+        let pressure = geometry.pressure_at(at.y);
+        let readout = Readout::of(picture.working, pressure, picture.heights, picture.units);
+        paint_cursor(&mut canvas, geometry, picture.working, pressure, &readout);
+        readout
+    });
+    Foreground {
+        scene: canvas.scene,
+        touch: Touch {
+            handles: places,
+            brackets: discs,
+        },
+        readout,
+    }
+}
+
+/// A profile whose curves are not those of the working one.
+fn differing<'a>(profile: Option<&'a Profile>, working: &Profile) -> Option<&'a Profile> {
+    profile.filter(|p| {
+        p.pressure != working.pressure
+            || p.temperature != working.temperature
+            || p.dewpoint != working.dewpoint
+    })
+}
+
+fn surface_pressure(picture: &Picture<'_>) -> Option<f64> {
+    let from_marks = picture.surface.map(|s| s.pressure.pa());
+    from_marks.or_else(|| picture.working.surface_pressure().map(|p| p.pa()))
+}
+
+fn parcel_picture(geometry: &Geometry, picture: &Picture<'_>) -> Option<ParcelPicture> {
+    let drawing = picture.parcel.as_ref()?;
+    match drawing.environment {
+        Some(environment) => Some(ParcelPicture::of(geometry, drawing, environment)),
+        None => {
+            let environment = picture.working.environment().ok()?;
+            Some(ParcelPicture::of(geometry, drawing, &environment))
+        }
+    }
+}
+
+/// "T" and "Td" near the upper ends of their curves.
+fn name_curves(canvas: &mut Canvas, plot: &Rect, curves: &Curves) {
+    let named = [
+        (&curves.temperature, "T", Ink::Temperature, 1.0, Anchor::Left),
+        (&curves.dewpoint, "Td", Ink::Dewpoint, -1.0, Anchor::Right),
+    ];
+    for (points, name, ink, side, anchor) in named {
+        if !in_sight(points, plot) {
+            continue;
+        }
+        let seen: Vec<Point> = points.iter().copied().filter(|&p| plot.contains(p)).collect();
+        let lettering = Lettering::new(anchor, 13.0, ink).backed().strong();
+        // From a fifth of the visible course downward, the first free place.
+        let from = seen.len().saturating_sub(1) * 4 / 5;
+        let tries = (0..8).filter_map(|i| seen.get(from.saturating_sub(i * seen.len() / 12)));
+        let places: Vec<_> = tries.map(|p| (Point::new(p.x + side * 7.0, p.y), anchor)).collect();
+        canvas.text_at_first(places, name, lettering, &plot.grown(-2.0));
+    }
+}
+
+/// Names another version of the profile where it departs most from the working one.
+fn name_difference(
+    canvas: &mut Canvas,
+    plot: &Rect,
+    curves: Option<&Curves>,
+    working: &Curves,
+    name: &str,
+    inks: [Ink; 2],
+) {
+    let Some(curves) = curves else { return };
+    let pairs = [
+        (&curves.temperature, &working.temperature, inks[0]),
+        (&curves.dewpoint, &working.dewpoint, inks[1]),
+    ];
+    let mut most: Option<(f64, Point, f64, Ink)> = None;
+    for (other, own, ink) in pairs {
+        for piece in clip_polyline(other, plot) {
+            for p in piece {
+                let Some(x) = x_at(own, p.y) else { continue };
+                let apart = (p.x - x).abs();
+                if apart > 4.0 && most.is_none_or(|(best, ..)| apart > best) {
+                    most = Some((apart, p, (p.x - x).signum(), ink));
+                }
+            }
+        }
+    }
+    if let Some((_, at, side, ink)) = most {
+        let lettering = Lettering::new(Anchor::Left, 11.5, ink).backed();
+        let outward = if side > 0.0 { Anchor::Left } else { Anchor::Right };
+        let places = [0.0, -14.0, 14.0, -28.0, 28.0]
+            .map(|dy| (Point::new(at.x + side * 8.0, at.y + dy), outward));
+        canvas.text_at_first(places, name, lettering, &plot.grown(-2.0));
+    }
+}
+
+/// x of a curve at a height; the curve runs upward.
+fn x_at(points: &[Point], y: f64) -> Option<f64> {
+    let above = points.partition_point(|p| p.y > y);
+    let (a, b) = (points.get(above.checked_sub(1)?)?, points.get(above)?);
+    let share = (a.y - y) / (a.y - b.y).max(1e-9);
+    Some(a.x + share.clamp(0.0, 1.0) * (b.x - a.x))
 }

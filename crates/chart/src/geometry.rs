@@ -160,7 +160,7 @@ impl View {
         };
         if let Some(&pa) = profile.pressure.get(row) {
             // Room below the surface for the handles' marks.
-            view.bottom_hpa = view.bottom_hpa.max(pa / 100.0 * 1.045);
+            view.bottom_hpa = view.bottom_hpa.max(pa / 100.0 * 1.1);
         }
         let celsius = |column: &[Option<f64>]| {
             column
@@ -233,7 +233,7 @@ const TOP_MARGIN: f64 = 22.0;
 /// Margin below the plot with the temperature labels.
 const BOTTOM_MARGIN: f64 = 34.0;
 /// Room for the height scale, between plot and wind.
-const HEIGHT_MARGIN: f64 = 34.0;
+const HEIGHT_MARGIN: f64 = 42.0;
 /// Strip with the wind barbs.
 const WIND_STRIP: f64 = 66.0;
 /// Smallest plot kept by shrinking margins.

@@ -19,15 +19,26 @@
 #![cfg_attr(test, allow(clippy::unwrap_used, clippy::expect_used))]
 
 mod background;
+mod barb;
+mod brackets;
+mod canvas;
+mod curve;
 mod foreground;
 mod geometry;
 mod handles;
+mod hatch;
 mod heights;
 mod input;
+mod isopleths;
+mod legend;
 mod palette;
+mod parcel;
 mod readout;
 mod scene;
+mod surface;
 mod svg;
+mod winds;
+mod wording;
 
 pub use background::*;
 pub use foreground::*;

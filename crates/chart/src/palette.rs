@@ -1,4 +1,8 @@
 //! Colours.
+//!
+//! The hues are those of Okabe & Ito (Color Universal Design, 2008): told apart with every common kind of colour vision.
+//! On light paper they are darkened, on dark paper lightened, until lines stand out at 3:1 and text at 4.5:1 (WCAG 2
+//! contrast). No state is told by hue alone: dashes, hatching, shape and labels go with it.
 
 use crate::{BracketGrade, Handle, Ink};
 
@@ -50,16 +54,78 @@ impl Palette {
 
 const fn light(ink: Ink) -> Colour {
     match ink {
-        Ink::Paper => rgb(0xfbf7ee),
-        Ink::Handle(Handle::Dewpoint) => rgb(0x00664a),
-        _ => rgb(0x333333),
+        Ink::Paper | Ink::OnMark => rgb(0xfbf7ee),
+        Ink::Edge | Ink::Label | Ink::Wind | Ink::LevelMark => rgb(0x2b2a27),
+        Ink::QuietLabel | Ink::HeightScale | Ink::Cursor => rgb(0x5d5a53),
+        Ink::Isotherm => rgb(0x7d6f5f),
+        Ink::Isobar => rgb(0x8c877d),
+        Ink::FreezingIsotherm => rgb(0x4d6f8f),
+        Ink::DryAdiabat => rgb(0xa06a2c),
+        Ink::MoistAdiabat => rgb(0x4f7d68),
+        Ink::MixingRatioLine => rgb(0x8a5f80),
+        Ink::IsothermLabel => rgb(0x6b5f50),
+        Ink::DryAdiabatLabel => rgb(0x8a5a22),
+        Ink::MoistAdiabatLabel => rgb(0x3f6d58),
+        Ink::MixingRatioLabel => rgb(0x7d5373),
+        Ink::Ground => rgb(0x93886f),
+        Ink::Temperature | Ink::Handle(Handle::Temperature) | Ink::Whisker(Handle::Temperature) => rgb(0xbf4a00),
+        Ink::Dewpoint | Ink::Handle(Handle::Dewpoint) | Ink::Whisker(Handle::Dewpoint) => rgb(0x0063a0),
+        Ink::VirtualTemperature => rgb(0x7a3a10),
+        Ink::ReceivedTemperature => rgb(0xd55e00),
+        Ink::ReceivedDewpoint => rgb(0x2b86c4),
+        Ink::PreviewTemperature | Ink::PreviewDewpoint => rgb(0x00795a),
+        Ink::Parcel => rgb(0x000000),
+        Ink::ParcelBand => rgba(0x56b4e9, 96),
+        Ink::CapeHatch => rgb(0xa36b00),
+        Ink::CinHatch => rgb(0x007a5c),
+        Ink::Bracket(grade) => match grade {
+            BracketGrade::Erroneous => rgb(0x8f2f67),
+            BracketGrade::Doubtful => rgb(0x9b3f75),
+            BracketGrade::Informative | BracketGrade::Repaired => rgb(0x5d5a53),
+            BracketGrade::FromEdit => rgb(0x2b2a27),
+        },
+        Ink::Candidate => rgb(0x2b2a27),
+        Ink::CandidateSetAside => rgb(0x6e6a61),
+        Ink::Focus => rgb(0x000000),
+        Ink::Stamp => rgb(0x9b3f75),
     }
 }
 
 const fn dark(ink: Ink) -> Colour {
     match ink {
-        Ink::Paper => rgb(0x16191d),
-        Ink::Bracket(BracketGrade::Erroneous) => rgb(0xd55e00),
-        _ => rgb(0xdddddd),
+        Ink::Paper | Ink::OnMark => rgb(0x15181c),
+        Ink::Edge | Ink::Label | Ink::Wind | Ink::LevelMark => rgb(0xe8e4da),
+        Ink::QuietLabel | Ink::HeightScale | Ink::Cursor => rgb(0xaba89f),
+        Ink::Isotherm => rgb(0x8f8678),
+        Ink::Isobar => rgb(0x6c6a66),
+        Ink::FreezingIsotherm => rgb(0x84a9cc),
+        Ink::DryAdiabat => rgb(0x9c7a4c),
+        Ink::MoistAdiabat => rgb(0x5f927c),
+        Ink::MixingRatioLine => rgb(0xa2789a),
+        Ink::IsothermLabel => rgb(0xa89f90),
+        Ink::DryAdiabatLabel => rgb(0xc29a66),
+        Ink::MoistAdiabatLabel => rgb(0x77b095),
+        Ink::MixingRatioLabel => rgb(0xb98bb0),
+        Ink::Ground => rgb(0x7f775f),
+        Ink::Temperature | Ink::Handle(Handle::Temperature) | Ink::Whisker(Handle::Temperature) => rgb(0xff8a3d),
+        Ink::Dewpoint | Ink::Handle(Handle::Dewpoint) | Ink::Whisker(Handle::Dewpoint) => rgb(0x56b4e9),
+        Ink::VirtualTemperature => rgb(0xe0a684),
+        Ink::ReceivedTemperature => rgb(0xd55e00),
+        Ink::ReceivedDewpoint => rgb(0x2f8fd0),
+        Ink::PreviewTemperature | Ink::PreviewDewpoint => rgb(0x2fd0a0),
+        Ink::Parcel => rgb(0xffffff),
+        Ink::ParcelBand => rgba(0x56b4e9, 72),
+        Ink::CapeHatch => rgb(0xe69f00),
+        Ink::CinHatch => rgb(0x1fbf92),
+        Ink::Bracket(grade) => match grade {
+            BracketGrade::Erroneous => rgb(0xf09ac6),
+            BracketGrade::Doubtful => rgb(0xdd8fb8),
+            BracketGrade::Informative | BracketGrade::Repaired => rgb(0xaba89f),
+            BracketGrade::FromEdit => rgb(0xe8e4da),
+        },
+        Ink::Candidate => rgb(0xe8e4da),
+        Ink::CandidateSetAside => rgb(0x9a978e),
+        Ink::Focus => rgb(0xf0e442),
+        Ink::Stamp => rgb(0xdd8fb8),
     }
 }

@@ -146,18 +146,26 @@ pub enum Ink {
     Paper,
     /// The edge of the plot.
     Edge,
-    /// Isotherms and their labels.
+    /// Isotherms.
     Isotherm,
     /// The 0 degC isotherm.
     FreezingIsotherm,
-    /// Isobars and their labels.
+    /// Isobars.
     Isobar,
-    /// Dry adiabats and their labels.
+    /// Dry adiabats.
     DryAdiabat,
-    /// Moist (pseudo-) adiabats and their labels.
+    /// Moist (pseudo-) adiabats.
     MoistAdiabat,
-    /// Lines of constant saturation mixing ratio and their labels.
+    /// Lines of constant saturation mixing ratio.
     MixingRatioLine,
+    /// Labels of isotherms at the head of the plot.
+    IsothermLabel,
+    /// Labels of dry adiabats.
+    DryAdiabatLabel,
+    /// Labels of moist adiabats.
+    MoistAdiabatLabel,
+    /// Labels of mixing-ratio lines.
+    MixingRatioLabel,
     /// The height scale.
     HeightScale,
     /// Ground: below the surface level.
@@ -260,6 +268,56 @@ pub fn text_box(at: Point, anchor: Anchor, text: &str, size: f64) -> Rect {
         Anchor::Right => at.x - width,
     };
     Rect::new(left, at.y - 0.62 * size, width, 1.24 * size)
+}
+
+impl Ink {
+    /// Every ink, so that palettes and painters can be checked against all of them.
+    pub const ALL: [Self; 44] = [
+        Self::Paper,
+        Self::Edge,
+        Self::Isotherm,
+        Self::FreezingIsotherm,
+        Self::Isobar,
+        Self::DryAdiabat,
+        Self::MoistAdiabat,
+        Self::MixingRatioLine,
+        Self::IsothermLabel,
+        Self::DryAdiabatLabel,
+        Self::MoistAdiabatLabel,
+        Self::MixingRatioLabel,
+        Self::HeightScale,
+        Self::Ground,
+        Self::Temperature,
+        Self::Dewpoint,
+        Self::VirtualTemperature,
+        Self::ReceivedTemperature,
+        Self::ReceivedDewpoint,
+        Self::PreviewTemperature,
+        Self::PreviewDewpoint,
+        Self::Parcel,
+        Self::ParcelBand,
+        Self::CapeHatch,
+        Self::CinHatch,
+        Self::LevelMark,
+        Self::Wind,
+        Self::Bracket(BracketGrade::Informative),
+        Self::Bracket(BracketGrade::Doubtful),
+        Self::Bracket(BracketGrade::Erroneous),
+        Self::Bracket(BracketGrade::Repaired),
+        Self::Bracket(BracketGrade::FromEdit),
+        Self::OnMark,
+        Self::Handle(Handle::Temperature),
+        Self::Handle(Handle::Dewpoint),
+        Self::Whisker(Handle::Temperature),
+        Self::Whisker(Handle::Dewpoint),
+        Self::Candidate,
+        Self::CandidateSetAside,
+        Self::Focus,
+        Self::Cursor,
+        Self::Label,
+        Self::QuietLabel,
+        Self::Stamp,
+    ];
 }
 
 impl Scene {

@@ -1,15 +1,56 @@
 //! Readers: bytes in, soundings and notes out. One module a format.
 //!
 //! Imperfect content is not an error: a reader returns what it understood plus notes that say what it didn't, where,
-//! and why. Only a file in which nothing can be read is an error.
+//! and why. Only a file in which nothing can be read is an error, and its text says what to do next.
+//!
+//! The format is recognised by content, never by the file's name. Compressed files (gzip, zip with any number of
+//! members) are opened on the way. [`StationTable`] holds what an office knows about its stations and fills in what a
+//! message leaves out.
+//!
+//! Deliberately absent: any opinion on whether a value is to be believed. An impossible number that is spelled
+//! properly is handed on as received; only the spellings of "missing" become absent here.
+//!
+//! ```
+//! use dewbound_formats::{ReadOptions, read};
+//!
+//! let text = "\
+//! ## station: Upper Vale
+//! ## time: 2031-05-17T18:00Z
+//! ## position: 47.5, 8.25, 430
+//! pressure_hpa,temperature_c,dewpoint_c
+//! 965.0,27.4,16.1
+//! 900.0,21.3,14.8
+//! ";
+//! let loaded = read("upper-vale.csv", text.as_bytes(), &ReadOptions::default())?;
+//! let sounding = &loaded.soundings[0];
+//! assert_eq!(sounding.station.elevation, Some(430.0));
+//! assert_eq!(sounding.levels[0].pressure, Some(96_500.0));
+//! # Ok::<(), dewbound_formats::ReadError>(())
+//! ```
 
+#![cfg_attr(test, allow(clippy::unwrap_used, clippy::expect_used))]
+
+mod columns;
+mod container;
+mod delimited;
+mod digest;
+mod dispatch;
+mod error;
+mod igra;
+mod number;
+mod seems;
 mod stations;
+mod tally;
 pub mod temp;
+mod text;
+mod when;
 
 use dewbound_sounding::{Note, Sounding};
 use jiff::{Timestamp, civil::Date};
 
-pub use stations::*;
+pub use dispatch::{read, read_path};
+pub use error::ReadError;
+pub use stations::{StationTable, StationTableError};
 
 /// What a reader may need beyond the bytes.
 #[derive(Debug, Clone, Copy, Default)]
@@ -29,36 +70,4 @@ pub struct Loaded {
     pub soundings: Vec<Sounding>,
     /// Notes about the file that belong to no sounding.
     pub notes: Vec<Note>,
-}
-
-/// Why nothing could be read.
-#[derive(Debug, thiserror::Error)]
-#[non_exhaustive]
-pub enum ReadError {
-    /// The file could not be opened or read.
-    #[error("{file}: {source}")]
-    Io {
-        /// File name.
-        file: String,
-        /// What the system said.
-        source: std::io::Error,
-    },
-    /// No reader recognises the content.
-    #[error("{file}: not recognised as TEMP text, an IGRA station file or columns with units; {hint}")]
-    Unrecognised {
-        /// File name.
-        file: String,
-        /// What to do.
-        hint: String,
-    },
-}
-
-/// Reads bytes by content (the name only helps with dates and compression).
-pub fn read(_name: &str, _bytes: &[u8], _options: &ReadOptions) -> Result<Loaded, ReadError> {
-    todo!()
-}
-
-/// Opens and reads one file.
-pub fn read_path(_path: &std::path::Path, _options: &ReadOptions) -> Result<Loaded, ReadError> {
-    todo!()
 }

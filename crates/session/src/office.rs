@@ -61,6 +61,8 @@ pub struct OfficeProblem {
     pub what: String,
     /// What to do.
     pub remedy: String,
+    /// Nothing of the file is in use.
+    pub unused: bool,
 }
 
 impl Office {
@@ -92,6 +94,7 @@ impl Office {
                 about: path.display().to_string(),
                 what: lines.join("\n"),
                 remedy: "The other rows serve; correct these and start again".to_owned(),
+                unused: self.stations.is_empty(),
             });
         }
     }
@@ -103,6 +106,7 @@ impl Office {
                 about: path.display().to_string(),
                 what: error.to_string(),
                 remedy: "The built-in thresholds are in force; correct the file and start again".to_owned(),
+                unused: true,
             }),
         }
     }
@@ -130,6 +134,7 @@ pub(crate) fn open(config: &Config) -> (Office, Remembered, Vec<OfficeProblem>) 
             about: Remembered::path(&config.office).display().to_string(),
             what,
             remedy: "Initials and positions typed in earlier are not known; correct or remove the file".to_owned(),
+            unused: true,
         });
         Remembered::default()
     });
@@ -150,5 +155,6 @@ fn unreadable(path: &Path, error: &io::Error, remedy: &str) -> OfficeProblem {
         about: path.display().to_string(),
         what: format!("can't be read: {error}"),
         remedy: remedy.to_owned(),
+        unused: true,
     }
 }

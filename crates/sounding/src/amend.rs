@@ -205,3 +205,114 @@ impl Amendments {
         list
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn all_kinds() -> Amendments {
+        let entry = |amendment, enabled, from_repair: Option<&str>| Entry {
+            amendment,
+            enabled,
+            from_repair: from_repair.map(str::to_string),
+        };
+        Amendments {
+            entries: vec![
+                entry(
+                    Amendment::SurfaceTemperature {
+                        temperature_k: 303.15,
+                    },
+                    true,
+                    None,
+                ),
+                entry(
+                    Amendment::SurfaceDewpoint { dewpoint_k: 293.05 },
+                    false,
+                    None,
+                ),
+                entry(
+                    Amendment::BridgeLayer {
+                        bottom_pa: 70_000.0,
+                        top_pa: 60_000.0,
+                        humidity: BridgeHumidity::MixingRatio,
+                    },
+                    true,
+                    Some("wet-thermometer/bridge@700"),
+                ),
+                entry(
+                    Amendment::DropLevels {
+                        bottom_pa: 40_000.0,
+                        top_pa: 40_000.0,
+                    },
+                    true,
+                    None,
+                ),
+                entry(
+                    Amendment::MixMoisture {
+                        bottom_pa: 96_000.0,
+                        top_pa: 85_000.0,
+                        mixing_ratio: None,
+                    },
+                    true,
+                    None,
+                ),
+                entry(
+                    Amendment::MixMoisture {
+                        bottom_pa: 96_000.0,
+                        top_pa: 85_000.0,
+                        mixing_ratio: Some(0.0123),
+                    },
+                    true,
+                    None,
+                ),
+                entry(
+                    Amendment::DisregardAbove {
+                        pressure_pa: 15_000.0,
+                    },
+                    true,
+                    None,
+                ),
+            ],
+            reach: Some(Reach::Tapered),
+        }
+    }
+
+    #[test]
+    fn survives_json() {
+        let list = all_kinds();
+        let json = serde_json::to_string(&list).unwrap();
+        assert_eq!(serde_json::from_str::<Amendments>(&json).unwrap(), list);
+        // What drafts and ledgers of other versions rely on: names, and fields that may be left out.
+        assert!(json.contains(
+            r#"{"amendment":{"kind":"surface_temperature","temperature_k":303.15},"enabled":true}"#
+        ));
+        assert!(json.contains(r#""from_repair":"wet-thermometer/bridge@700""#));
+        assert!(json.contains(r#""humidity":"mixing_ratio""#));
+        assert!(json.ends_with(r#""reach":"tapered"}"#));
+        let short: Amendments = serde_json::from_str(r#"{"entries":[],"reach":null}"#).unwrap();
+        assert_eq!(short, Amendments::default());
+    }
+
+    #[test]
+    fn surface_entries_are_replaced_or_appended() {
+        let c = Temperature::from_c;
+        let list = Amendments::default().with_surface_dewpoint(c(20.0));
+        assert_eq!(list.entries.len(), 1);
+        let list = list
+            .with_surface_temperature(c(30.0))
+            .with_surface_dewpoint(c(21.0));
+        assert_eq!(list.entries.len(), 2);
+        assert_eq!(list.surface_dewpoint(), Some(c(21.0)));
+        assert_eq!(list.surface_temperature(), Some(c(30.0)));
+
+        // Replacing switches on, and cuts the tie with a repair unless the value is the repair's own.
+        let mut list = list;
+        list.entries[0].enabled = false;
+        list.entries[0].from_repair = Some("surface-mismatch/believe-sonde@960".to_string());
+        assert_eq!(list.surface_dewpoint(), None);
+        let same = list.with_surface_dewpoint(c(21.0));
+        assert!(same.entries[0].enabled && same.entries[0].from_repair.is_some());
+        let other = list.with_surface_dewpoint(c(22.0));
+        assert!(other.entries[0].enabled && other.entries[0].from_repair.is_none());
+    }
+}

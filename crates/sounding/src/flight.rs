@@ -22,6 +22,8 @@ pub(crate) struct Flight {
 const STEADY: f64 = 0.75;
 /// The leg is followed back to the launch from where it has left this many Pa behind.
 const UNDER_WAY: f64 = 6_000.0;
+/// A step between rows longer than this many times the usual one is no ascent.
+const LONGEST_STEP: f64 = 5.0;
 /// A first row this far (Pa) above the start of the steady ascent isn't the surface.
 const FIRST_ROW_TOLERANCE: f64 = 1_500.0;
 
@@ -46,21 +48,23 @@ pub(crate) fn flight(levels: &[Level], rows: &[usize], marked: Option<usize>) ->
         series = timed.into_iter().map(|(_, row)| row).collect();
     }
     let pressures: Vec<f64> = series.iter().map(|&row| pressure_of(row)).collect();
-    let top = pressures
-        .iter()
-        .enumerate()
-        .min_by(|a, b| a.1.total_cmp(b.1))
-        .map(|(at, _)| at)?;
-    let (up, down) = (pressures.get(..=top)?, pressures.get(top..)?);
+    let lowest = pressures.iter().copied().min_by(f64::total_cmp)?;
+    // Several rows may share the least pressure; all of them belong to the leg.
+    let first_at_top = pressures.iter().position(|&p| p == lowest)?;
+    let last_at_top = pressures.iter().rposition(|&p| p == lowest)?;
+    let (up, down) = (
+        pressures.get(..=last_at_top)?,
+        pressures.get(first_at_top..)?,
+    );
     let ascending = span(up) >= 0.5 * span(&pressures);
     let leg_pressures = if ascending { up } else { down };
     if steadiness(leg_pressures, ascending) < STEADY {
         return None;
     }
     let (leg, other_leg) = if ascending {
-        (series.get(..=top)?, series.get(top + 1..)?)
+        (series.get(..=last_at_top)?, series.get(last_at_top + 1..)?)
     } else {
-        (series.get(top..)?, series.get(..top)?)
+        (series.get(first_at_top..)?, series.get(..first_at_top)?)
     };
     if other_leg.len() > 1 && steadiness(if ascending { down } else { up }, !ascending) < STEADY {
         return None;
@@ -162,6 +166,15 @@ fn launch(pressures: &[f64], first: usize) -> Option<usize> {
         }
         at -= 1;
     }
+    // That is good to a few rows; the steps between single rows tell the rest.
+    at = (at + reach).min(under_way);
+    while let Some(back) = at.checked_sub(1)
+        && let (Some(&before), Some(&here)) = (pressures.get(back), pressures.get(at))
+        && before > here
+        && before - here <= LONGEST_STEP * per_row
+    {
+        at = back;
+    }
     Some(at)
 }
 
@@ -191,5 +204,144 @@ fn steadiness(pressures: &[f64], falling: bool) -> f64 {
         1.0
     } else {
         with as f64 / (with + against) as f64
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use crate::testing::{level, received, strictly_falling};
+    use crate::{Level, Sampling};
+
+    /// A row a second, pressure in tenths of hPa: `wait` seconds on the ground with derived pressure wandering, then the ascent at about
+    /// 0.6 hPa/s to 50 hPa, then the fall. The wait is at 40 °C and the fall at 45 °C, so that the legs can be told apart.
+    fn flight_rows(wait: usize, descent: bool) -> Vec<Level> {
+        let tenth = |p: f64| (p * 10.0).round() / 10.0;
+        let mut rows = vec![level(1008.0, 25.0, 20.0)];
+        let mut noise = 0x2545_f491_u32;
+        for _ in 0..wait {
+            // A small congruential generator: the wander only has to be irregular.
+            noise = noise.wrapping_mul(1_664_525).wrapping_add(1_013_904_223);
+            let wander = f64::from(noise >> 16) / 65_536.0 * 30.0 - 12.0;
+            rows.push(level(tenth(1008.0 + wander), 40.0, 20.0));
+        }
+        let mut p = 1007.6;
+        while p > 50.0 {
+            rows.push(level(
+                tenth(p),
+                -65.0 + 90.0 * (p / 1008.0),
+                -75.0 + 95.0 * (p / 1008.0),
+            ));
+            p *= 1.0 - 0.6 / 1008.0 * if p > 300.0 { 1.0 } else { 1.7 };
+        }
+        while descent && p < 700.0 {
+            p *= 1.004;
+            rows.push(level(tenth(p), 45.0, -75.0));
+        }
+        rows
+    }
+
+    #[test]
+    fn wait_and_descent_are_left_out() {
+        let (profile, notes) = received(flight_rows(400, true));
+        assert_eq!(profile.sampling, Sampling::Fine);
+        assert_eq!(profile.surface, Some(0));
+        let surface = profile.surface_air().unwrap();
+        assert_eq!(
+            (surface.pressure.hpa(), surface.temperature.c()),
+            (1008.0, 25.0)
+        );
+        assert!(strictly_falling(&profile));
+        // Nothing of the wait (40 °C) nor of the descent (45 °C).
+        assert!(
+            profile
+                .temperature
+                .iter()
+                .flatten()
+                .all(|&t| t < 30.0 + 273.15),
+            "{:?}",
+            &profile.temperature[..20]
+        );
+        // All of the ascent: one row a tenth of hPa or better.
+        let (alone, _) = received(flight_rows(0, false));
+        assert_eq!(profile.pressure, alone.pressure);
+        assert_eq!(profile.temperature, alone.temperature);
+        let whats: Vec<&str> = notes.iter().map(|note| note.what.as_str()).collect();
+        // Those at exactly the surface pressure are merged into the surface row instead.
+        let waited = flight_rows(400, true)[1..=400]
+            .iter()
+            .filter(|row| row.pressure != Some(100_800.0))
+            .count();
+        let expect = format!("{waited} rows of the wait before launch left out");
+        assert!(whats[0].starts_with(&expect), "{whats:?}");
+        assert!(
+            whats[1].contains("rows of the descent after the top left out"),
+            "{whats:?}"
+        );
+        assert!(notes.len() <= 3, "{whats:?}");
+    }
+
+    #[test]
+    fn waiting_at_one_pressure_keeps_the_first_row() {
+        let mut rows: Vec<Level> = (0..300)
+            .map(|n| level(1008.0, 25.0 + 0.01 * f64::from(n), 20.0))
+            .collect();
+        rows.extend(flight_rows(0, false).into_iter().skip(1));
+        let (profile, notes) = received(rows);
+        assert_eq!(profile.surface_air().unwrap().temperature.c(), 25.0);
+        assert_eq!(profile.pressure[1], 100_760.0);
+        assert_eq!(notes.len(), 1, "{notes:?}");
+        assert!(
+            notes[0]
+                .what
+                .contains("levels repeat a pressure with other values")
+        );
+    }
+
+    #[test]
+    fn a_pause_low_down_is_part_of_the_ascent() {
+        // The balloon stops 20 hPa up for two minutes, as at a sharp inversion.
+        let mut rows = flight_rows(0, false);
+        let at = rows
+            .iter()
+            .position(|l| l.pressure.unwrap() < 98_800.0)
+            .unwrap();
+        let stopped = rows[at];
+        for _ in 0..120 {
+            rows.insert(at, stopped);
+        }
+        let (profile, _) = received(rows);
+        assert_eq!(profile, {
+            let mut plain = received(flight_rows(0, false)).0;
+            plain.received = profile.received.clone();
+            plain
+        });
+    }
+
+    #[test]
+    fn a_first_row_far_up_is_not_the_surface() {
+        let mut rows = flight_rows(0, false);
+        rows.insert(0, level(500.3, -10.0, -20.0));
+        let (profile, _) = received(rows);
+        assert_eq!(profile.surface_pressure().unwrap().hpa(), 1008.0);
+    }
+
+    #[test]
+    fn descending_sonde_in_order_of_time() {
+        let mut falling = flight_rows(0, false);
+        falling.reverse();
+        let (down, notes) = received(falling.clone());
+        let (up, _) = received(flight_rows(0, false));
+        assert_eq!(down.pressure, up.pressure);
+        assert_eq!(down.surface, Some(0));
+        assert_eq!(down.temperature[0], up.temperature[0]);
+        assert!(notes.len() <= 1, "{notes:?}");
+        // Times decide over the order of the rows.
+        let count = falling.len();
+        for (n, row) in falling.iter_mut().enumerate() {
+            row.elapsed = Some(n as f64);
+        }
+        falling.rotate_left(count / 3);
+        let (timed, _) = received(falling);
+        assert_eq!(timed.pressure, down.pressure);
     }
 }

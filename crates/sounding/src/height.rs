@@ -163,3 +163,114 @@ impl Profile {
         Some(tv0 + (p0 / pressure).ln() / (p0 / p1).ln() * (tv1 - tv0))
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::testing::{level, received};
+
+    /// US Standard Atmosphere 1976, geopotential height (m), pressure (hPa), temperature (K); from memory, agreeing with its defining formula.
+    const STANDARD: [(f64, f64, f64); 13] = [
+        (0.0, 1013.25, 288.15),
+        (1_000.0, 898.746, 281.65),
+        (2_000.0, 794.952, 275.15),
+        (3_000.0, 701.085, 268.65),
+        (4_000.0, 616.402, 262.15),
+        (5_000.0, 540.199, 255.65),
+        (6_000.0, 471.810, 249.15),
+        (7_000.0, 410.607, 242.65),
+        (8_000.0, 355.998, 236.15),
+        (9_000.0, 307.425, 229.65),
+        (10_000.0, 264.363, 223.15),
+        (11_000.0, 226.321, 216.65),
+        (20_000.0, 54.7489, 216.65),
+    ];
+
+    /// The standard atmosphere without humidity, its lowest level with a height.
+    fn standard() -> Profile {
+        let levels = STANDARD
+            .iter()
+            .map(|&(_, hpa, t)| crate::Level {
+                dewpoint: None,
+                height: (hpa > 1000.0).then_some(0.0),
+                ..level(hpa, t - 273.15, 0.0)
+            })
+            .collect();
+        received(levels).0
+    }
+
+    #[test]
+    fn hypsometric_heights_of_the_standard_atmosphere() {
+        let profile = standard();
+        let heights = profile.heights();
+        for (row, &(z, hpa, _)) in STANDARD.iter().enumerate() {
+            let height = profile.height_at(Pressure::from_hpa(hpa)).unwrap();
+            // Temperature is linear in height there and in ln p here: 1 km apart that is worth up to a metre over the troposphere.
+            assert!(
+                (height - z).abs() < 2.0,
+                "{hpa} hPa: {height} m, expected {z} m"
+            );
+            assert!((heights[row].unwrap() - height).abs() < 1e-6);
+        }
+    }
+
+    #[test]
+    fn between_received_heights() {
+        let mut profile = standard();
+        profile.height[11] = Some(11_000.0);
+        // Between two anchors the hypsometric curve is kept: 5,000 m lies where the table has it, and both ends are exact.
+        let height = profile.height_at(Pressure::from_hpa(540.199)).unwrap();
+        assert!((height - 5_000.0).abs() < 2.0, "{height}");
+        assert_eq!(
+            profile.height_at(Pressure::from_hpa(226.321)),
+            Some(11_000.0)
+        );
+        // Without temperatures: linear in ln p.
+        profile.temperature.fill(None);
+        let middle = profile
+            .height_at(Pressure::from_hpa((1013.25_f64 * 226.321).sqrt()))
+            .unwrap();
+        assert!((middle - 5_500.0).abs() < 1e-6, "{middle}");
+        assert_eq!(profile.height_at(Pressure::from_hpa(100.0)), None);
+    }
+
+    #[test]
+    fn one_pass_and_single_heights_agree() {
+        let mut profile = standard();
+        for (lost, kept) in [
+            (vec![0, 3, 4], vec![6]),
+            (vec![12], vec![2, 9]),
+            (vec![5, 6, 7], vec![0, 12]),
+        ] {
+            profile = Profile {
+                height: vec![None; profile.len()],
+                ..standard()
+            };
+            for row in lost {
+                profile.temperature[row] = None;
+            }
+            for row in kept {
+                profile.height[row] = Some(STANDARD[row].0);
+            }
+            let heights = profile.heights();
+            for (row, height) in heights.iter().enumerate() {
+                let single = profile.height_at(Pressure::from_pa(profile.pressure[row]));
+                match (height, single) {
+                    (Some(a), Some(b)) => assert!((a - b).abs() < 1e-6, "row {row}: {a} and {b}"),
+                    (a, b) => assert_eq!(*a, b, "row {row}"),
+                }
+            }
+        }
+        assert_eq!(profile.height_at(Pressure::from_hpa(1050.0)), None);
+    }
+
+    #[test]
+    fn no_height_without_an_anchor() {
+        let profile = Profile {
+            height: vec![None; STANDARD.len()],
+            ..standard()
+        };
+        assert_eq!(profile.height_at(Pressure::from_hpa(500.0)), None);
+        assert!(profile.heights().iter().all(Option::is_none));
+    }
+}

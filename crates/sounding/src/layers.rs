@@ -1,7 +1,7 @@
 //! Amendments of a layer.
 
-use crate::merge::hpa;
 use crate::profile::SAME_PRESSURE;
+use crate::telling::hpa;
 use crate::{BridgeHumidity, Note, Place, Profile};
 use dewbound_thermo::{
     Environment, Pressure, Temperature, dewpoint_from_mixing_ratio, dewpoint_from_relative_humidity,
@@ -146,7 +146,7 @@ pub(crate) fn drop_levels(profile: &mut Profile, bottom: f64, top: f64, notes: &
         }
         return;
     }
-    if !(bottom > top) {
+    if bottom.partial_cmp(&top) != Some(std::cmp::Ordering::Greater) {
         refuse(
             notes,
             format!("{what} not dropped"),
@@ -271,6 +271,245 @@ pub(crate) fn disregard_above(profile: &mut Profile, pressure: f64, notes: &mut 
             notes,
             format!("{what}: nothing disregarded"),
             "the profile ends below",
+        );
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use crate::testing::{afternoon, level, received};
+    use crate::{Amendment, Amendments, BridgeHumidity, Daylight, Entry, Level, Profile, Working};
+    use dewbound_thermo::Pressure;
+
+    fn apply(levels: Vec<Level>, amendment: Amendment) -> (Profile, Working) {
+        let (profile, _) = received(levels);
+        let list = Amendments {
+            entries: vec![Entry {
+                amendment,
+                enabled: true,
+                from_repair: None,
+            }],
+            reach: None,
+        };
+        let working = list.apply(&profile, Daylight::Unknown);
+        (profile, working)
+    }
+
+    fn refused(levels: Vec<Level>, amendment: Amendment, what: &str) {
+        let (before, working) = apply(levels, amendment);
+        assert_eq!(working.profile, before);
+        let [note] = working.notes.as_slice() else {
+            panic!("{:?}", working.notes)
+        };
+        assert!(note.what.contains(what) && !note.why.is_empty(), "{note:?}");
+    }
+
+    /// A cold, saturated spike at 610 hPa in the afternoon.
+    fn spiked() -> Vec<Level> {
+        let mut levels = afternoon();
+        levels.push(level(650.0, 4.0, 2.0));
+        levels.push(level(610.0, -6.0, -6.5));
+        levels
+    }
+
+    #[test]
+    fn bridge_is_linear_in_ln_p_and_keeps_what_it_says() {
+        for humidity in [
+            BridgeHumidity::RelativeHumidity,
+            BridgeHumidity::MixingRatio,
+        ] {
+            let bridge = Amendment::BridgeLayer {
+                bottom_pa: 65_000.0,
+                top_pa: 50_000.0,
+                humidity,
+            };
+            let (before, working) = apply(spiked(), bridge);
+            assert!(working.notes.is_empty());
+            assert_eq!(working.profile.pressure, before.pressure);
+            let row = before.pressure.iter().position(|&p| p == 61_000.0).unwrap();
+            let (old, new) = (before.air(row).unwrap(), working.profile.air(row).unwrap());
+            // By hand: 4.0 °C at 650 hPa, -12.3 °C at 500 hPa.
+            let expect = 4.0 - 16.3 * (650.0_f64 / 610.0).ln() / (650.0_f64 / 500.0).ln();
+            assert!((new.temperature.c() - expect).abs() < 1e-9);
+            match humidity {
+                BridgeHumidity::RelativeHumidity => {
+                    assert!((new.relative_humidity() - old.relative_humidity()).abs() < 1e-9);
+                }
+                BridgeHumidity::MixingRatio => assert_eq!(new.dewpoint, old.dewpoint),
+            }
+            for other in (0..before.len()).filter(|&other| other != row) {
+                assert_eq!(before.air(other), working.profile.air(other));
+            }
+        }
+    }
+
+    #[test]
+    fn bridge_downward_caps_the_mixing_ratio() {
+        // A warm spike bridged away leaves less room for its moisture.
+        let mut levels = afternoon();
+        levels.push(level(610.0, 9.0, 8.0));
+        let bridge = Amendment::BridgeLayer {
+            bottom_pa: 70_000.0,
+            top_pa: 50_000.0,
+            humidity: BridgeHumidity::MixingRatio,
+        };
+        let (_, working) = apply(levels, bridge);
+        assert!(
+            working.notes[0]
+                .what
+                .contains("1 levels capped at saturation")
+        );
+    }
+
+    #[test]
+    fn ends_between_levels_are_inserted() {
+        let bridge = Amendment::BridgeLayer {
+            bottom_pa: 66_000.0,
+            top_pa: 55_000.0,
+            humidity: BridgeHumidity::MixingRatio,
+        };
+        let (before, working) = apply(spiked(), bridge);
+        assert_eq!(working.profile.len(), before.len() + 2);
+        let (old, new) = (
+            before.environment().unwrap(),
+            working.profile.environment().unwrap(),
+        );
+        for hpa in [700.0, 680.0, 660.0, 550.0, 520.0, 400.0] {
+            let at = |e: &dewbound_thermo::Environment| {
+                e.at(Pressure::from_hpa(hpa)).unwrap().temperature.k()
+            };
+            assert!((at(&old) - at(&new)).abs() < 1e-9, "{hpa}");
+        }
+    }
+
+    #[test]
+    fn what_a_bridge_refuses() {
+        let bridge = |bottom_pa, top_pa| Amendment::BridgeLayer {
+            bottom_pa,
+            top_pa,
+            humidity: BridgeHumidity::RelativeHumidity,
+        };
+        refused(
+            afternoon(),
+            bridge(50_000.0, 70_000.0),
+            "bridge from 500 hPa to 700 hPa not done",
+        );
+        refused(afternoon(), bridge(f64::NAN, 70_000.0), "not done");
+        refused(
+            afternoon(),
+            bridge(98_000.0, 70_000.0),
+            "bridge from 980 hPa to 700 hPa not done",
+        );
+        refused(afternoon(), bridge(20_000.0, 5_000.0), "not done");
+        refused(afternoon(), bridge(50_000.0, 40_000.0), "changes nothing");
+    }
+
+    #[test]
+    fn drops_between_and_single() {
+        let (before, working) = apply(
+            spiked(),
+            Amendment::DropLevels {
+                bottom_pa: 65_000.0,
+                top_pa: 50_000.0,
+            },
+        );
+        assert_eq!(working.profile.len(), before.len() - 1);
+        assert!(!working.profile.pressure.contains(&61_000.0));
+        let (_, single) = apply(
+            spiked(),
+            Amendment::DropLevels {
+                bottom_pa: 61_000.0,
+                top_pa: 61_000.0,
+            },
+        );
+        assert_eq!(single.profile, working.profile);
+        let drop = |bottom_pa, top_pa| Amendment::DropLevels { bottom_pa, top_pa };
+        refused(
+            afternoon(),
+            drop(61_000.0, 61_000.0),
+            "level 610 hPa not dropped",
+        );
+        refused(
+            afternoon(),
+            drop(96_000.0, 96_000.0),
+            "surface level 960 hPa not dropped",
+        );
+        refused(afternoon(), drop(50_000.0, 40_000.0), "nothing dropped");
+        refused(afternoon(), drop(40_000.0, 50_000.0), "not dropped");
+        // A range across the surface drops the rest of it.
+        let (before, working) = apply(afternoon(), drop(97_000.0, 94_000.0));
+        assert_eq!(working.profile.len(), before.len() - 1);
+        assert!(working.notes[0].what.contains("the surface level is kept"));
+    }
+
+    #[test]
+    fn mixing_keeps_the_mean() {
+        let mix = |mixing_ratio| Amendment::MixMoisture {
+            bottom_pa: 96_000.0,
+            top_pa: 90_000.0,
+            mixing_ratio,
+        };
+        let (before, working) = apply(afternoon(), mix(None));
+        assert!(working.notes.is_empty());
+        // An independent mean: a fine sum over p of the interpolated profile.
+        let environment = before.environment().unwrap();
+        let steps = 20_000;
+        let mean = (0..steps)
+            .map(|n| {
+                let p = 90_000.0 + 6_000.0 * (f64::from(n) + 0.5) / f64::from(steps);
+                environment.at(Pressure::from_pa(p)).unwrap().mixing_ratio()
+            })
+            .sum::<f64>()
+            / f64::from(steps);
+        for row in 0..3 {
+            let w = working.profile.air(row).unwrap().mixing_ratio();
+            assert!((w / mean - 1.0).abs() < 1e-6, "row {row}: {w}, mean {mean}");
+        }
+        assert_eq!(working.profile.dewpoint[3..], before.dewpoint[3..]);
+
+        let (_, given) = apply(afternoon(), mix(Some(0.010)));
+        for row in 0..3 {
+            assert!((given.profile.air(row).unwrap().mixing_ratio() - 0.010).abs() < 1e-9);
+        }
+        let (_, soaked) = apply(afternoon(), mix(Some(0.028)));
+        assert!(soaked.notes[0].what.contains("capped at saturation"));
+        refused(afternoon(), mix(Some(-0.001)), "not done");
+        refused(afternoon(), mix(Some(f64::NAN)), "not done");
+    }
+
+    #[test]
+    fn cut_above() {
+        let (before, working) = apply(
+            afternoon(),
+            Amendment::DisregardAbove {
+                pressure_pa: 45_000.0,
+            },
+        );
+        assert_eq!(working.profile.pressure.last(), Some(&50_000.0));
+        assert_eq!(
+            working.profile.pressure[..],
+            before.pressure[..working.profile.len()]
+        );
+        refused(
+            afternoon(),
+            Amendment::DisregardAbove {
+                pressure_pa: 5_000.0,
+            },
+            "nothing disregarded",
+        );
+        refused(
+            afternoon(),
+            Amendment::DisregardAbove {
+                pressure_pa: 99_000.0,
+            },
+            "not disregarded",
+        );
+        refused(
+            afternoon(),
+            Amendment::DisregardAbove {
+                pressure_pa: f64::NAN,
+            },
+            "not disregarded",
         );
     }
 }

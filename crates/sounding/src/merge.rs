@@ -1,65 +1,16 @@
-//! Cleaning, ordering and merging the received levels.
+//! Ordering and merging the received levels.
 
+use crate::clean::{HEIGHTS, cleaned};
 use crate::flight::{Flight, flight};
 use crate::profile::SAME_PRESSURE;
+use crate::telling::{Tally, at, hpa, place};
 use crate::{Level, LevelKind, Note, Place, Profile, Sampling, Sounding, Wind};
 
-/// Pressures (Pa) a balloon can meet; the highest on record at sea level is below 1,090 hPa.
-const PRESSURES: std::ops::RangeInclusive<f64> = 10.0..=110_000.0;
-/// Temperatures and dew points (K) that can't be ruled out outright: far outside every record from ground to stratopause.
-const TEMPERATURES: std::ops::RangeInclusive<f64> = 140.0..=340.0;
-const DEWPOINTS: std::ops::RangeInclusive<f64> = 120.0..=320.0;
-/// Heights, m.
-const HEIGHTS: std::ops::RangeInclusive<f64> = -1_000.0..=80_000.0;
-/// Wind speeds, m/s.
-const SPEEDS: std::ops::RangeInclusive<f64> = 0.0..=250.0;
-/// Dew point above temperature up to this (K) is rounding or slight supersaturation: saturated.
-const SATURATED_WITHIN: f64 = 1.0;
 /// A complete level this close (Pa) above an incomplete surface serves in its place.
 const SERVES_WITHIN: f64 = 1_000.0;
 /// Longest median step (Pa) of fine data, and the fewest pressures to judge by.
 const FINE_STEP: f64 = 300.0;
 const FINE_ROWS: usize = 20;
-
-/// Occurrences of one kind of trouble, told one by one in coded data and as one note in fine data.
-struct Tally {
-    /// What a single note for many says, after the count.
-    many: &'static str,
-    why: &'static str,
-    seen: Vec<(Place, String)>,
-}
-
-impl Tally {
-    fn new(many: &'static str, why: &'static str) -> Self {
-        Self {
-            many,
-            why,
-            seen: Vec::new(),
-        }
-    }
-
-    fn add(&mut self, place: Place, what: String) {
-        self.seen.push((place, what));
-    }
-
-    fn tell(self, sampling: Sampling, notes: &mut Vec<Note>) {
-        let count = self.seen.len();
-        let why = self.why.to_string();
-        if sampling == Sampling::Coded || count <= 3 {
-            notes.extend(self.seen.into_iter().map(|(place, what)| Note {
-                place,
-                what,
-                why: why.clone(),
-            }));
-        } else if let Some((place, first)) = self.seen.into_iter().next() {
-            notes.push(Note {
-                place,
-                what: format!("{count} {}; the first: {first}", self.many),
-                why,
-            });
-        }
-    }
-}
 
 /// See [`Profile::received`].
 pub(crate) fn received(sounding: &Sounding) -> (Profile, Vec<Note>) {
@@ -123,81 +74,6 @@ pub(crate) fn received(sounding: &Sounding) -> (Profile, Vec<Note>) {
         height.get_or_insert(elevation);
     }
     (profile, notes)
-}
-
-/// A level with only the values that can be used.
-fn cleaned(index: usize, level: &Level, unusable: &mut Tally, saturated: &mut Tally) -> Level {
-    let place = place(level);
-    let mut checked = |value: Option<f64>,
-                       range: &std::ops::RangeInclusive<f64>,
-                       name: &str,
-                       shown: fn(f64) -> String| {
-        let value = value?;
-        if range.contains(&value) {
-            return Some(value);
-        }
-        unusable.add(
-            place,
-            format!(
-                "{name} {} of received level {} counts as missing",
-                shown(value),
-                index + 1
-            ),
-        );
-        None
-    };
-    let celsius = |k: f64| format!("{:.1} °C", k - 273.15);
-    let pressure = checked(level.pressure, &PRESSURES, "pressure", hpa);
-    let height = checked(level.height, &HEIGHTS, "height", |z| format!("{z} m"));
-    let temperature = checked(level.temperature, &TEMPERATURES, "temperature", celsius);
-    let mut dewpoint = checked(level.dewpoint, &DEWPOINTS, "dew point", celsius);
-    let wind = level.wind.filter(|wind| {
-        let speed = checked(Some(wind.speed), &SPEEDS, "wind speed", |v| {
-            format!("{v} m/s")
-        });
-        let direction = checked(
-            Some(wind.direction),
-            &(0.0..=360.0),
-            "wind direction",
-            |d| format!("{d}°"),
-        );
-        speed.is_some() && direction.is_some()
-    });
-    if let (Some(t), Some(td)) = (temperature, dewpoint)
-        && td > t
-    {
-        if td - t <= SATURATED_WITHIN {
-            dewpoint = Some(t);
-            saturated.add(
-                place,
-                format!(
-                    "dew point {} above temperature {} at {}: counted as saturated",
-                    celsius(td),
-                    celsius(t),
-                    at(pressure)
-                ),
-            );
-        } else {
-            dewpoint = None;
-            unusable.add(
-                place,
-                format!(
-                    "dew point {} far above temperature {} at {}: counts as missing",
-                    celsius(td),
-                    celsius(t),
-                    at(pressure)
-                ),
-            );
-        }
-    }
-    Level {
-        pressure,
-        height,
-        temperature,
-        dewpoint,
-        wind,
-        ..*level
-    }
 }
 
 /// Fine or coded: see [`Profile::received`].
@@ -479,20 +355,277 @@ fn choose_surface(
     }
 }
 
-fn place(level: &Level) -> Place {
-    level.line.map_or(Place::File, Place::Line)
-}
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::testing::{
+        afternoon, any_fine_levels, any_level, config, level, received, strictly_falling,
+        wind_level,
+    };
+    use crate::{Numbers, Station};
+    use proptest::prelude::*;
 
-fn at(pressure: Option<f64>) -> String {
-    pressure.map_or_else(|| "unknown pressure".to_string(), hpa)
-}
+    #[test]
+    fn first_value_kept_gaps_filled_conflicts_noted() {
+        let mut first = level(850.0, 18.0, 0.0);
+        first.dewpoint = None;
+        first.line = Some(7);
+        let mut second = level(850.0, 18.4, 12.0);
+        second.height = Some(1_480.0);
+        second.line = Some(9);
+        let mut levels = afternoon();
+        levels.retain(|l| l.pressure != Some(85_000.0));
+        levels.extend([first, second]);
+        let (profile, notes) = received(levels);
+        let row = profile
+            .pressure
+            .iter()
+            .position(|&p| p == 85_000.0)
+            .unwrap();
+        assert_eq!(profile.temperature[row], Some(18.0 + 273.15));
+        assert_eq!(profile.dewpoint[row], Some(12.0 + 273.15));
+        assert_eq!(profile.height[row], Some(1_480.0));
+        assert_eq!(profile.received[row], Some(10));
+        let [note] = notes.as_slice() else {
+            panic!("{notes:?}")
+        };
+        assert_eq!(note.place, Place::Line(9));
+        assert_eq!(
+            note.what,
+            "850 hPa repeated with other temperature; the first received is kept"
+        );
+    }
 
-/// A pressure as people read it, no more decimals than it has.
-pub(crate) fn hpa(pa: f64) -> String {
-    let tenths = (pa / 10.0).round() / 10.0;
-    if (tenths - tenths.round()).abs() < 1e-9 {
-        format!("{tenths:.0} hPa")
-    } else {
-        format!("{tenths:.1} hPa")
+    #[test]
+    fn repeated_alike_is_no_conflict() {
+        let mut levels = afternoon();
+        levels.extend(afternoon());
+        let (twice, notes) = received(levels);
+        assert_eq!(notes, []);
+        assert_eq!(twice, received(afternoon()).0);
+    }
+
+    #[test]
+    fn levels_below_ground_carry_heights_only() {
+        let mut levels = afternoon();
+        levels.insert(
+            0,
+            Level {
+                pressure: Some(100_000.0),
+                height: Some(55.0),
+                kind: LevelKind::Standard,
+                ..Level::default()
+            },
+        );
+        let (profile, notes) = received(levels);
+        assert_eq!(notes, []);
+        assert_eq!(profile.surface, Some(1));
+        assert_eq!(profile.surface_pressure().unwrap().hpa(), 960.0);
+        assert_eq!(
+            profile.environment().unwrap().bottom().pressure.hpa(),
+            960.0
+        );
+        assert_eq!(profile.environment_rows().first(), Some(&1));
+        // Temperatures below a marked surface are told and not used.
+        let mut levels = afternoon();
+        levels[1].kind = LevelKind::Surface;
+        let (profile, notes) = received(levels);
+        assert_eq!(profile.surface, Some(1));
+        assert_eq!(profile.environment_rows().first(), Some(&1));
+        assert!(
+            notes[0]
+                .what
+                .contains("1 level with temperature below the surface level at 955 hPa")
+        );
+    }
+
+    #[test]
+    fn a_complete_level_close_above_serves() {
+        let mut levels = afternoon();
+        levels[0].dewpoint = None;
+        let (profile, notes) = received(levels.clone());
+        assert_eq!(profile.surface_pressure().unwrap().hpa(), 955.0);
+        assert!(
+            notes[0]
+                .what
+                .contains("the complete level at 955 hPa serves"),
+            "{notes:?}"
+        );
+        assert!(Numbers::of(&profile).surface.is_some());
+
+        // No complete level within 10 hPa: no surface parcel; the others start at the lowest complete level and say so.
+        levels.remove(1);
+        let (profile, notes) = received(levels);
+        assert_eq!(profile.surface_pressure().unwrap().hpa(), 960.0);
+        assert!(
+            notes[0]
+                .what
+                .contains("no surface parcel until both are set")
+        );
+        let numbers = Numbers::of(&profile);
+        assert!(
+            numbers.surface.is_none() && numbers.mixed.is_some() && numbers.most_unstable.is_some()
+        );
+        assert_eq!(numbers.starts_at.unwrap().hpa(), 900.0);
+    }
+
+    #[test]
+    fn wind_alone_makes_a_surface() {
+        let mut levels = afternoon();
+        levels.push(wind_level(965.0, 180.0, 4.0));
+        let (profile, notes) = received(levels);
+        // Then it lacks temperature, and the level 5 hPa above serves.
+        assert_eq!(profile.surface, Some(1));
+        assert!(
+            notes[0]
+                .what
+                .contains("the surface level at 965 hPa lacks temperature or humidity")
+        );
+    }
+
+    #[test]
+    fn values_no_air_can_have_are_missing() {
+        let mut levels = afternoon();
+        levels[2].temperature = Some(f64::NAN);
+        levels[3].dewpoint = Some(900.0);
+        levels[4].wind = Some(Wind {
+            direction: 400.0,
+            speed: 5.0,
+        });
+        levels[5].height = Some(f64::INFINITY);
+        levels[6].line = Some(33);
+        levels[6].dewpoint = levels[6].temperature.map(|t| t + 3.0);
+        levels.push(Level {
+            pressure: Some(-5.0),
+            ..level(1.0, 0.0, 0.0)
+        });
+        levels.push(Level {
+            height: Some(3_000.0),
+            ..Level::default()
+        });
+        // Vapour at 20 °C has 23 hPa: more than half of 40 hPa.
+        levels.push(level(40.0, 20.0, 20.0));
+        let (profile, notes) = received(levels);
+        assert_eq!(profile.temperature[2], None);
+        assert_eq!(profile.dewpoint[3], None);
+        assert_eq!(profile.wind[4], None);
+        assert_eq!(profile.height[5], None);
+        assert_eq!(profile.dewpoint[6], None);
+        assert_eq!(profile.len(), 12);
+        let whats: Vec<&str> = notes.iter().map(|note| note.what.as_str()).collect();
+        let expect = [
+            "temperature NaN °C of received level 3 counts as missing",
+            "dew point 626.9 °C of received level 4 counts as missing",
+            "wind direction 400° of received level 5 counts as missing",
+            "height inf m of received level 6 counts as missing",
+            "dew point -9.3 °C far above temperature -12.3 °C at 500 hPa: counts as missing",
+            "pressure -0.1 hPa of received level 12 counts as missing",
+            "dew point 20.0 °C at 40 hPa: counts as missing, vapour would outweigh the air",
+            "2 levels without pressure left out",
+        ];
+        assert_eq!(whats, expect);
+        assert_eq!(notes[4].place, Place::Line(33));
+        assert!(Numbers::of(&profile).surface.is_some());
+    }
+
+    #[test]
+    fn slight_supersaturation_is_saturation() {
+        let mut levels = afternoon();
+        levels[3].dewpoint = levels[3].temperature.map(|t| t + 0.4);
+        let (profile, notes) = received(levels);
+        assert_eq!(profile.dewpoint[3], profile.temperature[3]);
+        assert_eq!(notes.len(), 1);
+    }
+
+    #[test]
+    fn nothing_received() {
+        let (profile, notes) = received(Vec::new());
+        assert_eq!((profile.len(), profile.surface, notes.len()), (0, None, 0));
+        assert!(Numbers::of(&profile).problem.is_some());
+        let (profile, _) = received(vec![wind_level(900.0, 10.0, 3.0)]);
+        assert!(Numbers::of(&profile).problem.is_some());
+        assert_eq!(profile.top(), None);
+    }
+
+    #[test]
+    fn surface_takes_the_station_elevation() {
+        let sounding = Sounding {
+            station: Station {
+                elevation: Some(420.0),
+                ..Station::default()
+            },
+            levels: afternoon(),
+            ..Sounding::default()
+        };
+        let (profile, _) = Profile::received(&sounding);
+        assert_eq!(profile.height[0], Some(420.0));
+        assert!(profile.heights().iter().all(Option::is_some));
+    }
+
+    #[test]
+    fn sampling_is_read_from_the_steps() {
+        assert_eq!(received(afternoon()).0.sampling, Sampling::Coded);
+        let every = |step: f64| {
+            (0..150)
+                .map(|n| level(1000.0 - step * f64::from(n), 10.0, 5.0))
+                .collect()
+        };
+        assert_eq!(received(every(2.9)).0.sampling, Sampling::Fine);
+        assert_eq!(received(every(3.1)).0.sampling, Sampling::Coded);
+    }
+
+    proptest! {
+        #![proptest_config(config())]
+
+        #[test]
+        fn any_levels_make_a_sound_profile(levels in prop_oneof![
+            prop::collection::vec(any_level(), 0..60).boxed(),
+            any_fine_levels().boxed(),
+        ]) {
+            let (profile, _) = received(levels.clone());
+            prop_assert!(strictly_falling(&profile));
+            let columns = [
+                profile.height.len(), profile.temperature.len(), profile.dewpoint.len(), profile.wind.len(), profile.received.len(),
+            ];
+            prop_assert!(columns.iter().all(|&n| n == profile.len()));
+            prop_assert!(profile.surface.is_none_or(|row| row < profile.len()));
+            prop_assert!(profile.received.iter().flatten().all(|&index| index < levels.len()));
+            for (t, td) in profile.temperature.iter().zip(&profile.dewpoint) {
+                prop_assert!(t.is_none_or(f64::is_finite) && td.is_none_or(f64::is_finite));
+                if let (Some(t), Some(td)) = (t, td) {
+                    prop_assert!(td <= t);
+                }
+            }
+            let numbers = Numbers::of(&profile);
+            if let Some(problem) = numbers.problem {
+                // Whatever comes in, the only thing that can be wrong is that there is too little of it.
+                let too_little = matches!(problem,
+                    dewbound_thermo::EnvironmentError::TooFewLevels(_)
+                    | dewbound_thermo::EnvironmentError::BottomWithoutHumidity { .. });
+                prop_assert!(too_little, "{}", problem);
+            }
+            let _ = profile.heights();
+        }
+
+        #[test]
+        fn order_does_not_matter_for_distinct_pressures(
+            (levels, shuffled) in prop::collection::vec(any_level(), 1..60).prop_map(|levels| {
+                // Distinct pressures, and at most one marked surface.
+                let mut seen: Vec<f64> = Vec::new();
+                levels.into_iter().filter(|level| {
+                    let new = level.pressure.is_some_and(|p| p.is_finite() && seen.iter().all(|q| (q - p).abs() > 1.0));
+                    if new { seen.extend(level.pressure); }
+                    new && level.kind != LevelKind::Surface
+                }).collect::<Vec<_>>()
+            }).prop_flat_map(|levels| (Just(levels.clone()), Just(levels).prop_shuffle()))
+        ) {
+            let (mut a, _) = received(levels.clone());
+            let (mut b, _) = received(shuffled.clone());
+            let pressures = |profile: &mut Profile, levels: &[Level]| -> Vec<Option<f64>> {
+                std::mem::take(&mut profile.received).into_iter().flatten().map(|index| levels[index].pressure).collect()
+            };
+            prop_assert_eq!(pressures(&mut a, &levels), pressures(&mut b, &shuffled));
+            prop_assert_eq!(a, b);
+        }
     }
 }

@@ -128,3 +128,94 @@ impl Numbers {
         }
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::testing::{afternoon, level, received};
+    use crate::{Amendments, Daylight, Reach};
+    use dewbound_thermo::Temperature;
+
+    #[test]
+    fn most_unstable_is_the_surface_by_day() {
+        let (profile, _) = received(afternoon());
+        let numbers = Numbers::of(&profile);
+        assert_eq!(numbers.most_unstable_row, Some(0));
+        assert!(numbers.most_unstable_is_surface);
+        assert_eq!(numbers.most_unstable, numbers.surface);
+        assert_eq!(numbers.parcel(Parcel::Mixed), numbers.mixed.as_ref());
+        // Mixed from the surface pressure, drier than the surface here.
+        let (surface, mixed) = (numbers.surface.unwrap(), numbers.mixed.unwrap());
+        assert_eq!(mixed.start.pressure, surface.start.pressure);
+        assert!(mixed.start.dewpoint < surface.start.dewpoint && mixed.cape < surface.cape);
+    }
+
+    #[test]
+    fn most_unstable_aloft_is_a_received_level() {
+        // A cold pool at the ground with warm moist air over it.
+        let mut levels = afternoon();
+        levels[0] = level(960.0, 17.0, 13.0);
+        levels[1] = level(935.0, 16.0, 13.0);
+        let (profile, _) = received(levels);
+        let numbers = Numbers::of(&profile);
+        assert!(!numbers.most_unstable_is_surface);
+        // Largest theta-e of the levels within 300 hPa of the ground.
+        let best = (0..profile.len())
+            .filter(|&row| profile.pressure[row] >= 66_000.0)
+            .max_by(|&a, &b| {
+                let theta_e = |row| profile.air(row).unwrap().theta_e().k();
+                theta_e(a).total_cmp(&theta_e(b))
+            });
+        assert_eq!(numbers.most_unstable_row, best);
+
+        // A row inserted by an amendment is never chosen, even when it has the largest theta-e.
+        let list = Amendments {
+            reach: Some(Reach::Tapered),
+            ..Amendments::default()
+        };
+        let working = list
+            .with_surface_temperature(Temperature::from_c(31.0))
+            .with_surface_dewpoint(Temperature::from_c(12.0))
+            .apply(&profile, Daylight::Day);
+        let numbers = Numbers::of(&working.profile);
+        let row = numbers.most_unstable_row.unwrap();
+        assert!(working.profile.received[row].is_some());
+    }
+
+    #[test]
+    fn humidity_held_beside_when_it_ends_low() {
+        let humidity_to = |hpa: f64| {
+            let mut levels = afternoon();
+            for level in &mut levels {
+                if level.pressure.unwrap() < hpa * 100.0 {
+                    level.dewpoint = None;
+                }
+            }
+            Numbers::of(&received(levels).0)
+        };
+        let low = humidity_to(700.0);
+        assert_eq!(low.humidity.unwrap().dry_above.unwrap().hpa(), 700.0);
+        let held = low.cape_humidity_held.unwrap();
+        for (parcel, held) in Parcel::ALL.into_iter().zip(held) {
+            // Moister surroundings are virtually warmer: less buoyancy.
+            assert!(held.unwrap() < low.parcel(parcel).unwrap().cape);
+        }
+        assert_eq!(humidity_to(400.0).cape_humidity_held, None);
+        assert_eq!(humidity_to(100.0).cape_humidity_held, None);
+    }
+
+    #[test]
+    fn says_why_there_are_none() {
+        let mut levels = afternoon();
+        for level in &mut levels {
+            level.dewpoint = None;
+        }
+        let numbers = Numbers::of(&received(levels).0);
+        assert!(
+            numbers.surface.is_none() && numbers.mixed.is_none() && numbers.most_unstable.is_none()
+        );
+        assert!(
+            matches!(numbers.problem, Some(EnvironmentError::BottomWithoutHumidity { pressure }) if pressure == 96_000.0)
+        );
+    }
+}

@@ -1,8 +1,9 @@
 //! Surface values set, and how far up they reach.
 
-use crate::merge::hpa;
+use crate::clean::TEMPERATURES;
 use crate::mixed_layer::MIXED_LAYER_LEAST_DEPTH;
 use crate::profile::SAME_PRESSURE;
+use crate::telling::hpa;
 use crate::{Daylight, Note, Place, Profile, Reach, ReachApplied};
 use dewbound_thermo::{
     Air, KAPPA, Pressure, REFERENCE_PRESSURE, Temperature, dewpoint_from_mixing_ratio,
@@ -61,7 +62,7 @@ pub(crate) fn edit_surface(
     };
     let mut usable = |value: Option<Temperature>, name: &str| {
         let value = value?;
-        if (140.0..=340.0).contains(&value.k()) {
+        if TEMPERATURES.contains(&value.k()) {
             return Some(value.k());
         }
         tell(
@@ -344,4 +345,381 @@ fn mix(profile: &mut Profile, surface: usize, top: f64, new: SurfaceState, warme
         *dewpoint = Some(td.min(*t));
     }
     capped
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::testing::{afternoon, afternoon_fine, level, received};
+    use crate::{Amendments, Numbers, Working};
+    use dewbound_thermo::{Method, lift};
+
+    fn set(reach: Option<Reach>, t: Option<f64>, td: Option<f64>) -> Amendments {
+        let mut list = Amendments {
+            reach,
+            ..Amendments::default()
+        };
+        if let Some(t) = t {
+            list = list.with_surface_temperature(Temperature::from_c(t));
+        }
+        if let Some(td) = td {
+            list = list.with_surface_dewpoint(Temperature::from_c(td));
+        }
+        list
+    }
+
+    fn apply(
+        levels: Vec<crate::Level>,
+        reach: Option<Reach>,
+        t: Option<f64>,
+        td: Option<f64>,
+        daylight: Daylight,
+    ) -> (Profile, Working) {
+        let (profile, _) = received(levels);
+        let working = set(reach, t, td).apply(&profile, daylight);
+        (profile, working)
+    }
+
+    /// Theta and w of the environment at a pressure.
+    fn theta_and_w(profile: &Profile, hpa: f64) -> (f64, f64) {
+        let air = profile
+            .environment()
+            .unwrap()
+            .at(Pressure::from_hpa(hpa))
+            .unwrap();
+        (air.potential_temperature().k(), air.mixing_ratio())
+    }
+
+    #[test]
+    fn level_changes_the_lowest_ten_hpa_only_at_any_resolution() {
+        for levels in [afternoon(), afternoon_fine(4.0), afternoon_fine(0.5)] {
+            let (before, working) = apply(
+                levels,
+                Some(Reach::Level),
+                Some(29.5),
+                Some(23.0),
+                Daylight::Day,
+            );
+            let after = &working.profile;
+            assert_eq!(working.reach.reach, Reach::Level);
+            let surface = after.surface_air().unwrap();
+            assert_eq!(
+                (surface.temperature, surface.dewpoint),
+                (Temperature::from_c(29.5), Temperature::from_c(23.0))
+            );
+            for hpa in [950.0, 949.0, 930.0, 870.0, 600.0, 150.0] {
+                let (theta, w) = theta_and_w(&before, hpa);
+                let (theta_after, w_after) = theta_and_w(after, hpa);
+                assert!(
+                    (theta - theta_after).abs() < 1e-9 && (w - w_after).abs() < 1e-12,
+                    "{hpa} hPa"
+                );
+            }
+            // Linear in p: half way up half the increment, at the rows of the data.
+            let increment_at = |hpa: f64| {
+                let (theta, w) = theta_and_w(&before, hpa);
+                let (theta_after, w_after) = theta_and_w(after, hpa);
+                (theta_after - theta, w_after - w)
+            };
+            let (theta, w) = increment_at(960.0);
+            let (theta_half, w_half) = increment_at(955.0);
+            assert!((theta_half / theta - 0.5).abs() < 1e-9 && (w_half / w - 0.5).abs() < 1e-9);
+        }
+    }
+
+    #[test]
+    fn resolution_hardly_matters_to_the_numbers() {
+        // The same air in 11 rows and in 1,700: CAPE of the edited profile may differ only by how the taper is drawn between rows.
+        for (reach, tolerance) in [(Reach::Level, 2.0), (Reach::Tapered, 25.0)] {
+            let cape = |levels| {
+                let (_, working) = apply(levels, Some(reach), None, Some(22.5), Daylight::Day);
+                let numbers = Numbers::of(&working.profile);
+                [numbers.surface.unwrap().cape, numbers.mixed.unwrap().cape]
+            };
+            let (coarse, fine) = (cape(afternoon()), cape(afternoon_fine(0.5)));
+            for (a, b) in coarse.into_iter().zip(fine) {
+                assert!(
+                    (a - b).abs() < tolerance,
+                    "{reach:?}: {coarse:?} and {fine:?}"
+                );
+            }
+        }
+    }
+
+    #[test]
+    fn mixed_gives_the_layer_the_surface_mixing_ratio() {
+        let (before, working) = apply(
+            afternoon(),
+            Some(Reach::Mixed),
+            None,
+            Some(18.5),
+            Daylight::Night,
+        );
+        let after = &working.profile;
+        let top = working.reach.mixed_top.unwrap();
+        assert_eq!(Some(top), before.mixed_top());
+        let (_, w) = theta_and_w(after, 960.0);
+        for (row, &p) in after.pressure.iter().enumerate() {
+            let here = after.air(row).unwrap();
+            if p >= top.pa() {
+                let saturated = here.dewpoint == here.temperature;
+                assert!(saturated || (here.mixing_ratio() - w).abs() < 1e-9, "{p}");
+                assert!(here.mixing_ratio() < w + 1e-9);
+            } else {
+                assert_eq!(Some(here.dewpoint.k()), after.dewpoint[row]);
+                let old = before.pressure.iter().position(|&q| q == p).unwrap();
+                assert_eq!(before.dewpoint[old], after.dewpoint[row]);
+            }
+            // A moister surface moves no temperature.
+            if let Some(old) = before.pressure.iter().position(|&q| q == p) {
+                assert_eq!(before.temperature[old], after.temperature[row]);
+            }
+        }
+        assert_eq!(
+            working.reach.why,
+            format!("mixed to {}: chosen", hpa(top.pa()))
+        );
+    }
+
+    #[test]
+    fn saturation_caps_and_is_counted() {
+        // 30 g/kg at the surface can't be held higher up.
+        let (_, working) = apply(
+            afternoon(),
+            Some(Reach::Mixed),
+            None,
+            Some(30.5),
+            Daylight::Day,
+        );
+        let capped = (0..working.profile.len())
+            .filter(|&row| {
+                working
+                    .profile
+                    .air(row)
+                    .is_some_and(|air| air.dewpoint == air.temperature)
+            })
+            .count();
+        assert!(capped > 0);
+        assert_eq!(working.reach.capped_levels, capped);
+    }
+
+    #[test]
+    fn mixed_warms_the_layer_and_cools_nothing() {
+        let (before, working) = apply(
+            afternoon(),
+            Some(Reach::Mixed),
+            Some(33.0),
+            None,
+            Daylight::Day,
+        );
+        let after = &working.profile;
+        let top = working.reach.mixed_top.unwrap();
+        // Top by the surface it will have, not the one it had.
+        assert!(top < before.mixed_top().unwrap());
+        let theta = after.surface_air().unwrap().potential_temperature().k();
+        for (row, &p) in after.pressure.iter().enumerate().skip(1) {
+            let here = after.air(row).unwrap();
+            let old = before
+                .environment()
+                .unwrap()
+                .at(Pressure::from_pa(p))
+                .unwrap();
+            assert!(here.temperature.k() >= old.temperature.k() - 1e-9);
+            if p >= top.pa() - 1.0 {
+                let expect = theta.max(old.potential_temperature().k());
+                assert!((here.potential_temperature().k() - expect).abs() < 1e-6);
+            }
+        }
+        // Cooling stays near the ground.
+        let (before, working) = apply(
+            afternoon(),
+            Some(Reach::Mixed),
+            Some(30.0),
+            None,
+            Daylight::Day,
+        );
+        assert_eq!(working.reach.reach, Reach::Mixed);
+        let (theta, _) = theta_and_w(&before, 900.0);
+        assert!((theta_and_w(&working.profile, 900.0).0 - theta).abs() < 1e-9);
+    }
+
+    #[test]
+    fn tapered_falls_linearly_to_the_top() {
+        let (before, working) = apply(
+            afternoon_fine(2.0),
+            Some(Reach::Tapered),
+            Some(30.0),
+            Some(18.0),
+            Daylight::Day,
+        );
+        let top = working.reach.mixed_top.unwrap().hpa();
+        let increment_at = |hpa: f64| {
+            let (theta, w) = theta_and_w(&before, hpa);
+            let (theta_after, w_after) = theta_and_w(&working.profile, hpa);
+            (theta_after - theta, w_after - w)
+        };
+        let (theta, w) = increment_at(960.0);
+        assert!(theta < 0.0 && w < 0.0);
+        for (row, &p) in working.profile.pressure.iter().enumerate() {
+            let hpa = p / 100.0;
+            if working.profile.received[row].is_none() || hpa < top - 0.5 {
+                continue;
+            }
+            let share = (hpa - top) / (960.0 - top);
+            let (theta_here, w_here) = increment_at(hpa);
+            assert!(
+                (theta_here - theta * share).abs() < 1e-6 && (w_here - w * share).abs() < 1e-9,
+                "{hpa} hPa"
+            );
+        }
+        let (theta_above, w_above) = increment_at(top - 1.0);
+        assert!(theta_above.abs() < 1e-9 && w_above.abs() < 1e-12);
+    }
+
+    #[test]
+    fn mixed_top_is_where_theta_exceeds_by_one_kelvin() {
+        let (profile, _) = received(afternoon());
+        let top = profile.mixed_top().unwrap();
+        let surface = profile.surface_air().unwrap().potential_temperature().k();
+        let (theta, _) = theta_and_w(&profile, top.hpa());
+        // Theta is interpolated linearly in ln p here, temperature in the environment.
+        assert!((theta - surface - 1.0).abs() < 0.02, "{}", theta - surface);
+        let (fine, _) = received(afternoon_fine(0.5));
+        assert!((fine.mixed_top().unwrap().hpa() - top.hpa()).abs() < 0.5);
+    }
+
+    #[test]
+    fn shallow_layer_switches_mixing_off_with_the_reason() {
+        // Night: an inversion from the ground.
+        let night = || {
+            let mut levels = afternoon();
+            levels[0] = level(960.0, 22.0, 18.0);
+            levels
+        };
+        for (reach, expect) in [
+            (
+                Some(Reach::Mixed),
+                "level, not mixed: mixed layer only 1 hPa deep, 30 needed",
+            ),
+            (
+                Some(Reach::Tapered),
+                "level, not tapered: mixed layer only 1 hPa deep, 30 needed",
+            ),
+            (
+                None,
+                "level: default, mixed layer only 1 hPa deep, 30 needed",
+            ),
+        ] {
+            let (_, working) = apply(night(), reach, None, Some(19.0), Daylight::Day);
+            assert_eq!(
+                (working.reach.reach, working.reach.why.as_str()),
+                (Reach::Level, expect)
+            );
+        }
+    }
+
+    #[test]
+    fn default_by_daylight() {
+        for (daylight, reach) in [
+            (Daylight::Day, Reach::Mixed),
+            (Daylight::Night, Reach::Level),
+            (Daylight::Unknown, Reach::Level),
+        ] {
+            let (_, edited) = apply(afternoon(), None, None, Some(19.0), daylight);
+            let (_, untouched) = apply(afternoon(), None, None, None, daylight);
+            assert_eq!(edited.reach.reach, reach);
+            // Told before anything is set, too.
+            assert_eq!(untouched.reach.reach, reach);
+            assert_eq!(untouched.reach.why, edited.reach.why);
+        }
+    }
+
+    #[test]
+    fn dewpoint_never_above_temperature() {
+        for (t, td, expect) in [(None, Some(35.0), 31.0), (Some(20.0), None, 20.0)] {
+            let (_, working) = apply(afternoon(), Some(Reach::Level), t, td, Daylight::Day);
+            assert_eq!(
+                working.profile.surface_air().unwrap().dewpoint,
+                Temperature::from_c(expect)
+            );
+            assert!(
+                working.notes[0].what.contains("lowered to the temperature"),
+                "{:?}",
+                working.notes
+            );
+        }
+    }
+
+    #[test]
+    fn an_unset_surface_comes_alive_when_both_are_set() {
+        let bare = || {
+            let mut levels = afternoon();
+            levels.remove(1);
+            levels[0].temperature = None;
+            levels[0].dewpoint = None;
+            levels[0].wind = Some(crate::Wind {
+                direction: 170.0,
+                speed: 6.0,
+            });
+            levels
+        };
+        let (before, one) = apply(bare(), None, None, Some(20.0), Daylight::Day);
+        assert!(
+            Numbers::of(&before).surface.is_none() && Numbers::of(&one.profile).surface.is_none()
+        );
+        assert!(
+            one.notes[0]
+                .what
+                .contains("surface temperature is still missing")
+        );
+        for reach in [Reach::Level, Reach::Mixed, Reach::Tapered] {
+            let (_, both) = apply(bare(), Some(reach), Some(31.0), Some(20.5), Daylight::Day);
+            let numbers = Numbers::of(&both.profile);
+            let ascent = numbers.surface.unwrap();
+            assert_eq!(ascent.start.temperature, Temperature::from_c(31.0));
+            assert_eq!(numbers.starts_at, None);
+            // The parcel is the one any other way of giving these values would make.
+            let environment = both.profile.environment().unwrap();
+            assert_eq!(
+                lift(
+                    &environment,
+                    both.profile.surface_air().unwrap(),
+                    Method::default()
+                ),
+                Some(ascent)
+            );
+        }
+    }
+
+    #[test]
+    fn more_drying_than_there_is_moisture() {
+        let mut levels = afternoon();
+        levels[1].dewpoint = Some(250.0);
+        let (_, working) = apply(
+            levels,
+            Some(Reach::Tapered),
+            None,
+            Some(-40.0),
+            Daylight::Day,
+        );
+        assert!(
+            working.notes[0].what.contains("made dry instead"),
+            "{:?}",
+            working.notes
+        );
+        assert!(Numbers::of(&working.profile).surface.is_some());
+    }
+
+    #[test]
+    fn values_no_air_has_are_refused() {
+        let (before, working) = apply(
+            afternoon(),
+            None,
+            Some(900.0),
+            Some(f64::NAN),
+            Daylight::Day,
+        );
+        assert_eq!(working.profile, before);
+        assert_eq!(working.notes.len(), 2);
+    }
 }

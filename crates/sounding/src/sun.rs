@@ -57,3 +57,120 @@ pub fn daylight(sounding: &Sounding) -> Daylight {
     });
     if high { Daylight::Day } else { Daylight::Night }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::{Station, Times};
+
+    fn check(time: &str, latitude: f64, longitude: f64, expect: f64, tolerance: f64) {
+        let position = Position {
+            latitude,
+            longitude,
+        };
+        let elevation = solar_elevation(time.parse().unwrap(), position);
+        assert!(
+            (elevation - expect).abs() <= tolerance,
+            "{time} {latitude} {longitude}: {elevation}, expected {expect}"
+        );
+    }
+
+    #[test]
+    fn worked_example_of_reda_and_andreas() {
+        // Reda & Andreas, Solar Position Algorithm, NREL/TP-560-34302, appendix A.5: topocentric elevation without refraction 39.872046
+        // degrees (from memory).
+        check(
+            "2003-10-17T19:30:30Z",
+            39.742476,
+            -105.1786,
+            39.872046,
+            0.02,
+        );
+    }
+
+    #[test]
+    fn agrees_with_an_independent_ephemeris() {
+        // astropy 8.0.2: get_sun transformed to AltAz without pressure, at sea level.
+        for (time, latitude, longitude, expect) in [
+            ("2024-06-20T18:00:00Z", 35.04, -106.62, 71.1752),
+            ("2019-05-08T12:00:00Z", 36.6, -97.5, 4.9616),
+            ("1987-12-21T00:00:00Z", -12.42, 130.89, 42.7694),
+            ("2011-10-14T18:36:00Z", 3.5644, 98.6744, -68.4403),
+            ("2025-03-01T05:15:00Z", -54.0, 158.9, 26.3104),
+            ("1973-07-01T03:00:00Z", 78.2, 15.6, 16.8288),
+            ("2026-09-22T22:00:00Z", 0.0, -180.0, 61.8543),
+        ] {
+            check(time, latitude, longitude, expect, 0.02);
+        }
+    }
+
+    fn at(launch: Option<&str>, nominal: Option<&str>, position: Option<Position>) -> Daylight {
+        daylight(&Sounding {
+            station: Station {
+                position,
+                ..Station::default()
+            },
+            times: Times {
+                launch: launch.map(|t| t.parse().unwrap()),
+                nominal: nominal.map(|t| t.parse().unwrap()),
+                assumed: false,
+            },
+            ..Sounding::default()
+        })
+    }
+
+    #[test]
+    fn day_by_the_hour_before_launch() {
+        let position = Position {
+            latitude: 36.6,
+            longitude: -97.5,
+        };
+        let plains = Some(position);
+        // On 2019-05-08 the sun stands at 5.0 degrees there at 12:00 (astropy, above) and passes 10 degrees after that.
+        assert_eq!(
+            at(Some("2019-05-08T12:00:00Z"), None, plains),
+            Daylight::Night
+        );
+        assert_eq!(
+            at(Some("2019-05-08T18:00:00Z"), None, plains),
+            Daylight::Day
+        );
+        // Below 10 degrees at launch, above it 59 minutes earlier: evening of the same day.
+        let evening: Timestamp = "2019-05-09T00:45:00Z".parse().unwrap();
+        assert!(solar_elevation(evening, position) < 10.0);
+        assert!(solar_elevation(evening - SignedDuration::from_mins(60), position) > 10.0);
+        assert_eq!(
+            at(Some("2019-05-09T00:45:00Z"), None, plains),
+            Daylight::Day
+        );
+        assert_eq!(
+            at(Some("2019-05-09T02:30:00Z"), None, plains),
+            Daylight::Night
+        );
+    }
+
+    #[test]
+    fn unknown_without_time_or_position() {
+        let plains = Some(Position {
+            latitude: 36.6,
+            longitude: -97.5,
+        });
+        assert_eq!(at(None, None, plains), Daylight::Unknown);
+        assert_eq!(
+            at(Some("2019-05-08T18:00:00Z"), None, None),
+            Daylight::Unknown
+        );
+        assert_eq!(
+            at(None, Some("2019-05-08T18:00:00Z"), plains),
+            Daylight::Day
+        );
+        let nowhere = Some(Position {
+            latitude: f64::NAN,
+            longitude: 0.0,
+        });
+        assert_eq!(
+            at(Some("2019-05-08T18:00:00Z"), None, nowhere),
+            Daylight::Unknown
+        );
+    }
+}

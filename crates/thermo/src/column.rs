@@ -3,20 +3,23 @@
 //! The vertical coordinate everywhere in here is z = -ln p (p in Pa), which grows upward, so that an area is
 //! `Rd * integral of (Tv parcel - Tv environment) dz`.
 
+use crate::elementary::exp;
 use crate::numeric::{gauss4, hermite_integral};
-use crate::saturation::{dln_e_water, e_water, exponent, mixing_ratio, virtual_temperature};
+use crate::saturation::{E0, NO_VAPOUR, exponent, exponent_and_slope};
 use crate::{EPSILON, KAPPA};
 
 /// Largest spacing of nodes in z.
-const WIDEST: f64 = 0.05;
+pub(crate) const WIDEST: f64 = 0.05;
 /// Largest departure (K) of virtual temperature from a straight line between nodes that moisture may cause.
 pub(crate) const MOISTURE_BULGE: f64 = 0.002;
 /// Largest error (K) of the end-corrected trapezium; steps with more take the Gauss rule.
 const STEP_ERROR: f64 = 1e-8;
 /// A segment is never cut into more pieces than this.
 const MOST_PIECES: f64 = 200.0;
+/// Virtual temperature is T / (1 - LIGHTER e/p), the same as T (1 + w/eps) / (1 + w).
+const LIGHTER: f64 = 1.0 - EPSILON;
 
-/// Virtual temperature and mixing ratio of the interpolated air at nodes, with running integrals.
+/// Virtual temperature of the interpolated air at nodes, and its running integral.
 ///
 /// **Invariant:** `z` never falls; two nodes share a z only where the humidity ends and the air above counts as dry.
 #[derive(Debug, Clone, Default)]
@@ -27,8 +30,6 @@ pub(crate) struct Column {
     pub tv: Vec<f64>,
     /// Integral of virtual temperature over z from the first node, K.
     pub tv_integral: Vec<f64>,
-    /// Index of the profile's level at or below each node's upward step.
-    pub level: Vec<u32>,
 }
 
 /// One segment between two levels: temperature and dew point linear in z.
@@ -41,37 +42,36 @@ pub(crate) struct Segment {
     pub td: Option<(f64, f64)>,
 }
 
+/// Share of vapour in the pressure, kept at no more than half so that there is always dry air.
+#[inline(always)]
+fn share(ln_e: f64, z: f64) -> f64 {
+    (E0 * exp(ln_e + z)).min(0.5)
+}
+
 impl Segment {
     #[inline]
     pub fn temperature(&self, z: f64) -> f64 {
         self.t + self.t_slope * (z - self.z)
     }
 
+    /// e/p.
     #[inline]
-    pub fn mixing_ratio(&self, z: f64) -> f64 {
+    fn vapour_share(&self, z: f64) -> f64 {
         match self.td {
-            Some((td, slope)) => vapour((-z).exp(), e_water(td + slope * (z - self.z))),
+            Some((td, slope)) => share(exponent(td + slope * (z - self.z)), z),
             None => 0.0,
         }
     }
 
     #[inline]
-    pub fn virtual_temperature(&self, z: f64) -> f64 {
-        virtual_temperature(self.temperature(z), self.mixing_ratio(z))
+    pub fn mixing_ratio(&self, z: f64) -> f64 {
+        let share = self.vapour_share(z);
+        EPSILON * share / (1.0 - share)
     }
 
-    /// d Tv / dz where the mixing ratio is `w`.
     #[inline]
-    fn virtual_slope(&self, z: f64, w: f64) -> f64 {
-        let Some((td, slope)) = self.td else {
-            return self.t_slope;
-        };
-        let dry_share = 1.0 / (1.0 + w);
-        let w_slope =
-            w * (1.0 + w / EPSILON) * (dln_e_water(td + slope * (z - self.z)) * slope + 1.0);
-        dry_share
-            * (self.t_slope * (1.0 + w / EPSILON)
-                + self.temperature(z) * (1.0 / EPSILON - 1.0) * dry_share * w_slope)
+    pub fn virtual_temperature(&self, z: f64) -> f64 {
+        self.temperature(z) / (1.0 - LIGHTER * self.vapour_share(z))
     }
 
     /// d w / dz where the mixing ratio is `w`.
@@ -79,7 +79,8 @@ impl Segment {
     fn mixing_ratio_slope(&self, z: f64, w: f64) -> f64 {
         match self.td {
             Some((td, slope)) => {
-                w * (1.0 + w / EPSILON) * (dln_e_water(td + slope * (z - self.z)) * slope + 1.0)
+                w * (1.0 + w / EPSILON)
+                    * (exponent_and_slope(td + slope * (z - self.z)).1 * slope + 1.0)
             }
             None => 0.0,
         }
@@ -98,17 +99,80 @@ impl Segment {
     }
 }
 
-/// Mixing ratio with room for dry air kept: interpolated air never holds more vapour than half its pressure.
-#[inline]
-fn vapour(p: f64, e: f64) -> f64 {
-    mixing_ratio(p, e.min(0.5 * p))
+/// Moist air at one height, with what its slopes need.
+#[derive(Debug, Clone, Copy)]
+struct Point {
+    z: f64,
+    /// Exponent of eq. 10.
+    exponent: f64,
+    /// d ln e / dTd, 1/K.
+    per_kelvin: f64,
+    /// LIGHTER e/p.
+    lightness: f64,
+    /// Tv / T.
+    stretch: f64,
+    tv: f64,
 }
 
-/// The levels a column is built from (parallel slices; `known` = number of levels with humidity, from the bottom).
+impl Point {
+    #[inline]
+    fn new(z: f64, t: f64, td: f64) -> Self {
+        let (exponent, per_kelvin) = exponent_and_slope(td);
+        let lightness = LIGHTER * share(exponent, z);
+        let stretch = 1.0 / (1.0 - lightness);
+        Self {
+            z,
+            exponent,
+            per_kelvin,
+            lightness,
+            stretch,
+            tv: t * stretch,
+        }
+    }
+
+    fn dry(z: f64, t: f64) -> Self {
+        Self {
+            z,
+            exponent: 0.0,
+            per_kelvin: 0.0,
+            lightness: 0.0,
+            stretch: 1.0,
+            tv: t,
+        }
+    }
+
+    /// d Tv / dz where T and Td have these slopes: d(e/p) = e/p (d ln e - d ln p), and d ln p = -dz.
+    #[inline]
+    fn slope(&self, t_slope: f64, td_slope: f64) -> f64 {
+        self.stretch * (t_slope + self.tv * self.lightness * (self.per_kelvin * td_slope + 1.0))
+    }
+
+    /// How strongly moisture bends between two points.
+    #[inline]
+    fn moisture_change(&self, other: &Self) -> f64 {
+        (other.exponent - self.exponent).abs() + (other.z - self.z)
+    }
+
+    /// Integral of Tv over z up to `other`, in the same segment.
+    #[inline]
+    fn integral_to(&self, other: &Self, weight: f64, segment: &Segment) -> f64 {
+        let h = other.z - self.z;
+        let Some((_, td_slope)) = segment.td else {
+            return 0.5 * h * (self.tv + other.tv);
+        };
+        if strain(0.0, weight, self.moisture_change(other)) <= 1.0 {
+            let slope = |point: &Self| point.slope(segment.t_slope, td_slope);
+            hermite_integral(h, (self.tv, slope(self)), (other.tv, slope(other)))
+        } else {
+            gauss4(self.z, other.z, |z| segment.virtual_temperature(z))
+        }
+    }
+}
+
+/// The levels a column is built from (parallel slices).
 #[derive(Debug, Clone, Copy)]
 pub(crate) struct Levels<'a> {
     pub z: &'a [f64],
-    pub p: &'a [f64],
     pub t: &'a [f64],
     pub td: &'a [Option<f64>],
 }
@@ -118,8 +182,7 @@ impl Levels<'_> {
     #[inline]
     pub fn segment(&self, i: usize) -> Segment {
         let i = i.min(self.z.len().saturating_sub(2));
-        let width = self.z[i + 1] - self.z[i];
-        let per = 1.0 / width;
+        let per = 1.0 / (self.z[i + 1] - self.z[i]);
         let td = match (self.td[i], self.td[i + 1]) {
             (Some(a), Some(b)) => Some((a, (b - a) * per)),
             _ => None,
@@ -131,93 +194,241 @@ impl Levels<'_> {
             td,
         }
     }
+
+    /// The segment that holds `z` (the upper one when `z` is a level).
+    pub fn segment_at(&self, z: f64) -> Segment {
+        self.segment(
+            self.z
+                .partition_point(|&level| level <= z)
+                .saturating_sub(1),
+        )
+    }
+
+    fn point(&self, i: usize) -> Point {
+        match self.td[i] {
+            Some(td) => Point::new(self.z[i], self.t[i], td),
+            None => Point::dry(self.z[i], self.t[i]),
+        }
+    }
+}
+
+/// Segments worked on at a time: small enough for the nearest cache, long enough to fill vector registers.
+const BLOCK: usize = 128;
+
+/// Levels of one block and the one above it, as plain columns so that the compiler can vectorise.
+struct Block {
+    exponent: [f64; BLOCK + 1],
+    per_kelvin: [f64; BLOCK + 1],
+    lightness: [f64; BLOCK + 1],
+    stretch: [f64; BLOCK + 1],
+    tv: [f64; BLOCK + 1],
+    td: [f64; BLOCK + 1],
+    /// Integral of Tv over each segment's z.
+    integral: [f64; BLOCK],
+    /// Above 1 where a segment must be cut or integrated more carefully.
+    strain: [f64; BLOCK],
+}
+
+impl Block {
+    fn new() -> Self {
+        let nodes = [0.0; BLOCK + 1];
+        let segments = [0.0; BLOCK];
+        Self {
+            exponent: nodes,
+            per_kelvin: nodes,
+            lightness: nodes,
+            stretch: nodes,
+            tv: nodes,
+            td: nodes,
+            integral: segments,
+            strain: segments,
+        }
+    }
+
+    /// Fills the block from `count` segments' levels (`count + 1` of each column). Levels without humidity hold no
+    /// vapour here.
+    fn fill(&mut self, z: &[f64], t: &[f64], td: &[Option<f64>]) {
+        let count = z.len().saturating_sub(1).min(BLOCK);
+        for (plain, td) in self.td.iter_mut().zip(td) {
+            *plain = td.unwrap_or(NO_VAPOUR);
+        }
+        for ((exponent, per_kelvin), td) in self
+            .exponent
+            .iter_mut()
+            .zip(&mut self.per_kelvin)
+            .zip(&self.td)
+        {
+            (*exponent, *per_kelvin) = exponent_and_slope(*td);
+        }
+        for ((lightness, exponent), z) in self.lightness.iter_mut().zip(&self.exponent).zip(z) {
+            *lightness = LIGHTER * share(*exponent, *z);
+        }
+        for (((tv, stretch), lightness), t) in self
+            .tv
+            .iter_mut()
+            .zip(&mut self.stretch)
+            .zip(&self.lightness)
+            .zip(t)
+        {
+            *stretch = 1.0 / (1.0 - lightness);
+            *tv = t * *stretch;
+        }
+        let (z, t) = (&z[..count + 1], &t[..count + 1]);
+        for i in 0..count {
+            let h = z[i + 1] - z[i];
+            let per = 1.0 / h;
+            let t_slope = (t[i + 1] - t[i]) * per;
+            let td_slope = (self.td[i + 1] - self.td[i]) * per;
+            let slope = |i: usize| {
+                self.stretch[i]
+                    * (t_slope
+                        + self.tv[i] * self.lightness[i] * (self.per_kelvin[i] * td_slope + 1.0))
+            };
+            let (tv, above) = (self.tv[i], self.tv[i + 1]);
+            self.integral[i] = hermite_integral(h, (tv, slope(i)), (above, slope(i + 1)));
+            let change = (self.exponent[i + 1] - self.exponent[i]).abs() + h;
+            let weight = t[i] * self.lightness[i].max(self.lightness[i + 1]);
+            self.strain[i] = strain(h, weight, change);
+        }
+    }
+}
+
+/// How far a step is from being taken as it is (1 = at the limit): too wide, bent too much, integrated too poorly.
+#[inline(always)]
+fn strain(h: f64, weight: f64, change: f64) -> f64 {
+    let square = change * change;
+    let bend = weight * square;
+    (h * (1.0 / WIDEST))
+        .max(bend * (1.0 / (8.0 * MOISTURE_BULGE)))
+        .max(bend * square * (1.0 / (720.0 * STEP_ERROR)))
 }
 
 impl Column {
-    /// Nodes of the levels. Needs at least two levels with strictly growing z.
-    pub fn new(levels: &Levels) -> Self {
-        let n = levels.z.len();
-        let mut column = Column {
-            z: Vec::with_capacity(n + n / 4 + 8),
-            tv: Vec::with_capacity(n + n / 4 + 8),
-            tv_integral: Vec::with_capacity(n + n / 4 + 8),
-            level: Vec::with_capacity(n + n / 4 + 8),
-        };
-        let mut sum = 0.0;
-        let mut w = levels.td[0].map_or(0.0, |td| vapour(levels.p[0], e_water(td)));
-        column.push(levels.z[0], virtual_temperature(levels.t[0], w), sum, 0);
-        let mut humid = levels.td[0].is_some();
-        for i in 0..n - 1 {
-            let segment = levels.segment(i);
-            let (za, zb) = (levels.z[i], levels.z[i + 1]);
-            if humid && segment.td.is_none() {
-                humid = false;
-                w = 0.0;
-                column.push(za, levels.t[i], sum, i);
-            }
-            let w_end = match segment.td {
-                Some(_) => vapour(levels.p[i + 1], levels.td[i + 1].map_or(0.0, e_water)),
-                None => 0.0,
-            };
-            // Virtual increment 0.61 T w bends with the square of the change of ln e.
-            let weight = 0.61 * levels.t[i] * w.max(w_end);
-            let change = segment.moisture_change(za, zb);
-            let bend = weight * change * change;
-            let mut pieces = 1.0;
-            if zb - za > WIDEST || bend > 8.0 * MOISTURE_BULGE {
-                pieces = ((zb - za) / WIDEST)
-                    .max((bend / (8.0 * MOISTURE_BULGE)).sqrt())
-                    .ceil()
-                    .min(MOST_PIECES);
-            }
-            let count = pieces as usize;
-            let h = (zb - za) / pieces;
-            let mut left = (column.last_tv(), w);
-            let mut a = za;
-            for piece in 1..=count {
-                let (b, w_b) = if piece == count {
-                    (zb, w_end)
-                } else {
-                    let b = za + piece as f64 * h;
-                    (b, segment.mixing_ratio(b))
-                };
-                let tv_b = virtual_temperature(segment.temperature(b), w_b);
-                sum += if segment.td.is_none() {
-                    0.5 * (b - a) * (left.0 + tv_b)
-                } else {
-                    let part = if count == 1 {
-                        change
-                    } else {
-                        segment.moisture_change(a, b)
-                    };
-                    if weight * part.powi(4) <= 720.0 * STEP_ERROR {
-                        hermite_integral(
-                            b - a,
-                            (left.0, segment.virtual_slope(a, left.1)),
-                            (tv_b, segment.virtual_slope(b, w_b)),
-                        )
-                    } else {
-                        gauss4(a, b, |z| segment.virtual_temperature(z))
-                    }
-                };
-                column.push(b, tv_b, sum, if piece == count { i + 1 } else { i });
-                left = (tv_b, w_b);
-                a = b;
-            }
-            w = w_end;
+    /// Makes this the column of the lowest `segments` segments of the levels, of which the first `humid` levels have
+    /// humidity. Needs at least one segment, and strictly growing z.
+    pub fn fill(&mut self, levels: &Levels, humid: usize, segments: usize) {
+        for column in [&mut self.z, &mut self.tv, &mut self.tv_integral] {
+            column.clear();
+            column.reserve(segments + segments / 8 + 32);
         }
-        column
+        let first = levels.point(0);
+        let mut sum = 0.0;
+        self.push(first.z, first.tv, sum);
+        let mut block = Block::new();
+        let mut begin = 0;
+        while begin < segments {
+            let end = (begin + BLOCK).min(segments);
+            block.fill(
+                &levels.z[begin..=end],
+                &levels.t[begin..=end],
+                &levels.td[begin..=end],
+            );
+            if (begin..end).contains(&(humid - 1)) {
+                // Dry above its foot: not what its two ends say.
+                block.strain[humid - 1 - begin] = f64::INFINITY;
+            }
+            let mut k = 0;
+            while k < end - begin {
+                let calm = block.strain[k..end - begin]
+                    .iter()
+                    .take_while(|strain| **strain <= 1.0)
+                    .count();
+                self.z
+                    .extend_from_slice(&levels.z[begin + k + 1..begin + k + 1 + calm]);
+                self.tv.extend_from_slice(&block.tv[k + 1..k + 1 + calm]);
+                self.tv_integral
+                    .extend(block.integral[k..k + calm].iter().map(|part| {
+                        sum += part;
+                        sum
+                    }));
+                k += calm;
+                if k < end - begin {
+                    sum = self.careful_segment(levels, begin + k, sum);
+                    k += 1;
+                }
+            }
+            begin = end;
+        }
     }
 
-    fn push(&mut self, z: f64, tv: f64, integral: f64, level: usize) {
+    /// Makes this the column of the levels when only the lowest `changed` of them differ from those it was made of;
+    /// `kept_node` is the node of the lowest level that stays. `lower` lends its memory.
+    pub fn refill(
+        &mut self,
+        lower: &mut Self,
+        levels: &Levels,
+        humid: usize,
+        changed: usize,
+        kept_node: usize,
+    ) {
+        if changed + 1 >= levels.z.len() {
+            self.fill(levels, humid, levels.z.len() - 1);
+            return;
+        }
+        if changed == 0 {
+            self.z.drain(..kept_node);
+            self.tv.drain(..kept_node);
+            self.tv_integral.drain(..kept_node);
+            return;
+        }
+        lower.fill(levels, humid.min(changed + 1), changed);
+        // Only differences of the running integral matter: the new part is fitted to the old.
+        let (end, joint) = (lower.tv_integral.pop(), self.tv_integral.get(kept_node));
+        let offset = joint.copied().unwrap_or(0.0) - end.unwrap_or(0.0);
+        lower.z.pop();
+        lower.tv.pop();
+        self.z.splice(..kept_node, lower.z.drain(..));
+        self.tv.splice(..kept_node, lower.tv.drain(..));
+        self.tv_integral.splice(
+            ..kept_node,
+            lower.tv_integral.drain(..).map(|part| part + offset),
+        );
+    }
+
+    /// Adds the nodes of a segment that must be cut or integrated carefully; returns the new running integral.
+    fn careful_segment(&mut self, levels: &Levels, i: usize, mut sum: f64) -> f64 {
+        let segment = levels.segment(i);
+        let mut foot = levels.point(i);
+        let mut head = levels.point(i + 1);
+        if segment.td.is_none() {
+            head = Point::dry(head.z, levels.t[i + 1]);
+            if levels.td[i].is_some() {
+                // Humidity ends here: a step without width, and dry air above it.
+                foot = Point::dry(foot.z, levels.t[i]);
+                self.push(foot.z, foot.tv, sum);
+            }
+        }
+        // The virtual increment T (1 - eps) e/p bends with the square of the change of ln e.
+        let weight = levels.t[i] * foot.lightness.max(head.lightness);
+        let change = foot.moisture_change(&head);
+        let h = head.z - foot.z;
+        let bend = weight * change * change;
+        let pieces = (h / WIDEST)
+            .max((bend / (8.0 * MOISTURE_BULGE)).sqrt())
+            .ceil()
+            .clamp(1.0, MOST_PIECES);
+        let step = h / pieces;
+        for piece in 1..pieces as usize {
+            let z = segment.z + piece as f64 * step;
+            let t = segment.temperature(z);
+            let point = match segment.td {
+                Some((td, slope)) => Point::new(z, t, td + slope * (z - segment.z)),
+                None => Point::dry(z, t),
+            };
+            sum += foot.integral_to(&point, weight, &segment);
+            self.push(point.z, point.tv, sum);
+            foot = point;
+        }
+        sum += foot.integral_to(&head, weight, &segment);
+        self.push(head.z, head.tv, sum);
+        sum
+    }
+
+    #[inline(always)]
+    fn push(&mut self, z: f64, tv: f64, integral: f64) {
         self.z.push(z);
         self.tv.push(tv);
         self.tv_integral.push(integral);
-        self.level.push(level as u32);
-    }
-
-    fn last_tv(&self) -> f64 {
-        self.tv.last().copied().unwrap_or(0.0)
     }
 
     /// Index of the node at the foot of the step that holds `z` (the upper step when `z` is a node).
@@ -228,14 +439,6 @@ impl Column {
             .min(self.z.len().saturating_sub(2))
     }
 
-    /// Virtual temperature at `z` inside the step above node `step`.
-    #[inline]
-    pub fn tv_in(&self, levels: &Levels, step: usize, z: f64) -> f64 {
-        levels
-            .segment(self.level[step] as usize)
-            .virtual_temperature(z)
-    }
-
     /// Integral of virtual temperature from the first node to `z` inside the step above node `step`.
     pub fn integral_in(&self, levels: &Levels, step: usize, z: f64) -> f64 {
         if z <= self.z[step] {
@@ -244,7 +447,7 @@ impl Column {
         if z >= self.z[step + 1] {
             return self.tv_integral[step + 1];
         }
-        let segment = levels.segment(self.level[step] as usize);
+        let segment = levels.segment_at(self.z[step]);
         self.tv_integral[step] + gauss4(self.z[step], z, |z| segment.virtual_temperature(z))
     }
 }
@@ -256,18 +459,22 @@ pub(crate) fn theta_and_moisture(levels: &Levels, bottom: f64, top: f64) -> (f64
     let p0 = crate::REFERENCE_PRESSURE.powf(KAPPA);
     let (mut theta, mut moisture) = (0.0, 0.0);
     let first = levels.z.partition_point(|&z| z <= bottom).saturating_sub(1);
+    let ends = |z: f64, segment: &Segment| (exp(-z), segment.mixing_ratio(z));
+    // Pressure and mixing ratio at the head of a segment serve again at the foot of the next.
+    let mut shared = None;
     for i in first..levels.z.len() - 1 {
         let (za, zb) = (levels.z[i].max(bottom), levels.z[i + 1].min(top));
         if zb <= za {
             break;
         }
         let segment = levels.segment(i);
-        let primitive =
-            |z: f64| (segment.temperature(z) + segment.t_slope / c) / c * (-c * z).exp();
+        let (pa, wa) = shared.unwrap_or_else(|| ends(za, &segment));
+        let head = ends(zb, &segment);
+        let (pb, wb) = head;
+        shared = Some(head);
+        let primitive = |z: f64| (segment.temperature(z) + segment.t_slope / c) / c * exp(-c * z);
         theta += p0 * (primitive(za) - primitive(zb));
-        let (wa, wb) = (segment.mixing_ratio(za), segment.mixing_ratio(zb));
         let change = segment.moisture_change(za, zb);
-        let (pa, pb) = ((-za).exp(), (-zb).exp());
         moisture += if wa.max(wb) * change.powi(4) <= 720.0 * 1e-11 {
             let slope = |z: f64, w: f64, p: f64| p * (segment.mixing_ratio_slope(z, w) - w);
             hermite_integral(
@@ -284,7 +491,7 @@ pub(crate) fn theta_and_moisture(levels: &Levels, bottom: f64, top: f64) -> (f64
             (0..pieces as usize)
                 .map(|k| {
                     let a = za + k as f64 * h;
-                    gauss4(a, a + h, |z| segment.mixing_ratio(z) * (-z).exp())
+                    gauss4(a, a + h, |z| segment.mixing_ratio(z) * exp(-z))
                 })
                 .sum()
         };

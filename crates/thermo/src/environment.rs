@@ -1,8 +1,10 @@
 //! The air a parcel rises through.
 
+mod refill;
+
 use crate::column::{Column, Levels, theta_and_moisture};
 use crate::saturation::{self, NO_VAPOUR};
-use crate::{Air, GAS_CONSTANT_DRY, GRAVITY, Pressure, Temperature};
+use crate::{Air, GAS_CONSTANT_DRY, GRAVITY, Pressure, Temperature, elementary};
 
 /// Why an environment can't be built from these columns.
 #[derive(Debug, Clone, PartialEq, thiserror::Error)]
@@ -75,18 +77,15 @@ pub struct Environment {
     p: Vec<f64>,
     t: Vec<f64>,
     td: Vec<Option<f64>>,
+    /// What is known of each level's dew point.
+    flags: Vec<u8>,
     /// Levels with humidity, from the bottom.
     humid: usize,
     humidity: HumidityKnown,
     column: Column,
+    /// Memory for making the lower part again.
+    scratch: Column,
 }
-
-/// Usable pressures, Pa.
-const PRESSURES: std::ops::RangeInclusive<f64> = 0.1..=200_000.0;
-/// Usable temperatures, K.
-const TEMPERATURES: std::ops::RangeInclusive<f64> = 100.0..=400.0;
-/// Usable dew points, K.
-const DEWPOINTS: std::ops::RangeInclusive<f64> = NO_VAPOUR..=400.0;
 
 impl Environment {
     /// From columns of one length: pressure (Pa, falling strictly), temperature (K), dew point (K, `None` = missing).
@@ -98,143 +97,12 @@ impl Environment {
         temperature: &[f64],
         dewpoint: &[Option<f64>],
     ) -> Result<Self, EnvironmentError> {
-        let n = pressure.len();
-        if temperature.len() != n || dewpoint.len() != n {
-            return Err(EnvironmentError::Lengths {
-                pressures: n,
-                temperatures: temperature.len(),
-                dewpoints: dewpoint.len(),
-            });
-        }
-        if n < 2 {
-            return Err(EnvironmentError::TooFewLevels(n));
-        }
-        let mut humidity = HumidityKnown {
-            interpolated: 0,
-            dry: 0,
-            dry_above: None,
-            above_saturation: 0,
-        };
-        let mut td = Vec::with_capacity(n);
-        let mut previous = f64::INFINITY;
-        let mut last_known = 0;
-        for (level, ((&p, &t), &dewpoint)) in
-            pressure.iter().zip(temperature).zip(dewpoint).enumerate()
-        {
-            if !PRESSURES.contains(&p) {
-                return Err(EnvironmentError::Value {
-                    level,
-                    quantity: "pressure",
-                    value: p,
-                    unit: "Pa",
-                });
-            }
-            if p >= previous {
-                return Err(EnvironmentError::Order {
-                    level,
-                    pressure: p,
-                    previous,
-                });
-            }
-            previous = p;
-            if !TEMPERATURES.contains(&t) {
-                return Err(EnvironmentError::Value {
-                    level,
-                    quantity: "temperature",
-                    value: t,
-                    unit: "K",
-                });
-            }
-            td.push(match dewpoint {
-                None => None,
-                // A dew point so high that vapour outweighs dry air is checked where vapour pressure is at hand.
-                Some(value) if DEWPOINTS.contains(&value) => {
-                    last_known = level;
-                    if value > t {
-                        humidity.above_saturation += 1;
-                    }
-                    Some(value.min(t))
-                }
-                Some(value) => {
-                    return Err(EnvironmentError::Value {
-                        level,
-                        quantity: "dew point",
-                        value,
-                        unit: "K",
-                    });
-                }
-            });
-        }
-        if td.first().copied().flatten().is_none() {
-            return Err(EnvironmentError::BottomWithoutHumidity {
-                pressure: pressure[0],
-            });
-        }
-        let z: Vec<f64> = pressure.iter().map(|p| -p.ln()).collect();
-        if let Some(level) = (1..n).find(|&i| z[i] <= z[i - 1]) {
-            // Different in the last bit only: no layer between them.
-            return Err(EnvironmentError::Order {
-                level,
-                pressure: pressure[level],
-                previous: pressure[level - 1],
-            });
-        }
-        humidity.interpolated = fill_between(&z, &mut td[..=last_known]);
-        if last_known + 1 < n {
-            humidity.dry = n - last_known - 1;
-            humidity.dry_above = Some(Pressure::from_pa(pressure[last_known]));
-        }
-        for (level, (&p, td)) in pressure.iter().zip(&td).enumerate() {
-            if let Some(td) = *td
-                && saturation::e_water(td) >= 0.5 * p
-            {
-                return Err(EnvironmentError::Value {
-                    level,
-                    quantity: "dew point",
-                    value: td,
-                    unit: "K",
-                });
-            }
-        }
-        Ok(Self::assemble(
-            z,
-            pressure.to_vec(),
-            temperature.to_vec(),
-            td,
-            last_known + 1,
-            humidity,
-        ))
-    }
-
-    fn assemble(
-        z: Vec<f64>,
-        p: Vec<f64>,
-        t: Vec<f64>,
-        td: Vec<Option<f64>>,
-        humid: usize,
-        humidity: HumidityKnown,
-    ) -> Self {
-        let column = Column::new(&Levels {
-            z: &z,
-            p: &p,
-            t: &t,
-            td: &td,
-        });
-        Self {
-            z,
-            p,
-            t,
-            td,
-            humid,
-            humidity,
-            column,
-        }
+        Self::empty().refilled(pressure, temperature, dewpoint)
     }
 
     pub(crate) fn levels(&self) -> Levels<'_> {
         Levels {
             z: &self.z,
-            p: &self.p,
             t: &self.t,
             td: &self.td,
         }
@@ -296,7 +164,7 @@ impl Environment {
             return None;
         }
         let above = self.p.partition_point(|&level| level > p);
-        Some((above.saturating_sub(1), -p.ln()))
+        Some((above.saturating_sub(1), coordinate(p)))
     }
 
     /// Air at a pressure inside the profile whose humidity is known there; `None` outside.
@@ -348,25 +216,26 @@ impl Environment {
         let e_last = saturation::e_water(td_last);
         let rh = e_last / saturation::e_water(self.t[last]);
         let w_last = saturation::mixing_ratio(self.p[last], e_last);
-        let mut td = self.td.clone();
+        let mut held = self.clone();
         for i in self.humid..self.len() {
             let e = (rh * saturation::e_water(self.t[i]))
                 .min(self.p[i] * w_last / (crate::EPSILON + w_last));
-            td[i] = Some(saturation::dewpoint(e).min(self.t[i]));
+            held.td[i] = Some(saturation::dewpoint(e).min(self.t[i]));
+            held.flags[i] |= refill::KNOWN;
         }
-        let humidity = HumidityKnown {
+        held.humidity = HumidityKnown {
             dry: 0,
             dry_above: None,
             ..self.humidity
         };
-        Self::assemble(
-            self.z.clone(),
-            self.p.clone(),
-            self.t.clone(),
-            td,
-            self.len(),
-            humidity,
-        )
+        held.humid = self.len();
+        let levels = Levels {
+            z: &held.z,
+            t: &held.t,
+            td: &held.td,
+        };
+        held.column.fill(&levels, held.humid, held.z.len() - 1);
+        held
     }
 
     /// Integral means over p of theta (K) and mixing ratio (kg/kg) of the interpolated profile between two
@@ -377,7 +246,8 @@ impl Environment {
         if !(bottom > top) {
             return None;
         }
-        let (theta, moisture) = theta_and_moisture(&self.levels(), -bottom.ln(), -top.ln());
+        let (theta, moisture) =
+            theta_and_moisture(&self.levels(), coordinate(bottom), coordinate(top));
         let depth = bottom - top;
         Some((theta / depth, moisture / depth))
     }
@@ -396,19 +266,8 @@ impl Environment {
     }
 }
 
-/// Fills gaps between known values, linear in z; returns how many. The first and last value must be known.
-fn fill_between(z: &[f64], values: &mut [Option<f64>]) -> usize {
-    let mut filled = 0;
-    let mut known = 0;
-    for i in 1..values.len() {
-        let (Some(a), Some(b)) = (values[known], values[i]) else {
-            continue;
-        };
-        for k in known + 1..i {
-            values[k] = Some(a + (b - a) * (z[k] - z[known]) / (z[i] - z[known]));
-            filled += 1;
-        }
-        known = i;
-    }
-    filled
+/// The vertical coordinate of a pressure in Pa.
+#[inline]
+pub(crate) fn coordinate(p: f64) -> f64 {
+    -elementary::ln(p)
 }

@@ -10,7 +10,9 @@
 mod air;
 mod column;
 mod constants;
+mod elementary;
 mod environment;
+mod exact;
 mod lift;
 mod numeric;
 mod parcels;
@@ -24,6 +26,7 @@ mod units;
 pub use air::*;
 pub use constants::*;
 pub use environment::*;
+pub use exact::lift_exactly;
 pub use lift::*;
 pub use parcels::*;
 pub use pseudoadiabat::temperature_on_pseudoadiabat;

@@ -1,5 +1,6 @@
 //! Parcels and what becomes of them: CAPE, CIN, LCL, LFC, EL.
 
+use crate::environment::coordinate;
 use crate::path::Parcel;
 use crate::pseudoadiabat::{first_guess, solve};
 use crate::saturation::{e_water, mixing_ratio, virtual_temperature};
@@ -80,6 +81,18 @@ pub fn lift(environment: &Environment, start: Air, method: Method) -> Option<Asc
         Vec::new()
     };
 
+    Some(assemble(environment, &parcel, &below, above))
+}
+
+/// The numbers of an ascent from its runs below and above the LCL.
+pub(crate) fn assemble(
+    environment: &Environment,
+    parcel: &Parcel,
+    below: &[Run],
+    above: Vec<Run>,
+) -> Ascent {
+    let (_, z_top) = environment.z_range();
+    let above = merged(above);
     let last = above.last().or(below.last());
     let buoyant_at_top =
         last.is_some_and(|run| run.positive && GAS_CONSTANT_DRY * run.area >= NEGLIGIBLE);
@@ -121,7 +134,7 @@ pub fn lift(environment: &Environment, start: Air, method: Method) -> Option<Asc
         buoyant.push(layer);
     }
 
-    Some(Ascent {
+    Ascent {
         start: parcel.start,
         lcl: parcel.lcl,
         theta_e: Temperature::from_k(parcel.ln_theta_e.exp()),
@@ -136,7 +149,7 @@ pub fn lift(environment: &Environment, start: Air, method: Method) -> Option<Asc
         },
         at_least: buoyant_at_top || environment.top() > TOP_NEEDED,
         buoyant,
-    })
+    }
 }
 
 /// Runs with those of negligible area given to their neighbour, so that rounding doesn't split a layer.
@@ -184,7 +197,7 @@ pub fn parcel_path(start: Air, method: Method, pressures: &[Pressure]) -> Vec<Pa
         if !(p > 0.0 && p <= parcel.start.pressure.pa()) {
             return None;
         }
-        let z = -p.ln();
+        let z = coordinate(p);
         let (t, w) = if z < parcel.z_lcl {
             (parcel.dry_temperature(z), parcel.w)
         } else {

@@ -14,9 +14,9 @@ pub(crate) fn gauss4(a: f64, b: f64, f: impl Fn(f64) -> f64) -> f64 {
 
 /// Integral over a step of length `h` from the values and slopes at its ends (trapezium with end correction;
 /// exact for cubics).
-#[inline]
+#[inline(always)]
 pub(crate) fn hermite_integral(h: f64, left: (f64, f64), right: (f64, f64)) -> f64 {
-    h * (0.5 * (left.0 + right.0) + h / 12.0 * (left.1 - right.1))
+    h * (0.5 * (left.0 + right.0) + h * (1.0 / 12.0) * (left.1 - right.1))
 }
 
 /// A zero of `f` between `a` and `b`, where its values `fa` and `fb` have opposite signs (or one is zero).

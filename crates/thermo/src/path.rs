@@ -3,14 +3,15 @@
 //! Nodes are solved exactly with their analytic slopes; a cubic Hermite polynomial runs between them. A new method
 //! of ascent supplies its own nodes and nothing else changes.
 
-use crate::pseudoadiabat::solve;
+use crate::environment::coordinate;
+use crate::pseudoadiabat::refine;
 use crate::saturation::{e_water, mixing_ratio, virtual_temperature};
 use crate::{Air, EPSILON, Method, Temperature, air};
 
 /// Spacing of the nodes in z.
-const SPACING: f64 = 0.05;
-/// Newton stops when its step (K) is below this; the error left is the square of it.
-const STEP: f64 = 1e-6;
+pub(crate) const SPACING: f64 = 0.1;
+/// Newton stops when its step (K) is below this; the error left is about 0.03/K times its square.
+const STEP: f64 = 1e-4;
 
 /// Piecewise cubic on a uniform grid, with its running integral.
 #[derive(Debug, Clone)]
@@ -53,6 +54,23 @@ impl Cubic {
     pub fn value(&self, z: f64) -> f64 {
         let ((c, _), s) = self.locate(z);
         c[0] + s * (c[1] + s * (c[2] + s * c[3]))
+    }
+
+    /// The polynomial that serves at z, the z its step starts from, and the z up to which it serves.
+    pub fn piece_at(&self, z: f64) -> ([f64; 4], f64, f64) {
+        let k = (((z - self.start) * (1.0 / SPACING)) as usize)
+            .min(self.pieces.len().saturating_sub(1));
+        let foot = self.start + k as f64 * SPACING;
+        let head = if k + 1 < self.pieces.len() {
+            self.start + (k + 1) as f64 * SPACING
+        } else {
+            f64::INFINITY
+        };
+        (
+            self.pieces.get(k).map_or([0.0; 4], |piece| piece.0),
+            foot,
+            head,
+        )
     }
 
     /// Integral from the first node to z.
@@ -101,11 +119,11 @@ impl Parcel {
         let lcl = start.lcl();
         let ln_theta_e = air::ln_theta_e(t, p - e, w, lcl.temperature.k());
         let exponent = air::moist_exponent(w);
-        let z_start = -p.ln();
+        let z_start = coordinate(p);
         let z_lcl = if td >= t {
             z_start
         } else {
-            -lcl.pressure.pa().ln()
+            coordinate(lcl.pressure.pa())
         };
         let finite = z_lcl.is_finite() && ln_theta_e.is_finite();
         finite.then_some(Self {
@@ -149,19 +167,26 @@ impl Parcel {
         let count = steps(self.z_lcl, z_end);
         let mut nodes = Vec::with_capacity(count + 1);
         let mut guess = self.lcl.temperature.k();
-        let mut slope_before = None;
+        // Slopes at the node and at the two below it.
+        let mut slopes = [0.0; 3];
+        let thinner = (-SPACING).exp();
+        let mut p = self.lcl.pressure.pa();
         for k in 0..=count {
-            let z = self.z_lcl + k as f64 * SPACING;
-            let (t, state) = solve(self.ln_theta_e, (-z).exp(), guess, STEP);
+            let (t, state) = refine(self.ln_theta_e, p, guess, STEP);
+            p *= thinner;
             let w = state.w;
             let per_kelvin = virtual_temperature(1.0, w);
             let share = 1.0 / (1.0 + w);
             let slope = per_kelvin * state.slope
                 + t * (1.0 / EPSILON - 1.0) * share * share * state.w_slope;
             nodes.push((per_kelvin * t, slope));
-            // Two-step extrapolation lands within a few mK, so that one Newton step finishes.
-            guess = t + SPACING * (1.5 * state.slope - 0.5 * slope_before.unwrap_or(state.slope));
-            slope_before = Some(state.slope);
+            slopes = match k {
+                0 => [state.slope; 3],
+                1 => [state.slope, slopes[0], 2.0 * slopes[0] - state.slope],
+                _ => [state.slope, slopes[0], slopes[1]],
+            };
+            // Three-step Adams-Bashforth lands within a mK or so, so that one Newton step finishes.
+            guess = t + SPACING / 12.0 * (23.0 * slopes[0] - 16.0 * slopes[1] + 5.0 * slopes[2]);
         }
         Cubic::new(self.z_lcl, &nodes)
     }
@@ -171,4 +196,57 @@ impl Parcel {
 fn steps(start: f64, end: f64) -> usize {
     // The float-to-integer cast saturates; no profile is taller than a few hundred steps.
     (((end - start) / SPACING).ceil() as usize).clamp(1, 1000)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::{Pressure, pseudoadiabat, saturation};
+
+    #[test]
+    fn probe() {
+        for (t, td) in [
+            (-30.0, -35.0),
+            (0.0, -5.0),
+            (20.0, 10.0),
+            (30.0, 20.0),
+            (35.0, 26.0),
+            (40.0, 32.0),
+            (45.0, 38.0),
+            (45.0, 10.0),
+        ] {
+            let start = Air {
+                pressure: Pressure::from_hpa(1000.0),
+                temperature: Temperature::from_c(t),
+                dewpoint: Temperature::from_c(td),
+            };
+            let parcel = Parcel::new(start).unwrap();
+            let z_end = -(1000.0f64).ln();
+            let cubic = parcel.saturated(Method::PseudoAdiabat, z_end);
+            let mut worst = (0.0f64, 0.0);
+            let mut sum = 0.0;
+            let n = 4000;
+            for i in 0..n {
+                let z = parcel.z_lcl + (z_end - parcel.z_lcl) * i as f64 / n as f64;
+                let p = (-z).exp();
+                let exact = pseudoadiabat::solve(
+                    parcel.ln_theta_e,
+                    p,
+                    pseudoadiabat::first_guess(parcel.ln_theta_e.exp(), p),
+                    1e-10,
+                )
+                .0;
+                let w = saturation::mixing_ratio(p, saturation::e_water(exact));
+                let error = cubic.value(z) - virtual_temperature(exact, w);
+                if error.abs() > worst.0.abs() {
+                    worst = (error, p)
+                }
+                sum += error * 287.05 * (z_end - parcel.z_lcl) / n as f64;
+            }
+            println!(
+                "{t} {td} spacing {SPACING}: worst {:.2e} K at {:.0}, area {:.2e}",
+                worst.0, worst.1, sum
+            );
+        }
+    }
 }

@@ -3,7 +3,7 @@
 use crate::{EPSILON, Pressure, Temperature, ZERO_CELSIUS};
 
 /// e_s at 0 °C in eq. 10, Pa.
-const E0: f64 = 611.2;
+pub(crate) const E0: f64 = 611.2;
 /// Factor in the exponent of eq. 10.
 const A: f64 = 17.67;
 /// Offset in the exponent of eq. 10, K.
@@ -11,6 +11,9 @@ const B: f64 = 243.5;
 
 /// Temperature at which eq. 10 has its pole, K: no vapour at all at and below it.
 pub(crate) const NO_VAPOUR: f64 = ZERO_CELSIUS - B;
+
+/// Nearest to the pole (K) that is computed; vapour has long vanished there.
+const TINY: f64 = 1.0;
 
 /// Eq. 10 in Pa; zero at and below its pole.
 #[inline]
@@ -32,10 +35,17 @@ pub(crate) fn dln_e_water(t: f64) -> f64 {
     A * B / (above_pole * above_pole)
 }
 
-/// Exponent of eq. 10 (the logarithm of e_s / 611.2 Pa).
-#[inline]
+/// Exponent of eq. 10: the logarithm of e_s / 611.2 Pa; so far down at the pole that its exponential is zero.
+#[inline(always)]
 pub(crate) fn exponent(t: f64) -> f64 {
-    A * (t - ZERO_CELSIUS) / (t - NO_VAPOUR)
+    A * (t - ZERO_CELSIUS) / (t - NO_VAPOUR).max(TINY)
+}
+
+/// [`exponent`] and its derivative with temperature, 1/K.
+#[inline(always)]
+pub(crate) fn exponent_and_slope(t: f64) -> (f64, f64) {
+    let per = 1.0 / (t - NO_VAPOUR).max(TINY);
+    (A * (t - ZERO_CELSIUS) * per, A * B * per * per)
 }
 
 /// Dew point of a vapour pressure in Pa.

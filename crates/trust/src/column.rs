@@ -1,8 +1,9 @@
 //! The part of a profile the rules judge: levels with temperature from the surface upward, and what follows from them.
 
+use crate::Thresholds;
 use dewbound_sounding::thermo::{
-    Air, EPSILON, GAS_CONSTANT_DRY, GRAVITY, KAPPA, Pressure, REFERENCE_PRESSURE, Temperature, saturation_vapour_pressure,
-    saturation_vapour_pressure_over_ice,
+    Air, EPSILON, GAS_CONSTANT_DRY, GRAVITY, KAPPA, Pressure, REFERENCE_PRESSURE, Temperature,
+    saturation_vapour_pressure, saturation_vapour_pressure_over_ice,
 };
 use dewbound_sounding::{Profile, Sampling};
 
@@ -25,6 +26,8 @@ pub struct Column {
     pub theta: Vec<f64>,
     /// Potential temperature averaged over a few hPa in fine data; the same as `theta` in coded data.
     pub smooth_theta: Vec<f64>,
+    /// The same over a narrower average, for measuring what was found on the wider one.
+    pub sharp_theta: Vec<f64>,
     /// Hypsometric height above the lowest level, m.
     pub thickness: Vec<f64>,
     /// The first level is the surface level.
@@ -34,8 +37,9 @@ pub struct Column {
 }
 
 impl Column {
-    /// The column of a profile; fine data are averaged over `average` of pressure.
-    pub fn of(profile: &Profile, average: Pressure) -> Self {
+    /// The column of a profile, fine data averaged as the thresholds say.
+    pub fn of(profile: &Profile, thresholds: &Thresholds) -> Self {
+        let width = |name| Pressure::from_hpa(thresholds.get(name)).pa();
         let mut column = Self {
             fine: profile.sampling == Sampling::Fine,
             ..Self::default()
@@ -74,15 +78,23 @@ impl Column {
             column.temperature.push(t);
             column.dewpoint.push(td);
             column.mixing_ratio.push(w);
-            column.theta.push(t * ((REFERENCE_PRESSURE.ln() - ln_p) * KAPPA).exp());
+            column
+                .theta
+                .push(t * ((REFERENCE_PRESSURE.ln() - ln_p) * KAPPA).exp());
             column.thickness.push(z);
         }
-        column.smooth_theta = if column.fine {
-            let fixed = usize::from(column.from_surface);
-            running_mean(&column.pressure, &column.theta, average.pa(), fixed)
-        } else {
-            column.theta.clone()
+        let averaged = |name| {
+            if column.fine {
+                let fixed = usize::from(column.from_surface);
+                running_mean(&column.pressure, &column.theta, width(name), fixed)
+            } else {
+                column.theta.clone()
+            }
         };
+        (column.smooth_theta, column.sharp_theta) = (
+            averaged("fine.average_hpa"),
+            averaged("fine.sharp_average_hpa"),
+        );
         column
     }
 
@@ -201,7 +213,7 @@ mod tests {
             surface: Some(0),
             sampling: Sampling::Coded,
         };
-        let column = Column::of(&profile, Pressure::from_hpa(5.0));
+        let column = Column::of(&profile, &Thresholds::default());
         assert_relative_eq!(column.thickness[1], 1000.0, epsilon = 0.5);
         assert_relative_eq!(column.thickness[2], 2000.0, epsilon = 0.5);
     }

@@ -105,16 +105,15 @@ pub fn repair_source(finding: &Finding, repair: &Repair) -> String {
     format!("{}/{}", finding.key(), repair.id)
 }
 
-/// The amendments with a repair taken: its entries switched on where they stand, else appended in order. Other repairs
-/// of the same finding, being alternatives, are switched off.
+/// The amendments with a repair taken: its entries stand at the end, so that what was done last counts. Entries it left
+/// behind when it was withdrawn are replaced; other repairs of the same finding, being alternatives, are switched off.
 pub fn with_repair(amendments: &Amendments, finding: &Finding, repair: &Repair) -> Amendments {
     let source = repair_source(finding, repair);
     let mut taken = without_alternatives(amendments, finding, Some(repair.id));
-    if taken.entries.iter().any(|entry| entry.from_repair.as_deref() == Some(&source)) {
-        set_enabled(&mut taken, &source, true);
-    } else {
-        append(&mut taken, repair, &source);
-    }
+    taken
+        .entries
+        .retain(|entry| entry.from_repair.as_deref() != Some(&source));
+    append(&mut taken, repair, &source);
     taken
 }
 
@@ -153,14 +152,20 @@ fn set_enabled(amendments: &mut Amendments, source: &str, enabled: bool) {
 }
 
 fn append(amendments: &mut Amendments, repair: &Repair, source: &str) {
-    amendments.entries.extend(repair.amendments.iter().map(|&amendment| Entry {
-        amendment,
-        enabled: true,
-        from_repair: Some(source.to_owned()),
-    }));
+    amendments
+        .entries
+        .extend(repair.amendments.iter().map(|&amendment| Entry {
+            amendment,
+            enabled: true,
+            from_repair: Some(source.to_owned()),
+        }));
 }
 
-fn without_alternatives(amendments: &Amendments, finding: &Finding, keep: Option<&str>) -> Amendments {
+fn without_alternatives(
+    amendments: &Amendments,
+    finding: &Finding,
+    keep: Option<&str>,
+) -> Amendments {
     let mut left = amendments.clone();
     for repair in &finding.repairs {
         if Some(repair.id) != keep {
@@ -178,7 +183,12 @@ fn numbers(received: &Profile, amendments: &Amendments, daylight: Daylight) -> N
 ///
 /// `None` when there is nothing to price: the repair changes nothing, or no parcel has a CAPE on both sides.
 /// A repair that is already taken belongs to a finding and is priced by [`price`].
-pub fn cost(repair: &Repair, received: &Profile, amendments: &Amendments, daylight: Daylight) -> Option<Cost> {
+pub fn cost(
+    repair: &Repair,
+    received: &Profile,
+    amendments: &Amendments,
+    daylight: Daylight,
+) -> Option<Cost> {
     if repair.amendments.is_empty() {
         return None;
     }
@@ -265,13 +275,22 @@ pub fn combined_cost(
     for state in priced {
         without = without_alternatives(&without, state.finding, None);
     }
-    let mut with = without.clone();
+    // A headline already taken stays where it stands in the list: then the working numbers are the answer.
+    let mut with = amendments.clone();
     let mut any = false;
     for state in priced {
-        if let Some(repair) = state.headline.and_then(|index| state.finding.repairs.get(index)) {
-            with = with_repair(&with, state.finding, repair);
-            any = true;
-        }
+        let Some(headline) = state.headline else {
+            continue;
+        };
+        let Some(repair) = state.finding.repairs.get(headline) else {
+            continue;
+        };
+        any = true;
+        with = if state.applied == Some(headline) {
+            without_alternatives(&with, state.finding, Some(repair.id))
+        } else {
+            with_repair(&with, state.finding, repair)
+        };
     }
     if !any {
         return None;
@@ -279,5 +298,207 @@ pub fn combined_cost(
     // Whichever side is the working state has its numbers already.
     let of = |side: &Amendments| (side != amendments).then(|| numbers(received, side, daylight));
     let (with, without) = (of(&with), of(&without));
-    Cost::between(with.as_ref().unwrap_or(working), without.as_ref().unwrap_or(working))
+    Cost::between(
+        with.as_ref().unwrap_or(working),
+        without.as_ref().unwrap_or(working),
+    )
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic::{Air0, Dice, Scene};
+    use approx::assert_relative_eq;
+    use dewbound_sounding::thermo::Temperature;
+
+    /// A convective day whose surface hygrometer reads 3 g/kg too moist and whose thermometer was wet above a cloud.
+    fn scene() -> Scene {
+        let air = Air0 {
+            w: 0.0135,
+            lapse: 0.0072,
+            cloud: Some((2600.0, 3400.0)),
+            ..Air0::default()
+        };
+        let mut ascent = air
+            .ascent()
+            .wet(3400.0, 20.0, 12.0)
+            .noisy(&mut Dice::new(7), 0.05, 0.01);
+        for i in 0..2 {
+            let w = ascent.w(i) + 0.003;
+            ascent.set_w(i, w);
+        }
+        Scene::day(ascent.fine())
+    }
+
+    fn working(scene: &Scene, amendments: &Amendments) -> Numbers {
+        numbers(&scene.profile, amendments, scene.daylight)
+    }
+
+    #[test]
+    fn toggling_moves_the_numbers_by_exactly_the_cost_shown() {
+        let scene = scene();
+        let findings = scene.findings();
+        assert!(findings.len() >= 2, "{findings:#?}");
+        let mut amendments = Amendments::default().with_surface_dewpoint(Temperature::from_c(17.3));
+        for round in 0..2 {
+            for finding in &findings {
+                for (index, repair) in finding.repairs.iter().enumerate() {
+                    let before = working(&scene, &amendments);
+                    let priced = price(
+                        std::slice::from_ref(finding),
+                        &scene.profile,
+                        &amendments,
+                        scene.daylight,
+                        &before,
+                    );
+                    let off = applied_repair(&amendments, finding) == Some(index);
+                    let toggled = if off {
+                        without_repair(&amendments, finding, repair)
+                    } else {
+                        with_repair(&amendments, finding, repair)
+                    };
+                    let after = working(&scene, &toggled);
+                    let seen = if off {
+                        Cost::between(&before, &after)
+                    } else {
+                        Cost::between(&after, &before)
+                    };
+                    assert_eq!(
+                        priced[0].costs[index],
+                        seen,
+                        "{} {} in round {round}",
+                        finding.key(),
+                        repair.id
+                    );
+                    amendments = toggled;
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn a_taken_repair_says_what_it_has_changed() {
+        let scene = scene();
+        let findings = scene.findings();
+        let received = working(&scene, &Amendments::default());
+        let all = price(
+            &findings,
+            &scene.profile,
+            &Amendments::default(),
+            scene.daylight,
+            &received,
+        );
+        let state = all
+            .iter()
+            .find(|state| state.finding.rule == "wet-thermometer")
+            .unwrap();
+        let repair = &state.finding.repairs[0];
+        let taken = with_repair(&Amendments::default(), state.finding, repair);
+        assert_eq!(applied_repair(&taken, state.finding), Some(0));
+        let with = working(&scene, &taken);
+        let again = price(&findings, &scene.profile, &taken, scene.daylight, &with);
+        let after = again
+            .iter()
+            .find(|state| state.finding.rule == "wet-thermometer")
+            .unwrap();
+        assert_eq!(after.applied, Some(0));
+        assert_eq!(after.costs[0], state.costs[0]);
+        // The cold kink makes CAPE too high: bridging it takes CAPE away.
+        assert!(after.costs[0].unwrap().most_unstable.cape.unwrap() < -1.0);
+    }
+
+    #[test]
+    fn repairs_of_one_finding_exclude_each_other() {
+        let scene = scene();
+        let findings = scene.findings();
+        let finding = findings
+            .iter()
+            .find(|finding| finding.repairs.len() >= 2)
+            .unwrap();
+        let one = with_repair(&Amendments::default(), finding, &finding.repairs[0]);
+        let other = with_repair(&one, finding, &finding.repairs[1]);
+        assert_eq!(applied_repair(&other, finding), Some(1));
+        let back = with_repair(&other, finding, &finding.repairs[0]);
+        assert_eq!(applied_repair(&back, finding), Some(0));
+        assert_eq!(
+            back.entries.iter().filter(|entry| entry.enabled).count(),
+            one.entries.len()
+        );
+    }
+
+    #[test]
+    fn combined_cost_is_the_change_seen_when_all_are_accepted() {
+        let scene = scene();
+        let findings = scene.findings();
+        let start = Amendments::default();
+        let before = working(&scene, &start);
+        let priced = price(&findings, &scene.profile, &start, scene.daylight, &before);
+        let combined =
+            combined_cost(&priced, &scene.profile, &start, scene.daylight, &before).unwrap();
+        let mut accepted = start.clone();
+        for state in &priced {
+            if let Some(headline) = state.headline {
+                accepted = with_repair(&accepted, state.finding, &state.finding.repairs[headline]);
+            }
+        }
+        let after = working(&scene, &accepted);
+        assert_eq!(Some(combined), Cost::between(&after, &before));
+        // And once all are taken it still says so.
+        let priced = price(&findings, &scene.profile, &accepted, scene.daylight, &after);
+        let priced: Vec<Priced> = priced
+            .into_iter()
+            .map(|state| Priced {
+                headline: state.applied.or(state.headline),
+                ..state
+            })
+            .collect();
+        let again =
+            combined_cost(&priced, &scene.profile, &accepted, scene.daylight, &after).unwrap();
+        assert_relative_eq!(
+            again.most_unstable.cape.unwrap(),
+            combined.most_unstable.cape.unwrap(),
+            epsilon = 1e-9
+        );
+    }
+
+    #[test]
+    fn nothing_to_change_has_no_cost_and_a_neutral_change_costs_zero() {
+        let scene = scene();
+        let nothing = Repair {
+            id: "nothing",
+            what: String::new(),
+            amendments: Vec::new(),
+        };
+        let none = Amendments::default();
+        assert_eq!(cost(&nothing, &scene.profile, &none, scene.daylight), None);
+        let surface = scene.profile.surface_air().unwrap();
+        let same = Repair {
+            id: "same",
+            what: String::new(),
+            amendments: vec![dewbound_sounding::Amendment::SurfaceDewpoint {
+                dewpoint_k: surface.dewpoint.k(),
+            }],
+        };
+        let zero = cost(&same, &scene.profile, &none, scene.daylight).unwrap();
+        assert_eq!(zero.cape_magnitude(), Some(0.0));
+    }
+
+    #[test]
+    fn headline_is_the_largest_change_and_cin_breaks_ties() {
+        let with = |cape, cin| {
+            Some(Cost {
+                surface: Change { cape, cin },
+                ..Cost::default()
+            })
+        };
+        assert_eq!(
+            headline(&[None, with(Some(-50.0), None), with(Some(20.0), Some(90.0))]),
+            Some(1)
+        );
+        assert_eq!(
+            headline(&[with(Some(0.0), Some(3.0)), with(Some(0.0), Some(-8.0))]),
+            Some(1)
+        );
+        assert_eq!(headline(&[None, None]), None);
+    }
 }

@@ -30,7 +30,13 @@ pub struct Evidence {
 }
 
 impl Evidence {
-    pub(crate) fn new(key: &'static str, label: &'static str, value: f64, unit: &'static str, decimals: usize) -> Self {
+    pub(crate) fn new(
+        key: &'static str,
+        label: &'static str,
+        value: f64,
+        unit: &'static str,
+        decimals: usize,
+    ) -> Self {
         Self {
             key,
             label,
@@ -86,7 +92,8 @@ pub struct Finding {
 impl Finding {
     /// Stable identity within one sounding: rule and layer, e.g. `wet-thermometer@652-601`.
     pub fn key(&self) -> String {
-        let hpa = |p: Option<Pressure>| p.map_or_else(|| "-".to_owned(), |p| format!("{:.0}", p.hpa()));
+        let hpa =
+            |p: Option<Pressure>| p.map_or_else(|| "-".to_owned(), |p| format!("{:.0}", p.hpa()));
         format!("{}@{}-{}", self.rule, hpa(self.bottom), hpa(self.top))
     }
 

@@ -53,7 +53,10 @@ pub(crate) fn falling_layers(theta: &[f64], levels: Range<usize>, least: f64) ->
 
 fn trimmed(theta: &[f64], peak: usize, trough: usize, least: f64) -> Falling {
     let drop = theta[peak] - theta[trough];
-    let trim = (TRIM_SHARE * drop).min(TRIM_MOST_K).min(0.5 * (drop - least)).max(0.0);
+    let trim = (TRIM_SHARE * drop)
+        .min(TRIM_MOST_K)
+        .min(0.5 * (drop - least))
+        .max(0.0);
     let base = (peak..=trough)
         .rev()
         .find(|&level| theta[level] >= theta[peak] - trim)
@@ -61,6 +64,39 @@ fn trimmed(theta: &[f64], peak: usize, trough: usize, least: f64) -> Falling {
     let top = (base..=trough)
         .find(|&level| theta[level] <= theta[trough] + trim)
         .unwrap_or(trough);
+    Falling {
+        base,
+        top,
+        drop: theta[base] - theta[top],
+    }
+}
+
+/// How far the ends of a layer may move when it is measured on the narrower average, Pa.
+const SHARPEN_WITHIN: f64 = 250.0;
+
+/// A layer found on the wider average of fine data, measured on the narrower one: its ends move to the highest and the
+/// lowest theta near them. Coded layers stay as they are.
+pub(crate) fn sharpened(column: &Column, layer: Falling) -> Falling {
+    if !column.fine {
+        return layer;
+    }
+    let theta = &column.sharp_theta;
+    let near = |level: usize| {
+        let p = column.pressure[level];
+        let end = column
+            .pressure
+            .partition_point(|&other| other >= p - SHARPEN_WITHIN);
+        column.first_at_or_above(p + SHARPEN_WITHIN)..end
+    };
+    let higher = |&a: &usize, &b: &usize| theta[a].total_cmp(&theta[b]);
+    let base = near(layer.base).max_by(higher).unwrap_or(layer.base);
+    let top = near(layer.top)
+        .filter(|&level| level > base)
+        .min_by(higher)
+        .unwrap_or(layer.top);
+    if base >= top {
+        return layer;
+    }
     Falling {
         base,
         top,
@@ -81,7 +117,12 @@ pub(crate) struct Steepest {
 pub(crate) const AUTOCONVECTIVE: f64 = GRAVITY / GAS_CONSTANT_DRY;
 
 /// Steepest lapse rate over at least `depth` m among levels from `depth` below the foot to `depth` above the top.
-pub(crate) fn steepest(column: &Column, layer: Falling, depth: f64, temperature_step: f64) -> Option<Steepest> {
+pub(crate) fn steepest(
+    column: &Column,
+    layer: Falling,
+    depth: f64,
+    temperature_step: f64,
+) -> Option<Steepest> {
     let z = &column.thickness;
     let reach = |level: usize, by: f64| z.partition_point(|&other| other < z[level] + by);
     let first = reach(layer.base, -depth);
@@ -101,7 +142,8 @@ pub(crate) fn steepest(column: &Column, layer: Falling, depth: f64, temperature_
             (fall, thickness)
         } else {
             let t = column.temperature[upper];
-            let rounding = GAS_CONSTANT_DRY / GRAVITY * t * CODED_PRESSURE_STEP / column.pressure[upper];
+            let rounding =
+                GAS_CONSTANT_DRY / GRAVITY * t * CODED_PRESSURE_STEP / column.pressure[upper];
             (fall - temperature_step, thickness + rounding)
         };
         let lapse = fall / thickness;
@@ -111,7 +153,10 @@ pub(crate) fn steepest(column: &Column, layer: Falling, depth: f64, temperature_
                 lapse: so_far.lapse.max(lapse),
                 autoconvective: so_far.autoconvective || autoconvective,
             },
-            None => Steepest { lapse, autoconvective },
+            None => Steepest {
+                lapse,
+                autoconvective,
+            },
         });
     }
     steepest
@@ -130,7 +175,10 @@ mod tests {
 
     #[test]
     fn finds_each_fall_once() {
-        assert_eq!(spans(&[300.0, 301.0, 303.0, 301.0, 304.0, 306.0], 1.0), [(2, 3)]);
+        assert_eq!(
+            spans(&[300.0, 301.0, 303.0, 301.0, 304.0, 306.0], 1.0),
+            [(2, 3)]
+        );
         assert_eq!(spans(&[303.0, 301.5, 304.0, 302.0], 1.0), [(0, 1), (2, 3)]);
         assert_eq!(spans(&[300.0, 300.5, 300.0, 300.4, 301.0], 1.0), []);
         assert_eq!(spans(&[], 1.0), []);
@@ -138,9 +186,15 @@ mod tests {
 
     #[test]
     fn small_rises_stay_inside_a_layer_and_mixed_air_outside() {
-        assert_eq!(spans(&[300.0, 303.0, 302.0, 302.2, 301.0, 304.0], 1.0), [(1, 4)]);
+        assert_eq!(
+            spans(&[300.0, 303.0, 302.0, 302.2, 301.0, 304.0], 1.0),
+            [(1, 4)]
+        );
         // Nearly neutral air on both sides is not part of it.
-        assert_eq!(spans(&[303.1, 303.0, 303.05, 300.0, 299.9, 300.3], 1.0), [(2, 3)]);
+        assert_eq!(
+            spans(&[303.1, 303.0, 303.05, 300.0, 299.9, 300.3], 1.0),
+            [(2, 3)]
+        );
     }
 
     #[test]

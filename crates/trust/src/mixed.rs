@@ -24,8 +24,7 @@ pub struct MixedLayer {
     pub theta: Temperature,
     /// Tolerance of theta that was applied, K.
     pub tolerance: f64,
-    /// Mean mixing ratio (integral over p) without the surface level, the contact layer and, in fine data, the
-    /// entrainment zone; kg/kg. `None` when no humidity is known there.
+    /// Mean mixing ratio (integral over p) without the surface level, the contact layer and the entrainment zone, kg/kg. `None` when no humidity is known there.
     pub mean_mixing_ratio: Option<f64>,
     /// Levels of the column that mean was taken over.
     pub(crate) interior: Vec<usize>,
@@ -34,8 +33,7 @@ pub struct MixedLayer {
 impl MixedLayer {
     /// The mixed layer of a profile: `None` when none reaches the ground or it is too shallow to be judged.
     pub fn of(profile: &Profile, thresholds: &Thresholds) -> Option<Self> {
-        let average = Pressure::from_hpa(thresholds.get("fine.average_hpa"));
-        Self::in_column(&Column::of(profile, average), thresholds)
+        Self::in_column(&Column::of(profile, thresholds), thresholds)
     }
 
     pub(crate) fn in_column(column: &Column, thresholds: &Thresholds) -> Option<Self> {
@@ -49,7 +47,9 @@ impl MixedLayer {
         }
         // Fine data: the median just above the contact layer; coded: the first level there.
         let reference = if column.fine {
-            let end = column.first_at_or_above(column.pressure[first] - contact).max(first + 1);
+            let end = column
+                .first_at_or_above(column.pressure[first] - contact)
+                .max(first + 1);
             median(theta.get(first..end)?)?
         } else {
             theta[first]
@@ -73,8 +73,10 @@ impl MixedLayer {
         } else {
             top
         };
+        // Warmer than this, air from above the layer has been mixed in already.
+        let warmest = reference + 0.5 * tolerance;
         let interior = known(column, first..=last)
-            .filter(|&level| column.pressure[level] >= highest_fitted)
+            .filter(|&level| column.pressure[level] >= highest_fitted && theta[level] <= warmest)
             .collect::<Vec<_>>();
         Some(Self {
             bottom: Pressure::from_pa(surface),
@@ -139,7 +141,9 @@ impl Line {
             return None;
         }
         let n = count as f64;
-        let (sx, sy) = points.clone().fold((0.0, 0.0), |(sx, sy), (x, y)| (sx + x, sy + y));
+        let (sx, sy) = points
+            .clone()
+            .fold((0.0, 0.0), |(sx, sy), (x, y)| (sx + x, sy + y));
         let (mean_x, mean_y) = (sx / n, sy / n);
         let (mut xx, mut xy, mut yy) = (0.0, 0.0, 0.0);
         for (x, y) in points {

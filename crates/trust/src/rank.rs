@@ -38,8 +38,18 @@ pub fn rank(priced: &[Priced], at_least: bool) -> Vec<usize> {
 }
 
 fn compare(a: &Priced, b: &Priced, at_least: bool) -> Ordering {
-    let cape = |state: &Priced| state.headline_cost().and_then(|cost| cost.cape_magnitude()).unwrap_or(0.0);
-    let cin = |state: &Priced| state.headline_cost().and_then(|cost| cost.cin_magnitude()).unwrap_or(0.0);
+    let cape = |state: &Priced| {
+        state
+            .headline_cost()
+            .and_then(|cost| cost.cape_magnitude())
+            .unwrap_or(0.0)
+    };
+    let cin = |state: &Priced| {
+        state
+            .headline_cost()
+            .and_then(|cost| cost.cin_magnitude())
+            .unwrap_or(0.0)
+    };
     standing(a, at_least)
         .cmp(&standing(b, at_least))
         .then(cape(b).total_cmp(&cape(a)))

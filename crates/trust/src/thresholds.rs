@@ -69,12 +69,16 @@ impl Thresholds {
     ///
     /// An unknown name gives NaN, with which every comparison fails: a rule that asks for it stays silent.
     pub fn get(&self, name: &str) -> f64 {
-        self.by_name.get(name).map_or(f64::NAN, |threshold| threshold.value)
+        self.by_name
+            .get(name)
+            .map_or(f64::NAN, |threshold| threshold.value)
     }
 
     /// All of them, by name.
     pub fn iter(&self) -> impl Iterator<Item = (&str, &Threshold)> {
-        self.by_name.iter().map(|(name, threshold)| (name.as_str(), threshold))
+        self.by_name
+            .iter()
+            .map(|(name, threshold)| (name.as_str(), threshold))
     }
 
     /// The defaults with an office's own values laid over them: a JSON object of name and number.
@@ -93,7 +97,12 @@ impl Thresholds {
         let mut laid = self.clone();
         for (name, value) in values {
             let Some(threshold) = laid.by_name.get_mut(&name) else {
-                let known = self.by_name.keys().map(String::as_str).collect::<Vec<_>>().join(", ");
+                let known = self
+                    .by_name
+                    .keys()
+                    .map(String::as_str)
+                    .collect::<Vec<_>>()
+                    .join(", ");
                 return Err(ThresholdsError::Unknown { name, known });
             };
             threshold.value = value;
@@ -115,7 +124,9 @@ mod tests {
         for (name, threshold) in &read {
             assert!(threshold.value.is_finite(), "{name}");
             assert!(
-                !threshold.what.is_empty() && !threshold.source.is_empty() && !threshold.rule.is_empty(),
+                !threshold.what.is_empty()
+                    && !threshold.source.is_empty()
+                    && !threshold.rule.is_empty(),
                 "{name}"
             );
             assert!(!threshold.overridden, "{name}");
@@ -149,7 +160,11 @@ mod tests {
             .with_overrides(r#"{"superadiabatic-aloft.theta_drop_k": 1.5}"#)
             .unwrap();
         assert_eq!(office.get("superadiabatic-aloft.theta_drop_k"), 1.5);
-        let changed: Vec<_> = office.iter().filter(|(_, t)| t.overridden).map(|(n, _)| n).collect();
+        let changed: Vec<_> = office
+            .iter()
+            .filter(|(_, t)| t.overridden)
+            .map(|(n, _)| n)
+            .collect();
         assert_eq!(changed, ["superadiabatic-aloft.theta_drop_k"]);
         assert_eq!(shipped.get("superadiabatic-aloft.theta_drop_k"), 1.0);
     }
@@ -157,8 +172,14 @@ mod tests {
     #[test]
     fn bad_overrides_say_where_and_what() {
         let shipped = Thresholds::default();
-        let unknown = shipped.with_overrides(r#"{"no-such": 1}"#).unwrap_err().to_string();
-        assert!(unknown.contains("no-such") && unknown.contains("moisture-slope.jump_k"), "{unknown}");
+        let unknown = shipped
+            .with_overrides(r#"{"no-such": 1}"#)
+            .unwrap_err()
+            .to_string();
+        assert!(
+            unknown.contains("no-such") && unknown.contains("moisture-slope.jump_k"),
+            "{unknown}"
+        );
         let syntax = shipped
             .with_overrides("{\n\"moisture-slope.jump_k\": \"two\"\n}")
             .unwrap_err()

@@ -6,7 +6,9 @@ use dewbound_sounding::thermo::{Pressure, Temperature};
 pub(crate) fn number(value: f64, decimals: usize) -> String {
     let text = format!("{value:.decimals$}");
     match text.strip_prefix('-') {
-        Some(digits) if digits.chars().any(|c| ('1'..='9').contains(&c)) => format!("\u{2212}{digits}"),
+        Some(digits) if digits.chars().any(|c| ('1'..='9').contains(&c)) => {
+            format!("\u{2212}{digits}")
+        }
         Some(digits) => digits.to_owned(),
         None => text,
     }
@@ -17,7 +19,11 @@ pub(crate) fn layer(bottom: Pressure, top: Pressure) -> String {
     let (b, t) = (number(bottom.hpa(), 0), number(top.hpa(), 0));
     // Where whole numbers can't tell the ends apart, tenths do.
     if b == t && (bottom.pa() - top.pa()).abs() >= 5.0 {
-        return format!("{}\u{2013}{} hPa", number(bottom.hpa(), 1), number(top.hpa(), 1));
+        return format!(
+            "{}\u{2013}{} hPa",
+            number(bottom.hpa(), 1),
+            number(top.hpa(), 1)
+        );
     }
     if b == t {
         format!("{b} hPa")

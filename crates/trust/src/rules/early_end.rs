@@ -87,18 +87,31 @@ impl EarlyEnd {
         ];
         let awaited = view.context.sounding.completeness == Completeness::LaterPartsNotReceived;
         let mut summary = if clues.descending {
-            format!("The sonde was released at {} hPa and fell", number(top.hpa(), 0))
+            format!(
+                "The sonde was released at {} hPa and fell",
+                number(top.hpa(), 0)
+            )
         } else if awaited {
             format!(
                 "Nothing above {} hPa has been received; later parts may still come",
                 number(top.hpa(), 0)
             )
         } else {
-            format!("Ends at {} hPa ({})", number(top.hpa(), 0), celsius(temperature))
+            format!(
+                "Ends at {} hPa ({})",
+                number(top.hpa(), 0),
+                celsius(temperature)
+            )
         };
         let below_el = against_el(view, top, last, &mut summary, &mut evidence);
         match clues.tropopause {
-            Some(p) => evidence.push(Evidence::new("tropopause_hpa", "tropopause", p.hpa(), "hPa", 0)),
+            Some(p) => evidence.push(Evidence::new(
+                "tropopause_hpa",
+                "tropopause",
+                p.hpa(),
+                "hPa",
+                0,
+            )),
             None => summary.push_str("; no tropopause was reached"),
         }
         summary.push('.');
@@ -124,7 +137,13 @@ impl EarlyEnd {
                 "m/s",
                 1,
             ));
-            evidence.push(Evidence::new("ascent_rate_ms", "ascent rate before", before, "m/s", 1));
+            evidence.push(Evidence::new(
+                "ascent_rate_ms",
+                "ascent rate before",
+                before,
+                "m/s",
+                1,
+            ));
         }
         Finding {
             rule: self.id(),
@@ -153,9 +172,19 @@ impl EarlyEnd {
 }
 
 /// Says where the top stands against the equilibrium level. True when a parcel is still buoyant at the top.
-fn against_el(view: &View, top: Pressure, last: usize, summary: &mut String, evidence: &mut Vec<Evidence>) -> bool {
+fn against_el(
+    view: &View,
+    top: Pressure,
+    last: usize,
+    summary: &mut String,
+    evidence: &mut Vec<Evidence>,
+) -> bool {
     let numbers = view.context.numbers;
-    let ascents = || Parcel::ALL.into_iter().filter_map(|parcel| numbers.parcel(parcel));
+    let ascents = || {
+        Parcel::ALL
+            .into_iter()
+            .filter_map(|parcel| numbers.parcel(parcel))
+    };
     let largest = |a: &&Ascent, b: &&Ascent| a.cape.total_cmp(&b.cape);
     let buoyant_at_top = ascents()
         .filter(|ascent| ascent.el.is_none() && !ascent.buoyant.is_empty())
@@ -178,8 +207,17 @@ fn against_el(view: &View, top: Pressure, last: usize, summary: &mut String, evi
         .max_by(|a, b| largest(&a.0, &b.0));
     if let Some((_, el)) = with_el {
         let distance = el.hpa() - top.hpa();
-        summary.push_str(&format!(", {} hPa above the equilibrium level", number(distance, 0)));
-        evidence.push(Evidence::new("el_hpa", "equilibrium level", el.hpa(), "hPa", 0));
+        summary.push_str(&format!(
+            ", {} hPa above the equilibrium level",
+            number(distance, 0)
+        ));
+        evidence.push(Evidence::new(
+            "el_hpa",
+            "equilibrium level",
+            el.hpa(),
+            "hPa",
+            0,
+        ));
         evidence.push(Evidence::new(
             "above_el_hpa",
             "top above the equilibrium level by",
@@ -192,14 +230,18 @@ fn against_el(view: &View, top: Pressure, last: usize, summary: &mut String, evi
 }
 
 fn excess_at_top(view: &View, ascent: &Ascent, top: Pressure, last: usize) -> Option<f64> {
-    let state = parcel_path(ascent.start, Method::default(), &[top]).into_iter().next()?;
+    let state = parcel_path(ascent.start, Method::default(), &[top])
+        .into_iter()
+        .next()?;
     let t = column_virtual_temperature(view, last);
     Some(state.virtual_temperature.k() - t)
 }
 
 fn column_virtual_temperature(view: &View, level: usize) -> f64 {
     let t = view.column.temperature[level];
-    view.column.mixing_ratio[level].map_or(t, |w| t * (1.0 + w / dewbound_sounding::thermo::EPSILON) / (1.0 + w))
+    view.column.mixing_ratio[level].map_or(t, |w| {
+        t * (1.0 + w / dewbound_sounding::thermo::EPSILON) / (1.0 + w)
+    })
 }
 
 fn saturation_near_top(view: &View, last: usize) -> Option<f64> {
@@ -228,7 +270,9 @@ fn timed_heights(view: &View) -> Vec<(f64, f64)> {
 fn descending(view: &View) -> bool {
     let timed = timed_heights(view);
     match (timed.first(), timed.last()) {
-        (Some(&(bottom, z_bottom)), Some(&(top, z_top))) => top < bottom && z_top > z_bottom + 500.0,
+        (Some(&(bottom, z_bottom)), Some(&(top, z_top))) => {
+            top < bottom && z_top > z_bottom + 500.0
+        }
         _ => false,
     }
 }
@@ -238,7 +282,10 @@ fn ascent_rates(view: &View) -> Option<(f64, f64)> {
     let timed = timed_heights(view);
     let &(first_time, first_height) = timed.first()?;
     let &(last_time, last_height) = timed.last()?;
-    let &(split_time, split_height) = timed.iter().rev().find(|(time, _)| *time <= last_time - LAST_SECONDS)?;
+    let &(split_time, split_height) = timed
+        .iter()
+        .rev()
+        .find(|(time, _)| *time <= last_time - LAST_SECONDS)?;
     if split_time - first_time < 300.0 - LAST_SECONDS {
         return None;
     }
@@ -254,23 +301,33 @@ fn tropopause(view: &View) -> Option<Pressure> {
     let column = &view.column;
     let z = &column.thickness;
     let lapse = |from: usize, to: usize| {
-        (column.smooth_temperature(from) - column.smooth_temperature(to)) / (z[to] - z[from]).max(1.0)
+        (column.smooth_temperature(from) - column.smooth_temperature(to))
+            / (z[to] - z[from]).max(1.0)
     };
     let start = column.first_at_or_above(TROPOPAUSE_BELOW);
     (start..column.len())
         .find(|&level| {
             // In fine data the step to the next level is noise: the lapse rate is taken over 100 m at least.
             let step = if column.fine { 100.0 } else { 0.0 };
-            let near = z.partition_point(|&other| other < z[level] + step).max(level + 1);
+            let near = z
+                .partition_point(|&other| other < z[level] + step)
+                .max(level + 1);
             let end = z.partition_point(|&other| other <= z[level] + TROPOPAUSE_DEPTH_M);
-            z.last().is_some_and(|&top| top >= z[level] + TROPOPAUSE_DEPTH_M)
+            z.last()
+                .is_some_and(|&top| top >= z[level] + TROPOPAUSE_DEPTH_M)
                 && near < column.len()
                 && (near..end.max(near + 1)).all(|above| lapse(level, above) <= TROPOPAUSE_LAPSE)
         })
         .map(|level| Pressure::from_pa(column.pressure[level]))
 }
 
-fn guilty(awaited: bool, saturated: bool, slow: bool, temperature: Temperature, below_el: bool) -> String {
+fn guilty(
+    awaited: bool,
+    saturated: bool,
+    slow: bool,
+    temperature: Temperature,
+    below_el: bool,
+) -> String {
     let mut text = String::new();
     if awaited {
         text.push_str("The message is incomplete: the rest may arrive.");
@@ -279,7 +336,11 @@ fn guilty(awaited: bool, saturated: bool, slow: bool, temperature: Temperature, 
     }
     if saturated && temperature.c() < 0.0 {
         text.push_str(" The air at the top was saturated and below freezing, so ice on the balloon or an anvil is likely");
-        text.push_str(if slow { ", and the ascent had slowed." } else { "." });
+        text.push_str(if slow {
+            ", and the ascent had slowed."
+        } else {
+            "."
+        });
     } else if slow {
         text.push_str(" The ascent had slowed before the end.");
     }
@@ -302,4 +363,102 @@ fn caveat(view: &View, top: Pressure, awaited: bool, clues: &Clues) -> String {
         caveats.push("No times with heights: the ascent rate couldn't be looked at.".to_owned());
     }
     caveats.join(" ")
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic::{Air0, BOTH, Dice, Scene};
+
+    fn unstable() -> Air0 {
+        Air0 {
+            w: 0.0145,
+            lapse: 0.0072,
+            inversion_k: 1.5,
+            ..Air0::default()
+        }
+    }
+
+    #[test]
+    fn lost_below_the_equilibrium_level_is_doubtful_and_says_at_least() {
+        let mut ascent = unstable().ascent();
+        ascent.end_at(8000.0);
+        for sampling in BOTH {
+            let found = Scene::day(ascent.sampled(sampling)).check(&EarlyEnd);
+            assert_eq!(found.len(), 1);
+            assert_eq!(found[0].grade, Grade::Doubtful);
+            assert!(
+                found[0].summary.contains("lower limit"),
+                "{}",
+                found[0].summary
+            );
+            assert!(found[0].evidence("parcel_excess_k").unwrap() > 0.0);
+            assert!(found[0].repairs.is_empty());
+        }
+    }
+
+    #[test]
+    fn a_full_ascent_is_silent_and_one_past_el_and_tropopause_only_informs() {
+        let ascent = unstable().ascent();
+        for sampling in BOTH {
+            assert!(
+                Scene::day(ascent.sampled(sampling))
+                    .check(&EarlyEnd)
+                    .is_empty()
+            );
+        }
+        // Dry and stable: no parcel rises freely; the isothermal layer starts near 12 km.
+        let mut calm = Air0 {
+            w: 0.003,
+            lapse: 0.0074,
+            inversion_k: 8.0,
+            ..Air0::default()
+        }
+        .ascent();
+        calm.end_at(15_500.0);
+        let scene = Scene::day(calm.fine());
+        let found = scene.check(&EarlyEnd);
+        assert_eq!(found[0].grade, Grade::Informative, "{found:#?}");
+        // The tropopause is where the invented air turns isothermal (213 K).
+        let turns = calm.p[calm.t.iter().position(|&t| t <= 213.0).unwrap()] / 100.0;
+        assert!((found[0].evidence("tropopause_hpa").unwrap() - turns).abs() < 3.0);
+    }
+
+    #[test]
+    fn parts_awaited_are_told_apart_from_an_end() {
+        let mut ascent = unstable().ascent();
+        ascent.end_at(14_000.0);
+        let mut sounding = ascent.coded();
+        sounding.completeness = Completeness::LaterPartsNotReceived;
+        let found = Scene::day(sounding).check(&EarlyEnd);
+        assert!(
+            found[0].summary.contains("later parts may still come"),
+            "{}",
+            found[0].summary
+        );
+    }
+
+    #[test]
+    fn icing_in_an_anvil_is_told() {
+        let mut air = unstable();
+        air.cloud = Some((6000.0, 12_000.0));
+        let mut ascent = air.ascent().noisy(&mut Dice::new(3), 0.05, 0.005);
+        ascent.end_at(9000.0);
+        let mut sounding = ascent.fine();
+        // The last 300 m take three times as long.
+        let n = sounding.levels.len();
+        for (extra, level) in sounding.levels.iter_mut().skip(n - 60).enumerate() {
+            level.elapsed = level.elapsed.map(|s| s + 2.0 * extra as f64);
+        }
+        let found = Scene::day(sounding).check(&EarlyEnd);
+        assert!(
+            found[0].guilty.contains("ice on the balloon") && found[0].guilty.contains("slowed"),
+            "{}",
+            found[0].guilty
+        );
+        assert!(
+            found[0].evidence("ascent_rate_top_ms").unwrap()
+                < 0.6 * found[0].evidence("ascent_rate_ms").unwrap()
+        );
+    }
 }

@@ -60,7 +60,10 @@ enum Fault {
 
 impl Fault {
     fn is_wind(self) -> bool {
-        matches!(self, Self::WindSpeed(_) | Self::WindDirection(_) | Self::NotANumber("wind"))
+        matches!(
+            self,
+            Self::WindSpeed(_) | Self::WindDirection(_) | Self::NotANumber("wind")
+        )
     }
 
     /// How bad, for picking the one to be told; comparable within a kind only.
@@ -82,7 +85,9 @@ impl Fault {
                 number(value, 1),
                 number(limit, 0)
             ),
-            Self::DewpointExcess(k) => format!("dew point {} K above the temperature", number(k, 1)),
+            Self::DewpointExcess(k) => {
+                format!("dew point {} K above the temperature", number(k, 1))
+            }
             Self::NegativeHumidity(pct) => format!("relative humidity {} %", number(pct, 1)),
             Self::WindSpeed(ms) => format!("wind speed {} m/s", number(ms, 0)),
             Self::WindDirection(degrees) => format!("wind direction {}\u{b0}", number(degrees, 0)),
@@ -95,10 +100,16 @@ impl Fault {
             Self::Temperature { value, .. } => {
                 Evidence::new("temperature_c", "temperature", value, "\u{b0}C", 1)
             }
-            Self::DewpointExcess(k) => {
-                Evidence::new("dewpoint_excess_k", "dew point above temperature by", k, "K", 1)
+            Self::DewpointExcess(k) => Evidence::new(
+                "dewpoint_excess_k",
+                "dew point above temperature by",
+                k,
+                "K",
+                1,
+            ),
+            Self::NegativeHumidity(pct) => {
+                Evidence::new("rh_pct", "relative humidity", pct, "%", 1)
             }
-            Self::NegativeHumidity(pct) => Evidence::new("rh_pct", "relative humidity", pct, "%", 1),
             Self::WindSpeed(ms) => Evidence::new("wind_ms", "wind speed", ms, "m/s", 0),
             Self::WindDirection(degrees) => {
                 Evidence::new("wind_direction_deg", "wind direction", degrees, "\u{b0}", 0)
@@ -156,8 +167,9 @@ impl Rule for ImpossibleValue {
         for (index, level) in sounding.levels.iter().enumerate() {
             for fault in limits.faults(level) {
                 let near = |run: &&mut Vec<(usize, Fault)>| {
-                    run.last()
-                        .is_some_and(|&(last, other)| index <= last + gap + 1 && other.is_wind() == fault.is_wind())
+                    run.last().is_some_and(|&(last, other)| {
+                        index <= last + gap + 1 && other.is_wind() == fault.is_wind()
+                    })
                 };
                 match runs.iter_mut().rev().find(near) {
                     Some(run) => run.push((index, fault)),
@@ -179,7 +191,9 @@ impl Limits {
     fn of(view: &View) -> Self {
         let step = view.context.sounding.temperature_step;
         Self {
-            temperature: LIMITS.map(|(hpa, coldest, warmest)| (hpa, view.threshold(coldest), view.threshold(warmest))),
+            temperature: LIMITS.map(|(hpa, coldest, warmest)| {
+                (hpa, view.threshold(coldest), view.threshold(warmest))
+            }),
             // Temperature and dew point are each rounded by half a step.
             dewpoint_excess: view.threshold("impossible-value.dewpoint_excess_k") + step,
             wind: view.threshold("impossible-value.wind_ms"),
@@ -203,7 +217,11 @@ impl Limits {
         if let Some(td) = level.dewpoint {
             if !td.is_finite() {
                 faults.push(Fault::NotANumber("dew point"));
-            } else if let Some(excess) = level.temperature.map(|t| td - t).filter(|&k| k > self.dewpoint_excess) {
+            } else if let Some(excess) = level
+                .temperature
+                .map(|t| td - t)
+                .filter(|&k| k > self.dewpoint_excess)
+            {
                 faults.push(Fault::DewpointExcess(excess));
             }
         }
@@ -246,8 +264,16 @@ impl ImpossibleValue {
             .filter_map(|&index| levels.get(index)?.pressure)
             .filter(|p| p.is_finite() && *p > 0.0)
             .collect();
-        let bottom = pressures.iter().copied().reduce(f64::max).map(Pressure::from_pa);
-        let top = pressures.iter().copied().reduce(f64::min).map(Pressure::from_pa);
+        let bottom = pressures
+            .iter()
+            .copied()
+            .reduce(f64::max)
+            .map(Pressure::from_pa);
+        let top = pressures
+            .iter()
+            .copied()
+            .reduce(f64::min)
+            .map(Pressure::from_pa);
         // The worst of each kind is told.
         let mut told: Vec<(usize, Fault)> = Vec::new();
         for &(index, fault) in run {
@@ -266,7 +292,9 @@ impl ImpossibleValue {
                 .and_then(|level| level.pressure)
                 .filter(|p| p.is_finite())
                 .map(|p| format!(" at {}", repair::at(p)));
-            let line = level.and_then(|level| level.line).map(|line| format!(" (line {line})"));
+            let line = level
+                .and_then(|level| level.line)
+                .map(|line| format!(" (line {line})"));
             [pressure, line].into_iter().flatten().collect::<String>()
         };
         let said: Vec<String> = told
@@ -281,8 +309,17 @@ impl ImpossibleValue {
             summary.push_str(&format!("; {} levels in all", indices.len()));
         }
         summary.push('.');
-        let mut evidence: Vec<Evidence> = told.iter().filter_map(|(_, fault)| fault.evidence()).collect();
-        evidence.push(Evidence::new("levels", "levels affected", indices.len() as f64, "", 0));
+        let mut evidence: Vec<Evidence> = told
+            .iter()
+            .filter_map(|(_, fault)| fault.evidence())
+            .collect();
+        evidence.push(Evidence::new(
+            "levels",
+            "levels affected",
+            indices.len() as f64,
+            "",
+            0,
+        ));
         let slight = run.iter().all(|(_, fault)| {
             matches!(fault, Fault::DewpointExcess(k) if *k < 2.0 * view.threshold("impossible-value.dewpoint_excess_k") + view.context.sounding.temperature_step)
         });
@@ -290,10 +327,16 @@ impl ImpossibleValue {
         Finding {
             rule: self.id(),
             title: self.title(),
-            grade: if slight { Grade::Doubtful } else { Grade::Erroneous },
+            grade: if slight {
+                Grade::Doubtful
+            } else {
+                Grade::Erroneous
+            },
             bottom,
             top,
-            heights: bottom.zip(top).and_then(|(bottom, top)| view.heights(bottom, top)),
+            heights: bottom
+                .zip(top)
+                .and_then(|(bottom, top)| view.heights(bottom, top)),
             summary,
             evidence,
             guilty: "A failed sensor, a garbled transmission or a coding mistake.".into(),
@@ -303,7 +346,11 @@ impl ImpossibleValue {
                 "None in the free atmosphere; the pressure of the level may be wrong instead of the value.".into()
             },
             caveat: String::new(),
-            repairs: if wind_only { Vec::new() } else { repairs(view, bottom, top) },
+            repairs: if wind_only {
+                Vec::new()
+            } else {
+                repairs(view, bottom, top)
+            },
             wind_only,
         }
     }
@@ -337,9 +384,17 @@ fn repairs(view: &View, bottom: Option<Pressure>, top: Option<Pressure>) -> Vec<
         return vec![drop(format!("Drop the level at {}", repair::at(p)), p, p)];
     }
     // Strictly between the neighbours believed on either side; at the top of the profile there is none above.
-    match (first.checked_sub(1).and_then(|below| pressure.get(below)), pressure.get(end)) {
+    match (
+        first.checked_sub(1).and_then(|below| pressure.get(below)),
+        pressure.get(end),
+    ) {
         (Some(&below), Some(&above)) => vec![drop(
-            format!("Drop the {} levels between {} and {}", end - first, repair::at(below), repair::at(above)),
+            format!(
+                "Drop the {} levels between {} and {}",
+                end - first,
+                repair::at(below),
+                repair::at(above)
+            ),
             below,
             above,
         )],
@@ -349,5 +404,80 @@ fn repairs(view: &View, bottom: Option<Pressure>, top: Option<Pressure>) -> Vec<
             amendments: vec![Amendment::DisregardAbove { pressure_pa: below }],
         }],
         _ => Vec::new(),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic::{Air0, Scene, levels};
+    use dewbound_sounding::Wind;
+
+    #[test]
+    fn clean_ascents_are_silent() {
+        for sounding in [
+            Air0::default().ascent().fine(),
+            Air0::default().ascent().coded(),
+        ] {
+            assert!(Scene::day(sounding).check(&ImpossibleValue).is_empty());
+        }
+    }
+
+    #[test]
+    fn what_cant_be_is_erroneous_and_says_where() {
+        let rows = [
+            (1000.0, 25.0, 15.0),
+            (850.0, 14.0, 5.0),
+            (700.0, 55.0, -8.0),
+            (500.0, -12.0, -2.0),
+            (300.0, -38.0, -55.0),
+        ];
+        let found = Scene::day(levels(&rows)).check(&ImpossibleValue);
+        assert_eq!(found.len(), 1, "{found:#?}");
+        assert_eq!(found[0].grade, Grade::Erroneous);
+        assert!(
+            found[0]
+                .summary
+                .starts_with("Dew point 10.0 K above the temperature at 500 hPa (line 4)"),
+            "{}",
+            found[0].summary
+        );
+        let mut rows = rows;
+        rows[2].1 = 61.0;
+        rows[3].2 = -30.0;
+        let found = Scene::day(levels(&rows)).check(&ImpossibleValue);
+        assert_eq!(found[0].key(), "impossible-value@700-700");
+        assert!(
+            found[0].summary.contains("61.0 \u{b0}C")
+                && found[0].summary.contains("60 \u{b0}C possible"),
+            "{}",
+            found[0].summary
+        );
+    }
+
+    #[test]
+    fn a_failed_sensor_is_one_finding() {
+        let mut sounding = Air0::default().ascent().fine();
+        for level in sounding.levels.iter_mut().skip(1000).take(400).step_by(2) {
+            level.temperature = Some(150.0);
+        }
+        let found = Scene::day(sounding).check(&ImpossibleValue);
+        assert_eq!(found.len(), 1);
+        assert_eq!(found[0].evidence("levels"), Some(200.0));
+        assert_eq!(found[0].repairs.len(), 1);
+    }
+
+    #[test]
+    fn wind_has_no_cost_in_cape_and_not_a_number_is_told() {
+        let mut sounding = Air0::default().ascent().coded();
+        sounding.levels[3].wind = Some(Wind {
+            direction: 270.0,
+            speed: 220.0,
+        });
+        sounding.levels[5].temperature = Some(f64::NAN);
+        let found = Scene::day(sounding).check(&ImpossibleValue);
+        assert_eq!(found.len(), 2, "{found:#?}");
+        assert!(found[0].wind_only && found[0].summary.contains("220 m/s"));
+        assert!(!found[1].wind_only && found[1].summary.contains("not a number"));
     }
 }

@@ -87,12 +87,22 @@ impl LevelOrder {
 
     fn reversal(&self, view: &View) -> Option<Finding> {
         let reversals = reversals(view);
-        let worst = reversals.iter().max_by(|a, b| (a.to - a.from).total_cmp(&(b.to - b.from)))?;
+        let worst = reversals
+            .iter()
+            .max_by(|a, b| (a.to - a.from).total_cmp(&(b.to - b.from)))?;
         let rise = (worst.to - worst.from) / 100.0;
-        let lowest = reversals.iter().map(|r| r.to).fold(f64::NEG_INFINITY, f64::max);
-        let highest = reversals.iter().map(|r| r.from).fold(f64::INFINITY, f64::min);
+        let lowest = reversals
+            .iter()
+            .map(|r| r.to)
+            .fold(f64::NEG_INFINITY, f64::max);
+        let highest = reversals
+            .iter()
+            .map(|r| r.from)
+            .fold(f64::INFINITY, f64::min);
         let (bottom, top) = (Pressure::from_pa(lowest), Pressure::from_pa(highest));
-        let line = worst.line.map_or_else(String::new, |line| format!(" (line {line})"));
+        let line = worst
+            .line
+            .map_or_else(String::new, |line| format!(" (line {line})"));
         let times = match reversals.len() {
             1 => "once".to_owned(),
             n => format!("{n} times"),
@@ -134,8 +144,13 @@ impl LevelOrder {
         let pa = |level: &Level| level.pressure.unwrap_or(f64::NAN);
         by_pressure.sort_by(|a, b| pa(b).total_cmp(&pa(a)));
         let spread = |levels: &[&Level], field: fn(&Level) -> Option<f64>| {
-            let values = levels.iter().filter_map(|level| field(level)).filter(|v| v.is_finite());
-            let (low, high) = values.fold((f64::INFINITY, f64::NEG_INFINITY), |(low, high), v| (low.min(v), high.max(v)));
+            let values = levels
+                .iter()
+                .filter_map(|level| field(level))
+                .filter(|v| v.is_finite());
+            let (low, high) = values.fold((f64::INFINITY, f64::NEG_INFINITY), |(low, high), v| {
+                (low.min(v), high.max(v))
+            });
             (high - low).max(0.0)
         };
         by_pressure
@@ -151,9 +166,20 @@ impl LevelOrder {
             .collect()
     }
 
-    fn conflict(&self, view: &View, p: f64, levels: &[&Level], temperature: f64, dewpoint: f64) -> Finding {
+    fn conflict(
+        &self,
+        view: &View,
+        p: f64,
+        levels: &[&Level],
+        temperature: f64,
+        dewpoint: f64,
+    ) -> Finding {
         let pressure = Pressure::from_pa(p);
-        let lines: Vec<String> = levels.iter().filter_map(|level| level.line).map(|line| line.to_string()).collect();
+        let lines: Vec<String> = levels
+            .iter()
+            .filter_map(|level| level.line)
+            .map(|line| line.to_string())
+            .collect();
         let lines = if lines.is_empty() {
             String::new()
         } else {
@@ -238,12 +264,15 @@ fn reversals(view: &View) -> Vec<Reversal> {
     let sounding = view.context.sounding;
     let fine = view.context.profile.sampling == Sampling::Fine;
     let with_pressure = || {
-        sounding
-            .levels
-            .iter()
-            .filter_map(|level| Some((level, level.pressure.filter(|p| p.is_finite() && *p > 0.0)?)))
+        sounding.levels.iter().filter_map(|level| {
+            Some((level, level.pressure.filter(|p| p.is_finite() && *p > 0.0)?))
+        })
     };
-    let surface = view.context.profile.surface_pressure().map_or(f64::INFINITY, Pressure::pa);
+    let surface = view
+        .context
+        .profile
+        .surface_pressure()
+        .map_or(f64::INFINITY, Pressure::pa);
     let waiting = surface - 100.0 * view.threshold("level-order.prelaunch_hpa");
     // One level in a group of coded levels may be rounded to its neighbour's pressure, not beyond it.
     let tolerance = if fine {
@@ -251,7 +280,11 @@ fn reversals(view: &View) -> Vec<Reversal> {
     } else {
         0.0
     };
-    let groups: &[Option<u8>] = if fine { &[None] } else { &[Some(1), Some(2), Some(3), Some(4)] };
+    let groups: &[Option<u8>] = if fine {
+        &[None]
+    } else {
+        &[Some(1), Some(2), Some(3), Some(4)]
+    };
     let mut reversals = Vec::new();
     for &group in groups {
         let mut sequence: Vec<(f64, Option<usize>)> = with_pressure()
@@ -268,7 +301,10 @@ fn reversals(view: &View) -> Vec<Reversal> {
 
 /// Most steps go up in pressure: a sonde dropped from an aircraft.
 fn falling_sonde(sequence: &[(f64, Option<usize>)]) -> bool {
-    let up = sequence.windows(2).filter(|pair| pair[1].0 > pair[0].0).count();
+    let up = sequence
+        .windows(2)
+        .filter(|pair| pair[1].0 > pair[0].0)
+        .count();
     sequence.len() > 2 && 2 * up > sequence.len()
 }
 
@@ -293,4 +329,110 @@ fn episodes(sequence: &[(f64, Option<usize>)], waiting: f64, tolerance: f64) -> 
         }
     }
     episodes
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic::{Air0, Scene, levels};
+
+    #[test]
+    fn clean_ascents_are_silent_and_so_are_the_parts_of_a_message() {
+        for sounding in [
+            Air0::default().ascent().fine(),
+            Air0::default().ascent().coded(),
+        ] {
+            assert!(Scene::day(sounding).check(&LevelOrder).is_empty());
+        }
+        // Standard levels first, significant ones after: each list falls.
+        let mut sounding = levels(&[
+            (1000.0, 25.0, 15.0),
+            (850.0, 14.0, 5.0),
+            (700.0, 5.0, -8.0),
+            (500.0, -12.0, -30.0),
+            (1000.0, 25.0, 15.0),
+            (920.0, 19.0, 12.0),
+            (610.0, -2.0, -20.0),
+        ]);
+        for (i, level) in sounding.levels.iter_mut().enumerate() {
+            level.kind = match i {
+                0 | 4 => LevelKind::Surface,
+                1..=3 => LevelKind::Standard,
+                _ => LevelKind::SignificantThermal,
+            };
+        }
+        assert!(Scene::day(sounding).check(&LevelOrder).is_empty());
+    }
+
+    #[test]
+    fn a_shuffled_level_is_found() {
+        let rows = [
+            (1000.0, 25.0, 15.0),
+            (700.0, 5.0, -8.0),
+            (850.0, 14.0, 5.0),
+            (500.0, -12.0, -30.0),
+        ];
+        let found = Scene::day(levels(&rows)).check(&LevelOrder);
+        assert_eq!(found.len(), 1, "{found:#?}");
+        assert!(
+            found[0]
+                .summary
+                .contains("once, by up to 150.0 hPa at 700 hPa (line 3)"),
+            "{}",
+            found[0].summary
+        );
+    }
+
+    #[test]
+    fn one_pressure_with_two_values_is_found() {
+        let rows = [
+            (1000.0, 25.0, 15.0),
+            (850.0, 14.0, 5.0),
+            (850.0, 11.0, 5.0),
+            (500.0, -12.0, -30.0),
+        ];
+        let found = Scene::day(levels(&rows)).check(&LevelOrder);
+        assert_eq!(found.len(), 1, "{found:#?}");
+        assert_eq!(
+            found[0]
+                .evidence("temperature_spread_k")
+                .map(|k| (k * 10.0).round()),
+            Some(30.0)
+        );
+        let mut alike = rows;
+        alike[2] = (850.0, 14.2, 5.0);
+        assert!(Scene::day(levels(&alike)).check(&LevelOrder).is_empty());
+    }
+
+    #[test]
+    fn a_height_that_runs_backwards_is_found_once() {
+        let mut sounding = Air0::default().ascent().fine();
+        for level in sounding.levels.iter_mut().skip(800).take(100) {
+            level.height = level.height.map(|z| z - 1000.0);
+        }
+        let found = Scene::day(sounding).check(&LevelOrder);
+        assert_eq!(found.len(), 1);
+        assert_eq!(found[0].grade, Grade::Erroneous);
+        assert!((found[0].evidence("height_fall_m").unwrap() - 995.0).abs() < 10.0);
+    }
+
+    #[test]
+    fn a_balloon_that_sinks_for_a_while_is_one_finding() {
+        let mut ascent = Air0::default().ascent();
+        let p: Vec<f64> = ascent.p.clone();
+        let n = 600;
+        for k in 0..60 {
+            // Down by 60 samples and up again, written as the received order has it.
+            ascent.p[n + k] = p[n - k];
+        }
+        let found = Scene::day(ascent.fine()).check(&LevelOrder);
+        assert_eq!(
+            found
+                .iter()
+                .filter(|finding| finding.summary.contains("Pressure rises"))
+                .count(),
+            1,
+            "{found:#?}"
+        );
+    }
 }

@@ -5,10 +5,16 @@ use crate::mixed::{Line, MIXED_THRESHOLDS, MixedLayer};
 use crate::words::{layer, number};
 use crate::{Evidence, Finding, Grade, Rule, View};
 use dewbound_sounding::Daylight;
-use dewbound_sounding::thermo::dewpoint_from_mixing_ratio;
+use dewbound_sounding::thermo::{
+    Pressure, Temperature, dewpoint_from_mixing_ratio, dewpoint_from_vapour_pressure,
+    saturation_vapour_pressure,
+};
 
 /// w changes through a mixed layer that reaches the ground.
 pub struct MoistureSlope;
+
+/// Share of the mixed layer that the fitted levels must span for the line to be carried on to its ends.
+const KNOWN_SHARE: f64 = 0.5;
 
 /// Where the change sits.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -28,7 +34,7 @@ pub(super) struct Seen {
     surface_w: f64,
     /// w the layer leads to at the surface, kg/kg.
     at_surface: f64,
-    /// Fitted w at the lowest and the highest level of the fit, kg/kg.
+    /// Fitted w at the bottom and the top of the layer (or of the levels fitted, when they span too little), kg/kg.
     fitted: (f64, f64),
     /// Root mean square scatter about the line, kg/kg.
     residual: f64,
@@ -58,7 +64,7 @@ impl Rule for MoistureSlope {
     }
 
     fn thresholds(&self) -> &'static [&'static str] {
-        const NAMES: [&str; 7] = [
+        const NAMES: [&str; 9] = [
             "fine.average_hpa",
             MIXED_THRESHOLDS[0],
             MIXED_THRESHOLDS[1],
@@ -66,12 +72,17 @@ impl Rule for MoistureSlope {
             MIXED_THRESHOLDS[3],
             "moisture-slope.slope_k",
             "moisture-slope.jump_k",
+            "moisture-slope.total_k",
+            "moisture-slope.rh_uncertainty_pct",
         ];
         &NAMES
     }
 
     fn look(&self, view: &View) -> Vec<Finding> {
-        seen(view).map(|seen| self.finding(view, &seen)).into_iter().collect()
+        seen(view)
+            .map(|seen| self.finding(view, &seen))
+            .into_iter()
+            .collect()
     }
 }
 
@@ -89,21 +100,44 @@ pub(super) fn seen(view: &View) -> Option<Seen> {
     let (p_low, p_high) = (column.pressure[lowest], column.pressure[highest]);
     let surface = mixed.bottom;
     let dewpoint = |w: f64| dewpoint_from_mixing_ratio(surface, w.max(1e-6)).k();
-    let fitted = (line.at(p_low), line.at(p_high));
-    // The slope may be carried on to the ground only if it is known over at least that distance.
-    let gap = surface.pa() - p_low;
-    let at_surface = if p_low - p_high >= gap { line.at(surface.pa()) } else { fitted.0 };
+    // The line is carried on to both ends of the layer only if it is known over most of it.
+    let known = p_low - p_high;
+    let fitted = if known >= KNOWN_SHARE * (surface.pa() - mixed.top.pa()) {
+        (line.at(surface.pa()), line.at(mixed.top.pa()))
+    } else {
+        (line.at(p_low), line.at(p_high))
+    };
+    let at_surface = if known >= surface.pa() - p_low {
+        line.at(surface.pa())
+    } else {
+        line.at(p_low)
+    };
     let slope_k = dewpoint(fitted.0) - dewpoint(fitted.1);
     let jump_k = dewpoint(surface_w) - dewpoint(at_surface);
-    let slopes = slope_k.abs() >= view.threshold("moisture-slope.slope_k");
-    let jumps = jump_k.abs() >= view.threshold("moisture-slope.jump_k");
+    // In dry air a small error of relative humidity is a large one of the dew point.
+    let uncertain = mixed
+        .interior
+        .iter()
+        .filter_map(|&level| humidity_uncertainty(view, level))
+        .fold(0.0, f64::max);
+    let limit = |name| f64::hypot(view.threshold(name), uncertain);
+    let slopes = slope_k.abs() >= limit("moisture-slope.slope_k");
+    let jumps = jump_k.abs() >= limit("moisture-slope.jump_k");
     let shape = match (slopes, jumps) {
         (_, true) if mixed.interior.len() == 1 => Shape::Unresolved,
         (true, false) => Shape::Even,
         (false, true) => Shape::Jump,
         (true, true) if jump_k.abs() >= slope_k.abs() => Shape::Jump,
         (true, true) => Shape::Even,
-        (false, false) => return None,
+        // Neither is much by itself, but they add up.
+        (false, false)
+            if (dewpoint(surface_w) - dewpoint(fitted.1)).abs()
+                < limit("moisture-slope.total_k") =>
+        {
+            return None;
+        }
+        (false, false) if jump_k.abs() >= slope_k.abs() => Shape::Jump,
+        (false, false) => Shape::Even,
     };
     Some(Seen {
         mixed,
@@ -115,6 +149,18 @@ pub(super) fn seen(view: &View) -> Option<Seen> {
         slope_k,
         jump_k,
     })
+}
+
+/// What the uncertainty of relative humidity makes of the dew point at a level, K.
+fn humidity_uncertainty(view: &View, level: usize) -> Option<f64> {
+    let column = &view.column;
+    let dewpoint = Temperature::from_k(column.dewpoint[level]?);
+    let share = view.threshold("moisture-slope.rh_uncertainty_pct")
+        / 100.0
+        / column.relative_humidity(level)?;
+    let e = saturation_vapour_pressure(dewpoint).pa();
+    let moister = dewpoint_from_vapour_pressure(Pressure::from_pa(e * (1.0 + share)));
+    Some(moister.k() - dewpoint.k())
 }
 
 impl MoistureSlope {
@@ -131,7 +177,9 @@ impl MoistureSlope {
         let head = match seen.shape {
             Shape::Even => format!("Mixing ratio {direction} evenly"),
             Shape::Jump => format!("Mixing ratio {direction} at the lowest levels"),
-            Shape::Unresolved => format!("Mixing ratio {direction} from the surface to the one level above it"),
+            Shape::Unresolved => {
+                format!("Mixing ratio {direction} from the surface to the one level above it")
+            }
         };
         Finding {
             rule: self.id(),
@@ -165,7 +213,13 @@ impl MoistureSlope {
                 "g/kg",
                 1,
             ),
-            Evidence::new("slope_k", "the same as dew point at surface pressure", seen.slope_k, "K", 1),
+            Evidence::new(
+                "slope_k",
+                "the same as dew point at surface pressure",
+                seen.slope_k,
+                "K",
+                1,
+            ),
             Evidence::new(
                 "jump_gkg",
                 "mixing ratio, surface minus mixed layer",
@@ -173,8 +227,20 @@ impl MoistureSlope {
                 "g/kg",
                 1,
             ),
-            Evidence::new("jump_k", "the same as dew point at surface pressure", seen.jump_k, "K", 1),
-            Evidence::new("scatter_gkg", "scatter about the fitted line", grams(seen.residual), "g/kg", 2),
+            Evidence::new(
+                "jump_k",
+                "the same as dew point at surface pressure",
+                seen.jump_k,
+                "K",
+                1,
+            ),
+            Evidence::new(
+                "scatter_gkg",
+                "scatter about the fitted line",
+                grams(seen.residual),
+                "g/kg",
+                2,
+            ),
             Evidence::new(
                 "depth_hpa",
                 "depth of the mixed layer",
@@ -182,8 +248,20 @@ impl MoistureSlope {
                 "hPa",
                 0,
             ),
-            Evidence::new("theta_tolerance_k", "theta constant within", mixed.tolerance, "K", 1),
-            Evidence::new("levels", "levels in the fit", mixed.interior.len() as f64, "", 0),
+            Evidence::new(
+                "theta_tolerance_k",
+                "theta constant within",
+                mixed.tolerance,
+                "K",
+                1,
+            ),
+            Evidence::new(
+                "levels",
+                "levels in the fit",
+                mixed.interior.len() as f64,
+                "",
+                0,
+            ),
         ];
         if let Some(implied) = mixed.implied_dewpoint() {
             evidence.push(Evidence::new(
@@ -199,11 +277,15 @@ impl MoistureSlope {
 
     fn repairs(&self, seen: &Seen) -> Vec<crate::Repair> {
         let mixed = &seen.mixed;
-        let believe_sonde = mixed
-            .implied_dewpoint()
-            .map(|implied| repair::surface_dewpoint("believe-sonde", implied, "believing the sonde"));
-        let believe_surface =
-            repair::mixed_moisture("believe-surface", mixed.bottom, mixed.top, seen.surface_w.max(0.0));
+        let believe_sonde = mixed.implied_dewpoint().map(|implied| {
+            repair::surface_dewpoint("believe-sonde", implied, "believing the sonde")
+        });
+        let believe_surface = repair::mixed_moisture(
+            "believe-surface",
+            mixed.bottom,
+            mixed.top,
+            seen.surface_w.max(0.0),
+        );
         believe_sonde.into_iter().chain([believe_surface]).collect()
     }
 }
@@ -262,3 +344,143 @@ fn caveat(view: &View, seen: &Seen) -> String {
     caveats.join(" ")
 }
 
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic::{Air0, BOTH, Dice, Scene};
+    use dewbound_sounding::{Amendment, Sampling};
+
+    /// w falling evenly through the mixed layer so that the dew point at one pressure changes by `k`.
+    fn sloping(seed: u64, k: f64, sampling: Sampling) -> Vec<Finding> {
+        let mut dice = Dice::new(seed);
+        let air = Air0::random(&mut dice);
+        let mut ascent = air.ascent();
+        let surface = Pressure::from_pa(ascent.p[0]);
+        let sign = if dice.uniform() < 0.8 { 1.0 } else { -1.0 };
+        let top = ascent.at_height(air.mixed_m);
+        let base = dewpoint_from_mixing_ratio(surface, air.w).k();
+        for i in 0..top {
+            let share = (ascent.p[0] - ascent.p[i]) / (ascent.p[0] - ascent.p[top]);
+            let dewpoint = Temperature::from_k(base - sign * k * share);
+            let w = Air {
+                pressure: surface,
+                temperature: dewpoint,
+                dewpoint,
+            }
+            .mixing_ratio();
+            ascent.set_w(i, w);
+        }
+        // The air above joins on where the slope has led.
+        let w_top = ascent.w(top - 1);
+        for i in top..ascent.at_height(air.mixed_m + air.inversion_m) {
+            let w = ascent.w(i).min(w_top);
+            ascent.set_w(i, w);
+        }
+        Scene::day(ascent.noisy(&mut dice, 0.1, 0.01).sampled(sampling)).check(&MoistureSlope)
+    }
+    use dewbound_sounding::thermo::Air;
+
+    /// A surface hygrometer off by `k` of dew point.
+    fn biased(seed: u64, k: f64, sampling: Sampling, daylight: Daylight) -> (Scene, f64) {
+        let mut dice = Dice::new(seed);
+        let air = Air0::random(&mut dice);
+        let mut ascent = air.ascent().noisy(&mut dice, 0.1, 0.01);
+        let surface = Pressure::from_pa(ascent.p[0]);
+        let true_dewpoint = dewpoint_from_mixing_ratio(surface, air.w).k();
+        let dewpoint = Temperature::from_k(true_dewpoint + k);
+        ascent.set_w(
+            0,
+            Air {
+                pressure: surface,
+                temperature: dewpoint,
+                dewpoint,
+            }
+            .mixing_ratio(),
+        );
+        (
+            Scene::new(ascent.sampled(sampling), daylight),
+            true_dewpoint,
+        )
+    }
+
+    #[test]
+    fn an_even_slope_is_told_as_one() {
+        for sampling in BOTH {
+            let found = (0..40)
+                .filter(|&seed| !sloping(seed, 4.0, sampling).is_empty())
+                .count();
+            assert!(found >= 38, "{sampling:?}: {found} of 40");
+        }
+        let fine = sloping(3, 4.0, Sampling::Fine);
+        assert!(fine[0].summary.contains("evenly"), "{}", fine[0].summary);
+        assert!(
+            fine[0].innocent.contains("ntrainment")
+                || fine[0].innocent.contains("carried in above")
+        );
+    }
+
+    #[test]
+    fn a_jump_points_to_the_surface_and_the_sonde_implies_the_truth() {
+        for sampling in BOTH {
+            for (k, seeds) in [(3.0, 0..30), (-3.0, 30..60)] {
+                let mut hits = 0;
+                for seed in seeds {
+                    let (scene, truth) = biased(seed, k, sampling, Daylight::Day);
+                    let found = scene.check(&MoistureSlope);
+                    let Some(finding) = found.first() else {
+                        continue;
+                    };
+                    hits += usize::from(!finding.summary.contains("evenly"));
+                    let Amendment::SurfaceDewpoint { dewpoint_k } =
+                        finding.repairs[0].amendments[0]
+                    else {
+                        panic!("not a surface dew point")
+                    };
+                    assert!(
+                        (dewpoint_k - truth).abs() < 1.3,
+                        "{sampling:?} {seed}: {dewpoint_k} {truth}"
+                    );
+                    assert_eq!(finding.repairs[1].id, "believe-surface");
+                }
+                assert!(hits >= 26, "{sampling:?} {k}: {hits} of 30");
+            }
+        }
+    }
+
+    #[test]
+    fn night_is_not_judged_and_unknown_says_so() {
+        let (scene, _) = biased(1, 4.0, Sampling::Fine, Daylight::Night);
+        assert!(scene.check(&MoistureSlope).is_empty());
+        let (scene, _) = biased(1, 4.0, Sampling::Fine, Daylight::Unknown);
+        let found = scene.check(&MoistureSlope);
+        assert_eq!(found[0].grade, Grade::Doubtful);
+        assert!(found[0].caveat.contains("isn't known"));
+    }
+
+    #[test]
+    fn a_jump_is_one_finding_not_two() {
+        let (scene, _) = biased(4, 5.0, Sampling::Fine, Daylight::Day);
+        let rules: Vec<_> = scene
+            .findings()
+            .iter()
+            .map(|finding| finding.rule)
+            .collect();
+        assert_eq!(rules, ["moisture-slope"]);
+    }
+
+    #[test]
+    fn a_ground_inversion_is_no_mixed_layer() {
+        let air = Air0 {
+            contact_k: -4.0,
+            ..Air0::default()
+        };
+        let scene = Scene::day(air.ascent().fine());
+        assert!(MixedLayer::of(&scene.profile, &scene.thresholds).is_none());
+        let mixed = Scene::day(Air0::default().ascent().fine());
+        let layer = MixedLayer::of(&mixed.profile, &mixed.thresholds).unwrap();
+        assert!(
+            (layer.bottom.hpa() - layer.top.hpa() - 158.0).abs() < 8.0,
+            "{layer:?}"
+        );
+    }
+}

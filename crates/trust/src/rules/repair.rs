@@ -42,7 +42,10 @@ pub(super) fn bridges(view: &View, bottom: usize, top: usize) -> Vec<Repair> {
 /// The levels strictly between two believed ones left out. `None` when there are none.
 pub(super) fn drop_between(view: &View, bottom: usize, top: usize) -> Option<Repair> {
     let pressure = |level: usize| view.column.pressure[level];
-    let count = top.checked_sub(bottom)?.checked_sub(1).filter(|&count| count > 0)?;
+    let count = top
+        .checked_sub(bottom)?
+        .checked_sub(1)
+        .filter(|&count| count > 0)?;
     let ((bottom_pa, top_pa), what) = if count == 1 {
         let p = pressure(bottom + 1);
         ((p, p), format!("Drop the level at {}", at(p)))
@@ -72,7 +75,10 @@ pub(super) fn at(pa: f64) -> String {
 pub(super) fn surface_dewpoint(id: &'static str, dewpoint: Temperature, because: &str) -> Repair {
     Repair {
         id,
-        what: format!("Set the surface dew point to {}, {because}", celsius(dewpoint)),
+        what: format!(
+            "Set the surface dew point to {}, {because}",
+            celsius(dewpoint)
+        ),
         amendments: vec![Amendment::SurfaceDewpoint {
             dewpoint_k: dewpoint.k(),
         }],
@@ -80,10 +86,17 @@ pub(super) fn surface_dewpoint(id: &'static str, dewpoint: Temperature, because:
 }
 
 /// Surface temperature set.
-pub(super) fn surface_temperature(id: &'static str, temperature: Temperature, because: &str) -> Repair {
+pub(super) fn surface_temperature(
+    id: &'static str,
+    temperature: Temperature,
+    because: &str,
+) -> Repair {
     Repair {
         id,
-        what: format!("Set the surface temperature to {}, {because}", celsius(temperature)),
+        what: format!(
+            "Set the surface temperature to {}, {because}",
+            celsius(temperature)
+        ),
         amendments: vec![Amendment::SurfaceTemperature {
             temperature_k: temperature.k(),
         }],
@@ -91,7 +104,12 @@ pub(super) fn surface_temperature(id: &'static str, temperature: Temperature, be
 }
 
 /// Mixing ratio of a layer set.
-pub(super) fn mixed_moisture(id: &'static str, bottom: Pressure, top: Pressure, mixing_ratio: f64) -> Repair {
+pub(super) fn mixed_moisture(
+    id: &'static str,
+    bottom: Pressure,
+    top: Pressure,
+    mixing_ratio: f64,
+) -> Repair {
     Repair {
         id,
         what: format!(

@@ -1,7 +1,7 @@
 //! Superadiabatic layers away from the ground.
 
 use super::repair;
-use crate::layers::{Falling, falling_layers, steepest};
+use crate::layers::{Falling, falling_layers, sharpened, steepest};
 use crate::words::{layer, number};
 use crate::{Evidence, Finding, Grade, Repair, Rule, View};
 use dewbound_sounding::Amendment;
@@ -35,6 +35,8 @@ impl Rule for SuperadiabaticAloft {
     fn thresholds(&self) -> &'static [&'static str] {
         &[
             "fine.average_hpa",
+            "fine.sharp_average_hpa",
+            "superadiabatic-aloft.on_average_share",
             "superadiabatic-aloft.theta_drop_k",
             "superadiabatic-aloft.above_surface_hpa",
             "superadiabatic-aloft.autoconvective_m",
@@ -50,7 +52,20 @@ impl Rule for SuperadiabaticAloft {
         let least = view.threshold("superadiabatic-aloft.theta_drop_k");
         let above = 100.0 * view.threshold("superadiabatic-aloft.above_surface_hpa");
         let start = column.first_at_or_above(lowest - above);
-        let layers = falling_layers(&column.smooth_theta, start..column.len(), least);
+        let on_average = if column.fine {
+            view.threshold("superadiabatic-aloft.on_average_share")
+        } else {
+            1.0
+        };
+        let layers: Vec<Falling> = falling_layers(
+            &column.smooth_theta,
+            start..column.len(),
+            on_average * least,
+        )
+        .into_iter()
+        .map(|layer| sharpened(column, layer))
+        .filter(|layer| layer.drop >= least)
+        .collect();
         neighbours(view, &layers)
             .into_iter()
             .map(|group| self.finding(view, group))
@@ -166,10 +181,13 @@ pub(super) fn repairs(view: &View, base: usize, top: usize) -> Vec<Repair> {
     let theta = &column.smooth_theta;
     let recovered = (top + 1..column.len()).find(|&level| theta[level] >= theta[base]);
     let as_low = (0..base).rev().find(|&level| theta[level] <= theta[top]);
-    let short = |&(bottom, top): &(usize, usize)| column.pressure[bottom] - column.pressure[top] <= LONGEST_BRIDGE;
+    let short = |&(bottom, top): &(usize, usize)| {
+        column.pressure[bottom] - column.pressure[top] <= LONGEST_BRIDGE
+    };
     let cold = recovered.map(|level| (base, level)).filter(short);
     let warm = as_low.map(|level| (level, top)).filter(short);
-    let share = |(bottom, top): (usize, usize)| (column.pressure[bottom] / column.pressure[top]).ln();
+    let share =
+        |(bottom, top): (usize, usize)| (column.pressure[bottom] / column.pressure[top]).ln();
     let (first, second) = match (cold, warm) {
         (Some(cold), Some(warm)) if share(warm) < share(cold) => (Some(warm), Some(cold)),
         (Some(cold), warm) => (Some(cold), warm),
@@ -200,4 +218,161 @@ pub(super) fn repairs(view: &View, base: usize, top: usize) -> Vec<Repair> {
         });
     }
     repairs
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic::{Air0, Ascent, Dice, Scene, levels, theta_of};
+    use approx::assert_relative_eq;
+    use dewbound_sounding::Sounding;
+
+    const COLD_TOP: [(f64, f64, f64); 8] = [
+        (1000.0, 25.0, 15.0),
+        (850.0, 14.0, 5.0),
+        (700.0, 5.0, -8.0),
+        (655.0, -3.0, -12.0),
+        (600.0, -3.6, -20.0),
+        (500.0, -12.0, -30.0),
+        (300.0, -38.0, -55.0),
+        (200.0, -55.0, -70.0),
+    ];
+
+    #[test]
+    fn a_coded_level_too_cold_is_seen_and_measured() {
+        let scene = Scene::day(levels(&COLD_TOP));
+        let found = scene.check(&SuperadiabaticAloft);
+        assert_eq!(found.len(), 1, "{found:#?}");
+        assert_eq!(found[0].key(), "superadiabatic-aloft@700-655");
+        let drop = theta_of(70_000.0, 278.15) - theta_of(65_500.0, 270.15);
+        assert_relative_eq!(
+            found[0].evidence("theta_drop_k").unwrap(),
+            drop,
+            epsilon = 1e-6
+        );
+        assert_eq!(found[0].grade, Grade::Doubtful);
+        // Theta is back at its value of 700 hPa at 600 hPa, so only the level at 655 hPa is suspect.
+        assert!(
+            found[0]
+                .repairs
+                .iter()
+                .any(|repair| repair.what == "Drop the level at 655 hPa")
+        );
+        assert!(
+            found[0].repairs[0]
+                .what
+                .starts_with("Bridge 700\u{2013}600 hPa, humidity kept as mixing ratio")
+        );
+    }
+
+    #[test]
+    fn beyond_autoconvection_is_erroneous_only_when_rounding_cant_explain_it() {
+        // 5.0 K over 7 hPa (about 80 m): 60 K/km.
+        let mut rows = COLD_TOP;
+        rows[3] = (693.0, 0.0, -12.0);
+        assert_eq!(
+            Scene::day(levels(&rows)).check(&SuperadiabaticAloft)[0].grade,
+            Grade::Erroneous
+        );
+        // 1.8 K over 4 hPa (46 m): too thin to be proof.
+        rows[3] = (696.0, 3.2, -12.0);
+        assert_eq!(
+            Scene::day(levels(&rows)).check(&SuperadiabaticAloft)[0].grade,
+            Grade::Doubtful
+        );
+    }
+
+    #[test]
+    fn a_falling_theta_below_the_limit_or_near_the_ground_is_silent() {
+        let mut rows = COLD_TOP;
+        // Theta falls by about 0.8 K.
+        rows[3] = (655.0, -1.0, -12.0);
+        assert!(
+            Scene::day(levels(&rows))
+                .check(&SuperadiabaticAloft)
+                .is_empty()
+        );
+        let near = [
+            (1000.0, 25.0, 15.0),
+            (960.0, 25.0, 15.0),
+            (930.0, 19.0, 14.0),
+            (700.0, 5.0, -8.0),
+        ];
+        assert!(
+            Scene::day(levels(&near))
+                .check(&SuperadiabaticAloft)
+                .is_empty()
+        );
+    }
+
+    #[test]
+    fn a_cold_top_without_recovery_offers_to_disregard_what_is_above() {
+        let rows = [
+            (1000.0, 25.0, 15.0),
+            (850.0, 14.0, 5.0),
+            (700.0, 5.0, -8.0),
+            (655.0, -6.0, -12.0),
+        ];
+        let found = Scene::day(levels(&rows)).check(&SuperadiabaticAloft);
+        assert!(
+            found[0]
+                .repairs
+                .iter()
+                .any(|repair| repair.id == "disregard-above"),
+            "{found:#?}"
+        );
+    }
+
+    /// Share of faulty ascents in which the rule sees the fault: a thermometer that goes cold over 30 to 120 m so that theta
+    /// falls by `drop`, and comes back after some hundred metres.
+    fn detection(drop: f64, sampled: impl Fn(&Ascent) -> Sounding) -> f64 {
+        let cases = 100;
+        let mut hits = 0;
+        for seed in 0..cases {
+            let mut dice = Dice::new(seed);
+            let air = Air0::random(&mut dice);
+            let from = dice.between(3500.0, 7000.0);
+            let over = dice.between(30.0, 120.0);
+            let depth = 2.0 * over + dice.between(100.0, 800.0);
+            let clean = air.ascent();
+            let (a, b) = (clean.at_height(from), clean.at_height(from + over));
+            let natural = theta_of(clean.p[b], clean.t[b]) - theta_of(clean.p[a], clean.t[a]);
+            let bias = (drop + natural) * clean.t[b] / theta_of(clean.p[b], clean.t[b]);
+            let ascent = clean
+                .cold(from, over, depth, bias)
+                .noisy(&mut dice, 0.1, 0.02);
+            let scene = Scene::day(sampled(&ascent));
+            let p = ascent.p[a];
+            hits += usize::from(scene.check(&SuperadiabaticAloft).iter().any(|finding| {
+                finding
+                    .bottom
+                    .is_some_and(|bottom| (bottom.pa() - p).abs() < 3_000.0)
+            }));
+        }
+        hits as f64 / cases as f64
+    }
+
+    #[test]
+    fn detects_most_faults_of_half_again_the_threshold() {
+        let fine = detection(1.5, Ascent::fine);
+        assert!(fine >= 0.95, "fine: {fine}");
+        // With significant levels to half a kelvin the message carries the fault; to a whole kelvin it often doesn't.
+        let coded = detection(1.5, |ascent| ascent.coded_within(0.5));
+        assert!(coded >= 0.95, "coded: {coded}");
+        let loosely_coded = detection(3.0, Ascent::coded);
+        assert!(loosely_coded >= 0.95, "coded to 1 K: {loosely_coded}");
+    }
+
+    #[test]
+    fn at_the_threshold_about_half_are_seen_and_well_below_it_few() {
+        for (name, sampled) in [
+            ("fine", Ascent::fine as fn(&Ascent) -> Sounding),
+            ("coded", |ascent| ascent.coded_within(0.5)),
+        ] {
+            let at = detection(1.0, sampled);
+            assert!((0.4..=0.85).contains(&at), "{name}: {at}");
+            let below = detection(0.4, sampled);
+            assert!(below <= 0.05, "{name}: {below}");
+        }
+    }
 }

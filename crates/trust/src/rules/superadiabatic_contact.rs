@@ -63,8 +63,13 @@ impl SuperadiabaticContact {
     fn finding(&self, view: &View, surface: f64, falling: Falling) -> Option<Finding> {
         let column = &view.column;
         let theta = &column.smooth_theta;
-        let Falling { base, mut top, drop } = falling;
-        let attached = surface - column.pressure[base] <= 100.0 * view.threshold("mixed-layer.contact_hpa");
+        let Falling {
+            base,
+            mut top,
+            drop,
+        } = falling;
+        let attached =
+            surface - column.pressure[base] <= 100.0 * view.threshold("mixed-layer.contact_hpa");
         if attached {
             top = (base..=top)
                 .find(|&level| theta[level] <= theta[base] - MOST_OF_THE_FALL * drop)
@@ -90,7 +95,9 @@ impl SuperadiabaticContact {
         let why = match (attached, daylight, deep) {
             (false, _, _) => "it doesn't reach down to the ground",
             (true, Daylight::Night, _) => "at night the ground cools the air",
-            (true, Daylight::Unknown, _) => "normal if the sun is heating the ground, not otherwise",
+            (true, Daylight::Unknown, _) => {
+                "normal if the sun is heating the ground, not otherwise"
+            }
             (true, Daylight::Day, _) => "deep for a layer heated by the ground",
         };
         let repairs = if attached {
@@ -143,5 +150,64 @@ impl SuperadiabaticContact {
             repairs,
             wind_only: false,
         })
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic::{Air0, BOTH, Dice, Scene, levels};
+
+    #[test]
+    fn normal_by_day_doubtful_at_night_and_when_unknown() {
+        for sampling in BOTH {
+            let ascent = Air0 {
+                contact_k: 3.0,
+                ..Air0::default()
+            }
+            .ascent()
+            .noisy(&mut Dice::new(1), 0.05, 0.01);
+            let check = |daylight| {
+                Scene::new(ascent.sampled(sampling), daylight).check(&SuperadiabaticContact)
+            };
+            assert!(check(Daylight::Day).is_empty(), "{sampling:?}");
+            let night = check(Daylight::Night);
+            assert_eq!(night.len(), 1, "{sampling:?}");
+            assert!(night[0].summary.contains("at night") && night[0].caveat.is_empty());
+            let unknown = check(Daylight::Unknown);
+            assert!(
+                unknown[0].grade == Grade::Doubtful && unknown[0].caveat.contains("isn't known")
+            );
+        }
+    }
+
+    #[test]
+    fn deep_is_doubtful_by_day_too() {
+        // Theta falls by 4 K over the lowest 60 hPa.
+        let rows = [
+            (1000.0, 30.0, 15.0),
+            (940.0, 20.9, 12.0),
+            (850.0, 12.5, 8.0),
+            (700.0, 3.0, -10.0),
+            (500.0, -15.0, -30.0),
+        ];
+        let found = Scene::day(levels(&rows)).check(&SuperadiabaticContact);
+        assert_eq!(found.len(), 1, "{found:#?}");
+        assert!(found[0].summary.contains("deep"));
+        assert_eq!(found[0].repairs[0].id, "surface-temperature-from-sonde");
+    }
+
+    #[test]
+    fn a_layer_that_does_not_reach_the_ground_is_doubtful_by_day() {
+        let rows = [
+            (1000.0, 25.0, 15.0),
+            (970.0, 24.0, 14.0),
+            (955.0, 20.0, 13.0),
+            (850.0, 13.0, 8.0),
+            (500.0, -15.0, -30.0),
+        ];
+        let found = Scene::day(levels(&rows)).check(&SuperadiabaticContact);
+        assert_eq!(found.len(), 1, "{found:#?}");
+        assert!(found[0].summary.contains("doesn't reach down"));
     }
 }

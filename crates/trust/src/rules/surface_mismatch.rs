@@ -5,7 +5,9 @@ use crate::mixed::Line;
 use crate::words::{celsius, number};
 use crate::{Evidence, Finding, Grade, Repair, Rule, View};
 use dewbound_sounding::Daylight;
-use dewbound_sounding::thermo::{KAPPA, Pressure, REFERENCE_PRESSURE, Temperature, dewpoint_from_mixing_ratio};
+use dewbound_sounding::thermo::{
+    KAPPA, Pressure, REFERENCE_PRESSURE, Temperature, dewpoint_from_mixing_ratio,
+};
 
 /// Theta of the first sonde levels may vary by this much for the air to count as well mixed, K.
 const MIXED_K: f64 = 1.0;
@@ -71,7 +73,13 @@ impl Rule for SurfaceMismatch {
         if dewpoint.is_none() && temperature.is_none() {
             return Vec::new();
         }
-        vec![self.finding(view, surface, highest, dewpoint.as_ref(), temperature.as_ref())]
+        vec![self.finding(
+            view,
+            surface,
+            highest,
+            dewpoint.as_ref(),
+            temperature.as_ref(),
+        )]
     }
 }
 
@@ -79,8 +87,10 @@ impl Rule for SurfaceMismatch {
 fn first_levels(view: &View, surface: f64) -> Vec<usize> {
     let column = &view.column;
     if column.fine {
-        let from = column.first_at_or_above(surface - 100.0 * view.threshold("surface-mismatch.near_hpa"));
-        let to = column.first_at_or_above(surface - 100.0 * view.threshold("surface-mismatch.far_hpa"));
+        let from =
+            column.first_at_or_above(surface - 100.0 * view.threshold("surface-mismatch.near_hpa"));
+        let to =
+            column.first_at_or_above(surface - 100.0 * view.threshold("surface-mismatch.far_hpa"));
         (from.max(1)..to).collect()
     } else {
         let far = surface - 100.0 * view.threshold("surface-mismatch.coded_far_hpa");
@@ -98,7 +108,11 @@ fn carried_down(points: &[(f64, f64)], surface: f64) -> Option<(f64, f64)> {
     // The line is carried no farther than it is long.
     let reach = (surface - low).min(low - high);
     let along = line.at(low + reach);
-    let constant = if points.len() > 2 { line.at(low) } else { lowest };
+    let constant = if points.len() > 2 {
+        line.at(low)
+    } else {
+        lowest
+    };
     Some((constant, along))
 }
 
@@ -114,7 +128,8 @@ fn dewpoint_gap(view: &View, surface: f64, levels: &[usize]) -> Option<Gap> {
         .filter_map(|&level| Some((column.pressure[level], column.mixing_ratio[level]?)))
         .collect();
     let (constant, along) = carried_down(&points, surface)?;
-    let at_surface = |w: f64| dewpoint_from_mixing_ratio(Pressure::from_pa(surface), w.max(1e-6)).k();
+    let at_surface =
+        |w: f64| dewpoint_from_mixing_ratio(Pressure::from_pa(surface), w.max(1e-6)).k();
     let measured = at_surface(column.mixing_ratio.first().copied().flatten()?);
     let expected = (at_surface(constant), at_surface(along));
     let difference = outside(measured, expected);
@@ -144,7 +159,8 @@ fn temperature_gap(view: &View, surface: f64, levels: &[usize]) -> Option<Gap> {
     } else {
         // Below an inversion the last metres may be colder than any line suggests: only mixed air is judged.
         let smooth = levels.iter().map(|&level| column.smooth_theta[level]);
-        let range = smooth.clone().fold(f64::NEG_INFINITY, f64::max) - smooth.fold(f64::INFINITY, f64::min);
+        let range =
+            smooth.clone().fold(f64::NEG_INFINITY, f64::max) - smooth.fold(f64::INFINITY, f64::min);
         range <= MIXED_K && difference <= -view.threshold("surface-mismatch.cold_day_k")
     };
     judged.then(|| Gap {
@@ -163,12 +179,19 @@ impl SurfaceMismatch {
         temperature: Option<&Gap>,
     ) -> Finding {
         let column = &view.column;
-        let (bottom, top) = (Pressure::from_pa(surface), Pressure::from_pa(column.pressure[highest]));
+        let (bottom, top) = (
+            Pressure::from_pa(surface),
+            Pressure::from_pa(column.pressure[highest]),
+        );
         let mut said = Vec::new();
         let mut evidence = Vec::new();
         let mut repairs: Vec<Repair> = Vec::new();
         if let Some(gap) = dewpoint {
-            let word = if gap.difference > 0.0 { "moister" } else { "drier" };
+            let word = if gap.difference > 0.0 {
+                "moister"
+            } else {
+                "drier"
+            };
             let expected = Temperature::from_k(gap.expected);
             said.push(format!(
                 "is {word} than the first sonde levels by {} K of dew point at one pressure ({} expected)",
@@ -215,7 +238,11 @@ impl SurfaceMismatch {
             ));
         }
         if let Some(gap) = temperature {
-            let word = if gap.difference > 0.0 { "warmer" } else { "colder" };
+            let word = if gap.difference > 0.0 {
+                "warmer"
+            } else {
+                "colder"
+            };
             let expected = Temperature::from_k(gap.expected);
             said.push(format!(
                 "is {word} than the first sonde levels by {} K of theta ({} expected)",
@@ -248,7 +275,12 @@ impl SurfaceMismatch {
             let both = Repair {
                 id: "both-from-sonde",
                 what: "Set surface temperature and dew point as carried down from the sonde".into(),
-                amendments: temperature.amendments.iter().chain(&dewpoint.amendments).copied().collect(),
+                amendments: temperature
+                    .amendments
+                    .iter()
+                    .chain(&dewpoint.amendments)
+                    .copied()
+                    .collect(),
             };
             repairs.insert(0, both);
         }
@@ -278,6 +310,92 @@ impl SurfaceMismatch {
             },
             repairs,
             wind_only: false,
+        }
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::synthetic::{Air0, BOTH, Dice, Scene};
+    use dewbound_sounding::Amendment;
+
+    /// A night with a ground inversion and a surface dew point off by `k`.
+    fn night(seed: u64, k: f64) -> crate::synthetic::Ascent {
+        let mut dice = Dice::new(seed);
+        // Dry enough that the surface can be moister without being wet.
+        let air = Air0 {
+            contact_k: dice.between(-5.0, -1.0),
+            w: 0.004,
+            ..Air0::random(&mut dice)
+        };
+        let mut ascent = air.ascent().noisy(&mut dice, 0.1, 0.01);
+        let pressure = Pressure::from_pa(ascent.p[0]);
+        let dewpoint = Temperature::from_k(dewpoint_from_mixing_ratio(pressure, air.w).k() + k);
+        let air = dewbound_sounding::thermo::Air {
+            pressure,
+            temperature: dewpoint,
+            dewpoint,
+        };
+        ascent.set_w(0, air.mixing_ratio());
+        ascent
+    }
+
+    #[test]
+    fn a_surface_dew_point_off_at_night_is_seen() {
+        for sampling in BOTH {
+            for k in [7.5, -7.5] {
+                let mut seen = 0;
+                let mut judged = 0;
+                for seed in 0..40 {
+                    let scene = Scene::new(night(seed, k).sampled(sampling), Daylight::Night);
+                    // A coded message may have no level near enough to compare with, and says nothing then.
+                    let near = scene
+                        .profile
+                        .pressure
+                        .get(1)
+                        .is_some_and(|&p| scene.profile.pressure[0] - p <= 6_000.0);
+                    judged += usize::from(near);
+                    seen += usize::from(near && !scene.check(&SurfaceMismatch).is_empty());
+                }
+                assert!(
+                    judged >= 15 && seen * 100 >= judged * 95,
+                    "{sampling:?} {k}: {seen} of {judged}"
+                );
+            }
+        }
+    }
+
+    #[test]
+    fn the_repair_restores_what_the_sonde_leads_to() {
+        let scene = Scene::new(night(3, 8.0).fine(), Daylight::Night);
+        let clean = Scene::new(night(3, 0.0).fine(), Daylight::Night);
+        let found = scene.check(&SurfaceMismatch);
+        let Amendment::SurfaceDewpoint { dewpoint_k } = found[0].repairs[0].amendments[0] else {
+            panic!("not a surface dew point")
+        };
+        let truth = clean.profile.surface_air().unwrap().dewpoint.k();
+        assert!((dewpoint_k - truth).abs() < 1.0, "{dewpoint_k} {truth}");
+        assert!(clean.check(&SurfaceMismatch).is_empty());
+    }
+
+    #[test]
+    fn a_surface_temperature_far_off_by_day_is_seen_and_a_contact_layer_is_not() {
+        for (excess, expected) in [(9.0, 1), (3.0, 0), (-7.0, 1), (-2.0, 0)] {
+            let mut ascent = Air0 {
+                contact_k: 0.0,
+                ..Air0::default()
+            }
+            .ascent()
+            .noisy(&mut Dice::new(2), 0.05, 0.01);
+            let w = ascent.w(0);
+            ascent.t[0] += excess;
+            ascent.set_w(0, w);
+            let found = Scene::day(ascent.fine()).check(&SurfaceMismatch);
+            assert_eq!(found.len(), expected, "{excess}: {found:#?}");
+            if let Some(finding) = found.first() {
+                assert!(finding.evidence("theta_difference_k").unwrap() * excess > 0.0);
+            }
         }
     }
 }

@@ -1,0 +1,205 @@
+//! The parcel: its path, the band over the interval, and the areas that are CAPE and CIN.
+
+use crate::canvas::{Canvas, Lettering, clip_polyline};
+use crate::curve::Silhouette;
+use crate::hatch::{Hatching, Pair, areas, hatch};
+use crate::{Anchor, Dash, Geometry, Ink, Item, ParcelDrawing, Point, Rect, Stroke, wording};
+use dewbound_sounding::thermo::{Air, Environment, Pressure, parcel_path};
+
+/// Distance of computed rows, points.
+const ROW: f64 = 2.0;
+
+/// CAPE: flat strokes rising to the right.
+pub(crate) const CAPE: Hatching = Hatching { slope: -2.2, spacing: 6.5 };
+/// CIN: flat strokes falling to the right, denser.
+pub(crate) const CIN: Hatching = Hatching { slope: 2.2, spacing: 4.0 };
+
+/// A parcel's path and areas at the resolution of the screen.
+#[derive(Debug, Default)]
+pub(crate) struct ParcelPicture {
+    /// The working parcel's virtual temperature.
+    pub path: Vec<Point>,
+    /// The surroundings' virtual temperature, from the start to the top of the highest area.
+    pub around: Vec<Point>,
+    /// Rows of the band over the interval.
+    pub band: Vec<(f64, f64, f64)>,
+    /// Areas of CAPE.
+    pub cape: Vec<Vec<(f64, f64, f64)>>,
+    /// Areas of CIN.
+    pub cin: Vec<Vec<(f64, f64, f64)>>,
+    /// LCL, LFC and EL in sight: name, pressure, right end of the curves there.
+    pub marks: Vec<(&'static str, Pressure, Point)>,
+}
+
+/// x of the virtual temperature of the parcel from `start` at each of the rows it reaches.
+fn path_at(geometry: &Geometry, start: Air, drawing: &ParcelDrawing<'_>, rows: &[Pressure]) -> Vec<Option<f64>> {
+    let states = parcel_path(start, drawing.method, rows);
+    let mut states = states.iter().peekable();
+    rows.iter()
+        .map(|row| {
+            let state = states.next_if(|state| state.pressure == *row)?;
+            let point = geometry.point(state.pressure, state.virtual_temperature);
+            point.x.is_finite().then_some(point.x)
+        })
+        .collect()
+}
+
+impl ParcelPicture {
+    pub fn of(geometry: &Geometry, drawing: &ParcelDrawing<'_>, environment: &Environment) -> Self {
+        let plot = geometry.plot();
+        let ascent = drawing.ascent;
+        let special = [
+            Some(ascent.start.pressure),
+            Some(ascent.lcl.pressure),
+            ascent.lfc,
+            ascent.el,
+            environment.pressure().last().map(|&pa| Pressure::from_pa(pa)),
+        ];
+        let y_start = geometry.y(ascent.start.pressure).min(plot.bottom);
+        let y_end = environment
+            .pressure()
+            .last()
+            .map_or(plot.top, |&pa| geometry.y_of_pa(pa).max(plot.top));
+        let mut rows: Vec<Pressure> = special
+            .into_iter()
+            .flatten()
+            .filter(|&p| {
+                let y = geometry.y(p);
+                y >= y_end - 1e-6 && y <= y_start + 1e-6
+            })
+            .collect();
+        let count = ((y_start - y_end) / ROW).clamp(0.0, 20_000.0) as usize;
+        rows.extend((0..=count).map(|i| geometry.pressure_at(y_start - i as f64 * ROW)));
+        if y_end < y_start {
+            rows.push(geometry.pressure_at(y_end));
+        }
+        rows.sort_by(|a, b| b.pa().total_cmp(&a.pa()));
+        rows.dedup();
+
+        let parcel = path_at(geometry, ascent.start, drawing, &rows);
+        let mut picture = Self::default();
+        let mut pairs = Vec::with_capacity(rows.len());
+        for (&row, &parcel) in rows.iter().zip(&parcel) {
+            let Some(parcel) = parcel else { continue };
+            let y = geometry.y(row);
+            picture.path.push(Point::new(parcel, y));
+            if let Some((_, tv)) = environment.virtual_at(row) {
+                let around = geometry.place(row.pa(), tv).x;
+                pairs.push(Pair { y, around, parcel });
+            }
+        }
+        if let Some(interval) = drawing.interval {
+            picture.band = band(geometry, drawing, interval, &rows, &parcel, &plot);
+        }
+        picture.areas(geometry, drawing, &pairs);
+        picture.marks(geometry, drawing, &pairs);
+        picture
+    }
+
+    /// CAPE is all positive area from the LCL to the EL (the top, when the parcel is still buoyant there); CIN all negative area from the start to
+    /// the LFC; without free convection neither.
+    fn areas(&mut self, geometry: &Geometry, drawing: &ParcelDrawing<'_>, pairs: &[Pair]) {
+        let ascent = drawing.ascent;
+        let (Some(lfc), Some(last)) = (ascent.lfc, pairs.last()) else {
+            return;
+        };
+        let lcl = geometry.y(ascent.lcl.pressure);
+        let top = ascent.el.map_or(last.y, |el| geometry.y(el));
+        self.cape = areas(pairs, true, lcl, top);
+        self.cin = areas(pairs, false, geometry.y(ascent.start.pressure), geometry.y(lfc));
+        self.around = pairs
+            .iter()
+            .filter(|p| p.y >= top - 1e-6)
+            .map(|p| Point::new(p.around, p.y))
+            .collect();
+    }
+
+    fn marks(&mut self, geometry: &Geometry, drawing: &ParcelDrawing<'_>, pairs: &[Pair]) {
+        let ascent = drawing.ascent;
+        let levels = [
+            ("LCL", Some(ascent.lcl.pressure)),
+            ("LFC", ascent.lfc),
+            ("EL", ascent.el),
+        ];
+        for (name, level) in levels {
+            let Some(level) = level else { continue };
+            let y = geometry.y(level);
+            let near = pairs
+                .iter()
+                .min_by(|a, b| (a.y - y).abs().total_cmp(&(b.y - y).abs()))
+                .filter(|p| (p.y - y).abs() < ROW);
+            if let Some(pair) = near {
+                let at = Point::new(pair.parcel.max(pair.around), y);
+                if geometry.plot().contains(at) {
+                    self.marks.push((name, level, at));
+                }
+            }
+        }
+    }
+
+    /// Fills and lines, in painting order.
+    pub fn paint(&self, canvas: &mut Canvas, plot: &Rect) {
+        if self.band.len() >= 2 {
+            canvas.scene.items.push(Item::Band {
+                rows: self.band.clone(),
+                ink: Ink::ParcelBand,
+            });
+        }
+        for (areas, hatching, ink) in [(&self.cape, CAPE, Ink::CapeHatch), (&self.cin, CIN, Ink::CinHatch)] {
+            let lines: Vec<_> = areas.iter().flat_map(|area| hatch(area, hatching, plot)).collect();
+            canvas.segments(&lines, plot, ink, Stroke::solid(1.2));
+        }
+        canvas.line(&self.around, plot, Ink::VirtualTemperature, Stroke::dashed(1.4, Dash::Dots));
+        canvas.line(&self.path, plot, Ink::Parcel, Stroke::dashed(1.9, Dash::Long));
+    }
+
+    /// Ticks and labels of LCL, LFC and EL, to the right of everything.
+    pub fn paint_marks(&self, canvas: &mut Canvas, plot: &Rect, silhouette: &Silhouette) {
+        let lettering = Lettering::new(Anchor::Left, 12.0, Ink::LevelMark).backed();
+        for &(name, level, at) in &self.marks {
+            let text = format!("{name} {}", wording::pressure(level.hpa()));
+            let reach = silhouette.between(at.y - 4.0, at.y + 4.0).map_or(at.x, |(_, right)| right.max(at.x));
+            let x = (reach + 16.0).min(plot.right);
+            let down = [0.0, -8.0, 8.0, -16.0, 16.0, -24.0, 24.0];
+            let places = down
+                .iter()
+                .flat_map(|dy| [(x, *dy), (x + 40.0, *dy)])
+                .map(|(x, dy)| (Point::new(x, at.y + dy), Anchor::Left));
+            if let Some(place) = canvas.text_at_first(places, &text, lettering, &plot.grown(-2.0)) {
+                let tick = [[at, Point::new(place.x - 3.0, place.y)]];
+                canvas.segments(&tick, plot, Ink::LevelMark, Stroke::solid(1.4));
+            } else {
+                let tick = [[Point::new(at.x - 5.0, at.y), Point::new(at.x + 10.0, at.y)]];
+                canvas.segments(&tick, plot, Ink::LevelMark, Stroke::solid(1.4));
+            }
+        }
+    }
+}
+
+/// Between the smallest and the largest of the paths of both ends and the working parcel, cut to the plot.
+fn band(
+    geometry: &Geometry,
+    drawing: &ParcelDrawing<'_>,
+    interval: [Air; 2],
+    rows: &[Pressure],
+    working: &[Option<f64>],
+    plot: &Rect,
+) -> Vec<(f64, f64, f64)> {
+    let [one, other] = interval.map(|start| path_at(geometry, start, drawing, rows));
+    rows.iter()
+        .zip(working)
+        .zip(one.iter().zip(&other))
+        .filter_map(|((row, working), (one, other))| {
+            let known = || [working, one, other].into_iter().flatten().copied();
+            let left = known().fold(f64::INFINITY, f64::min).max(plot.left);
+            let right = known().fold(f64::NEG_INFINITY, f64::max).min(plot.right);
+            let y = geometry.y(*row).clamp(plot.top, plot.bottom);
+            (left <= right).then_some((y, left, right))
+        })
+        .collect()
+}
+
+/// Whether any of a curve is in sight.
+pub(crate) fn in_sight(points: &[Point], plot: &Rect) -> bool {
+    !clip_polyline(points, plot).is_empty()
+}

@@ -10,6 +10,8 @@ const DISC: f64 = 9.5;
 const ARM: f64 = 6.0;
 /// Distance kept from the curves.
 const CLEAR: f64 = 12.0;
+/// Room below a disc for the tick of a repaired finding.
+const TICK: f64 = 9.0;
 /// Least height of a bracket.
 const LEAST: f64 = 8.0;
 
@@ -22,6 +24,8 @@ struct Placed {
     /// +1: arms to the right (the bracket stands left of the curves); -1: to the left.
     side: f64,
     disc: Point,
+    /// Room for the tick of a repaired finding below the disc.
+    tick: bool,
 }
 
 impl Placed {
@@ -33,13 +37,14 @@ impl Placed {
             (inner - outer).abs(),
             self.bottom - self.top + 4.0,
         );
-        [upright, disc_box(self.disc)]
+        [upright, disc_box(self.disc, self.tick)]
     }
 }
 
-fn disc_box(centre: Point) -> Rect {
+fn disc_box(centre: Point, tick: bool) -> Rect {
     let r = DISC + 2.0;
-    Rect::new(centre.x - r, centre.y - r, 2.0 * r, 2.0 * r)
+    let below = if tick { TICK } else { 0.0 };
+    Rect::new(centre.x - r, centre.y - r, 2.0 * r, 2.0 * r + below)
 }
 
 /// Paints the brackets in sight; gives number and hit box of each disc. Brackets and numbers never cover each other: a bracket goes to
@@ -69,29 +74,30 @@ pub(crate) fn paint(
 
     let mut places = Vec::new();
     for (top, bottom, bracket) in order {
-        let placed = place(canvas, &plot, silhouette, top, bottom);
+        let tick = bracket.grade == BracketGrade::Repaired;
+        let placed = place(canvas, &plot, silhouette, [top, bottom], tick);
         let disc = match placed {
             Some(placed) => {
                 canvas.taken.extend(placed.boxes());
                 paint_bracket(canvas, &plot, bracket, &placed);
                 placed.disc
             }
-            None => match edge_place(canvas, &plot, (top + bottom) / 2.0) {
+            None => match edge_place(canvas, &plot, (top + bottom) / 2.0, tick) {
                 Some(disc) => {
-                    canvas.taken.push(disc_box(disc));
+                    canvas.taken.push(disc_box(disc, tick));
                     disc
                 }
                 None => continue,
             },
         };
         paint_disc(canvas, bracket, disc);
-        places.push((bracket.number, disc_box(disc)));
+        places.push((bracket.number, disc_box(disc, false)));
     }
     places.sort_by_key(|&(number, _)| number);
     places
 }
 
-fn place(canvas: &Canvas, plot: &Rect, silhouette: &Silhouette, top: f64, bottom: f64) -> Option<Placed> {
+fn place(canvas: &Canvas, plot: &Rect, silhouette: &Silhouette, [top, bottom]: [f64; 2], tick: bool) -> Option<Placed> {
     let inside = plot.grown(-2.0);
     let (left, right) = silhouette
         .between(top, bottom)
@@ -101,7 +107,8 @@ fn place(canvas: &Canvas, plot: &Rect, silhouette: &Silhouette, top: f64, bottom
         (plot.top + DISC + 4.0).min(middle),
         (plot.bottom - DISC - 4.0).max(middle),
     );
-    let disc_y = disc_y.clamp(inside.top + DISC + 2.0, (inside.bottom - DISC - 2.0).max(inside.top + DISC + 2.0));
+    let lowest = inside.bottom - DISC - 2.0 - if tick { TICK } else { 0.0 };
+    let disc_y = disc_y.clamp(inside.top + DISC + 2.0, lowest.max(inside.top + DISC + 2.0));
     let tries = (plot.width() / 7.0).clamp(0.0, 400.0) as usize;
     let leftward = (0..tries).map(|i| (left.min(plot.right) - CLEAR - ARM - 7.0 * i as f64, 1.0));
     let rightward = (0..tries).map(|i| (right.max(plot.left) + CLEAR + ARM + 7.0 * i as f64, -1.0));
@@ -113,6 +120,7 @@ fn place(canvas: &Canvas, plot: &Rect, silhouette: &Silhouette, top: f64, bottom
             bottom,
             side,
             disc: Point::new(x - side * (DISC + 3.0), disc_y),
+            tick,
         })
         .find(|placed| {
             placed
@@ -123,13 +131,13 @@ fn place(canvas: &Canvas, plot: &Rect, silhouette: &Silhouette, top: f64, bottom
 }
 
 /// A free place for a lone disc at the left edge, as near to its height as can be.
-fn edge_place(canvas: &Canvas, plot: &Rect, y: f64) -> Option<Point> {
+fn edge_place(canvas: &Canvas, plot: &Rect, y: f64, tick: bool) -> Option<Point> {
     let steps = (plot.height() / 4.0).clamp(0.0, 1000.0) as i32;
     (0..=steps)
         .flat_map(|i| [f64::from(i), -f64::from(i)])
         .flat_map(|i| (0..8).map(move |column| (i, f64::from(column))))
         .map(|(i, column)| Point::new(plot.left + DISC + 4.0 + 23.0 * column, y + 4.0 * i))
-        .find(|&p| plot.holds(&disc_box(p)) && canvas.is_free(&disc_box(p)))
+        .find(|&p| plot.holds(&disc_box(p, tick)) && canvas.is_free(&disc_box(p, tick)))
 }
 
 fn ink(bracket: &Bracket) -> Ink {
@@ -155,7 +163,7 @@ fn paint_bracket(canvas: &mut Canvas, plot: &Rect, bracket: &Bracket, placed: &P
     canvas.line(&points, plot, ink(bracket), stroke);
 }
 
-/// Erroneous: filled. From an edit: square. Repaired: with a tick at its corner. Selected: ringed.
+/// Erroneous: filled. From an edit: square. Repaired: with a tick below. Selected: ringed.
 fn paint_disc(canvas: &mut Canvas, bracket: &Bracket, disc: Point) {
     let filled = bracket.grade == BracketGrade::Erroneous;
     let inside = if filled { ink(bracket) } else { Ink::Paper };
@@ -180,7 +188,7 @@ fn paint_disc(canvas: &mut Canvas, bracket: &Bracket, disc: Point) {
     canvas.text(disc, &number, Lettering::new(Anchor::Centre, size, on).strong());
     if bracket.grade == BracketGrade::Repaired {
         let at = |x: f64, y: f64| Point::new(disc.x + x, disc.y + y);
-        let tick = [at(3.5, 6.0), at(6.5, 9.5), at(12.0, 2.5)];
+        let tick = [at(-5.0, 14.5), at(-1.0, 18.0), at(6.0, 11.5)];
         let frame = canvas.frame;
         canvas.line(&tick, &frame, ink(bracket), Stroke::solid(2.0));
     }

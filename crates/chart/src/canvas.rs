@@ -4,6 +4,9 @@ use crate::{Anchor, Ink, Item, Point, Rect, Scene, Stroke, text_box};
 
 /// The part of a segment inside a rectangle (Liang-Barsky); `None` when it misses it or is not finite.
 pub(crate) fn clip_segment(a: Point, b: Point, rect: &Rect) -> Option<[Point; 2]> {
+    if rect.contains(a) && rect.contains(b) {
+        return Some([a, b]);
+    }
     let (dx, dy) = (b.x - a.x, b.y - a.y);
     if !(a.x.is_finite() && a.y.is_finite() && dx.is_finite() && dy.is_finite()) {
         return None;
@@ -47,7 +50,7 @@ pub(crate) fn clip_segment(a: Point, b: Point, rect: &Rect) -> Option<[Point; 2]
 /// The pieces of a connected line inside a rectangle.
 pub(crate) fn clip_polyline(points: &[Point], rect: &Rect) -> Vec<Vec<Point>> {
     let mut pieces = Vec::new();
-    let mut piece: Vec<Point> = Vec::new();
+    let mut piece: Vec<Point> = Vec::with_capacity(points.len());
     for pair in points.windows(2) {
         let &[a, b] = pair else { continue };
         let Some([start, end]) = clip_segment(a, b, rect) else {
@@ -120,7 +123,9 @@ impl Lettering {
 
     /// Upright box around the text, turned or not.
     pub fn extent(&self, at: Point, text: &str) -> Rect {
-        let level = text_box(at, self.anchor, text, self.size);
+        // Heavier letters are wider.
+        let size = if self.strong { 1.07 * self.size } else { self.size };
+        let level = text_box(at, self.anchor, text, size);
         if self.angle == 0.0 {
             return level;
         }

@@ -3,9 +3,8 @@
 use crate::{Geometry, Point, Rect};
 use dewbound_sounding::Profile;
 
-/// Height of the rows within which only the extremes of a curve are kept, points. Half a point: what a screen of doubled
-/// resolution can show.
-const ROW: f64 = 0.5;
+/// Height of the rows within which only the first, last and extreme points of a curve are kept, points.
+const ROW: f64 = 1.0;
 
 /// Thins a curve to screen rows: of the points in a row the first, the leftmost, the rightmost and the last stay, in
 /// their order. Extremes are kept exactly.
@@ -173,6 +172,12 @@ impl Silhouette {
             let &[a, b] = pair else { continue };
             let (upper, lower) = if a.y <= b.y { (a, b) } else { (b, a) };
             if lower.y < self.top || upper.y > self.top + height || !(a.x + b.x).is_finite() {
+                continue;
+            }
+            if self.bin(upper.y) == self.bin(lower.y) {
+                let bin = self.bin(upper.y);
+                self.left[bin] = self.left[bin].min(a.x.min(b.x));
+                self.right[bin] = self.right[bin].max(a.x.max(b.x));
                 continue;
             }
             for bin in self.bin(upper.y)..=self.bin(lower.y) {

@@ -1,9 +1,10 @@
 //! The sounding on top of the isopleths.
 
-use crate::canvas::{Canvas, Lettering, clip_polyline};
+use crate::canvas::{Canvas, Lettering};
 use crate::curve::{Curves, Silhouette};
+use crate::hatch::Row;
 use crate::parcel::{ParcelPicture, in_sight};
-use crate::readout::{paint_cursor, readout_box};
+use crate::readout::{INSET, paint_cursor, readout_box};
 use crate::{
     Anchor, Dash, Geometry, Ink, Picture, Point, Readout, Rect, Scene, Stroke, Touch, brackets,
     legend, surface, winds,
@@ -37,11 +38,13 @@ pub fn foreground(geometry: &Geometry, picture: &Picture<'_>) -> Foreground {
     }
     if let Some(parcel) = &parcel {
         silhouette.add(&parcel.path);
-        let side = |pick: fn(&(f64, f64, f64)) -> f64| -> Vec<Point> {
-            parcel.band.iter().map(|row| Point::new(pick(row), row.0)).collect()
-        };
-        silhouette.add(&side(|row| row.1));
-        silhouette.add(&side(|row| row.2));
+        for band in &parcel.band {
+            let side = |pick: fn(&Row) -> f64| -> Vec<Point> {
+            band.iter().map(|row| Point::new(pick(row), row.0)).collect()
+            };
+            silhouette.add(&side(|row| row.1));
+            silhouette.add(&side(|row| row.2));
+        }
     }
 
     if let Some(pa) = surface_pressure(picture) {
@@ -67,31 +70,34 @@ pub fn foreground(geometry: &Geometry, picture: &Picture<'_>) -> Foreground {
     // Labels find their places in order of importance: handles, corner boxes, levels, findings, names of curves.
     let places = picture.surface.map(|marks| surface::places(geometry, marks)).unwrap_or_default();
     surface::reserve(&mut canvas, &places);
-    if let Some(place) = readout_box(&plot) {
-        canvas.taken.push(place);
-    }
-    if let Some(drawing) = &picture.parcel {
-        legend::paint(&mut canvas, &plot, drawing);
-    }
+    let legend = picture
+        .parcel
+        .as_ref()
+        .and_then(|drawing| legend::paint(&mut canvas, &plot, drawing));
+    let readout_place = readout_box(&plot, legend.map_or(plot.top, |l| l.bottom) + INSET);
+    canvas.taken.extend(readout_place);
     if let Some(marks) = picture.surface {
         surface::paint_labels(&mut canvas, geometry, marks, &places, picture.units);
     }
     if let Some(parcel) = &parcel {
         parcel.paint_marks(&mut canvas, &plot, &silhouette);
+        parcel.name_areas(&mut canvas, &plot);
     }
     let discs = brackets::paint(&mut canvas, geometry, picture.brackets, &silhouette);
     name_curves(&mut canvas, &plot, &working);
-    name_difference(&mut canvas, &plot, received.as_ref(), &working, "as received", [Ink::ReceivedTemperature, Ink::ReceivedDewpoint]);
+    name_difference(&mut canvas, &plot, received.as_ref(), &working, "as received", [Ink::QuietLabel; 2]);
     name_difference(&mut canvas, &plot, preview.as_ref(), &working, "preview", [Ink::PreviewTemperature, Ink::PreviewDewpoint]);
 
     winds::paint(&mut canvas, geometry, picture.working, picture.southern);
     if let Some(heights) = picture.heights {
         heights.paint(&mut canvas, geometry, picture.units);
     }
+    let mut upper = plot.top + 6.0;
     if let Some(stamp) = picture.stamp {
         let lettering = Lettering::new(Anchor::Left, 13.0, Ink::Stamp).backed().strong();
         let at = Point::new(plot.left + 8.0, plot.top + 13.0);
         canvas.text(at, stamp, lettering);
+        upper = plot.top + 22.0;
     }
     if let Some(marks) = picture.surface {
         surface::paint_handles(&mut canvas, marks, &places);
@@ -100,7 +106,8 @@ pub fn foreground(geometry: &Geometry, picture: &Picture<'_>) -> Foreground {
     let readout = cursor.map(|at| {
         let pressure = geometry.pressure_at(at.y);
         let readout = Readout::of(picture.working, pressure, picture.heights, picture.units);
-        paint_cursor(&mut canvas, geometry, picture.working, pressure, &readout);
+        let places = (readout_place, upper);
+        paint_cursor(&mut canvas, geometry, picture.working, pressure, &readout, places);
         readout
     });
     Foreground {
@@ -174,13 +181,17 @@ fn name_difference(
     ];
     let mut most: Option<(f64, Point, f64, Ink)> = None;
     for (other, own, ink) in pairs {
-        for piece in clip_polyline(other, plot) {
-            for p in piece {
-                let Some(x) = x_at(own, p.y) else { continue };
-                let apart = (p.x - x).abs();
-                if apart > 4.0 && most.is_none_or(|(best, ..)| apart > best) {
-                    most = Some((apart, p, (p.x - x).signum(), ink));
-                }
+        let mut looked = f64::INFINITY;
+        for &p in other {
+            // Every few points of height is enough to find a place for a label.
+            if looked - p.y < 2.0 || !plot.contains(p) {
+                continue;
+            }
+            looked = p.y;
+            let Some(x) = x_at(own, p.y) else { continue };
+            let apart = (p.x - x).abs();
+            if apart > 4.0 && most.is_none_or(|(best, ..)| apart > best) {
+                most = Some((apart, p, (p.x - x).signum(), ink));
             }
         }
     }

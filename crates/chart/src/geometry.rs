@@ -22,7 +22,8 @@ impl Point {
 
     /// Distance to another point.
     pub fn distance(self, other: Self) -> f64 {
-        (self.x - other.x).hypot(self.y - other.y)
+        let (dx, dy) = (self.x - other.x, self.y - other.y);
+        (dx * dx + dy * dy).sqrt()
     }
 }
 
@@ -160,7 +161,7 @@ impl View {
         };
         if let Some(&pa) = profile.pressure.get(row) {
             // Room below the surface for the handles' marks.
-            view.bottom_hpa = view.bottom_hpa.max(pa / 100.0 * 1.1);
+            view.bottom_hpa = view.bottom_hpa.max(pa / 100.0 * 1.125);
         }
         let celsius = |column: &[Option<f64>]| {
             column
@@ -233,7 +234,7 @@ const TOP_MARGIN: f64 = 22.0;
 /// Margin below the plot with the temperature labels.
 const BOTTOM_MARGIN: f64 = 34.0;
 /// Room for the height scale, between plot and wind.
-const HEIGHT_MARGIN: f64 = 42.0;
+const HEIGHT_MARGIN: f64 = 46.0;
 /// Strip with the wind barbs.
 const WIND_STRIP: f64 = 66.0;
 /// Smallest plot kept by shrinking margins.

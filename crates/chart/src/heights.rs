@@ -118,14 +118,17 @@ impl HeightScale {
         let step = spacing(
             geometry.points_per_efold() * metres / 7500.0,
             22.0,
-            &[0.1, 0.2, 0.5, 1.0, 2.0, 5.0, 10.0],
+            &[1.0, 2.0, 5.0, 10.0],
         );
+        // Tenths only where a whole unit leaves wide gaps.
+        let fine = spacing(geometry.points_per_efold() * metres / 7500.0, 70.0, &[0.1, 0.2, 0.5, step]);
+        let step = fine.min(step);
         let mut ticks = Vec::new();
         let title = format!("height above sea level, {name}");
         let turned = Lettering::new(Anchor::Centre, 11.0, Ink::HeightScale)
             .turned(std::f64::consts::FRAC_PI_2);
         canvas.text(
-            Point::new(geometry.wind().left - 8.0, plot.centre().y),
+            Point::new(geometry.wind().left - 7.0, plot.centre().y),
             &title,
             turned,
         );
@@ -155,25 +158,21 @@ mod tests {
     use super::*;
     use approx::assert_abs_diff_eq;
 
-    /// US Standard Atmosphere 1976, geopotential height and pressure (table values): 0, 1, 2, 3, 5, 7, 9, 11 km.
+    /// Pressure (hPa) of the US Standard Atmosphere 1976 at a geopotential height up to 11 km: eq. 33a, closed form.
+    fn standard_hpa(metres: f64) -> f64 {
+        1013.25 * (288.15 / (288.15 - 0.0065 * metres)).powf(-34.163_195e-3 / 0.0065)
+    }
+
+    /// A few levels of that atmosphere.
     fn standard() -> Profile {
-        let rows = [
-            (0.0, 1013.25, 15.0),
-            (1000.0, 898.76, 8.5),
-            (2000.0, 795.01, 2.0),
-            (3000.0, 701.21, -4.5),
-            (5000.0, 540.48, -17.5),
-            (7000.0, 411.05, -30.5),
-            (9000.0, 308.01, -43.5),
-            (11000.0, 226.32, -56.5),
-        ];
+        let metres = [0.0, 1000.0, 2000.0, 3000.0, 5000.0, 7000.0, 9000.0, 11_000.0];
         Profile {
-            pressure: rows.iter().map(|r| r.1 * 100.0).collect(),
-            height: rows.iter().map(|r| Some(r.0)).collect(),
-            temperature: rows.iter().map(|r| Some(r.2 + 273.15)).collect(),
-            dewpoint: vec![None; rows.len()],
-            wind: vec![None; rows.len()],
-            received: vec![None; rows.len()],
+            pressure: metres.iter().map(|&z| standard_hpa(z) * 100.0).collect(),
+            height: metres.iter().map(|&z| Some(z)).collect(),
+            temperature: metres.iter().map(|&z| Some(288.15 - 0.0065 * z)).collect(),
+            dewpoint: vec![None; 8],
+            wind: vec![None; 8],
+            received: vec![None; 8],
             surface: Some(0),
             ..Profile::default()
         }
@@ -182,11 +181,10 @@ mod tests {
     #[test]
     fn between_levels_the_standard_atmosphere_is_followed() {
         let scale = HeightScale::of(&standard());
-        // US Standard Atmosphere 1976, table: 4 km 616.40 hPa, 6 km 471.81 hPa, 8 km 356.00 hPa, 10 km 264.36 hPa.
-        for (km, hpa) in [(4.0, 616.40), (6.0, 471.81), (8.0, 356.00), (10.0, 264.36)] {
-            let pressure = Pressure::from_hpa(hpa);
-            assert_abs_diff_eq!(scale.above_sea(pressure).unwrap(), km * 1000.0, epsilon = 3.0);
-            assert_abs_diff_eq!(scale.pressure_at(km * 1000.0).unwrap().hpa(), hpa, epsilon = 0.2);
+        for z in [500.0, 4000.0, 6000.0, 8000.0, 10_000.0] {
+            let hpa = standard_hpa(z);
+            assert_abs_diff_eq!(scale.above_sea(Pressure::from_hpa(hpa)).unwrap(), z, epsilon = 2.0);
+            assert_abs_diff_eq!(scale.pressure_at(z).unwrap().hpa(), hpa, epsilon = 0.2);
         }
         assert_eq!(scale.above_sea(Pressure::from_hpa(1020.0)), None);
         assert_eq!(scale.above_sea(Pressure::from_hpa(200.0)), None);
@@ -198,7 +196,7 @@ mod tests {
         let mut profile = standard();
         profile.surface = Some(1);
         let scale = HeightScale::of(&profile);
-        assert_abs_diff_eq!(scale.above_ground(Pressure::from_hpa(701.21)).unwrap(), 2000.0, epsilon = 1e-6);
+        assert_abs_diff_eq!(scale.above_ground(Pressure::from_hpa(standard_hpa(3000.0))).unwrap(), 2000.0, epsilon = 1e-6);
     }
 
     #[test]

@@ -35,6 +35,17 @@ pub(crate) fn spacing(points_per_unit: f64, apart: f64, steps: &[f64]) -> f64 {
         .unwrap_or(1.0)
 }
 
+/// Every 10 K, finer where that leaves wide gaps, 20 K where it is closer than `apart` points.
+fn ten_or_finer(geometry: &Geometry, finer: &[f64], apart: f64) -> f64 {
+    let points_per_kelvin = geometry.points_per_kelvin();
+    let fine = spacing(points_per_kelvin, 100.0, finer);
+    if fine * points_per_kelvin >= 100.0 {
+        fine
+    } else {
+        spacing(points_per_kelvin, apart, &[10.0, 20.0])
+    }
+}
+
 /// Multiples of `step` from `low` to `high`.
 fn multiples(low: f64, high: f64, step: f64) -> impl Iterator<Item = f64> {
     let first = (low / step).ceil();
@@ -45,11 +56,7 @@ fn multiples(low: f64, high: f64, step: f64) -> impl Iterator<Item = f64> {
 /// Isotherms crossing the plot, every so many degC.
 pub(crate) fn isotherms(geometry: &Geometry) -> Vec<Isopleth> {
     let view = geometry.view();
-    let step = spacing(
-        geometry.points_per_kelvin(),
-        58.0,
-        &[0.1, 0.2, 0.5, 1.0, 2.0, 5.0, 10.0, 20.0],
-    );
+    let step = ten_or_finer(geometry, &[0.1, 0.2, 0.5, 1.0, 2.0, 5.0], 52.0);
     let coldest = view.left_c - view.lean_k * view.depth();
     let ends = [view.bottom_hpa, view.top_hpa].map(Pressure::from_hpa);
     multiples(coldest, view.left_c + view.span_k, step)
@@ -129,11 +136,7 @@ fn course(
 /// Dry adiabats: potential temperature in K.
 pub(crate) fn dry_adiabats(geometry: &Geometry) -> Vec<Isopleth> {
     let view = geometry.view();
-    let step = spacing(
-        geometry.points_per_kelvin(),
-        72.0,
-        &[1.0, 2.0, 5.0, 10.0, 20.0],
-    );
+    let step = ten_or_finer(geometry, &[1.0, 2.0, 5.0], 72.0);
     let theta = |hpa: f64, c: f64| {
         (c + 273.15).max(50.0) * (1000.0 / hpa).powf(dewbound_sounding::thermo::KAPPA)
     };

@@ -3,7 +3,7 @@
 use crate::canvas::{Canvas, Lettering};
 use crate::hatch::hatch;
 use crate::parcel::{CAPE, CIN};
-use crate::readout::{INSET, LINE, panel, readout_box};
+use crate::readout::{INSET, LINE, has_room, panel};
 use crate::{Anchor, Dash, Ink, Item, ParcelDrawing, Point, Rect, Stroke, text_width};
 
 const SIZE: f64 = 11.5;
@@ -15,9 +15,11 @@ enum Sample {
     Hatch(Ink, crate::hatch::Hatching),
 }
 
-/// Space for the legend under the readout; `None` without one.
-pub(crate) fn paint(canvas: &mut Canvas, plot: &Rect, drawing: &ParcelDrawing<'_>) {
-    let Some(above) = readout_box(plot) else { return };
+/// In the upper right corner, where the air is never that warm. Gives its box; `None` in a small plot.
+pub(crate) fn paint(canvas: &mut Canvas, plot: &Rect, drawing: &ParcelDrawing<'_>) -> Option<Rect> {
+    if !has_room(plot) {
+        return None;
+    }
     let free = drawing.ascent.lfc.is_some();
     let mut rows = vec![
         (
@@ -44,12 +46,12 @@ pub(crate) fn paint(canvas: &mut Canvas, plot: &Rect, drawing: &ParcelDrawing<'_
     let height = lines as f64 * LINE + 8.0;
     let place = Rect::new(
         plot.right - INSET - width,
-        above.bottom + INSET,
+        plot.top + INSET,
         width,
         height,
     );
     if !plot.grown(-1.0).holds(&place) || width > 0.6 * plot.width() {
-        return;
+        return None;
     }
     panel(canvas, &place);
     canvas.taken.push(place);
@@ -70,6 +72,7 @@ pub(crate) fn paint(canvas: &mut Canvas, plot: &Rect, drawing: &ParcelDrawing<'_
     } else {
         canvas.text(Point::new(place.left + 6.0, y), "no free convection", lettering);
     }
+    Some(place)
 }
 
 fn paint_sample(canvas: &mut Canvas, sample: &Sample, x: f64, y: f64) {

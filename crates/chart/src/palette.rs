@@ -57,12 +57,12 @@ const fn light(ink: Ink) -> Colour {
         Ink::Paper | Ink::OnMark => rgb(0xfbf7ee),
         Ink::Edge | Ink::Label | Ink::Wind | Ink::LevelMark => rgb(0x2b2a27),
         Ink::QuietLabel | Ink::HeightScale | Ink::Cursor => rgb(0x5d5a53),
-        Ink::Isotherm => rgb(0x7d6f5f),
-        Ink::Isobar => rgb(0x8c877d),
+        Ink::Isotherm => rgb(0x968a7c),
+        Ink::Isobar => rgb(0x908b82),
         Ink::FreezingIsotherm => rgb(0x4d6f8f),
-        Ink::DryAdiabat => rgb(0xa06a2c),
-        Ink::MoistAdiabat => rgb(0x4f7d68),
-        Ink::MixingRatioLine => rgb(0x8a5f80),
+        Ink::DryAdiabat => rgb(0xb0834f),
+        Ink::MoistAdiabat => rgb(0x6e9380),
+        Ink::MixingRatioLine => rgb(0x956d8b),
         Ink::IsothermLabel => rgb(0x6b5f50),
         Ink::DryAdiabatLabel => rgb(0x8a5a22),
         Ink::MoistAdiabatLabel => rgb(0x3f6d58),
@@ -76,7 +76,7 @@ const fn light(ink: Ink) -> Colour {
         Ink::PreviewTemperature | Ink::PreviewDewpoint => rgb(0x00795a),
         Ink::Parcel => rgb(0x000000),
         Ink::ParcelBand => rgba(0x56b4e9, 96),
-        Ink::CapeHatch => rgb(0xa36b00),
+        Ink::CapeHatch => rgb(0x9a6300),
         Ink::CinHatch => rgb(0x007a5c),
         Ink::Bracket(grade) => match grade {
             BracketGrade::Erroneous => rgb(0x8f2f67),
@@ -96,12 +96,12 @@ const fn dark(ink: Ink) -> Colour {
         Ink::Paper | Ink::OnMark => rgb(0x15181c),
         Ink::Edge | Ink::Label | Ink::Wind | Ink::LevelMark => rgb(0xe8e4da),
         Ink::QuietLabel | Ink::HeightScale | Ink::Cursor => rgb(0xaba89f),
-        Ink::Isotherm => rgb(0x8f8678),
+        Ink::Isotherm => rgb(0x6d675e),
         Ink::Isobar => rgb(0x6c6a66),
         Ink::FreezingIsotherm => rgb(0x84a9cc),
-        Ink::DryAdiabat => rgb(0x9c7a4c),
-        Ink::MoistAdiabat => rgb(0x5f927c),
-        Ink::MixingRatioLine => rgb(0xa2789a),
+        Ink::DryAdiabat => rgb(0x7f6542),
+        Ink::MoistAdiabat => rgb(0x4f7767),
+        Ink::MixingRatioLine => rgb(0x94708d),
         Ink::IsothermLabel => rgb(0xa89f90),
         Ink::DryAdiabatLabel => rgb(0xc29a66),
         Ink::MoistAdiabatLabel => rgb(0x77b095),
@@ -127,5 +127,105 @@ const fn dark(ink: Ink) -> Colour {
         Ink::CandidateSetAside => rgb(0x9a978e),
         Ink::Focus => rgb(0xf0e442),
         Ink::Stamp => rgb(0xdd8fb8),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// Relative luminance and contrast ratio: WCAG 2.2, definitions.
+    fn luminance(c: Colour) -> f64 {
+        let linear = |v: u8| {
+            let v = f64::from(v) / 255.0;
+            if v <= 0.04045 {
+                v / 12.92
+            } else {
+                ((v + 0.055) / 1.055).powf(2.4)
+            }
+        };
+        0.2126 * linear(c.r) + 0.7152 * linear(c.g) + 0.0722 * linear(c.b)
+    }
+
+    fn contrast(a: Colour, b: Colour) -> f64 {
+        let (a, b) = (luminance(a), luminance(b));
+        (a.max(b) + 0.05) / (a.min(b) + 0.05)
+    }
+
+    /// A see-through colour on an opaque one.
+    fn over(top: Colour, below: Colour) -> Colour {
+        let share = f64::from(top.a) / 255.0;
+        let mix = |t: u8, b: u8| (share * f64::from(t) + (1.0 - share) * f64::from(b)).round() as u8;
+        Colour {
+            r: mix(top.r, below.r),
+            g: mix(top.g, below.g),
+            b: mix(top.b, below.b),
+            a: 255,
+        }
+    }
+
+    /// Inks never used for text.
+    const LINES: [Ink; 14] = [
+        Ink::ReceivedTemperature,
+        Ink::ReceivedDewpoint,
+        Ink::Edge,
+        Ink::Isotherm,
+        Ink::FreezingIsotherm,
+        Ink::Isobar,
+        Ink::DryAdiabat,
+        Ink::MoistAdiabat,
+        Ink::MixingRatioLine,
+        Ink::Ground,
+        Ink::VirtualTemperature,
+        Ink::Parcel,
+        Ink::Cursor,
+        Ink::Focus,
+    ];
+
+    #[test]
+    fn the_ends_of_the_contrast_scale_are_right() {
+        // WCAG 2.2: black on white 21:1.
+        assert!((contrast(rgb(0), rgb(0xffffff)) - 21.0).abs() < 1e-9);
+    }
+
+    #[test]
+    fn text_and_lines_stand_out_from_the_paper() {
+        for palette in [Palette::Light, Palette::Dark] {
+            let paper = palette.colour(Ink::Paper);
+            for ink in Ink::ALL {
+                let least = match ink {
+                    Ink::Paper | Ink::ParcelBand => continue,
+                    Ink::OnMark => {
+                        let mark = palette.colour(Ink::Bracket(BracketGrade::Erroneous));
+                        let got = contrast(palette.colour(ink), mark);
+                        assert!(got >= 4.5, "{palette:?} {ink:?}: {got:.2}");
+                        continue;
+                    }
+                    ink if LINES.contains(&ink) => 3.0,
+                    _ => 4.5,
+                };
+                let got = contrast(palette.colour(ink), paper);
+                assert!(got >= least, "{palette:?} {ink:?}: {got:.2}");
+            }
+        }
+    }
+
+    #[test]
+    fn curves_stand_out_from_the_parcel_band() {
+        for palette in [Palette::Light, Palette::Dark] {
+            let band = over(palette.colour(Ink::ParcelBand), palette.colour(Ink::Paper));
+            let curves = [
+                Ink::Temperature,
+                Ink::Dewpoint,
+                Ink::Parcel,
+                Ink::CapeHatch,
+                Ink::CinHatch,
+                Ink::VirtualTemperature,
+            ];
+            for ink in curves {
+                let got = contrast(palette.colour(ink), band);
+                assert!(got >= 3.0, "{palette:?} {ink:?}: {got:.2}");
+            }
+        }
     }
 }

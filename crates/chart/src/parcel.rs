@@ -2,12 +2,17 @@
 
 use crate::canvas::{Canvas, Lettering, clip_polyline};
 use crate::curve::Silhouette;
-use crate::hatch::{Hatching, Pair, areas, hatch};
-use crate::{Anchor, Dash, Geometry, Ink, Item, ParcelDrawing, Point, Rect, Stroke, wording};
+use crate::hatch::{Hatching, Pair, Row, areas, hatch};
+use crate::{Anchor, Dash, Geometry, Ink, Item, ParcelDrawing, Point, Rect, Stroke, text_width, wording};
 use dewbound_sounding::thermo::{Air, Environment, Pressure, parcel_path};
 
 /// Distance of computed rows, points.
-const ROW: f64 = 2.0;
+const STEP: f64 = 2.0;
+
+/// How far beyond its last buoyant level a path is drawn, e-folds of pressure.
+const BEYOND: f64 = 0.12;
+/// Least length of a drawn path, e-folds of pressure.
+const LEAST_ASCENT: f64 = 0.9;
 
 /// CAPE: flat strokes rising to the right.
 pub(crate) const CAPE: Hatching = Hatching { slope: -2.2, spacing: 6.5 };
@@ -21,12 +26,12 @@ pub(crate) struct ParcelPicture {
     pub path: Vec<Point>,
     /// The surroundings' virtual temperature, from the start to the top of the highest area.
     pub around: Vec<Point>,
-    /// Rows of the band over the interval.
-    pub band: Vec<(f64, f64, f64)>,
+    /// The band over the interval, in the pieces that are in sight.
+    pub band: Vec<Vec<Row>>,
     /// Areas of CAPE.
-    pub cape: Vec<Vec<(f64, f64, f64)>>,
+    pub cape: Vec<Vec<Row>>,
     /// Areas of CIN.
-    pub cin: Vec<Vec<(f64, f64, f64)>>,
+    pub cin: Vec<Vec<Row>>,
     /// LCL, LFC and EL in sight: name, pressure, right end of the curves there.
     pub marks: Vec<(&'static str, Pressure, Point)>,
 }
@@ -68,8 +73,8 @@ impl ParcelPicture {
                 y >= y_end - 1e-6 && y <= y_start + 1e-6
             })
             .collect();
-        let count = ((y_start - y_end) / ROW).clamp(0.0, 20_000.0) as usize;
-        rows.extend((0..=count).map(|i| geometry.pressure_at(y_start - i as f64 * ROW)));
+        let count = ((y_start - y_end) / STEP).clamp(0.0, 20_000.0) as usize;
+        rows.extend((0..=count).map(|i| geometry.pressure_at(y_start - i as f64 * STEP)));
         if y_end < y_start {
             rows.push(geometry.pressure_at(y_end));
         }
@@ -89,11 +94,32 @@ impl ParcelPicture {
             }
         }
         if let Some(interval) = drawing.interval {
-            picture.band = band(geometry, drawing, interval, &rows, &parcel, &plot);
+            picture.band = band(geometry, drawing, interval, &rows, &parcel);
         }
+        picture.end(geometry, drawing, &pairs);
         picture.areas(geometry, drawing, &pairs);
         picture.marks(geometry, drawing, &pairs);
         picture
+    }
+
+    /// Ends path and band some way above the last place where either is warmer than its surroundings: beyond it they say nothing.
+    fn end(&mut self, geometry: &Geometry, drawing: &ParcelDrawing<'_>, pairs: &[Pair]) {
+        // Rows run upward.
+        let warm = |y: f64, x: f64| {
+            let here = pairs.get(pairs.partition_point(|p| p.y > y + 1e-6));
+            here.is_some_and(|p| (p.y - y).abs() < STEP && x >= p.around)
+        };
+        let path = pairs.iter().rev().find(|p| p.parcel >= p.around).map(|p| p.y);
+        let band = self.band.iter().flatten().filter(|row| warm(row.0, row.2)).map(|row| row.0);
+        let band = band.reduce(f64::min);
+        let highest = [path, band].into_iter().flatten().fold(f64::INFINITY, f64::min);
+        let start = geometry.y(drawing.ascent.start.pressure);
+        let end = (highest - BEYOND * geometry.points_per_efold())
+            .min(start - LEAST_ASCENT * geometry.points_per_efold());
+        self.path.retain(|p| p.y >= end);
+        for band in &mut self.band {
+            band.retain(|row| row.0 >= end);
+        }
     }
 
     /// CAPE is all positive area from the LCL to the EL (the top, when the parcel is still buoyant there); CIN all negative area from the start to
@@ -127,7 +153,7 @@ impl ParcelPicture {
             let near = pairs
                 .iter()
                 .min_by(|a, b| (a.y - y).abs().total_cmp(&(b.y - y).abs()))
-                .filter(|p| (p.y - y).abs() < ROW);
+                .filter(|p| (p.y - y).abs() < STEP);
             if let Some(pair) = near {
                 let at = Point::new(pair.parcel.max(pair.around), y);
                 if geometry.plot().contains(at) {
@@ -137,11 +163,29 @@ impl ParcelPicture {
         }
     }
 
+    /// "CAPE" and "CIN" inside their areas, where those are wide enough.
+    pub fn name_areas(&self, canvas: &mut Canvas, plot: &Rect) {
+        for (areas, name, ink) in [(&self.cape, "CAPE", Ink::CapeHatch), (&self.cin, "CIN", Ink::CinHatch)] {
+            let lettering = Lettering::new(Anchor::Centre, 12.0, ink).backed().strong();
+            let need = text_width(name, 12.0) + 14.0;
+            let widest = areas
+                .iter()
+                .flatten()
+                .map(|&(y, left, right)| (y, left.max(plot.left), right.min(plot.right)))
+                .max_by(|a, b| (a.2 - a.1).total_cmp(&(b.2 - b.1)))
+                .filter(|(_, left, right)| right - left > need);
+            if let Some((y, left, right)) = widest {
+                let at = Point::new((left + right) / 2.0, y);
+                canvas.text_at_first([(at, Anchor::Centre)], name, lettering, &plot.grown(-2.0));
+            }
+        }
+    }
+
     /// Fills and lines, in painting order.
     pub fn paint(&self, canvas: &mut Canvas, plot: &Rect) {
-        if self.band.len() >= 2 {
+        for rows in self.band.iter().filter(|rows| rows.len() >= 2) {
             canvas.scene.items.push(Item::Band {
-                rows: self.band.clone(),
+                rows: rows.clone(),
                 ink: Ink::ParcelBand,
             });
         }
@@ -183,20 +227,22 @@ fn band(
     interval: [Air; 2],
     rows: &[Pressure],
     working: &[Option<f64>],
-    plot: &Rect,
-) -> Vec<(f64, f64, f64)> {
+) -> Vec<Vec<Row>> {
+    let plot = geometry.plot();
     let [one, other] = interval.map(|start| path_at(geometry, start, drawing, rows));
-    rows.iter()
-        .zip(working)
-        .zip(one.iter().zip(&other))
-        .filter_map(|((row, working), (one, other))| {
-            let known = || [working, one, other].into_iter().flatten().copied();
-            let left = known().fold(f64::INFINITY, f64::min).max(plot.left);
-            let right = known().fold(f64::NEG_INFINITY, f64::max).min(plot.right);
-            let y = geometry.y(*row).clamp(plot.top, plot.bottom);
-            (left <= right).then_some((y, left, right))
-        })
-        .collect()
+    let mut bands = vec![Vec::new()];
+    for ((row, working), (one, other)) in rows.iter().zip(working).zip(one.iter().zip(&other)) {
+        let known = || [working, one, other].into_iter().flatten().copied();
+        let left = known().fold(f64::INFINITY, f64::min).max(plot.left);
+        let right = known().fold(f64::NEG_INFINITY, f64::max).min(plot.right);
+        let y = geometry.y(*row).clamp(plot.top, plot.bottom);
+        match bands.last_mut() {
+            Some(band) if left <= right => band.push((y, left, right)),
+            Some(band) if !band.is_empty() => bands.push(Vec::new()),
+            _ => {}
+        }
+    }
+    bands
 }
 
 /// Whether any of a curve is in sight.

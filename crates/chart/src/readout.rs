@@ -136,28 +136,26 @@ pub(crate) const LINE: f64 = 15.5;
 /// Distance of boxes from the edge of the plot.
 pub(crate) const INSET: f64 = 7.0;
 
-/// Space for the readout in the upper right corner of the plot; `None` when it would take too much of the plot.
-pub(crate) fn readout_box(plot: &Rect) -> Option<Rect> {
-    let width = text_width("potential temperature", SIZE) + text_width("not known here", SIZE) + 20.0;
-    let height = 9.0 * LINE + 8.0;
-    let fits = plot.width() > 1.6 * width && plot.height() > 2.2 * height;
-    fits.then(|| {
-        Rect::new(
-            plot.right - INSET - width,
-            plot.top + INSET,
-            width,
-            height,
-        )
-    })
+/// Whether corner boxes leave enough of the plot free.
+pub(crate) fn has_room(plot: &Rect) -> bool {
+    plot.width() >= 620.0 && plot.height() >= 400.0
 }
 
-/// The line at the cursor, the marks on the curves, and the readout.
+/// Space for the readout at the right edge of the plot, its upper edge at `top`; `None` when it would take too much of the plot.
+pub(crate) fn readout_box(plot: &Rect, top: f64) -> Option<Rect> {
+    let width = text_width("potential temperature", SIZE) + text_width("not known here", SIZE) + 20.0;
+    let height = 9.0 * LINE + 8.0;
+    has_room(plot).then(|| Rect::new(plot.right - INSET - width, top, width, height))
+}
+
+/// The line at the cursor, the marks on the curves, and the readout: in its box, or along the upper edge under `below`.
 pub(crate) fn paint_cursor(
     canvas: &mut Canvas,
     geometry: &Geometry,
     profile: &Profile,
     pressure: Pressure,
     readout: &Readout,
+    (place, below): (Option<Rect>, f64),
 ) {
     let plot = geometry.plot();
     let y = geometry.y(pressure);
@@ -175,13 +173,13 @@ pub(crate) fn paint_cursor(
             canvas.circle(centre, 4.0, Some(Ink::Paper), Some(outline));
         }
     }
-    let tag = Lettering::new(Anchor::Right, crate::background::AXIS, Ink::Label)
-        .backed()
-        .strong();
+    let tag = Lettering::new(Anchor::Right, crate::background::AXIS, Ink::Label).strong();
     let value = wording::fixed(pressure.hpa(), 0);
+    // A box hides what it half covers of the labels beneath.
+    panel(canvas, &Rect::new(plot.left - 43.0, y - 10.0, 41.0, 20.0));
     canvas.text(Point::new(plot.left - 6.0, y), &value, tag);
 
-    if let Some(place) = readout_box(&plot) {
+    if let Some(place) = place {
         panel(canvas, &place);
         for (i, (name, value)) in readout.rows.iter().enumerate() {
             let y = place.top + 4.0 + (i as f64 + 0.5) * LINE;
@@ -191,12 +189,12 @@ pub(crate) fn paint_cursor(
             canvas.text(Point::new(place.right - 6.0, y), value, right);
         }
     } else {
-        small_readout(canvas, &plot, readout);
+        small_readout(canvas, &plot, below, readout);
     }
 }
 
 /// In a small plot: as many values as fit, in up to three lines along the upper edge.
-fn small_readout(canvas: &mut Canvas, plot: &Rect, readout: &Readout) {
+fn small_readout(canvas: &mut Canvas, plot: &Rect, below: f64, readout: &Readout) {
     const SMALL: f64 = 11.0;
     let room = plot.width() - 2.0 * INSET;
     let mut lines: Vec<String> = Vec::new();
@@ -209,8 +207,8 @@ fn small_readout(canvas: &mut Canvas, plot: &Rect, readout: &Readout) {
             _ => format!("{short} {value}"),
         };
         match lines.last_mut() {
-            Some(line) if text_width(&format!("{line}   {part}"), SMALL) <= room => {
-                line.push_str("   ");
+            Some(line) if text_width(&format!("{line} · {part}"), SMALL) <= room => {
+                line.push_str(" · ");
                 line.push_str(&part);
             }
             _ => lines.push(part),
@@ -218,7 +216,7 @@ fn small_readout(canvas: &mut Canvas, plot: &Rect, readout: &Readout) {
     }
     lines.truncate(3);
     for (i, line) in lines.iter().enumerate() {
-        let at = Point::new(plot.left + INSET, plot.top + INSET + (i as f64 + 0.5) * 14.0);
+        let at = Point::new(plot.left + INSET, below + (i as f64 + 0.5) * 14.0);
         canvas.text(at, line, Lettering::new(Anchor::Left, SMALL, Ink::Label).backed());
     }
 }

@@ -69,7 +69,8 @@ pub enum Item {
         ink: Ink,
         /// Turned clockwise about `at`, radians.
         angle: f64,
-        /// Paint the paper behind it (a backing of [`Ink::Paper`], about the size of [`text_width`] by `size`), so that lines don't run through it.
+        /// Paint the paper behind it (a backing of [`Ink::Paper`], the text's width and two points on either side by 1.1 times
+        /// its size), so that lines don't run through it.
         backed: bool,
         /// Heavier than the rest.
         strong: bool,

@@ -67,8 +67,8 @@ pub(crate) fn paint_labels(
         let Some(mark) = marks.mark(place.handle) else { continue };
         let y = place.centre.y;
         let [left, right] = place.whisker.map_or([place.centre.x; 2], |w| w.map(|p| p.x));
-        let left = left.min(place.centre.x) - 14.0;
-        let right = right.max(place.centre.x) + 14.0;
+        let left = left.min(place.centre.x - 9.0) - 8.0;
+        let right = right.max(place.centre.x + 9.0) + 8.0;
         let (name, x, side, out) = match place.handle {
             Handle::Dewpoint => ("Td", left, Anchor::Right, -1.0),
             Handle::Temperature => ("T", right, Anchor::Left, 1.0),
@@ -89,8 +89,8 @@ pub(crate) fn paint_labels(
             let state = if candidate.trusted { "" } else { ", set aside" };
             let text = format!("{letter} {} {}{state}", candidate.label, wording::temperature(candidate.value, units));
             let lettering = Lettering::new(side, 11.5, ink(candidate)).backed();
-            let up = foot - 16.0 - 14.0 * row as f64;
-            let rows = [up, up - 14.0, up - 28.0].map(|y| (Point::new(x + out * 2.0, y), side));
+            let up = foot - 17.0 - 15.0 * row as f64;
+            let rows = [up, up - 15.0, up - 30.0, up - 45.0].map(|y| (Point::new(x + out * 2.0, y), side));
             canvas.text_at_first(rows, &text, lettering, &plot);
         }
     }
@@ -109,14 +109,14 @@ fn paint_candidates(
     y: f64,
 ) -> Vec<String> {
     let plot = geometry.plot();
-    let below = if y + 34.0 <= plot.bottom { 1.0 } else { -1.0 };
+    let below = if y + 35.0 <= plot.bottom { 1.0 } else { -1.0 };
     let mut letters: Vec<String> = Vec::new();
     for candidate in &mark.candidates {
         let letter = letter(&candidate.label, &letters);
         let x = geometry.point(marks.pressure, candidate.value).x;
         if x > plot.left + 5.0 && x < plot.right - 5.0 {
-            let tip = Point::new(x, y + below * 10.0);
-            let base = y + below * 18.0;
+            let tip = Point::new(x, y + below * 13.0);
+            let base = y + below * 20.0;
             let corners = vec![tip, Point::new(x + 5.0, base), Point::new(x - 5.0, base)];
             if candidate.trusted {
                 canvas.polygon(corners, ink(candidate));
@@ -126,7 +126,7 @@ fn paint_candidates(
                 canvas.line(&round, &plot, ink(candidate), Stroke::solid(1.4));
             }
             let lettering = Lettering::new(Anchor::Centre, 11.5, ink(candidate)).backed().strong();
-            let shifts = [0.0, 9.0, -9.0, 18.0, -18.0];
+            let shifts = [0.0, 11.0, -11.0, 22.0, -22.0];
             let places = shifts.map(|dx| (Point::new(x + dx, base + below * 8.0), Anchor::Centre));
             canvas.text_at_first(places, &letter, lettering, &plot);
         }
@@ -175,7 +175,7 @@ pub(crate) fn paint_handles(canvas: &mut Canvas, marks: &SurfaceMarks, places: &
             }
         }
         if mark.focused {
-            canvas.circle(c, RING + 6.0, None, Some((Ink::Focus, Stroke::solid(2.0))));
+            canvas.circle(c, RING + 4.5, None, Some((Ink::Focus, Stroke::solid(2.0))));
         }
     }
 }

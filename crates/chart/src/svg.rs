@@ -64,7 +64,7 @@ fn write_item(out: &mut String, item: &Item, palette: Palette) {
             )
         }
         Item::Text { at, anchor, text, size, ink, angle, backed, strong } => {
-            let width = text_width(text, *size);
+            let width = text_width(text, if *strong { 1.07 * size } else { *size });
             let (name, left) = match anchor {
                 Anchor::Left => ("start", at.x),
                 Anchor::Centre => ("middle", at.x - width / 2.0),
@@ -79,7 +79,7 @@ fn write_item(out: &mut String, item: &Item, palette: Palette) {
                 let _ = writeln!(
                     out,
                     r#"<rect x="{}" y="{}" width="{}" height="{}"{}{turn}/>"#,
-                    n(left), n(at.y - 0.55 * size), n(width), n(1.1 * size), fill(palette.colour(Ink::Paper))
+                    n(left - 2.0), n(at.y - 0.55 * size), n(width + 4.0), n(1.1 * size), fill(palette.colour(Ink::Paper))
                 );
             }
             let weight = if *strong { r#" font-weight="bold""# } else { "" };

@@ -6,9 +6,11 @@ use crate::{Anchor, Geometry, Ink, Item, Point, Rect, Stroke};
 use dewbound_sounding::Profile;
 
 /// Least distance of the feet of two barbs, points.
-const LEAST: f64 = 14.0;
+const LEAST: f64 = 16.0;
 /// Room kept between the strokes of two barbs, points.
 const CLEAR: f64 = 3.0;
+/// Distance from a level without room at which the next is tried, points.
+const RETRY: f64 = 1.0;
 /// Radius of the circle of a calm.
 const CALM: f64 = 4.5;
 
@@ -57,6 +59,8 @@ fn select(geometry: &Geometry, profile: &Profile, southern: bool) -> Vec<(Point,
     let frame = geometry.frame();
     let plot = geometry.plot();
     let mut kept: Vec<(Point, Barb)> = Vec::new();
+    let mut taken: Vec<Vec<[Point; 2]>> = Vec::new();
+    let mut refused = f64::INFINITY;
     for (&pa, wind) in profile.pressure.iter().zip(&profile.wind) {
         let Some(wind) = wind else { continue };
         let foot = Point::new(strip.centre().x, geometry.y_of_pa(pa));
@@ -64,22 +68,22 @@ fn select(geometry: &Geometry, profile: &Profile, southern: bool) -> Vec<(Point,
             continue;
         }
         let near = |(at, _): &(Point, Barb)| (at.y - foot.y).abs() < LEAST;
-        if kept.last().is_some_and(near) {
+        // A neighbour of a level that had no room has none either.
+        if kept.last().is_some_and(near) || (refused - foot.y).abs() < RETRY {
             continue;
         }
         let Some(drawn) = barb(foot, wind.direction, wind.speed * KNOTS, southern) else {
             continue;
         };
         let room = Rect { top: plot.top - 6.0, ..frame };
-        let inside = strokes(foot, &drawn).iter().flatten().all(|&p| room.contains(p));
+        let mine = strokes(foot, &drawn);
+        let inside = mine.iter().flatten().all(|&p| room.contains(p));
         // Only the last few can be within reach.
-        let clear = kept
-            .iter()
-            .rev()
-            .take(6)
-            .all(|(other, barb)| !touch(&strokes(*other, barb), &strokes(foot, &drawn)));
-        if inside && clear {
+        if inside && taken.iter().rev().take(6).all(|other| !touch(other, &mine)) {
             kept.push((foot, drawn));
+            taken.push(mine);
+        } else {
+            refused = foot.y;
         }
     }
     kept

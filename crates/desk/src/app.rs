@@ -59,8 +59,8 @@ pub struct Desk {
     layout: Layout,
     now: Timestamp,
     clock: fn() -> Timestamp,
-    /// The first sounding of a tray was shown without being chosen.
-    settled: bool,
+    /// The hint speaks of arrow keys: the handle has yet to be given the keyboard.
+    hint_focus: bool,
     frames: u64,
     started: Arc<AtomicBool>,
     closing: Option<eframe::Renderer>,
@@ -80,7 +80,9 @@ impl Desk {
             session.open_paths(args.paths.clone());
         }
         let mut desk = Self::with_session(ctx, session, args, Timestamp::now);
-        desk.view.hint = args.paths.is_empty();
+        if args.paths.is_empty() {
+            desk.show_hint();
+        }
         desk.started = started;
         desk.closing = args.close_after_first_frame.then_some(renderer);
         desk
@@ -115,7 +117,7 @@ impl Desk {
             layout: Layout::of(ctx.content_rect()),
             now: clock(),
             clock,
-            settled: false,
+            hint_focus: false,
             frames: 0,
             started: Arc::default(),
             closing: None,
@@ -125,6 +127,7 @@ impl Desk {
     /// Shows the line over the chart until the first drag.
     pub fn show_hint(&mut self) {
         self.view.hint = true;
+        self.hint_focus = true;
     }
 
     /// The state behind the window.
@@ -147,7 +150,7 @@ impl Desk {
         handle::keys(ctx, self);
         chart_view::keys(ctx, self);
         input::pointer(ctx, self);
-        self.settle();
+        self.focus_for_hint(ctx);
         let held = ctx.input(|input| input.pointer.any_down() || !input.keys_down.is_empty())
             || self.view.card.is_some();
         self.session.hold_order(held);
@@ -179,23 +182,18 @@ impl Desk {
                 Picked::NoDialog => self.view.dialog = Some(DialogBox::Paths(String::new())),
             }
         }
-        let (paths, bytes) = dropped(ctx);
+        let paths = dropped(ctx);
         if !paths.is_empty() {
             self.session.open_paths(paths);
         }
-        for (name, content) in bytes {
-            self.session.open_bytes(name, content);
-        }
     }
 
-    /// Once a tray is read, its worst story is shown, unless somebody has chosen before.
-    fn settle(&mut self) {
-        let worst = self.session.tray().first().map(|row| row.item);
-        if let Some(worst) = worst
-            && ((!self.settled && self.session.reading() == 0) || self.session.current().is_none())
-        {
-            self.settled |= self.session.reading() == 0;
-            self.session.apply(Command::Select(worst));
+    /// The hint speaks of arrow keys, so the handle gets the keyboard as soon as there is one.
+    fn focus_for_hint(&mut self, ctx: &Context) {
+        if self.hint_focus && self.session.current().is_some() {
+            self.hint_focus = false;
+            let id = handle::handle_id(SurfaceQuantity::Dewpoint);
+            ctx.memory_mut(|memory| memory.request_focus(id));
         }
     }
 
@@ -239,17 +237,11 @@ impl Desk {
                 self.view.dialog = None;
                 self.session.open_paths(typed_paths(&text));
             }
-            Ask::Copy(text) => ctx.copy_text(text),
-            Ask::EndHint => self.view.hint = false,
-            Ask::Focus(id) => ctx.memory_mut(|memory| memory.request_focus(id)),
         }
     }
 
     /// Gives the session a command.
     pub(crate) fn apply(&mut self, command: Command) {
-        if matches!(command, Command::Select(_) | Command::SelectNext | Command::SelectPrevious) {
-            self.settled = true;
-        }
         self.session.apply(command);
     }
 

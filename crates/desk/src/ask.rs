@@ -28,12 +28,6 @@ pub(crate) enum Ask {
     SignAndDecide(String),
     /// Paths typed by hand, one a line.
     OpenTyped(String),
-    /// Put something on the clipboard.
-    Copy(String),
-    /// Put the hint over the chart away.
-    EndHint,
-    /// Give something the keyboard.
-    Focus(egui::Id),
 }
 
 /// What one painted frame hands back.

@@ -27,7 +27,7 @@ use std::sync::Arc;
 
 /// Identity of the chart in the window.
 pub(crate) fn chart_id() -> Id {
-    Id::new("skew-t chart")
+    Id::unique("skew-t chart")
 }
 
 /// A place on the screen as a point of the display list.
@@ -453,7 +453,7 @@ fn brackets_ui(ui: &Ui, paint: &Paint, item: &Item, frame: &ChartFrame, asks: &m
             continue;
         };
         let rect = to_rect(place);
-        let response = ui.interact(rect, Id::new(("bracket", number)), Sense::click());
+        let response = ui.interact(rect, Id::unique(("bracket", number)), Sense::click());
         let label = format!("Finding {number} on the chart: {}", finding.title);
         response.widget_info(|| WidgetInfo::labeled(Role::Button, true, &label));
         if response.has_focus() {
@@ -494,7 +494,7 @@ fn areas_ui(ui: &Ui, paint: &Paint, item: &Item, frame: &ChartFrame) {
     for (id, label) in areas {
         let response = ui.interact(
             Rect::from_min_size(plot.center(), vec2(1.0, 1.0)),
-            Id::new(("area", id)),
+            Id::unique(("area", id)),
             Sense::empty(),
         );
         response.widget_info(|| WidgetInfo::labeled(Role::Label, true, &label));

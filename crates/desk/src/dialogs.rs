@@ -17,7 +17,7 @@ pub(crate) fn dialog_ui(ctx: &Context, paint: &Paint, asks: &mut Asks) {
     let Some(dialog) = &paint.view.dialog else {
         return;
     };
-    let modal = Modal::new(Id::new("box")).show(ctx, |ui| {
+    let modal = Modal::new(Id::unique("box")).show(ctx, |ui| {
         ui.set_max_width(560.0);
         match dialog {
             DialogBox::Keys => keys_ui(ui, asks),
@@ -107,7 +107,7 @@ fn about_ui(ui: &mut Ui, asks: &mut Asks) {
 /// A text field that has the keyboard from the start; true when Enter was pressed in it.
 fn field_ui(ui: &mut Ui, id: &str, label: &str, text: &mut String, first: bool) -> bool {
     let name = ui.label(label);
-    let id = Id::new(("field", id));
+    let id = Id::unique(("field", id));
     let response = ui
         .add(TextEdit::singleline(text).id(id).desired_width(220.0))
         .labelled_by(name.id);
@@ -144,7 +144,7 @@ fn paths_ui(ui: &mut Ui, text: &str, asks: &mut Asks) {
     let response = ui
         .add(
             TextEdit::multiline(&mut typed)
-                .id(Id::new(("field", "paths")))
+                .id(Id::unique(("field", "paths")))
                 .desired_rows(4)
                 .desired_width(520.0),
         )

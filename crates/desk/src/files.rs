@@ -77,20 +77,17 @@ impl Files {
     }
 }
 
-/// What was dropped on the window in this frame: paths, and bytes that came without one.
-pub(crate) fn dropped(ctx: &egui::Context) -> (Vec<PathBuf>, Vec<(String, Vec<u8>)>) {
-    let mut paths = Vec::new();
-    let mut bytes = Vec::new();
+/// What was dropped on the window in this frame.
+pub(crate) fn dropped(ctx: &egui::Context) -> Vec<PathBuf> {
     ctx.input(|input| {
-        for file in &input.raw.dropped_files {
-            match (&file.path, &file.bytes) {
-                (Some(path), _) => paths.push(path.clone()),
-                (None, Some(content)) => bytes.push((file.name.clone(), content.to_vec())),
-                (None, None) => {}
-            }
-        }
-    });
-    (paths, bytes)
+        input
+            .raw
+            .dropped_files
+            .iter()
+            .map(|file| file.path().to_owned())
+            .filter(|path| !path.as_os_str().is_empty())
+            .collect()
+    })
 }
 
 /// Paths typed by hand, one a line; a leading `~` means the home folder.

@@ -20,7 +20,7 @@ pub(crate) const QUANTITIES: [SurfaceQuantity; 2] =
 
 /// Identity of a handle in the window.
 pub(crate) fn handle_id(quantity: SurfaceQuantity) -> Id {
-    Id::new(("handle", quantity))
+    Id::unique(("handle", quantity))
 }
 
 /// The chart's word for it.

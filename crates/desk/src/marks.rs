@@ -129,7 +129,7 @@ impl From<&Standing> for Mark {
     fn from(standing: &Standing) -> Self {
         match standing {
             Standing::Undecided => Self::Open,
-            Standing::Draft => Self::Draft,
+            Standing::Draft | Standing::Keeping => Self::Draft,
             Standing::Decided(_) => Self::Decided,
             Standing::DecidedOnEarlierData(_) => Self::Review,
         }

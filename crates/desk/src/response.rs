@@ -17,7 +17,7 @@ use egui_plot::{Axis, HLine, Line, LineStyle, MarkerShape, Plot, PlotPoints, Plo
 
 /// Identity of the response in the window.
 pub(crate) fn response_id() -> Id {
-    Id::new("response curve")
+    Id::unique("response curve")
 }
 
 /// Where the plot of the last frame lay.

@@ -93,7 +93,7 @@ fn show(args: &Args, renderer: eframe::Renderer) -> Result<(), NoWindow> {
             .with_title("Dewbound")
             .with_app_id("dewbound")
             .with_inner_size([1440.0, 900.0])
-            .with_min_inner_size([640.0, 520.0])
+            .with_min_inner_size(crate::layout::LEAST_WINDOW)
             .with_drag_and_drop(true)
             .with_icon(crate::icon::icon()),
         ..Default::default()

@@ -58,7 +58,7 @@ pub(crate) fn timing_ui(ui: &Ui, paint: &Paint) {
             item.results().working.profile.len()
         ));
     }
-    Area::new(Id::new("computing time"))
+    Area::new(Id::unique("computing time"))
         .order(Order::Foreground)
         .interactable(false)
         .pivot(Align2::LEFT_BOTTOM)

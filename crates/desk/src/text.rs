@@ -18,7 +18,7 @@ pub(crate) fn print_tray(args: &Args, sentence: &str) -> ExitCode {
     for message in session.messages() {
         eprintln!("{}", message.line());
     }
-    let text = format!("{sentence}\n\n{}", report::tray(session.items()));
+    let text = format!("{sentence}\n\n{}", report::tray(&session));
     // A reader that has seen enough and closed the pipe is no error.
     let mut out = std::io::stdout().lock();
     let _ = out.write_all(text.as_bytes()).and_then(|()| out.flush());

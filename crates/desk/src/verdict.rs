@@ -224,6 +224,9 @@ fn standing_details_ui(ui: &mut Ui, standing: &Standing) {
         Standing::Draft => {
             ui.label("Begun but not decided. The draft is kept across restarts.");
         }
+        Standing::Keeping => {
+            ui.label("Decided; not yet on the disk.");
+        }
         Standing::Decided(decision) | Standing::DecidedOnEarlierData(decision) => {
             ui.label(format!(
                 "{} by {} at {}",

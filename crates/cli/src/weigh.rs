@@ -5,7 +5,8 @@ use crate::output::{Output, say};
 use anyhow::Result;
 use dewbound_session::sounding::thermo::Temperature;
 use dewbound_session::{
-    Analysed, Document, Office, ReadFailure, ReadFile, Results, files_of, read_bytes, read_file, report, wording,
+    Analysed, Document, Office, ReadFailure, ReadFile, Results, STATION_TABLE, files_of,
+    read_bytes, read_file, report, wording,
 };
 use jiff::{Timestamp, civil::Date};
 use std::io::Read;
@@ -13,9 +14,13 @@ use std::path::{Path, PathBuf};
 
 /// Weighs every sounding of every file. False when one could not be.
 pub fn run(options: &Weigh, output: &mut Output) -> Result<bool> {
-    let (office, problems) = Office::load(options.stations.as_deref(), options.thresholds.as_deref());
+    let (office, problems) =
+        Office::load(options.stations.as_deref(), options.thresholds.as_deref());
     for problem in &problems {
-        say(&format!("{}: {}. {}", problem.about, problem.what, problem.remedy));
+        say(&format!(
+            "{}: {}. {}",
+            problem.about, problem.what, problem.remedy
+        ));
     }
     if problems.iter().any(|problem| problem.unused) {
         return Ok(false);
@@ -50,39 +55,67 @@ pub fn run(options: &Weigh, output: &mut Output) -> Result<bool> {
 type Named = (String, Result<ReadFile, ReadFailure>);
 
 /// The files meant by a path, read one after the other as they are asked for.
-fn sources<'a>(path: &'a Path, office: &'a Office, as_of: Option<Date>) -> Box<dyn Iterator<Item = Named> + 'a> {
+fn sources<'a>(
+    path: &'a Path,
+    office: &'a Office,
+    as_of: Option<Date>,
+) -> Box<dyn Iterator<Item = Named> + 'a> {
     if path == Path::new("-") {
-        return Box::new(std::iter::once_with(move || ("standard input".to_owned(), standard_input(office, as_of))));
+        return Box::new(std::iter::once_with(move || {
+            ("standard input".to_owned(), standard_input(office, as_of))
+        }));
     }
     match files_of(path) {
-        Ok(files) => Box::new(files.into_iter().map(move |file: PathBuf| {
-            let read = read_file(&file, office, as_of);
-            (file.display().to_string(), read)
-        })),
-        Err(error) => Box::new(std::iter::once((path.display().to_string(), Err(error.into())))),
+        Ok(meant) => {
+            for table in &meant.station_tables {
+                say(&format!("{}: {STATION_TABLE}", table.display()));
+            }
+            Box::new(meant.files.into_iter().map(move |file: PathBuf| {
+                let read = read_file(&file, office, as_of);
+                (file.display().to_string(), read)
+            }))
+        }
+        Err(error) => Box::new(std::iter::once((
+            path.display().to_string(),
+            Err(error.into()),
+        ))),
     }
 }
 
 fn standard_input(office: &Office, as_of: Option<Date>) -> Result<ReadFile, ReadFailure> {
     let mut bytes = Vec::new();
     std::io::stdin().lock().read_to_end(&mut bytes)?;
-    read_bytes("standard input", &bytes, Some(Timestamp::now()), office, as_of)
+    read_bytes(
+        "standard input",
+        &bytes,
+        Some(Timestamp::now()),
+        office,
+        as_of,
+    )
 }
 
 fn weighed(analysed: &Analysed, options: &Weigh) -> Result<String> {
     let mut document = Document::default();
     document.amendments.reach = options.reach.map(Into::into);
     if let Some(temperature) = options.temperature_c {
-        document.amendments = document.amendments.with_surface_temperature(Temperature::from_c(temperature));
+        document.amendments = document
+            .amendments
+            .with_surface_temperature(Temperature::from_c(temperature));
     }
     if let Some(dewpoint) = options.dewpoint_c {
-        document.amendments = document.amendments.with_surface_dewpoint(Temperature::from_c(dewpoint));
+        document.amendments = document
+            .amendments
+            .with_surface_dewpoint(Temperature::from_c(dewpoint));
     }
     let results = Results::of(analysed, &document);
     if options.json {
         // The table has a place for these; the object is about the sounding, not about what was asked.
         for note in &results.working.notes {
-            say(&format!("{}: {}", analysed.sounding.source.file, wording::note(note)));
+            say(&format!(
+                "{}: {}",
+                analysed.sounding.source.file,
+                wording::note(note)
+            ));
         }
         let mut line = report::json_line(analysed, &results)?;
         line.push('\n');

@@ -1,5 +1,6 @@
 //! Everything that follows from a sounding as received, before anybody has touched it.
 
+use crate::bounds::{Candidates, candidates};
 use crate::sounding::{Daylight, Note, Numbers, Profile, Sounding, daylight};
 use crate::trust::{Context, Finding, Thresholds, findings};
 use std::sync::Arc;
@@ -17,6 +18,8 @@ pub struct Analysed {
     pub findings: Vec<Finding>,
     /// Whether the sun has been heating the ground.
     pub daylight: Daylight,
+    /// What the surface dew point might truly be.
+    pub candidates: Candidates,
     /// Notes of the reader, then those of the merging.
     pub notes: Vec<Note>,
 }
@@ -34,6 +37,7 @@ impl Analysed {
             daylight,
             thresholds,
         });
+        let candidates = candidates(&profile, daylight, thresholds);
         let mut notes = sounding.notes.clone();
         notes.extend(merging);
         Self {
@@ -42,6 +46,7 @@ impl Analysed {
             numbers,
             findings,
             daylight,
+            candidates,
             notes,
         }
     }

@@ -5,7 +5,8 @@ use crate::sounding::{Amendments, Entry};
 use crate::thermo::{Pressure, Temperature};
 use crate::trust::{with_repair, without_repair};
 use crate::{
-    Command, Document, IntervalEnd, Item, ItemId, RepairId, Results, Session, SurfaceQuantity, Weight, draft, edit,
+    Command, Document, IntervalEnd, Item, ItemId, RepairId, Results, Session, SurfaceQuantity,
+    Weight, draft, edit,
 };
 
 /// What a surface value may be, K: beyond every value ever measured at the ground, so beyond it is a slip of the hand.
@@ -22,9 +23,9 @@ impl Session {
             Command::SelectPrevious => self.step(-1),
             Command::Close(id) => self.close(id),
 
-            Command::SetSurface(quantity, value) => self.edit(|item, document| {
-                set_surface(item, document, quantity, value)
-            }),
+            Command::SetSurface(quantity, value) => {
+                self.edit(|item, document| set_surface(item, document, quantity, value))
+            }
             Command::Nudge {
                 quantity,
                 by_k,
@@ -33,7 +34,12 @@ impl Session {
                 let Some(value) = item.working_surface(quantity) else {
                     return Err(no_value(quantity));
                 };
-                set_surface(item, document, quantity, Temperature::from_k(value.k() + by_k))
+                set_surface(
+                    item,
+                    document,
+                    quantity,
+                    Temperature::from_k(value.k() + by_k),
+                )
             }),
             Command::ResetSurface(quantity) => self.edit(|_, document| {
                 edit::reset_surface(document, quantity);
@@ -103,10 +109,12 @@ impl Session {
                 document.verdict = verdict;
                 Ok(())
             }),
-            Command::SetReasons(reasons) => self.edit_joining(Some(Joining::Reasons), true, |_, document| {
-                document.reasons = reasons;
-                Ok(())
-            }),
+            Command::SetReasons(reasons) => {
+                self.edit_joining(Some(Joining::Reasons), true, |_, document| {
+                    document.reasons = reasons;
+                    Ok(())
+                })
+            }
             Command::SetInitials(initials) => self.set_initials(&initials),
             Command::Decide => self.decide(),
 
@@ -134,7 +142,9 @@ impl Session {
             self.tell(Weight::Told, about, what, remedy);
             return;
         }
-        let Some(item) = self.item_mut(id) else { return };
+        let Some(item) = self.item_mut(id) else {
+            return;
+        };
         if item.history.set(document, kind, join) {
             let in_gesture = item.history.in_gesture();
             self.document_changed(id, &before);
@@ -170,11 +180,19 @@ impl Session {
     pub(crate) fn document_changed(&mut self, id: ItemId, before: &Document) {
         let revision = self.next_revision();
         let hold = self.hold;
-        let Some(item) = self.item_mut(id) else { return };
+        let Some(item) = self.item_mut(id) else {
+            return;
+        };
         if item.document().computes_like(before) {
             item.results.revision = revision;
         } else {
-            item.results = Results::next(&item.analysed, item.history.document(), revision, &item.results, hold);
+            item.results = Results::next(
+                &item.analysed,
+                item.history.document(),
+                revision,
+                &item.results,
+                hold,
+            );
         }
         self.refresh_standing(id);
     }
@@ -190,7 +208,12 @@ impl Session {
             Ok(text) => self.files.replace(path, text),
             Err(error) => {
                 let about = item.sounding().station.label().to_owned();
-                self.tell(Weight::Failed, about, format!("the draft can't be written: {error}"), "Decide before closing the desk");
+                self.tell(
+                    Weight::Failed,
+                    about,
+                    format!("the draft can't be written: {error}"),
+                    "Decide before closing the desk",
+                );
             }
         }
     }
@@ -225,7 +248,10 @@ impl Session {
     }
 
     fn step(&mut self, by: isize) {
-        let here = self.tray.iter().position(|row| Some(row.item) == self.current);
+        let here = self
+            .tray
+            .iter()
+            .position(|row| Some(row.item) == self.current);
         let there = match here {
             Some(here) => here.checked_add_signed(by),
             None => Some(0),
@@ -272,26 +298,41 @@ fn set_surface(
     // NaN is in no range.
     if !USABLE.contains(&value.k()) {
         return Err((
-            format!("{:.1} °C is not a {} anybody has measured", value.c(), quantity.words()),
+            format!(
+                "{:.1} °C is not a {} anybody has measured",
+                value.c(),
+                quantity.words()
+            ),
             "Give a value from -100 to 65 °C",
         ));
     }
     let value = match quantity {
         SurfaceQuantity::Dewpoint => item
             .working_surface(SurfaceQuantity::Temperature)
-            .map_or(value, |temperature| Temperature::from_k(value.k().min(temperature.k()))),
+            .map_or(value, |temperature| {
+                Temperature::from_k(value.k().min(temperature.k()))
+            }),
         SurfaceQuantity::Temperature => item
             .working_surface(SurfaceQuantity::Dewpoint)
-            .map_or(value, |dewpoint| Temperature::from_k(value.k().max(dewpoint.k()))),
+            .map_or(value, |dewpoint| {
+                Temperature::from_k(value.k().max(dewpoint.k()))
+            }),
     };
     edit::set_surface(document, quantity, value);
     Ok(())
 }
 
-fn pin(document: &mut Document, end: IntervalEnd, value: Option<Temperature>) -> Result<(), Refusal> {
+fn pin(
+    document: &mut Document,
+    end: IntervalEnd,
+    value: Option<Temperature>,
+) -> Result<(), Refusal> {
     let value = value.map(Temperature::k);
     if value.is_some_and(|value| !USABLE.contains(&value)) {
-        return Err(("this is not a usable dew point".to_owned(), "Give a value from -100 to 65 °C"));
+        return Err((
+            "this is not a usable dew point".to_owned(),
+            "Give a value from -100 to 65 °C",
+        ));
     }
     match end {
         IntervalEnd::Low => document.pins.low_k = value,

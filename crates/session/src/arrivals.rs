@@ -4,16 +4,13 @@ use crate::history::History;
 use crate::keeper::{News, Outcome};
 use crate::ledger::{Decision, Problem};
 use crate::opening::{Arrival, Fresh};
-use crate::{Document, Item, ItemId, Session, Standing, Weight, wording};
+use crate::{Document, Item, ItemId, Session, Standing, Weight};
 
 impl Session {
     pub(crate) fn take_in(&mut self, arrival: Arrival) {
         match arrival {
             Arrival::Sounding(fresh) => self.add(*fresh),
-            Arrival::Notes { file, notes } => {
-                let lines: Vec<String> = notes.iter().map(wording::note).collect();
-                self.tell(Weight::Told, file, lines.join("\n"), "");
-            }
+            Arrival::Told { about, what } => self.tell(Weight::Told, about, what, ""),
             Arrival::Failed {
                 about,
                 what,
@@ -25,9 +22,11 @@ impl Session {
     }
 
     fn add(&mut self, fresh: Fresh) {
-        if let Some(same) = self.items.iter().find(|item| {
-            item.identity == fresh.identity && !fresh.identity.parts.is_empty()
-        }) {
+        if let Some(same) = self
+            .items
+            .iter()
+            .find(|item| item.identity == fresh.identity && !fresh.identity.parts.is_empty())
+        {
             self.batch.push(same.id);
             return;
         }
@@ -80,7 +79,12 @@ impl Session {
             self.decided(outcome);
         }
         for failure in news.failures {
-            self.tell(Weight::Failed, "", failure, "Until then no verdict can be kept");
+            self.tell(
+                Weight::Failed,
+                "",
+                failure,
+                "Until then no verdict can be kept",
+            );
         }
         if !news.problems.is_empty() {
             let lines: Vec<String> = news.problems.iter().map(problem_text).collect();
@@ -113,7 +117,9 @@ impl Session {
         let decided_at = decision.decided_at;
         let untouched = !item.is_draft() && !item.in_gesture();
         let before = item.document().clone();
-        let Some(item) = self.item_mut(id) else { return };
+        let Some(item) = self.item_mut(id) else {
+            return;
+        };
         item.decided_at = Some(decided_at);
         item.baseline = baseline.clone();
         if untouched {
@@ -123,7 +129,10 @@ impl Session {
     }
 
     fn decision_on_these_data(&self, item: &Item) -> Option<&Decision> {
-        match self.keeper_of(item).standing(&item.identity.key, &item.identity.parts)? {
+        match self
+            .keeper_of(item)
+            .standing(&item.identity.key, &item.identity.parts)?
+        {
             crate::ledger::Standing::Decided(decision) => Some(decision),
             _ => None,
         }
@@ -145,8 +154,16 @@ impl Session {
         }
         match result {
             Ok(()) => {
-                let which = if decision.demo { " in the demo ledger" } else { "" };
-                let what = format!("kept{which}: {} ({})", decision.verdict.words(), decision.initials);
+                let which = if decision.demo {
+                    " in the demo ledger"
+                } else {
+                    ""
+                };
+                let what = format!(
+                    "kept{which}: {} ({})",
+                    decision.verdict.words(),
+                    decision.initials
+                );
                 self.tell(Weight::Done, about, what, "");
             }
             // The ledger's own sentence says what to do.

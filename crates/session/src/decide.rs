@@ -10,7 +10,11 @@ use std::sync::Arc;
 
 impl Session {
     pub(crate) fn keeper_of(&self, item: &Item) -> &Keeper {
-        if item.demo() { &self.demo_ledger } else { &self.ledger }
+        if item.demo() {
+            &self.demo_ledger
+        } else {
+            &self.ledger
+        }
     }
 
     /// Why the current draft can't be decided yet; `Ok` with its verdict when it can.
@@ -21,16 +25,23 @@ impl Session {
             return Err("the verdict is being kept".to_owned());
         }
         let verdict = document.verdict.ok_or("choose a verdict first")?;
-        let amended = document.amendments.entries.iter().any(|entry| entry.enabled);
+        let amended = document
+            .amendments
+            .entries
+            .iter()
+            .any(|entry| entry.enabled);
         match verdict {
-            Verdict::Accepted if amended => {
-                Err("amendments are in force: choose \"accepted as amended\", or remove them".to_owned())
-            }
+            Verdict::Accepted if amended => Err(
+                "amendments are in force: choose \"accepted as amended\", or remove them"
+                    .to_owned(),
+            ),
             Verdict::AcceptedAsAmended if !amended => {
                 Err("nothing is amended: choose \"accepted\", or amend first".to_owned())
             }
             Verdict::Accepted => Ok(()),
-            _ if document.reasons.trim().is_empty() => Err("say why: the next shift reads the reasons".to_owned()),
+            _ if document.reasons.trim().is_empty() => {
+                Err("say why: the next shift reads the reasons".to_owned())
+            }
             _ => Ok(()),
         }?;
         if self.initials().is_none() {
@@ -46,7 +57,10 @@ impl Session {
         let verdict = match self.decidable() {
             Ok(verdict) => verdict,
             Err(why) => {
-                let about = self.current().map_or("", |item| item.sounding().station.label()).to_owned();
+                let about = self
+                    .current()
+                    .map_or("", |item| item.sounding().station.label())
+                    .to_owned();
                 self.tell(Weight::Told, about, format!("not decided: {why}"), "");
                 return;
             }
@@ -73,25 +87,40 @@ impl Session {
             item.keeping = Some((decision.decided_at, document));
             item.standing = Standing::Keeping;
         }
-        let keeper = if demo { &mut self.demo_ledger } else { &mut self.ledger };
+        let keeper = if demo {
+            &mut self.demo_ledger
+        } else {
+            &mut self.ledger
+        };
         keeper.keep(id, decision);
     }
 
     /// How an item stands now. While the ledger is away what was known of it still counts.
     pub(crate) fn refresh_standing(&mut self, id: ItemId) {
         let Some(item) = self.item(id) else { return };
-        let draft = if item.is_draft() { Standing::Draft } else { Standing::Undecided };
+        let draft = if item.is_draft() {
+            Standing::Draft
+        } else {
+            Standing::Undecided
+        };
         let standing = if item.keeping.is_some() {
             Standing::Keeping
         } else {
-            match self.keeper_of(item).standing(&item.identity.key, &item.identity.parts) {
-                Some(ledger::Standing::Decided(decision)) if !item.is_draft() => Standing::Decided(decision.clone()),
+            match self
+                .keeper_of(item)
+                .standing(&item.identity.key, &item.identity.parts)
+            {
+                Some(ledger::Standing::Decided(decision)) if !item.is_draft() => {
+                    Standing::Decided(decision.clone())
+                }
                 Some(ledger::Standing::DecidedOnEarlierData(decision)) => {
                     Standing::DecidedOnEarlierData(decision.clone())
                 }
                 Some(_) => draft,
                 None => match &item.standing {
-                    known @ (Standing::Decided(_) | Standing::DecidedOnEarlierData(_)) if !item.is_draft() => {
+                    known @ (Standing::Decided(_) | Standing::DecidedOnEarlierData(_))
+                        if !item.is_draft() =>
+                    {
                         known.clone()
                     }
                     _ => draft,
@@ -121,7 +150,10 @@ impl Session {
             self.tell(
                 Weight::Told,
                 label,
-                format!("{}, {} is not a position", position.latitude, position.longitude),
+                format!(
+                    "{}, {} is not a position",
+                    position.latitude, position.longitude
+                ),
                 "Latitude -90 to 90 and longitude -180 to 180, north and east positive",
             );
             return;
@@ -129,7 +161,12 @@ impl Session {
         let Some(station) = station.canonical_id() else {
             let only = item.id;
             self.relocate(only, position);
-            self.tell(Weight::Told, label, "the message names no station, so this position can't be remembered", "");
+            self.tell(
+                Weight::Told,
+                label,
+                "the message names no station, so this position can't be remembered",
+                "",
+            );
             return;
         };
         let ids: Vec<ItemId> = self
@@ -142,14 +179,18 @@ impl Session {
             self.relocate(id, position);
         }
         self.remembered.positions.insert(station, position);
-        Arc::make_mut(&mut self.office).positions.clone_from(&self.remembered.positions);
+        Arc::make_mut(&mut self.office)
+            .positions
+            .clone_from(&self.remembered.positions);
         self.remember();
     }
 
     fn relocate(&mut self, id: ItemId, position: Position) {
         let revision = self.next_revision();
         let office = self.office.clone();
-        let Some(item) = self.item_mut(id) else { return };
+        let Some(item) = self.item_mut(id) else {
+            return;
+        };
         let mut sounding = (*item.analysed.sounding).clone();
         sounding.station.position = Some(position);
         item.analysed = Arc::new(Analysed::of(sounding, &office.thresholds));
@@ -159,8 +200,15 @@ impl Session {
 
     fn remember(&mut self) {
         match self.remembered.encode() {
-            Ok(text) => self.files.replace(Remembered::path(&self.config.office), text),
-            Err(error) => self.tell(Weight::Failed, "remembered.json", format!("not written: {error}"), ""),
+            Ok(text) => self
+                .files
+                .replace(Remembered::path(&self.config.office), text),
+            Err(error) => self.tell(
+                Weight::Failed,
+                "remembered.json",
+                format!("not written: {error}"),
+                "",
+            ),
         }
     }
 }

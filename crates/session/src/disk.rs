@@ -63,7 +63,10 @@ impl SmallFiles {
                 for (index, job) in batch.iter().enumerate() {
                     // A file that is replaced again right away need not be written twice.
                     let later = batch.iter().skip(index + 1);
-                    if later.take_while(|job| job.path().is_some()).any(|later| later.path() == job.path()) {
+                    if later
+                        .take_while(|job| job.path().is_some())
+                        .any(|later| later.path() == job.path())
+                    {
                         continue;
                     }
                     if let Err(source) = job.run() {

@@ -1,8 +1,9 @@
-//! How far the numbers move inside the credible surface moisture.
+//! How far the numbers move inside the credible surface moisture, as it is shown.
 
-use crate::sounding::{Amendment, Amendments, Parcel};
+use crate::bounds::{self, NoInterval, Origin, Plan, Response, Sample};
+use crate::sounding::{Amendment, Amendments, Numbers, Parcel};
 use crate::thermo::Temperature;
-use crate::{Analysed, Document, Pins};
+use crate::{Analysed, Document, IntervalEnd, Pins};
 
 /// Where a candidate for the true surface dew point comes from.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]
@@ -37,8 +38,37 @@ pub struct Interval {
     pub low: Temperature,
     /// Moister end.
     pub high: Temperature,
-    /// Where the ends come from, for people ("provisional: ...").
+    /// Where the drier end comes from.
+    pub why_low: String,
+    /// Where the moister end comes from.
+    pub why_high: String,
+    /// An end rests on a provisional allowance for the sensor.
+    pub provisional: bool,
+    /// Both ends in one line, for people ("provisional: ...").
     pub why: String,
+}
+
+impl Interval {
+    fn of(interval: &bounds::Interval) -> Self {
+        let mark = if interval.provisional {
+            "provisional: "
+        } else {
+            ""
+        };
+        Self {
+            low: interval.low,
+            high: interval.high,
+            why_low: interval.why_low.clone(),
+            why_high: interval.why_high.clone(),
+            provisional: interval.provisional,
+            why: format!("{mark}{} to {}", interval.why_low, interval.why_high),
+        }
+    }
+
+    /// A dew point lies inside, ends included.
+    pub fn contains(&self, dewpoint: Temperature) -> bool {
+        (self.low.k()..=self.high.k()).contains(&dewpoint.k())
+    }
 }
 
 /// The numbers of one parcel at one surface dew point.
@@ -124,9 +154,9 @@ pub(crate) struct DoubtKey {
 impl DoubtKey {
     pub(crate) fn of(document: &Document) -> Self {
         let mut amendments = document.amendments.clone();
-        amendments
-            .entries
-            .retain(|entry| entry.enabled && !matches!(entry.amendment, Amendment::SurfaceDewpoint { .. }));
+        amendments.entries.retain(|entry| {
+            entry.enabled && !matches!(entry.amendment, Amendment::SurfaceDewpoint { .. })
+        });
         Self {
             amendments,
             pins: document.pins,
@@ -135,7 +165,167 @@ impl DoubtKey {
 }
 
 impl Doubt {
-    pub(crate) fn of(_analysed: &Analysed, _document: &Document) -> Self {
-        Self::default()
+    /// Of a document.
+    pub(crate) fn of(analysed: &Analysed, document: &Document) -> Self {
+        let amendments = &document.amendments;
+        let temperature = amendments
+            .surface_temperature()
+            .or(analysed.candidates.surface_temperature);
+        let pins = bounds::Pins {
+            low: document.pins.end(IntervalEnd::Low),
+            high: document.pins.end(IntervalEnd::High),
+        };
+        let interval = match bounds::interval(&analysed.candidates, temperature, pins) {
+            Ok(interval) => interval,
+            Err(problem) => return Self::without_interval(analysed, document, &problem),
+        };
+        let response = bounds::response(
+            &analysed.profile,
+            amendments,
+            analysed.daylight,
+            &analysed.candidates,
+            &interval,
+            Plan::default(),
+        );
+        Self {
+            candidates: candidates(analysed, document, Some(&response)),
+            interval: Some(Interval::of(&interval)),
+            response: response.samples.iter().map(ResponsePoint::of).collect(),
+            ranges: Parcel::ALL.map(|parcel| ParcelRange::of(&response, parcel)),
+            problem: String::new(),
+        }
     }
+
+    fn without_interval(analysed: &Analysed, document: &Document, problem: &NoInterval) -> Self {
+        Self {
+            candidates: candidates(analysed, document, None),
+            problem: problem.to_string(),
+            ..Self::default()
+        }
+    }
+
+    /// The same with the working numbers counted in the ranges, when their dew point lies inside the interval and a
+    /// value lies outside them: the response is sampled, and a number must not stand outside its own range.
+    pub(crate) fn including(
+        &self,
+        dewpoint: Option<Temperature>,
+        numbers: &Numbers,
+    ) -> Option<Self> {
+        let dewpoint = dewpoint
+            .filter(|&dewpoint| self.interval.as_ref().is_some_and(|i| i.contains(dewpoint)))?;
+        let mut ranges = self.ranges;
+        for (range, parcel) in ranges.iter_mut().zip(Parcel::ALL) {
+            let Some(ascent) = numbers.parcel(parcel) else {
+                continue;
+            };
+            Extremes::include(&mut range.cape, ascent.cape, dewpoint);
+            match ascent.cin {
+                Some(cin) => Extremes::include(&mut range.cin, cin, dewpoint),
+                None => range.sometimes_no_free_convection = true,
+            }
+            if let Some(cape) = &mut range.cape {
+                cape.at_least |= ascent.at_least;
+            }
+        }
+        (ranges != self.ranges).then(|| Self {
+            ranges,
+            ..self.clone()
+        })
+    }
+}
+
+impl Extremes {
+    fn include(range: &mut Option<Self>, value: f64, dewpoint: Temperature) {
+        let range = range.get_or_insert(Self {
+            least: value,
+            least_at: dewpoint,
+            most: value,
+            most_at: dewpoint,
+            at_least: false,
+        });
+        if value < range.least {
+            (range.least, range.least_at) = (value, dewpoint);
+        }
+        if value > range.most {
+            (range.most, range.most_at) = (value, dewpoint);
+        }
+    }
+}
+
+impl ResponsePoint {
+    fn of(sample: &Sample) -> Self {
+        Self {
+            dewpoint: sample.dewpoint,
+            parcels: Parcel::ALL.map(|parcel| {
+                sample
+                    .numbers
+                    .parcel(parcel)
+                    .map_or_else(ParcelPoint::default, |ascent| ParcelPoint {
+                        cape: Some(ascent.cape),
+                        cin: ascent.cin,
+                        at_least: ascent.at_least,
+                    })
+            }),
+        }
+    }
+}
+
+impl ParcelRange {
+    fn of(response: &Response, parcel: Parcel) -> Self {
+        let Some(range) = response.range(parcel) else {
+            return Self::default();
+        };
+        let extremes = |least: bounds::Extreme, most: bounds::Extreme, at_least| Extremes {
+            least: least.value,
+            least_at: least.dewpoint,
+            most: most.value,
+            most_at: most.dewpoint,
+            at_least,
+        };
+        Self {
+            cape: Some(extremes(
+                range.cape.least,
+                range.cape.most,
+                range.at_least_somewhere,
+            )),
+            cin: range
+                .cin
+                .map(|cin| extremes(cin.strongest, cin.weakest, false)),
+            sometimes_no_free_convection: range.cin_absent_somewhere,
+        }
+    }
+}
+
+/// The candidates side by side with their CAPE, then the pinned ends.
+fn candidates(
+    analysed: &Analysed,
+    document: &Document,
+    response: Option<&Response>,
+) -> Vec<Candidate> {
+    let cape = |sample: Option<&Sample>| {
+        Parcel::ALL.map(|parcel| Some(sample?.numbers.parcel(parcel)?.cape))
+    };
+    let of_origin = analysed.candidates.iter().map(|candidate| Candidate {
+        kind: match candidate.origin {
+            Origin::Reported => CandidateKind::Reported,
+            Origin::MixedLayer => CandidateKind::MixedLayer,
+        },
+        dewpoint: candidate.dewpoint,
+        cape: cape(response.and_then(|response| response.candidate(candidate.origin))),
+        note: candidate.why.clone(),
+    });
+    let pinned = [
+        (CandidateKind::PinnedLow, IntervalEnd::Low),
+        (CandidateKind::PinnedHigh, IntervalEnd::High),
+    ];
+    let of_pins = pinned.into_iter().filter_map(|(kind, end)| {
+        let dewpoint = document.pins.end(end)?;
+        Some(Candidate {
+            kind,
+            dewpoint: Some(dewpoint),
+            cape: cape(response.and_then(|response| response.at(dewpoint))),
+            note: "pinned by you".to_owned(),
+        })
+    });
+    of_origin.chain(of_pins).collect()
 }

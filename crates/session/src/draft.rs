@@ -25,7 +25,10 @@ pub(crate) fn path(folder: &Path, identity: &Identity) -> PathBuf {
 }
 
 /// Content of the file.
-pub(crate) fn encode(identity: &Identity, document: &Document) -> Result<String, serde_json::Error> {
+pub(crate) fn encode(
+    identity: &Identity,
+    document: &Document,
+) -> Result<String, serde_json::Error> {
     let mut text = serde_json::to_string_pretty(&DraftFile {
         schema: SCHEMA,
         state: "draft: not decided".to_owned(),
@@ -43,7 +46,12 @@ pub(crate) fn load(folder: &Path, identity: &Identity) -> Result<Option<Document
     let text = match std::fs::read_to_string(&path) {
         Ok(text) => text,
         Err(error) if error.kind() == io::ErrorKind::NotFound => return Ok(None),
-        Err(error) => return Err(format!("the draft {} can't be read: {error}", path.display())),
+        Err(error) => {
+            return Err(format!(
+                "the draft {} can't be read: {error}",
+                path.display()
+            ));
+        }
     };
     let file: DraftFile = serde_json::from_str(&text).map_err(|error| {
         format!(

@@ -83,10 +83,16 @@ mod tests {
     #[test]
     fn one_part_is_its_own_digest_and_several_are_hashed_in_order() {
         assert_eq!(Identity::sha256(&sounding(&[])), None);
-        assert_eq!(Identity::sha256(&sounding(&[[0xab; 32]])), Some("ab".repeat(32)));
+        assert_eq!(
+            Identity::sha256(&sounding(&[[0xab; 32]])),
+            Some("ab".repeat(32))
+        );
         // SHA-256 of 64 zero-then-one bytes, from `(printf '\0%.0s' {1..32}; printf '\1%.0s' {1..32}) | sha256sum`.
         let two = Identity::sha256(&sounding(&[[1; 32], [0; 32]]));
-        assert_eq!(two.as_deref(), Some("5c85955f709283ecce2b74f1b1552918819f390911816e7bb466805a38ab87f3"));
+        assert_eq!(
+            two.as_deref(),
+            Some("5c85955f709283ecce2b74f1b1552918819f390911816e7bb466805a38ab87f3")
+        );
     }
 
     #[test]
@@ -94,6 +100,9 @@ mod tests {
         let one = Identity::of(&sounding(&[[1; 32]])).file_stem();
         let other = Identity::of(&sounding(&[[2; 32]])).file_stem();
         assert_ne!(one, other);
-        assert!(one.chars().all(|c| c.is_ascii_alphanumeric() || c == '-'), "{one}");
+        assert!(
+            one.chars().all(|c| c.is_ascii_alphanumeric() || c == '-'),
+            "{one}"
+        );
     }
 }

@@ -1,10 +1,12 @@
 //! One sounding of the tray with everything that belongs to it.
 
+use crate::history::History;
 use crate::sounding::{Daylight, Note, Numbers, Profile, Sounding};
 use crate::thermo::Temperature;
-use crate::history::History;
 use crate::trust::{Finding, Repair, applied_repair, with_repair, without_repair};
-use crate::{Analysed, Document, Identity, Preview, RepairId, Results, Revision, Standing, SurfaceQuantity};
+use crate::{
+    Analysed, Document, Identity, Preview, RepairId, Results, Revision, Standing, SurfaceQuantity,
+};
 use jiff::Timestamp;
 use std::sync::Arc;
 
@@ -134,10 +136,9 @@ impl Item {
 
     /// Whether a repair is among the enabled amendments.
     pub fn is_applied(&self, repair: RepairId) -> bool {
-        self.finding_and_repair(repair)
-            .is_some_and(|(finding, _)| {
-                applied_repair(&self.document().amendments, finding) == Some(repair.repair)
-            })
+        self.finding_and_repair(repair).is_some_and(|(finding, _)| {
+            applied_repair(&self.document().amendments, finding) == Some(repair.repair)
+        })
     }
 
     /// Profile and numbers with a repair (or without it, when it is applied); the document stays as it is.

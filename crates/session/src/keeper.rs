@@ -1,8 +1,8 @@
 //! Keeping decisions without making a frame wait for a disk.
 
 use crate::ItemId;
-use crate::ledger::{Decision, Disk, Ledger, Problem, RealDisk, SoundingKey};
 use crate::ledger::{self};
+use crate::ledger::{Decision, Disk, Ledger, Problem, RealDisk, SoundingKey};
 use crate::wake::SharedWaker;
 use std::collections::{BTreeSet, VecDeque};
 use std::path::PathBuf;
@@ -52,7 +52,12 @@ pub(crate) struct Keeper {
 
 impl Keeper {
     /// Begins to open the ledger; `disk` is what it writes through.
-    pub(crate) fn open(folder: PathBuf, desk: String, disk: Box<dyn Disk>, waker: SharedWaker) -> Self {
+    pub(crate) fn open(
+        folder: PathBuf,
+        desk: String,
+        disk: Box<dyn Disk>,
+        waker: SharedWaker,
+    ) -> Self {
         let mut keeper = Self {
             folder,
             desk,
@@ -115,7 +120,9 @@ impl Keeper {
         };
         match self.queue.pop_front() {
             Some(Job::Keep(item, decision)) => self.send(move || {
-                let result = ledger.keep((*decision).clone()).map_err(|error| error.to_string());
+                let result = ledger
+                    .keep((*decision).clone())
+                    .map_err(|error| error.to_string());
                 let outcome = Outcome {
                     item,
                     decision: *decision,
@@ -154,7 +161,14 @@ impl Keeper {
     fn take_in(&mut self, answer: Option<Answer>) {
         self.away = None;
         let (ledger, outcome, failure) = answer.unwrap_or_else(|| {
-            (None, None, Some(format!("ledger folder {}: the writer stopped", self.folder.display())))
+            (
+                None,
+                None,
+                Some(format!(
+                    "ledger folder {}: the writer stopped",
+                    self.folder.display()
+                )),
+            )
         });
         self.ledger = ledger;
         self.news.changed = true;
@@ -182,8 +196,14 @@ impl Keeper {
     }
 
     /// How a sounding stands; `None` while the ledger is away.
-    pub(crate) fn standing(&self, key: &SoundingKey, parts: &BTreeSet<String>) -> Option<ledger::Standing<'_>> {
-        self.ledger.as_ref().map(|ledger| ledger.standing(key, parts))
+    pub(crate) fn standing(
+        &self,
+        key: &SoundingKey,
+        parts: &BTreeSet<String>,
+    ) -> Option<ledger::Standing<'_>> {
+        self.ledger
+            .as_ref()
+            .map(|ledger| ledger.standing(key, parts))
     }
 
     /// All decisions, oldest first; `None` while the ledger is away.

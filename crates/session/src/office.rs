@@ -73,13 +73,21 @@ impl Office {
         if let Some(path) = stations {
             match std::fs::read_to_string(path) {
                 Ok(text) => office.take_stations(path, &text, &mut problems),
-                Err(error) => problems.push(unreadable(path, &error, "Station names and positions are missing until it can be read")),
+                Err(error) => problems.push(unreadable(
+                    path,
+                    &error,
+                    "Station names and positions are missing until it can be read",
+                )),
             }
         }
         if let Some(path) = thresholds {
             match std::fs::read_to_string(path) {
                 Ok(text) => office.take_thresholds(path, &text, &mut problems),
-                Err(error) => problems.push(unreadable(path, &error, "The built-in thresholds are in force")),
+                Err(error) => problems.push(unreadable(
+                    path,
+                    &error,
+                    "The built-in thresholds are in force",
+                )),
             }
         }
         (office, problems)
@@ -105,7 +113,8 @@ impl Office {
             Err(error) => problems.push(OfficeProblem {
                 about: path.display().to_string(),
                 what: error.to_string(),
-                remedy: "The built-in thresholds are in force; correct the file and start again".to_owned(),
+                remedy: "The built-in thresholds are in force; correct the file and start again"
+                    .to_owned(),
                 unused: true,
             }),
         }
@@ -124,7 +133,9 @@ impl Office {
 /// Everything in the folder of a configuration.
 pub(crate) fn open(config: &Config) -> (Office, Remembered, Vec<OfficeProblem>) {
     let present = |given: &Option<PathBuf>, name: &str| {
-        given.clone().or_else(|| Some(config.office.join(name)).filter(|path| path.exists()))
+        given
+            .clone()
+            .or_else(|| Some(config.office.join(name)).filter(|path| path.exists()))
     };
     let stations = present(&config.stations, "stations.csv");
     let thresholds = present(&config.thresholds, "thresholds.json");
@@ -133,7 +144,9 @@ pub(crate) fn open(config: &Config) -> (Office, Remembered, Vec<OfficeProblem>) 
         problems.push(OfficeProblem {
             about: Remembered::path(&config.office).display().to_string(),
             what,
-            remedy: "Initials and positions typed in earlier are not known; correct or remove the file".to_owned(),
+            remedy:
+                "Initials and positions typed in earlier are not known; correct or remove the file"
+                    .to_owned(),
             unused: true,
         });
         Remembered::default()

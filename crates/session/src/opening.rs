@@ -1,12 +1,11 @@
 //! The worker that reads and analyses while the window goes on.
 
-use crate::reading::{ReadFailure, ReadFile, files_of, read_bytes, read_file};
+use crate::reading::{ReadFailure, ReadFile, STATION_TABLE, files_of, read_bytes, read_file};
 use crate::wake::SharedWaker;
-use crate::{Analysed, Document, Identity, Office, Results, demo, draft};
-use crate::sounding::Note;
+use crate::{Analysed, Document, Identity, Office, Results, demo, draft, wording};
 use jiff::{Timestamp, civil::Date};
-use std::path::PathBuf;
 use std::panic::{AssertUnwindSafe, catch_unwind};
+use std::path::PathBuf;
 use std::sync::Arc;
 use std::sync::mpsc::{Receiver, Sender, channel};
 
@@ -38,11 +37,21 @@ pub(crate) struct Fresh {
 /// What arrives from the worker.
 pub(crate) enum Arrival {
     Sounding(Box<Fresh>),
-    /// Notes of a file that belong to no sounding.
-    Notes { file: String, notes: Vec<Note> },
-    Failed { about: String, what: String, remedy: &'static str },
+    /// Something to be known about a file.
+    Told {
+        about: String,
+        what: String,
+    },
+    Failed {
+        about: String,
+        what: String,
+        remedy: &'static str,
+    },
     /// A draft that can't be used.
-    Draft { about: String, what: String },
+    Draft {
+        about: String,
+        what: String,
+    },
     /// One [`Wanted`] is finished.
     Done,
 }
@@ -70,7 +79,12 @@ impl Opening {
                 waker.wake();
                 told
             };
-            for Job { desk, wanted, drafts_written } in inbox {
+            for Job {
+                desk,
+                wanted,
+                drafts_written,
+            } in inbox
+            {
                 let _ = drafts_written.recv();
                 if !read(&desk, wanted, &tell) || !tell(Arrival::Done) {
                     return;
@@ -130,10 +144,20 @@ impl Opening {
 fn read(desk: &Desk, wanted: Wanted, tell: &dyn Fn(Arrival) -> bool) -> bool {
     match wanted {
         Wanted::Paths(paths) => paths.into_iter().all(|path| match files_of(&path) {
-            Ok(files) => files.into_iter().all(|file| {
-                let name = file.display().to_string();
-                guarded(desk, &name, tell, || read_file(&file, &desk.office, desk.as_of))
-            }),
+            Ok(meant) => {
+                let told = meant.station_tables.iter().all(|table| {
+                    tell(Arrival::Told {
+                        about: table.display().to_string(),
+                        what: STATION_TABLE.to_owned(),
+                    })
+                });
+                told && meant.files.into_iter().all(|file| {
+                    let name = file.display().to_string();
+                    guarded(desk, &name, tell, || {
+                        read_file(&file, &desk.office, desk.as_of)
+                    })
+                })
+            }
             Err(error) => tell(Arrival::Failed {
                 about: path.display().to_string(),
                 what: format!("can't be listed: {error}"),
@@ -141,7 +165,13 @@ fn read(desk: &Desk, wanted: Wanted, tell: &dyn Fn(Arrival) -> bool) -> bool {
             }),
         }),
         Wanted::Bytes(name, bytes) => guarded(desk, &name, tell, || {
-            read_bytes(&name, &bytes, Some(Timestamp::now()), &desk.office, desk.as_of)
+            read_bytes(
+                &name,
+                &bytes,
+                Some(Timestamp::now()),
+                &desk.office,
+                desk.as_of,
+            )
         }),
         Wanted::Demo => demo::FILES.iter().all(|file| {
             guarded(desk, file.name, tell, || {
@@ -184,10 +214,11 @@ fn deliver(
             });
         }
     };
-    if !file.notes.is_empty()
-        && !tell(Arrival::Notes {
-            file: name.to_owned(),
-            notes: file.notes,
+    let notes: Vec<String> = file.notes.iter().map(wording::note).collect();
+    if !notes.is_empty()
+        && !tell(Arrival::Told {
+            about: name.to_owned(),
+            what: notes.join("\n"),
         })
     {
         return false;

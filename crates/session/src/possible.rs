@@ -15,7 +15,13 @@ impl Session {
         }
         let item = self.current().ok_or("no sounding is open")?;
         let document = item.document();
-        let need = |holds: bool, otherwise: &str| if holds { Ok(()) } else { Err(otherwise.to_owned()) };
+        let need = |holds: bool, otherwise: &str| {
+            if holds {
+                Ok(())
+            } else {
+                Err(otherwise.to_owned())
+            }
+        };
         match action {
             Action::Undo => need(item.can_undo() || item.in_gesture(), "nothing to undo"),
             Action::Redo => need(item.can_redo() && !item.in_gesture(), "nothing to redo"),
@@ -27,7 +33,10 @@ impl Session {
                 document.surface(SurfaceQuantity::Temperature).is_some(),
                 "it is the received temperature",
             ),
-            Action::ClearAmendments => need(!document.amendments.entries.is_empty(), "there are no amendments"),
+            Action::ClearAmendments => need(
+                !document.amendments.entries.is_empty(),
+                "there are no amendments",
+            ),
             Action::PinLow | Action::PinHigh => need(
                 item.working_surface(SurfaceQuantity::Dewpoint).is_some(),
                 "there is no surface dew point",
@@ -35,7 +44,9 @@ impl Session {
             Action::UnpinLow => need(document.pins.low_k.is_some(), "this end is not pinned"),
             Action::UnpinHigh => need(document.pins.high_k.is_some(), "this end is not pinned"),
             Action::Decide => self.decidable().map(|_| ()),
-            Action::SelectNext | Action::SelectPrevious => need(self.tray().len() > 1, "there is no other sounding"),
+            Action::SelectNext | Action::SelectPrevious => {
+                need(self.tray().len() > 1, "there is no other sounding")
+            }
             _ => Ok(()),
         }
     }

@@ -37,7 +37,9 @@ impl ReadFailure {
     pub fn remedy(&self) -> &'static str {
         match self {
             Self::Io(_) => "Check that the file exists and that you may read it",
-            Self::Format(_) => "Files understood: TEMP text, station files and columns whose header names carry units",
+            Self::Format(_) => {
+                "Files understood: TEMP text, station files and columns whose header names carry units"
+            }
             Self::Empty(_) => "Check that it is the file you meant",
         }
     }
@@ -53,7 +55,11 @@ fn notes_text(notes: &[Note]) -> String {
 }
 
 /// Reads and analyses one file.
-pub fn read_file(path: &Path, office: &Office, as_of: Option<Date>) -> Result<ReadFile, ReadFailure> {
+pub fn read_file(
+    path: &Path,
+    office: &Office,
+    as_of: Option<Date>,
+) -> Result<ReadFile, ReadFailure> {
     let bytes = fs::read(path)?;
     let modified = fs::metadata(path)
         .and_then(|metadata| metadata.modified())
@@ -97,10 +103,22 @@ pub fn read_bytes(
     })
 }
 
-/// The files meant by a path: itself, or the files of a folder and of the folders in it, in order of name. Hidden ones are left out.
-pub fn files_of(path: &Path) -> io::Result<Vec<PathBuf>> {
+/// The files a path means.
+#[derive(Debug, Clone, Default, PartialEq, Eq)]
+pub struct Meant {
+    /// To be read, in order of name.
+    pub files: Vec<PathBuf>,
+    /// Station tables found among the files of a folder, which hold no soundings.
+    pub station_tables: Vec<PathBuf>,
+}
+
+/// The files meant by a path: itself, or the files of a folder and of the folders in it. Hidden ones are left out.
+pub fn files_of(path: &Path) -> io::Result<Meant> {
     if !path.is_dir() {
-        return Ok(vec![path.to_owned()]);
+        return Ok(Meant {
+            files: vec![path.to_owned()],
+            ..Meant::default()
+        });
     }
     let mut files = Vec::new();
     for inner in listed(path)? {
@@ -110,8 +128,18 @@ pub fn files_of(path: &Path) -> io::Result<Vec<PathBuf>> {
             files.push(inner);
         }
     }
-    Ok(files)
+    let (station_tables, files) = files
+        .into_iter()
+        .partition(|file| file.file_name().is_some_and(|name| name == "stations.csv"));
+    Ok(Meant {
+        files,
+        station_tables,
+    })
 }
+
+/// What to tell about a station table among the files of a folder.
+pub const STATION_TABLE: &str =
+    "a station table, not a sounding, so it was not read here; in the office folder it would serve";
 
 fn listed(folder: &Path) -> io::Result<Vec<PathBuf>> {
     let mut paths = fs::read_dir(folder)?
@@ -134,11 +162,24 @@ mod tests {
         let folder = tempfile::tempdir().unwrap();
         let root = folder.path();
         fs::create_dir_all(root.join("b/deeper")).unwrap();
-        for name in ["c.txt", "a.txt", ".hidden", "b/one.csv", "b/deeper/two.csv"] {
+        for name in [
+            "c.txt",
+            "a.txt",
+            ".hidden",
+            "b/one.csv",
+            "b/deeper/two.csv",
+            "stations.csv",
+        ] {
             fs::write(root.join(name), "").unwrap();
         }
-        let expected: Vec<PathBuf> = ["a.txt", "b/one.csv", "c.txt"].map(|name| root.join(name)).into();
-        assert_eq!(files_of(root).unwrap(), expected);
-        assert_eq!(files_of(&root.join("absent")).unwrap(), [root.join("absent")]);
+        let named =
+            |names: &[&str]| -> Vec<PathBuf> { names.iter().map(|name| root.join(name)).collect() };
+        let meant = files_of(root).unwrap();
+        assert_eq!(meant.files, named(&["a.txt", "b/one.csv", "c.txt"]));
+        assert_eq!(meant.station_tables, named(&["stations.csv"]));
+        // A path that is no folder is a file, whatever its name; whether it exists is found out when it is read.
+        for name in ["absent", "stations.csv"] {
+            assert_eq!(files_of(&root.join(name)).unwrap().files, named(&[name]));
+        }
     }
 }

@@ -62,6 +62,8 @@ pub struct Results {
     /// Order by the costs of this revision, whatever is held.
     ranked: Vec<usize>,
     doubt_key: DoubtKey,
+    /// The doubt without the working value, which is the same for every surface dew point.
+    sampled: Arc<Doubt>,
 }
 
 /// A repair seen but not applied.
@@ -126,10 +128,14 @@ impl Results {
         let ranked = rank(&priced, at_least(&numbers));
         let cards = priced.iter().map(Card::of).collect();
         let doubt_key = DoubtKey::of(document);
-        let doubt = match previous {
-            Some(previous) if previous.doubt_key == doubt_key => previous.doubt.clone(),
+        let sampled = match previous {
+            Some(previous) if previous.doubt_key == doubt_key => previous.sampled.clone(),
             _ => Arc::new(Doubt::of(analysed, document)),
         };
+        let dewpoint = working.profile.surface_air().map(|air| air.dewpoint);
+        let doubt = sampled
+            .including(dewpoint, &numbers)
+            .map_or_else(|| sampled.clone(), Arc::new);
         let which_parcel = sentence::which_parcel(&working.profile, &numbers, &doubt);
         Self {
             revision,
@@ -143,6 +149,7 @@ impl Results {
             computing: started.elapsed(),
             ranked,
             doubt_key,
+            sampled,
         }
     }
 }

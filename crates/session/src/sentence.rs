@@ -2,7 +2,9 @@
 
 use crate::sounding::{Numbers, Parcel, Profile};
 use crate::thermo::Ascent;
-use crate::wording::{CAUTION, INVENTED, cape, energy, number, parcel, pressure, range, time, valid_time};
+use crate::wording::{
+    CAUTION, INVENTED, cape, energy, number, parcel, pressure, range, time, valid_time,
+};
 use crate::{Doubt, Item, Standing};
 
 /// CIN from which a surface parcel is called inhibited, J/kg. Common practice, no source.
@@ -26,13 +28,20 @@ pub(crate) fn which_parcel(working: &Profile, numbers: &Numbers, doubt: &Doubt) 
             reach_clause(doubt, Parcel::Surface)
         );
     }
-    if unstable.cape <= 0.0 && doubt.range(Parcel::MostUnstable).cape.is_none_or(|cape| cape.most <= 0.0) {
+    if unstable.cape <= 0.0
+        && doubt
+            .range(Parcel::MostUnstable)
+            .cape
+            .is_none_or(|cape| cape.most <= 0.0)
+    {
         return format!("{surface}; no parcel has CAPE");
     }
     let start = numbers
         .most_unstable_row
         .and_then(|row| working.pressure.get(row))
-        .map_or(unstable.start.pressure, |&pa| crate::thermo::Pressure::from_pa(pa));
+        .map_or(unstable.start.pressure, |&pa| {
+            crate::thermo::Pressure::from_pa(pa)
+        });
     format!(
         "{surface}; most unstable starts at {}; {}",
         pressure(start),
@@ -46,7 +55,9 @@ fn surface_clause(numbers: &Numbers) -> String {
     };
     match surface.cin {
         None => "surface without free convection".to_owned(),
-        Some(cin) if cin <= INHIBITED => format!("surface inhibited (CIN {})", energy(Some(cin), false)),
+        Some(cin) if cin <= INHIBITED => {
+            format!("surface inhibited (CIN {})", energy(Some(cin), false))
+        }
         Some(_) => format!("surface CAPE {}", cape(Some(surface))),
     }
 }
@@ -54,8 +65,13 @@ fn surface_clause(numbers: &Numbers) -> String {
 fn reach_clause(doubt: &Doubt, which: Parcel) -> String {
     match doubt.range(which).cape {
         None => "how far the surface doubt moves it is not known".to_owned(),
-        Some(extremes) if extremes.most - extremes.least < UNMOVED => "the surface doubt doesn't reach it".to_owned(),
-        Some(extremes) => format!("the surface doubt moves its CAPE: {} J/kg", range(&extremes)),
+        Some(extremes) if extremes.most - extremes.least < UNMOVED => {
+            "the surface doubt doesn't reach it".to_owned()
+        }
+        Some(extremes) => format!(
+            "the surface doubt moves its CAPE: {} J/kg",
+            range(&extremes)
+        ),
     }
 }
 
@@ -69,8 +85,16 @@ pub(crate) fn copy_line(item: &Item) -> String {
         .canonical_id()
         .filter(|id| !id.ends_with(&format!(":{station}")))
         .map_or_else(String::new, |id| format!(" ({})", id.replacen(':', " ", 1)));
-    let mark = if item.demo() { format!("{INVENTED} ") } else { String::new() };
-    parts.push(format!("{mark}{station}{identifier}, {}: {}", valid_time(sounding), verdict(item)));
+    let mark = if item.demo() {
+        format!("{INVENTED} ")
+    } else {
+        String::new()
+    };
+    parts.push(format!(
+        "{mark}{station}{identifier}, {}: {}",
+        valid_time(sounding),
+        verdict(item)
+    ));
     let capes: Vec<String> = Parcel::ALL
         .into_iter()
         .map(|which| format!("{} {}", parcel(which), cape_and_range(item, which)))
@@ -87,7 +111,12 @@ pub(crate) fn copy_line(item: &Item) -> String {
 fn verdict(item: &Item) -> String {
     match item.standing() {
         Standing::Decided(decision) => {
-            format!("{} ({}, {})", decision.verdict.words(), decision.initials, time(Some(decision.decided_at)))
+            format!(
+                "{} ({}, {})",
+                decision.verdict.words(),
+                decision.initials,
+                time(Some(decision.decided_at))
+            )
         }
         Standing::Keeping => "being kept".to_owned(),
         standing => match item.document().verdict {
@@ -115,16 +144,23 @@ fn cape_and_range(item: &Item, which: Parcel) -> String {
 }
 
 fn surface_edit(item: &Item) -> Option<String> {
-    let edits: Vec<String> = [crate::SurfaceQuantity::Dewpoint, crate::SurfaceQuantity::Temperature]
-        .into_iter()
-        .filter_map(|quantity| {
-            item.document().surface(quantity)?;
-            let working = item.working_surface(quantity)?;
-            let received = item
-                .received_surface(quantity)
-                .map_or_else(|| "none".to_owned(), |received| number(received.c(), 1));
-            Some(format!("{} {} °C (received {received})", quantity.words(), number(working.c(), 1)))
-        })
-        .collect();
+    let edits: Vec<String> = [
+        crate::SurfaceQuantity::Dewpoint,
+        crate::SurfaceQuantity::Temperature,
+    ]
+    .into_iter()
+    .filter_map(|quantity| {
+        item.document().surface(quantity)?;
+        let working = item.working_surface(quantity)?;
+        let received = item
+            .received_surface(quantity)
+            .map_or_else(|| "none".to_owned(), |received| number(received.c(), 1));
+        Some(format!(
+            "{} {} °C (received {received})",
+            quantity.words(),
+            number(working.c(), 1)
+        ))
+    })
+    .collect();
     (!edits.is_empty()).then(|| edits.join(", "))
 }

@@ -6,7 +6,9 @@ use crate::ledger::{Decision, Disk, RealDisk};
 use crate::office::Remembered;
 use crate::opening::{Desk, Opening, Wanted};
 use crate::wake::SharedWaker;
-use crate::{Command, Config, Item, ItemId, Message, MessageId, Office, Revision, TrayRow, Weight, office};
+use crate::{
+    Command, Config, Item, ItemId, Message, MessageId, Office, Revision, TrayRow, Weight, office,
+};
 use std::fmt;
 use std::path::PathBuf;
 use std::sync::Arc;
@@ -51,7 +53,9 @@ impl Session {
         if config.initials.is_some() {
             remembered.initials.clone_from(&config.initials);
         }
-        let keeper = |folder: &PathBuf, disk| Keeper::open(folder.clone(), config.desk.clone(), disk, waker.clone());
+        let keeper = |folder: &PathBuf, disk| {
+            Keeper::open(folder.clone(), config.desk.clone(), disk, waker.clone())
+        };
         let mut session = Self {
             items: Vec::new(),
             tray: Vec::new(),
@@ -199,7 +203,12 @@ impl Session {
 
     /// Every decision in the ledger (or the demo ledger), oldest first; `None` while it is being read or written.
     pub fn decisions(&self, demo: bool) -> Option<&[Decision]> {
-        if demo { &self.demo_ledger } else { &self.ledger }.decisions()
+        if demo {
+            &self.demo_ledger
+        } else {
+            &self.ledger
+        }
+        .decisions()
     }
 
     /// Folders and names.

@@ -1,9 +1,9 @@
 //! The tray: soundings waiting, worst cost first.
 
+use crate::sounding::Parcel;
 use crate::trust::Grade;
 use crate::wording::worst_change;
 use crate::{Item, ItemId, Session, Standing};
-use crate::sounding::Parcel;
 use jiff::Timestamp;
 use std::cmp::Ordering;
 
@@ -81,7 +81,10 @@ impl Session {
 
 fn row(item: &Item) -> TrayRow {
     let sounding = item.sounding();
-    let graded = item.findings().iter().filter(|finding| finding.grade > Grade::Informative);
+    let graded = item
+        .findings()
+        .iter()
+        .filter(|finding| finding.grade > Grade::Informative);
     let worst_cost = item
         .results()
         .cards
@@ -95,7 +98,10 @@ fn row(item: &Item) -> TrayRow {
         valid: sounding.times.valid(),
         time_assumed: sounding.times.assumed,
         findings: graded.clone().count(),
-        erroneous: item.findings().iter().any(|finding| finding.grade == Grade::Erroneous),
+        erroneous: item
+            .findings()
+            .iter()
+            .any(|finding| finding.grade == Grade::Erroneous),
         worst_cost,
         verdict: item.standing().words(),
         open: item.standing().is_open(),

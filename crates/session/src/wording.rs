@@ -87,7 +87,11 @@ pub fn range(extremes: &Extremes) -> String {
 pub fn time(time: Option<Timestamp>) -> String {
     time.map_or_else(
         || "time unknown".to_owned(),
-        |time| time.to_zoned(TimeZone::UTC).strftime("%Y-%m-%d %H:%M UTC").to_string(),
+        |time| {
+            time.to_zoned(TimeZone::UTC)
+                .strftime("%Y-%m-%d %H:%M UTC")
+                .to_string()
+        },
     )
 }
 
@@ -105,7 +109,11 @@ pub fn valid_time(sounding: &Sounding) -> String {
 pub fn cost(cost: Option<&Cost>) -> String {
     match cost.and_then(worst_change) {
         Some((which, change)) => {
-            let mut text = format!("CAPE {} ({})", energy_change(change.cape.unwrap_or_default()), parcel(which));
+            let mut text = format!(
+                "CAPE {} ({})",
+                energy_change(change.cape.unwrap_or_default()),
+                parcel(which)
+            );
             if let Some(cin) = change.cin.filter(|cin| cin.abs() >= 0.5) {
                 text.push_str(&format!(", CIN {}", energy_change(cin)));
             }
@@ -160,9 +168,13 @@ mod tests {
 
     #[test]
     fn numbers_have_a_real_minus_and_no_minus_zero() {
-        for (value, decimals, expected) in
-            [(-3.26, 1, "\u{2212}3.3"), (-0.04, 1, "0.0"), (-0.4, 0, "0"), (12.0, 0, "12"), (-10.0, 0, "\u{2212}10")]
-        {
+        for (value, decimals, expected) in [
+            (-3.26, 1, "\u{2212}3.3"),
+            (-0.04, 1, "0.0"),
+            (-0.4, 0, "0"),
+            (12.0, 0, "12"),
+            (-10.0, 0, "\u{2212}10"),
+        ] {
             assert_eq!(number(value, decimals), expected);
         }
         assert_eq!(energy_change(-0.2), "±0 J/kg");
@@ -174,7 +186,13 @@ mod tests {
     #[test]
     fn a_range_of_one_value_reads_as_one() {
         let at = Temperature::from_c(10.0);
-        let mut extremes = Extremes { least: 99.6, least_at: at, most: 100.4, most_at: at, at_least: false };
+        let mut extremes = Extremes {
+            least: 99.6,
+            least_at: at,
+            most: 100.4,
+            most_at: at,
+            at_least: false,
+        };
         assert_eq!(range(&extremes), "100");
         extremes.most = 250.0;
         extremes.at_least = true;

@@ -31,7 +31,8 @@ mod tests {
 
     #[test]
     fn columns_stand_under_one_another_and_count_characters_not_bytes() {
-        let rows = [["a", "−1", "x"], ["long", "≥ 10", ""]].map(|row| row.map(str::to_owned).into());
+        let rows =
+            [["a", "−1", "x"], ["long", "≥ 10", ""]].map(|row| row.map(str::to_owned).into());
         assert_eq!(aligned(&rows), "a       −1  x\nlong  ≥ 10\n");
     }
 }

@@ -234,7 +234,10 @@ impl<'a> FindingOut<'a> {
                 .iter()
                 .map(|evidence| {
                     let decimals = i32::try_from(evidence.decimals).unwrap_or(0) + 2;
-                    (evidence.key.to_owned(), json!(Rounded(evidence.value, decimals)))
+                    (
+                        evidence.key.to_owned(),
+                        json!(Rounded(evidence.value, decimals)),
+                    )
                 })
                 .collect(),
             explains: Explains {
@@ -245,7 +248,11 @@ impl<'a> FindingOut<'a> {
                 .map(|(index, repair)| RepairOut {
                     id: repair.id,
                     what: &repair.what,
-                    cost: card.costs.get(index).and_then(Option::as_ref).map(CostOut::of),
+                    cost: card
+                        .costs
+                        .get(index)
+                        .and_then(Option::as_ref)
+                        .map(CostOut::of),
                 })
                 .collect(),
             cost: card.headline_cost().map(CostOut::of),
@@ -295,7 +302,10 @@ mod tests {
             (f64::INFINITY, 2, "null"),
             (-42.5, 2, "-42.5"),
         ] {
-            assert_eq!(serde_json::to_string(&Rounded(value, decimals)).unwrap(), expected);
+            assert_eq!(
+                serde_json::to_string(&Rounded(value, decimals)).unwrap(),
+                expected
+            );
         }
     }
 }

@@ -4,7 +4,9 @@ use super::columns::aligned;
 use crate::sounding::{Numbers, Parcel};
 use crate::thermo::{Ascent, Pressure};
 use crate::trust::{Evidence, Finding, Grade};
-use crate::wording::{self, CAUTION, INVENTED, celsius, number, parcel, pressure, range, valid_time};
+use crate::wording::{
+    self, CAUTION, INVENTED, celsius, number, parcel, pressure, range, valid_time,
+};
 use crate::{Analysed, Card, Extremes, ParcelRange, Results};
 
 /// The table of `weigh` for one sounding.
@@ -35,7 +37,10 @@ fn heading(analysed: &Analysed) -> String {
     }
     text.push_str(&format!(", {}", valid_time(sounding)));
     if sounding.times.nominal.is_some() && sounding.times.launch.is_some() {
-        text.push_str(&format!(", launched {}", wording::time(sounding.times.launch)));
+        text.push_str(&format!(
+            ", launched {}",
+            wording::time(sounding.times.launch)
+        ));
     }
     text.push_str(&format!("\n{}", sounding.source.file));
     if sounding.source.index > 0 {
@@ -94,21 +99,34 @@ fn numbers(results: &Results) -> String {
         }));
         rows.push(row);
     };
-    let level = |level: Option<Pressure>| level.map_or_else(|| "none".to_owned(), |level| number(level.hpa(), 0));
-    let ends = |extremes: &Option<Extremes>| extremes.as_ref().map_or_else(|| "none".to_owned(), range);
+    let level = |level: Option<Pressure>| {
+        level.map_or_else(|| "none".to_owned(), |level| number(level.hpa(), 0))
+    };
+    let ends =
+        |extremes: &Option<Extremes>| extremes.as_ref().map_or_else(|| "none".to_owned(), range);
     add("CAPE, J/kg", &|ascent, _| {
         let mark = if ascent.at_least { "≥ " } else { "" };
         format!("{mark}{}", number(ascent.cape, 0))
     });
     add("  in range", &|_, range| ends(&range.cape));
     add("CIN, J/kg", &|ascent, _| {
-        ascent.cin.map_or_else(|| "none".to_owned(), |cin| number(cin, 0))
+        ascent
+            .cin
+            .map_or_else(|| "none".to_owned(), |cin| number(cin, 0))
     });
     add("  in range", &|_, range| ends(&range.cin));
-    add("starts at, hPa", &|ascent, _| level(Some(ascent.start.pressure)));
-    add("  temperature, °C", &|ascent, _| number(ascent.start.temperature.c(), 1));
-    add("  dew point, °C", &|ascent, _| number(ascent.start.dewpoint.c(), 1));
-    add("condensation level (LCL), hPa", &|ascent, _| level(Some(ascent.lcl.pressure)));
+    add("starts at, hPa", &|ascent, _| {
+        level(Some(ascent.start.pressure))
+    });
+    add("  temperature, °C", &|ascent, _| {
+        number(ascent.start.temperature.c(), 1)
+    });
+    add("  dew point, °C", &|ascent, _| {
+        number(ascent.start.dewpoint.c(), 1)
+    });
+    add("condensation level (LCL), hPa", &|ascent, _| {
+        level(Some(ascent.lcl.pressure))
+    });
     add("free convection (LFC), hPa", &|ascent, _| level(ascent.lfc));
     add("equilibrium level (EL), hPa", &|ascent, _| level(ascent.el));
     add("theta-e, K", &|ascent, _| number(ascent.theta_e.k(), 1));
@@ -133,7 +151,8 @@ fn remarks(analysed: &Analysed, results: &Results) -> String {
     lines.extend(results.working.notes.iter().map(wording::note));
     if analysed.daylight == crate::sounding::Daylight::Unknown {
         lines.push(
-            "day or night not known (no time or no position), so some rules stay at doubtful".to_owned(),
+            "day or night not known (no time or no position), so some rules stay at doubtful"
+                .to_owned(),
         );
     }
     let mut text = String::from("\n");
@@ -146,18 +165,32 @@ fn remarks(analysed: &Analysed, results: &Results) -> String {
 
 fn limits(numbers: &Numbers) -> Vec<String> {
     let mut lines = Vec::new();
-    if Parcel::ALL.into_iter().filter_map(|which| numbers.parcel(which)).any(|ascent| ascent.at_least) {
+    if Parcel::ALL
+        .into_iter()
+        .filter_map(|which| numbers.parcel(which))
+        .any(|ascent| ascent.at_least)
+    {
         lines.push("≥: a lower limit; the profile ends before the parcel does".to_owned());
     }
     if let Some(start) = numbers.starts_at {
-        lines.push(format!("no usable surface: the other parcels start at {}", pressure(start)));
+        lines.push(format!(
+            "no usable surface: the other parcels start at {}",
+            pressure(start)
+        ));
     }
     if let Some(humidity) = numbers.humidity {
         if humidity.interpolated > 0 {
-            lines.push(format!("{} levels with interpolated dew point", humidity.interpolated));
+            lines.push(format!(
+                "{} levels with interpolated dew point",
+                humidity.interpolated
+            ));
         }
         if let Some(from) = humidity.dry_above {
-            lines.push(format!("{} levels above {} counted as dry", humidity.dry, pressure(from)));
+            lines.push(format!(
+                "{} levels above {} counted as dry",
+                humidity.dry,
+                pressure(from)
+            ));
         }
     }
     if let Some(held) = &numbers.cape_humidity_held {
@@ -166,7 +199,10 @@ fn limits(numbers: &Numbers) -> Vec<String> {
             .zip(held)
             .map(|(which, cape)| format!("{} {}", parcel(which), wording::energy(*cape, false)))
             .collect();
-        lines.push(format!("CAPE with relative humidity held above that: {}", held.join(", ")));
+        lines.push(format!(
+            "CAPE with relative humidity held above that: {}",
+            held.join(", ")
+        ));
     }
     lines
 }
@@ -177,7 +213,9 @@ fn findings(analysed: &Analysed, results: &Results) -> String {
     }
     let mut text = String::from("\nfindings, worst first\n");
     for (place, &index) in results.order.iter().enumerate() {
-        if let (Some(finding), Some(card)) = (analysed.findings.get(index), results.cards.get(index)) {
+        if let (Some(finding), Some(card)) =
+            (analysed.findings.get(index), results.cards.get(index))
+        {
             text.push_str(&finding_text(place + 1, finding, card));
         }
     }
@@ -194,7 +232,10 @@ fn finding_text(place: usize, finding: &Finding, card: &Card) -> String {
     if !evidence.is_empty() {
         text.push_str(&format!("   {}\n", evidence.join("; ")));
     }
-    text.push_str(&format!("   if wrong: {}\n   if real: {}\n", finding.guilty, finding.innocent));
+    text.push_str(&format!(
+        "   if wrong: {}\n   if real: {}\n",
+        finding.guilty, finding.innocent
+    ));
     if !finding.caveat.is_empty() {
         text.push_str(&format!("   {}\n", finding.caveat));
     }
@@ -203,8 +244,16 @@ fn finding_text(place: usize, finding: &Finding, card: &Card) -> String {
     }
     for (index, repair) in finding.repairs.iter().enumerate() {
         let cost = card.costs.get(index).and_then(Option::as_ref);
-        let mark = if card.applied == Some(index) { ", applied" } else { "" };
-        text.push_str(&format!("   - {}: {}{mark}\n", repair.what, wording::cost(cost)));
+        let mark = if card.applied == Some(index) {
+            ", applied"
+        } else {
+            ""
+        };
+        text.push_str(&format!(
+            "   - {}: {}{mark}\n",
+            repair.what,
+            wording::cost(cost)
+        ));
     }
     text
 }
@@ -220,7 +269,9 @@ pub(super) fn grade(grade: Grade) -> &'static str {
 /// "652 to 601 hPa".
 pub(super) fn layer(finding: &Finding) -> Option<String> {
     match (finding.bottom, finding.top) {
-        (Some(bottom), Some(top)) if bottom != top => Some(format!("{} to {}", number(bottom.hpa(), 0), pressure(top))),
+        (Some(bottom), Some(top)) if bottom != top => {
+            Some(format!("{} to {}", number(bottom.hpa(), 0), pressure(top)))
+        }
         (Some(level), _) | (None, Some(level)) => Some(pressure(level)),
         (None, None) => None,
     }
@@ -228,7 +279,9 @@ pub(super) fn layer(finding: &Finding) -> Option<String> {
 
 fn evidence_text(evidence: &Evidence) -> String {
     let value = number(evidence.value, evidence.decimals);
-    format!("{} {value} {}", evidence.label, evidence.unit).trim_end().to_owned()
+    format!("{} {value} {}", evidence.label, evidence.unit)
+        .trim_end()
+        .to_owned()
 }
 
 fn notes(analysed: &Analysed) -> String {

@@ -8,7 +8,11 @@ use crate::{Item, Session};
 
 /// Station, time, CAPE of the three parcels with range, findings with cost; worst first, like the tray of the desk.
 pub fn tray(session: &Session) -> String {
-    let items: Vec<&Item> = session.tray().iter().filter_map(|row| session.item(row.item)).collect();
+    let items: Vec<&Item> = session
+        .tray()
+        .iter()
+        .filter_map(|row| session.item(row.item))
+        .collect();
     if items.is_empty() {
         return "no soundings\n".to_owned();
     }
@@ -56,7 +60,9 @@ fn row(item: &Item) -> Vec<String> {
 fn findings(item: &Item) -> String {
     let mut text = String::new();
     for &index in &item.results().order {
-        let (Some(finding), Some(card)) = (item.findings().get(index), item.results().cards.get(index)) else {
+        let (Some(finding), Some(card)) =
+            (item.findings().get(index), item.results().cards.get(index))
+        else {
             continue;
         };
         let layer = layer(finding).map_or_else(String::new, |layer| format!(", {layer}"));
@@ -65,11 +71,19 @@ fn findings(item: &Item) -> String {
         } else {
             wording::cost(card.headline_cost())
         };
-        text.push_str(&format!("  {}: {}{layer}: {cost}\n", grade(finding.grade), finding.title));
+        text.push_str(&format!(
+            "  {}: {}{layer}: {cost}\n",
+            grade(finding.grade),
+            finding.title
+        ));
     }
     if text.is_empty() {
         return text;
     }
-    let mark = if item.demo() { format!(" ({INVENTED})") } else { String::new() };
+    let mark = if item.demo() {
+        format!(" ({INVENTED})")
+    } else {
+        String::new()
+    };
     format!("\n{}{mark}\n{text}", item.sounding().station.label())
 }

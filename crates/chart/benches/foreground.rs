@@ -1,6 +1,8 @@
 //! Time of one foreground of a 6,000-level profile, against `f64::exp` over as many values on the same thread.
 
-use dewbound_chart::{Geometry, HeightScale, ParcelDrawing, Picture, Rect, View, background, foreground};
+use dewbound_chart::{
+    Geometry, HeightScale, ParcelDrawing, Picture, Rect, View, background, foreground,
+};
 use dewbound_sounding::{
     Numbers,
     thermo::{Air, Method, Temperature},
@@ -65,7 +67,9 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
             black_box(background(black_box(&geometry)));
         });
         let ratio = front.as_secs_f64() / yardstick.as_secs_f64();
-        println!("{width} x {height}: foreground least {front:?} = {ratio:.1} yardsticks, median {median:?}; background {back:?}");
+        println!(
+            "{width} x {height}: foreground least {front:?} = {ratio:.1} yardsticks, median {median:?}; background {back:?}"
+        );
     }
     Ok(())
 }

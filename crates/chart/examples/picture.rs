@@ -17,7 +17,9 @@ mod invented;
 fn main() -> Result<(), Box<dyn std::error::Error>> {
     let directory = std::env::args().nth(1).unwrap_or_else(|| ".".to_owned());
     let received = invented::invented(3000);
-    let reported = received.surface_air().ok_or("the invented sounding has a surface")?;
+    let reported = received
+        .surface_air()
+        .ok_or("the invented sounding has a surface")?;
     let drier = |k: f64| Temperature::from_k(reported.dewpoint.k() - k);
     let mut amendments = Amendments::default().with_surface_dewpoint(drier(1.2));
     amendments.reach = Some(Reach::Mixed);
@@ -34,13 +36,17 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
         temperature: Some(SurfaceMark::new(reported.temperature)),
         dewpoint: Some(SurfaceMark {
             interval: Some(ends),
-            candidates: [("reported", 0.0, true), ("mixed layer", 2.3, true), ("neighbours", 1.8, false)]
-                .map(|(label, below, trusted)| CandidateMark {
-                    value: drier(below),
-                    label: label.to_owned(),
-                    trusted,
-                })
-                .to_vec(),
+            candidates: [
+                ("reported", 0.0, true),
+                ("mixed layer", 2.3, true),
+                ("neighbours", 1.8, false),
+            ]
+            .map(|(label, below, trusted)| CandidateMark {
+                value: drier(below),
+                label: label.to_owned(),
+                trusted,
+            })
+            .to_vec(),
             focused: true,
             ..SurfaceMark::new(drier(1.2))
         }),
@@ -61,7 +67,12 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
         bracket(6, BracketGrade::Doubtful, 968.0, 962.0),
     ];
     let heights = HeightScale::of(&received);
-    for (width, height) in [(420.0, 380.0), (600.0, 500.0), (1000.0, 800.0), (1600.0, 1100.0)] {
+    for (width, height) in [
+        (420.0, 380.0),
+        (600.0, 500.0),
+        (1000.0, 800.0),
+        (1600.0, 1100.0),
+    ] {
         let frame = Rect::new(0.0, 0.0, width, height);
         let geometry = Geometry::new(frame, View::fit(&received));
         let picture = Picture {
@@ -71,7 +82,10 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
                 ascent,
                 method: Method::PseudoAdiabat,
                 environment: Some(&environment),
-                interval: Some(ends.map(|dewpoint| Air { dewpoint, ..reported })),
+                interval: Some(ends.map(|dewpoint| Air {
+                    dewpoint,
+                    ..reported
+                })),
                 name: "surface parcel",
             }),
             brackets: &brackets,
@@ -81,7 +95,10 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
             stamp: Some("INVENTED DATA"),
             ..Picture::new(&working)
         };
-        let scenes = [&background(&geometry), &foreground(&geometry, &picture).scene];
+        let scenes = [
+            &background(&geometry),
+            &foreground(&geometry, &picture).scene,
+        ];
         for (name, palette) in [("light", Palette::Light), ("dark", Palette::Dark)] {
             let path = format!("{directory}/{width}x{height}-{name}.svg");
             std::fs::write(path, svg(frame, &scenes, palette))?;

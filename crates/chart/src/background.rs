@@ -27,14 +27,23 @@ pub fn background(geometry: &Geometry) -> Scene {
     let families = [
         (&dry, Ink::DryAdiabat, Stroke::solid(0.7)),
         (&moist, Ink::MoistAdiabat, Stroke::dashed(0.8, Dash::Long)),
-        (&mixing, Ink::MixingRatioLine, Stroke::dashed(0.9, Dash::Dots)),
+        (
+            &mixing,
+            Ink::MixingRatioLine,
+            Stroke::dashed(0.9, Dash::Dots),
+        ),
         (&therms, Ink::Isotherm, Stroke::solid(0.7)),
         (&bars, Ink::Isobar, Stroke::solid(0.7)),
     ];
     for (family, ink, stroke) in families {
         for line in family {
             if ink == Ink::Isotherm && line.value == 0.0 {
-                canvas.line(&line.points, &plot, Ink::FreezingIsotherm, Stroke::dashed(1.6, Dash::DashDot));
+                canvas.line(
+                    &line.points,
+                    &plot,
+                    Ink::FreezingIsotherm,
+                    Stroke::dashed(1.6, Dash::DashDot),
+                );
             } else {
                 canvas.line(&line.points, &plot, ink, stroke);
             }
@@ -44,13 +53,26 @@ pub fn background(geometry: &Geometry) -> Scene {
     mixing_labels(&mut canvas, &mixing, &plot);
     // Moist adiabats are farthest apart low down, dry ones high up: their labels keep to their own rows.
     let moist_row = geometry.y(Pressure::from_hpa(geometry.view().top_hpa.max(270.0)));
-    let moist_row = moist_row.clamp(plot.top + 0.1 * plot.height(), plot.bottom - 0.3 * plot.height());
-    row_labels(&mut canvas, &moist, &plot, moist_row, Ink::MoistAdiabatLabel, |v| {
-        format!("\u{3b8}w {} °C", trimmed(v))
-    });
-    row_labels(&mut canvas, &dry, &plot, plot.top + 0.045 * plot.height() + 6.0, Ink::DryAdiabatLabel, |v| {
-        format!("{} K", trimmed(v))
-    });
+    let moist_row = moist_row.clamp(
+        plot.top + 0.1 * plot.height(),
+        plot.bottom - 0.3 * plot.height(),
+    );
+    row_labels(
+        &mut canvas,
+        &moist,
+        &plot,
+        moist_row,
+        Ink::MoistAdiabatLabel,
+        |v| format!("\u{3b8}w {} °C", trimmed(v)),
+    );
+    row_labels(
+        &mut canvas,
+        &dry,
+        &plot,
+        plot.top + 0.045 * plot.height() + 6.0,
+        Ink::DryAdiabatLabel,
+        |v| format!("{} K", trimmed(v)),
+    );
 
     edge(&mut canvas, &plot);
     pressure_axis(&mut canvas, &bars, &plot);
@@ -60,7 +82,11 @@ pub fn background(geometry: &Geometry) -> Scene {
 
 /// A value with as many decimals as it needs.
 fn trimmed(value: f64) -> String {
-    let decimals = if (value - value.round()).abs() < 1e-6 { 0 } else { 1 };
+    let decimals = if (value - value.round()).abs() < 1e-6 {
+        0
+    } else {
+        1
+    };
     fixed(value, decimals)
 }
 
@@ -75,11 +101,23 @@ fn pressure_axis(canvas: &mut Canvas, bars: &[Isopleth], plot: &Rect) {
     let lettering = Lettering::new(Anchor::Right, AXIS, Ink::Label);
     let frame = canvas.frame;
     let title = Point::new(plot.left - 6.0, plot.top - 13.0);
-    canvas.text(title, "hPa", Lettering { size: 11.0, ..lettering });
+    canvas.text(
+        title,
+        "hPa",
+        Lettering {
+            size: 11.0,
+            ..lettering
+        },
+    );
     for bar in bars {
         if let Some(end) = bar.points.first() {
             let at = Point::new(plot.left - 6.0, end.y);
-            canvas.text_at_first([(at, Anchor::Right)], &trimmed(bar.value), lettering, &frame);
+            canvas.text_at_first(
+                [(at, Anchor::Right)],
+                &trimmed(bar.value),
+                lettering,
+                &frame,
+            );
         }
     }
 }
@@ -125,10 +163,18 @@ fn mixing_labels(canvas: &mut Canvas, lines: &[Isopleth], plot: &Rect) {
         if i == last {
             let text = format!("{text} g/kg");
             let shift = crate::text_width(&trimmed(value), ON_LINE) / 2.0;
-            let places = [(Point::new(end.x - shift, y), Anchor::Left), (Point::new(end.x + shift, y), Anchor::Right)];
+            let places = [
+                (Point::new(end.x - shift, y), Anchor::Left),
+                (Point::new(end.x + shift, y), Anchor::Right),
+            ];
             canvas.text_at_first(places, &text, lettering, plot);
         } else {
-            canvas.text_at_first([(Point::new(end.x, y), Anchor::Centre)], &text, lettering, plot);
+            canvas.text_at_first(
+                [(Point::new(end.x, y), Anchor::Centre)],
+                &text,
+                lettering,
+                plot,
+            );
         }
     }
 }
@@ -148,17 +194,27 @@ fn row_labels(
             let &[a, b] = pair else { return None };
             let share = (a.y - row) / (a.y - b.y);
             let x = a.x + share * (b.x - a.x);
-            ((0.0..=1.0).contains(&share)).then_some((Point::new(x, row), (b.y - a.y).atan2(b.x - a.x)))
+            ((0.0..=1.0).contains(&share))
+                .then_some((Point::new(x, row), (b.y - a.y).atan2(b.x - a.x)))
         });
-        let Some((at, angle)) = crossing else { continue };
+        let Some((at, angle)) = crossing else {
+            continue;
+        };
         // Read from left to right whichever way the line runs.
         let angle = if angle.abs() > std::f64::consts::FRAC_PI_2 {
             angle - std::f64::consts::PI * angle.signum()
         } else {
             angle
         };
-        let lettering = Lettering::new(Anchor::Centre, ON_LINE, ink).backed().turned(angle);
-        canvas.text_at_first([(at, Anchor::Centre)], &wording(line.value), lettering, &plot.grown(-2.0));
+        let lettering = Lettering::new(Anchor::Centre, ON_LINE, ink)
+            .backed()
+            .turned(angle);
+        canvas.text_at_first(
+            [(at, Anchor::Centre)],
+            &wording(line.value),
+            lettering,
+            &plot.grown(-2.0),
+        );
     }
 }
 

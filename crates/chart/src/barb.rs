@@ -78,7 +78,8 @@ pub(crate) fn barb(foot: Point, direction: f64, knots: f64, southern: bool) -> O
         along -= squeeze;
     }
     for _ in 0..longs {
-        barb.lines.push([place(along, 0.0), place(along + 3.0, LONG)]);
+        barb.lines
+            .push([place(along, 0.0), place(along + 3.0, LONG)]);
         along -= gap;
     }
     if shorts > 0 {
@@ -157,7 +158,10 @@ mod tests {
             for direction in [0.0, 37.0, 180.0, 271.0] {
                 let b = barb(Point::default(), direction, f64::from(knots), false).unwrap();
                 let ends = b.lines.iter().flatten().chain(b.flags.iter().flatten());
-                assert!(ends.into_iter().all(|p| p.x.hypot(p.y) < REACH), "{knots} kt");
+                assert!(
+                    ends.into_iter().all(|p| p.x.hypot(p.y) < REACH),
+                    "{knots} kt"
+                );
             }
         }
     }

@@ -62,15 +62,24 @@ pub(crate) fn paint(
         .filter_map(|bracket| {
             let (a, b) = (geometry.y(bracket.bottom), geometry.y(bracket.top));
             let (top, bottom) = (a.min(b), a.max(b));
-            let seen = top.is_finite() && bottom.is_finite() && bottom >= plot.top && top <= plot.bottom;
+            let seen =
+                top.is_finite() && bottom.is_finite() && bottom >= plot.top && top <= plot.bottom;
             seen.then(|| {
                 let lack = (LEAST - (bottom - top)).max(0.0) / 2.0;
-                ((top - lack).max(plot.top + 1.0), (bottom + lack).min(plot.bottom - 1.0), bracket)
+                (
+                    (top - lack).max(plot.top + 1.0),
+                    (bottom + lack).min(plot.bottom - 1.0),
+                    bracket,
+                )
             })
         })
         .filter(|(top, bottom, _)| bottom > top)
         .collect();
-    order.sort_by(|a, b| (a.1 - a.0).total_cmp(&(b.1 - b.0)).then(a.2.number.cmp(&b.2.number)));
+    order.sort_by(|a, b| {
+        (a.1 - a.0)
+            .total_cmp(&(b.1 - b.0))
+            .then(a.2.number.cmp(&b.2.number))
+    });
 
     let mut places = Vec::new();
     for (top, bottom, bracket) in order {
@@ -97,7 +106,13 @@ pub(crate) fn paint(
     places
 }
 
-fn place(canvas: &Canvas, plot: &Rect, silhouette: &Silhouette, [top, bottom]: [f64; 2], tick: bool) -> Option<Placed> {
+fn place(
+    canvas: &Canvas,
+    plot: &Rect,
+    silhouette: &Silhouette,
+    [top, bottom]: [f64; 2],
+    tick: bool,
+) -> Option<Placed> {
     let inside = plot.grown(-2.0);
     let (left, right) = silhouette
         .between(top, bottom)
@@ -167,7 +182,10 @@ fn paint_bracket(canvas: &mut Canvas, plot: &Rect, bracket: &Bracket, placed: &P
 fn paint_disc(canvas: &mut Canvas, bracket: &Bracket, disc: Point) {
     let filled = bracket.grade == BracketGrade::Erroneous;
     let inside = if filled { ink(bracket) } else { Ink::Paper };
-    let outline = (ink(bracket), Stroke::solid(if bracket.selected { 2.6 } else { 1.6 }));
+    let outline = (
+        ink(bracket),
+        Stroke::solid(if bracket.selected { 2.6 } else { 1.6 }),
+    );
     if bracket.grade == BracketGrade::FromEdit {
         let r = DISC - 1.0;
         let square = Rect::new(disc.x - r, disc.y - r, 2.0 * r, 2.0 * r);
@@ -180,12 +198,21 @@ fn paint_disc(canvas: &mut Canvas, bracket: &Bracket, disc: Point) {
         canvas.circle(disc, DISC, Some(inside), Some(outline));
     }
     if bracket.selected {
-        canvas.circle(disc, DISC + 3.0, None, Some((Ink::Focus, Stroke::solid(1.6))));
+        canvas.circle(
+            disc,
+            DISC + 3.0,
+            None,
+            Some((Ink::Focus, Stroke::solid(1.6))),
+        );
     }
     let number = bracket.number.to_string();
     let size = if number.len() > 2 { 9.0 } else { 12.0 };
     let on = if filled { Ink::OnMark } else { ink(bracket) };
-    canvas.text(disc, &number, Lettering::new(Anchor::Centre, size, on).strong());
+    canvas.text(
+        disc,
+        &number,
+        Lettering::new(Anchor::Centre, size, on).strong(),
+    );
     if bracket.grade == BracketGrade::Repaired {
         let at = |x: f64, y: f64| Point::new(disc.x + x, disc.y + y);
         let tick = [at(-5.0, 14.5), at(-1.0, 18.0), at(6.0, 11.5)];

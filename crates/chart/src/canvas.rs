@@ -124,7 +124,11 @@ impl Lettering {
     /// Upright box around the text, turned or not.
     pub fn extent(&self, at: Point, text: &str) -> Rect {
         // Heavier letters are wider.
-        let size = if self.strong { 1.07 * self.size } else { self.size };
+        let size = if self.strong {
+            1.07 * self.size
+        } else {
+            self.size
+        };
         let level = text_box(at, self.anchor, text, size);
         if self.angle == 0.0 {
             return level;
@@ -175,7 +179,11 @@ impl Canvas {
     /// A connected line, clipped.
     pub fn line(&mut self, points: &[Point], within: &Rect, ink: Ink, stroke: Stroke) {
         for points in clip_polyline(points, within) {
-            self.scene.items.push(Item::Polyline { points, ink, stroke });
+            self.scene.items.push(Item::Polyline {
+                points,
+                ink,
+                stroke,
+            });
         }
     }
 
@@ -263,7 +271,10 @@ impl Canvas {
         within: &Rect,
     ) -> Option<Point> {
         for (at, anchor) in places {
-            let lettering = Lettering { anchor, ..lettering };
+            let lettering = Lettering {
+                anchor,
+                ..lettering
+            };
             let extent = lettering.extent(at, text);
             if within.holds(&extent) && self.is_free(&extent) && self.text(at, text, lettering) {
                 return Some(at);

@@ -197,8 +197,14 @@ impl Silhouette {
     /// Leftmost and rightmost x of any curve between two heights; `None` where there is none.
     pub fn between(&self, y0: f64, y1: f64) -> Option<(f64, f64)> {
         let (upper, lower) = (self.bin(y0.min(y1)), self.bin(y0.max(y1)));
-        let left = self.left[upper..=lower].iter().copied().fold(f64::INFINITY, f64::min);
-        let right = self.right[upper..=lower].iter().copied().fold(f64::NEG_INFINITY, f64::max);
+        let left = self.left[upper..=lower]
+            .iter()
+            .copied()
+            .fold(f64::INFINITY, f64::min);
+        let right = self.right[upper..=lower]
+            .iter()
+            .copied()
+            .fold(f64::NEG_INFINITY, f64::max);
         (left <= right).then_some((left, right))
     }
 }
@@ -216,7 +222,9 @@ mod tests {
 
     fn profile(temperatures: &[f64]) -> Profile {
         let n = temperatures.len();
-        let pressure: Vec<f64> = (0..n).map(|i| 100_000.0 * (-2.2 * i as f64 / n as f64).exp()).collect();
+        let pressure: Vec<f64> = (0..n)
+            .map(|i| 100_000.0 * (-2.2 * i as f64 / n as f64).exp())
+            .collect();
         Profile {
             temperature: temperatures.iter().map(|&t| Some(t)).collect(),
             dewpoint: temperatures.iter().map(|&t| Some(t - 5.0)).collect(),
@@ -263,7 +271,11 @@ mod tests {
 
     #[test]
     fn levels_far_outside_are_left_out_but_their_neighbours_are_not() {
-        let view = View { bottom_hpa: 600.0, top_hpa: 400.0, ..View::default() };
+        let view = View {
+            bottom_hpa: 600.0,
+            top_hpa: 400.0,
+            ..View::default()
+        };
         let geometry = Geometry::new(Rect::new(0.0, 0.0, 900.0, 700.0), view);
         let curve = Curves::of(&profile(&[250.0; 200]), &geometry).temperature;
         let plot = geometry.plot();
@@ -278,6 +290,9 @@ mod tests {
         let mut silhouette = Silhouette::new(&plot);
         silhouette.add(&[Point::new(0.0, 100.0), Point::new(100.0, 0.0)]);
         let (left, right) = silhouette.between(50.0, 50.0).unwrap();
-        assert!((left - 48.0).abs() < 1e-9 && (right - 52.0).abs() < 1e-9, "{left} {right}");
+        assert!(
+            (left - 48.0).abs() < 1e-9 && (right - 52.0).abs() < 1e-9,
+            "{left} {right}"
+        );
     }
 }

@@ -174,12 +174,12 @@ impl View {
         let temperature = celsius(&profile.temperature);
         let dewpoint = celsius(&profile.dewpoint).or(temperature);
         if let (Some(t), Some(td)) = (temperature, dewpoint) {
-            // A quarter of the span stays free to the right of T for the parcel, a tenth to the left of Td; T wins.
+            // A seventh of the span stays free to the right of T for the parcel, a tenth to the left of Td; T wins.
             let x = view.lean_k
                 * (view.bottom_hpa * 100.0 / profile.pressure.get(row).copied().unwrap_or(1e5))
                     .ln();
             let left_most = td + x - 0.1 * view.span_k;
-            let right_most = t + x - 0.88 * view.span_k;
+            let right_most = t + x - 0.86 * view.span_k;
             view.left_c = (view.left_c.min(left_most).max(right_most) / 2.0).round() * 2.0;
         }
         view.clamped()
@@ -386,5 +386,156 @@ impl Geometry {
             lean_k: self.view.lean_k,
         }
         .clamped()
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use proptest::prelude::*;
+
+    fn view() -> impl Strategy<Value = View> {
+        (
+            20.0..1200.0f64,
+            0.03..4.5f64,
+            -90.0..40.0f64,
+            2.0..200.0f64,
+            0.0..60.0f64,
+        )
+            .prop_map(|(bottom_hpa, depth, left_c, span_k, lean_k)| View {
+                bottom_hpa,
+                top_hpa: bottom_hpa / depth.exp(),
+                left_c,
+                span_k,
+                lean_k,
+            })
+    }
+
+    fn geometry() -> impl Strategy<Value = Geometry> {
+        (view(), -50.0..50.0f64, 200.0..2600.0f64, 150.0..1600.0f64)
+            .prop_map(|(view, corner, w, h)| Geometry::new(Rect::new(corner, corner, w, h), view))
+    }
+
+    fn inside(geometry: &Geometry, across: f64, down: f64) -> Point {
+        let plot = geometry.plot();
+        Point::new(
+            plot.left + across * plot.width(),
+            plot.top + down * plot.height(),
+        )
+    }
+
+    proptest! {
+        #![proptest_config(ProptestConfig { cases: 500, failure_persistence: None, ..ProptestConfig::default() })]
+
+        #[test]
+        fn there_and_back(g in geometry(), across in -0.5..1.5f64, down in -0.5..1.5f64) {
+            let start = inside(&g, across, down);
+            let (p, t) = g.at(start);
+            prop_assert!(start.distance(g.point(p, t)) < 1e-6);
+            let (p2, t2) = g.at(g.point(p, t));
+            prop_assert!((p2.pa() / p.pa() - 1.0).abs() < 1e-9 && (t2.k() - t.k()).abs() < 1e-7);
+        }
+
+        /// What lies under the pointer stays under it while zooming.
+        #[test]
+        fn zooming_keeps_its_point(g in geometry(), across in 0.0..1.0f64, down in 0.0..1.0f64, factor in 0.5..2.0f64) {
+            let about = inside(&g, across, down);
+            let (p, t) = g.at(about);
+            let after = Geometry::new(g.frame(), g.zoomed(about, factor));
+            // Unless a limit of the view stops it.
+            let unbound = |v: View| v.bottom_hpa < 1199.0 && v.top_hpa > 1.001 && v.left_c.abs() < 149.0;
+            if unbound(g.view()) && unbound(after.view()) {
+                prop_assert!(about.distance(after.point(p, t)) < 1e-6);
+            }
+        }
+
+        /// The paper follows the pointer: every point moves by the same amount.
+        #[test]
+        fn panning_moves_everything_alike(g in geometry(), dx in -300.0..300.0f64, dy in -300.0..300.0f64) {
+            let after = Geometry::new(g.frame(), g.panned(dx, dy));
+            let moved = |across, down| {
+                let from = inside(&g, across, down);
+                let (p, t) = g.at(from);
+                let to = after.point(p, t);
+                (to.x - from.x, to.y - from.y)
+            };
+            let (a, b) = (moved(0.1, 0.2), moved(0.8, 0.9));
+            prop_assert!((a.0 - b.0).abs() < 1e-6 && (a.1 - b.1).abs() < 1e-6);
+            // All the way, unless the vertical limits stop it (then the depth of the view stays).
+            let v = after.view();
+            if v.bottom_hpa < 1199.0 && v.top_hpa > 1.001 && v.left_c.abs() < 149.0 {
+                prop_assert!((a.0 - dx).abs() < 1e-6 && (a.1 - dy).abs() < 1e-6, "{:?}", a);
+            }
+            prop_assert!((v.depth() - g.view().depth()).abs() < 1e-9);
+        }
+    }
+
+    #[test]
+    fn odd_views_and_frames_stay_finite() {
+        let odd = [f64::NAN, f64::INFINITY, -1.0, 0.0, 1e-300, 1e300];
+        for a in odd {
+            for b in odd {
+                let view = View {
+                    bottom_hpa: a,
+                    top_hpa: b,
+                    left_c: a,
+                    span_k: b,
+                    lean_k: a,
+                };
+                let g = Geometry::new(Rect::new(a, b, a, b), view);
+                let v = g.view();
+                assert!(v.bottom_hpa > v.top_hpa && v.top_hpa > 0.0 && v.span_k > 0.0);
+                let start = Geometry::new(Rect::new(0.0, 0.0, 500.0, 400.0), view);
+                for view in [
+                    start.panned(a, b),
+                    start.zoomed(Point::new(100.0, 100.0), a),
+                ] {
+                    assert!(view.depth().is_finite() && view.left_c.is_finite());
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn the_default_view_holds_a_warm_season_profile() {
+        let g = Geometry::new(Rect::new(0.0, 0.0, 1000.0, 800.0), View::default());
+        for (hpa, c) in [
+            (1000.0, 38.0),
+            (1000.0, -20.0),
+            (500.0, -5.0),
+            (300.0, -60.0),
+            (100.0, -80.0),
+        ] {
+            let at = g.point(Pressure::from_hpa(hpa), Temperature::from_c(c));
+            assert!(g.plot().contains(at), "{hpa} hPa {c} degC");
+        }
+    }
+
+    #[test]
+    fn fitting_brings_cold_hot_high_and_low_surfaces_into_sight() {
+        for (hpa, t, td) in [
+            (1050.0, -45.0, -48.0),
+            (1010.0, 49.0, 2.0),
+            (620.0, 5.0, -20.0),
+            (1085.0, 20.0, 20.0),
+        ] {
+            let profile = Profile {
+                pressure: vec![hpa * 100.0],
+                temperature: vec![Some(t + 273.15)],
+                dewpoint: vec![Some(td + 273.15)],
+                surface: Some(0),
+                ..Profile::default()
+            };
+            let g = Geometry::new(Rect::new(0.0, 0.0, 600.0, 500.0), View::fit(&profile));
+            for c in [t, td] {
+                let at = g.point(Pressure::from_hpa(hpa), Temperature::from_c(c));
+                assert!(
+                    g.plot().grown(-8.0).contains(at),
+                    "{hpa} hPa, {c} degC: {at:?} in {:?}",
+                    g.plot()
+                );
+            }
+        }
+        assert_eq!(View::fit(&Profile::default()), View::default());
     }
 }

@@ -63,3 +63,62 @@ impl Touch {
         self.handles.iter().find(|h| h.handle == handle)
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn touch(dewpoint: Point, temperature: Point) -> Touch {
+        let place = |handle, centre| HandlePlace {
+            handle,
+            centre,
+            whisker: None,
+        };
+        Touch {
+            handles: vec![
+                place(Handle::Dewpoint, dewpoint),
+                place(Handle::Temperature, temperature),
+            ],
+            brackets: vec![(7, Rect::new(10.0, 10.0, 20.0, 20.0))],
+        }
+    }
+
+    #[test]
+    fn the_nearer_handle_is_hit_and_none_beyond_the_radius() {
+        let touch = touch(Point::new(100.0, 100.0), Point::new(120.0, 100.0));
+        assert_eq!(
+            touch.handle_at(Point::new(108.0, 100.0)),
+            Some(Handle::Dewpoint)
+        );
+        assert_eq!(
+            touch.handle_at(Point::new(112.0, 100.0)),
+            Some(Handle::Temperature)
+        );
+        assert_eq!(
+            touch.handle_at(Point::new(100.0, 114.0)),
+            Some(Handle::Dewpoint)
+        );
+        assert_eq!(touch.handle_at(Point::new(100.0, 116.0)), None);
+    }
+
+    #[test]
+    fn in_saturated_air_each_half_is_one_handle() {
+        let at = Point::new(100.0, 100.0);
+        let touch = touch(at, at);
+        assert_eq!(
+            touch.handle_at(Point::new(96.0, 103.0)),
+            Some(Handle::Dewpoint)
+        );
+        assert_eq!(
+            touch.handle_at(Point::new(104.0, 97.0)),
+            Some(Handle::Temperature)
+        );
+    }
+
+    #[test]
+    fn brackets_are_hit_in_their_box() {
+        let touch = touch(Point::default(), Point::default());
+        assert_eq!(touch.bracket_at(Point::new(15.0, 15.0)), Some(7));
+        assert_eq!(touch.bracket_at(Point::new(35.0, 15.0)), None);
+    }
+}

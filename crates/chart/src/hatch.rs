@@ -83,8 +83,12 @@ pub(crate) fn hatch(area: &[Row], hatching: Hatching, within: &Rect) -> Vec<[Poi
     // Lines still running at the last row, as (number of the line, index into `lines`).
     let mut running: Vec<(i64, usize)> = Vec::new();
     for two in area.windows(2) {
-        let &[(ya, la, ra), (yb, lb, rb)] = two else { continue };
-        let low = (la - slope * ya).min(lb - slope * yb).max(within.left - within.width() - slope.abs() * within.bottom.abs());
+        let &[(ya, la, ra), (yb, lb, rb)] = two else {
+            continue;
+        };
+        let low = (la - slope * ya)
+            .min(lb - slope * yb)
+            .max(within.left - within.width() - slope.abs() * within.bottom.abs());
         let high = (ra - slope * ya).max(rb - slope * yb);
         let (first, last) = ((low / step).ceil(), (high / step).floor());
         let mut next = Vec::new();
@@ -100,7 +104,9 @@ pub(crate) fn hatch(area: &[Row], hatching: Hatching, within: &Rect) -> Vec<[Poi
                 let (start, end) = (at(s0), at(s1));
                 let joined = running
                     .iter()
-                    .find(|&&(n, i)| n == number && lines.get(i).is_some_and(|l| l[1].distance(start) < 1e-6))
+                    .find(|&&(n, i)| {
+                        n == number && lines.get(i).is_some_and(|l| l[1].distance(start) < 1e-6)
+                    })
                     .map(|&(_, i)| i);
                 let index = match joined {
                     Some(i) => {
@@ -147,14 +153,23 @@ mod tests {
     use super::*;
     use proptest::prelude::*;
 
-    const WIDE: Rect = Rect { left: -1e4, top: -1e4, right: 1e4, bottom: 1e4 };
+    const WIDE: Rect = Rect {
+        left: -1e4,
+        top: -1e4,
+        right: 1e4,
+        bottom: 1e4,
+    };
 
     fn pairs(around: &[f64], parcel: &[f64]) -> Vec<Pair> {
         around
             .iter()
             .zip(parcel)
             .enumerate()
-            .map(|(i, (&around, &parcel))| Pair { y: 500.0 - 2.0 * i as f64, around, parcel })
+            .map(|(i, (&around, &parcel))| Pair {
+                y: 500.0 - 2.0 * i as f64,
+                around,
+                parcel,
+            })
             .collect()
     }
 
@@ -162,7 +177,16 @@ mod tests {
     fn crossings_split_areas_exactly() {
         let pairs = pairs(&[0.0; 5], &[-1.0, 1.0, 3.0, 1.0, -3.0]);
         let warm = areas(&pairs, true, 500.0, 0.0);
-        assert_eq!(warm, [vec![(499.0, 0.0, 0.0), (498.0, 0.0, 1.0), (496.0, 0.0, 3.0), (494.0, 0.0, 1.0), (493.5, 0.0, 0.0)]]);
+        assert_eq!(
+            warm,
+            [vec![
+                (499.0, 0.0, 0.0),
+                (498.0, 0.0, 1.0),
+                (496.0, 0.0, 3.0),
+                (494.0, 0.0, 1.0),
+                (493.5, 0.0, 0.0)
+            ]]
+        );
         let cold = areas(&pairs, false, 500.0, 0.0);
         assert_eq!(cold.len(), 2);
         assert_eq!(cold[1], [(493.5, 0.0, 0.0), (492.0, -3.0, 0.0)]);
@@ -172,7 +196,14 @@ mod tests {
     fn a_parallelogram_gets_the_lines_it_should() {
         // 40 wide, 100 high, lines at 45 degrees 10 apart (14.14 along x): a strip of 140 along c holds 9 or 10 lines.
         let area = [(100.0, 0.0, 40.0), (50.0, 0.0, 40.0), (0.0, 0.0, 40.0)];
-        let lines = hatch(&area, Hatching { slope: -1.0, spacing: 10.0 }, &WIDE);
+        let lines = hatch(
+            &area,
+            Hatching {
+                slope: -1.0,
+                spacing: 10.0,
+            },
+            &WIDE,
+        );
         assert!((9..=10).contains(&lines.len()), "{}", lines.len());
         // Joined over the middle row: total length is area / spacing, within a line's worth.
         let total: f64 = lines.iter().map(|[a, b]| a.distance(*b)).sum();

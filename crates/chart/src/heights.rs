@@ -121,7 +121,11 @@ impl HeightScale {
             &[1.0, 2.0, 5.0, 10.0],
         );
         // Tenths only where a whole unit leaves wide gaps.
-        let fine = spacing(geometry.points_per_efold() * metres / 7500.0, 70.0, &[0.1, 0.2, 0.5, step]);
+        let fine = spacing(
+            geometry.points_per_efold() * metres / 7500.0,
+            70.0,
+            &[0.1, 0.2, 0.5, step],
+        );
         let step = fine.min(step);
         let mut ticks = Vec::new();
         let title = format!("height above sea level, {name}");
@@ -165,7 +169,9 @@ mod tests {
 
     /// A few levels of that atmosphere.
     fn standard() -> Profile {
-        let metres = [0.0, 1000.0, 2000.0, 3000.0, 5000.0, 7000.0, 9000.0, 11_000.0];
+        let metres = [
+            0.0, 1000.0, 2000.0, 3000.0, 5000.0, 7000.0, 9000.0, 11_000.0,
+        ];
         Profile {
             pressure: metres.iter().map(|&z| standard_hpa(z) * 100.0).collect(),
             height: metres.iter().map(|&z| Some(z)).collect(),
@@ -183,7 +189,11 @@ mod tests {
         let scale = HeightScale::of(&standard());
         for z in [500.0, 4000.0, 6000.0, 8000.0, 10_000.0] {
             let hpa = standard_hpa(z);
-            assert_abs_diff_eq!(scale.above_sea(Pressure::from_hpa(hpa)).unwrap(), z, epsilon = 2.0);
+            assert_abs_diff_eq!(
+                scale.above_sea(Pressure::from_hpa(hpa)).unwrap(),
+                z,
+                epsilon = 2.0
+            );
             assert_abs_diff_eq!(scale.pressure_at(z).unwrap().hpa(), hpa, epsilon = 0.2);
         }
         assert_eq!(scale.above_sea(Pressure::from_hpa(1020.0)), None);
@@ -196,7 +206,13 @@ mod tests {
         let mut profile = standard();
         profile.surface = Some(1);
         let scale = HeightScale::of(&profile);
-        assert_abs_diff_eq!(scale.above_ground(Pressure::from_hpa(standard_hpa(3000.0))).unwrap(), 2000.0, epsilon = 1e-6);
+        assert_abs_diff_eq!(
+            scale
+                .above_ground(Pressure::from_hpa(standard_hpa(3000.0)))
+                .unwrap(),
+            2000.0,
+            epsilon = 1e-6
+        );
     }
 
     #[test]

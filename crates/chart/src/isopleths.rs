@@ -196,7 +196,9 @@ pub(crate) fn mixing_ratio_lines(geometry: &Geometry) -> Vec<Isopleth> {
     let values: [&[f64]; 3] = [
         &[1.0, 2.0, 4.0, 7.0, 10.0, 14.0, 20.0, 28.0],
         &[0.2, 0.5, 3.0, 5.0, 12.0, 17.0, 24.0, 40.0],
-        &[0.1, 1.5, 6.0, 8.0, 9.0, 11.0, 13.0, 15.0, 16.0, 18.0, 19.0, 22.0, 26.0, 32.0],
+        &[
+            0.1, 1.5, 6.0, 8.0, 9.0, 11.0, 13.0, 15.0, 16.0, 18.0, 19.0, 22.0, 26.0, 32.0,
+        ],
     ];
     let mut kept: Vec<Isopleth> = Vec::new();
     for &value in values.into_iter().flatten() {
@@ -243,11 +245,17 @@ mod tests {
             ..View::default()
         };
         let frame = Rect::new(0.0, 0.0, 1000.0, 800.0);
-        [View::default(), close, far].map(|v| Geometry::new(frame, v)).to_vec()
+        [View::default(), close, far]
+            .map(|v| Geometry::new(frame, v))
+            .to_vec()
     }
 
     /// Points of every isopleth of a family, put through the formula that defines it, give back its value.
-    fn check(family: fn(&Geometry) -> Vec<Isopleth>, value: fn(Pressure, Temperature) -> f64, tolerance: f64) {
+    fn check(
+        family: fn(&Geometry) -> Vec<Isopleth>,
+        value: fn(Pressure, Temperature) -> f64,
+        tolerance: f64,
+    ) {
         for geometry in geometries() {
             let lines = family(&geometry);
             assert!(lines.len() >= 3, "{} lines", lines.len());
@@ -255,7 +263,12 @@ mod tests {
                 for &point in &line.points {
                     let (p, t) = geometry.at(point);
                     let got = value(p, t);
-                    assert!((got - line.value).abs() < tolerance, "{got} on {} at {} hPa", line.value, p.hpa());
+                    assert!(
+                        (got - line.value).abs() < tolerance,
+                        "{got} on {} at {} hPa",
+                        line.value,
+                        p.hpa()
+                    );
                 }
             }
         }
@@ -278,7 +291,11 @@ mod tests {
 
     #[test]
     fn saturation_mixing_ratio_is_constant_on_its_line() {
-        check(mixing_ratio_lines, |p, t| 1000.0 * saturation_mixing_ratio(p, t), 1e-6);
+        check(
+            mixing_ratio_lines,
+            |p, t| 1000.0 * saturation_mixing_ratio(p, t),
+            1e-6,
+        );
     }
 
     #[test]
@@ -288,7 +305,11 @@ mod tests {
                 let expect = theta_e_of_wet_bulb(Temperature::from_c(line.value)).k();
                 for &point in &line.points {
                     let (pressure, temperature) = geometry.at(point);
-                    let air = Air { pressure, temperature, dewpoint: temperature };
+                    let air = Air {
+                        pressure,
+                        temperature,
+                        dewpoint: temperature,
+                    };
                     assert!((air.theta_e().k() - expect).abs() < 1e-3);
                 }
             }
@@ -298,12 +319,21 @@ mod tests {
     #[test]
     fn a_moist_adiabat_passes_through_its_wet_bulb_potential_temperature() {
         let geometry = geometries()[0];
-        let line = moist_adiabats(&geometry).into_iter().find(|l| l.value == 20.0).unwrap();
+        let line = moist_adiabats(&geometry)
+            .into_iter()
+            .find(|l| l.value == 20.0)
+            .unwrap();
         let y = geometry.y(Pressure::from_hpa(1000.0));
-        let at = line.points.windows(2).find(|w| w[0].y >= y && w[1].y <= y).unwrap();
+        let at = line
+            .points
+            .windows(2)
+            .find(|w| w[0].y >= y && w[1].y <= y)
+            .unwrap();
         let s = (at[0].y - y) / (at[0].y - at[1].y);
         let x = at[0].x + s * (at[1].x - at[0].x);
-        let expect = geometry.point(Pressure::from_hpa(1000.0), Temperature::from_c(20.0)).x;
+        let expect = geometry
+            .point(Pressure::from_hpa(1000.0), Temperature::from_c(20.0))
+            .x;
         assert!((x - expect).abs() < 0.1, "{x} {expect}");
     }
 

@@ -21,14 +21,15 @@ pub(crate) fn paint(canvas: &mut Canvas, plot: &Rect, drawing: &ParcelDrawing<'_
         return None;
     }
     let free = drawing.ascent.lfc.is_some();
-    let mut rows = vec![
-        (
-            Sample::Line(Ink::Parcel, Stroke::dashed(1.9, Dash::Long)),
-            format!("{}, virtual temperature", drawing.name),
-        ),
-    ];
+    let mut rows = vec![(
+        Sample::Line(Ink::Parcel, Stroke::dashed(1.9, Dash::Long)),
+        format!("{}, virtual temperature", drawing.name),
+    )];
     if drawing.interval.is_some() {
-        rows.push((Sample::Fill(Ink::ParcelBand), "the same over the interval".to_owned()));
+        rows.push((
+            Sample::Fill(Ink::ParcelBand),
+            "the same over the interval".to_owned(),
+        ));
     }
     if free {
         rows.push((
@@ -41,15 +42,13 @@ pub(crate) fn paint(canvas: &mut Canvas, plot: &Rect, drawing: &ParcelDrawing<'_
     // CAPE and CIN share a row.
     let pair = free.then(|| rows.split_off(rows.len() - 2));
     let lines = rows.len() + usize::from(pair.is_some()) + usize::from(!free);
-    let widest = rows.iter().map(|(_, text)| text_width(text, SIZE)).fold(0.0, f64::max);
+    let widest = rows
+        .iter()
+        .map(|(_, text)| text_width(text, SIZE))
+        .fold(0.0, f64::max);
     let width = (SAMPLE + widest + 18.0).max(SAMPLE * 2.0 + text_width("CAPE CIN", SIZE) + 40.0);
     let height = lines as f64 * LINE + 8.0;
-    let place = Rect::new(
-        plot.right - INSET - width,
-        plot.top + INSET,
-        width,
-        height,
-    );
+    let place = Rect::new(plot.right - INSET - width, plot.top + INSET, width, height);
     if !plot.grown(-1.0).holds(&place) || width > 0.6 * plot.width() {
         return None;
     }
@@ -70,7 +69,11 @@ pub(crate) fn paint(canvas: &mut Canvas, plot: &Rect, drawing: &ParcelDrawing<'_
             x += SAMPLE + text_width(text, SIZE) + 18.0;
         }
     } else {
-        canvas.text(Point::new(place.left + 6.0, y), "no free convection", lettering);
+        canvas.text(
+            Point::new(place.left + 6.0, y),
+            "no free convection",
+            lettering,
+        );
     }
     Some(place)
 }
@@ -88,7 +91,10 @@ fn paint_sample(canvas: &mut Canvas, sample: &Sample, x: f64, y: f64) {
             ink,
         }),
         Sample::Hatch(ink, hatching) => {
-            let area = [(place.top, place.left, place.right), (place.bottom, place.left, place.right)];
+            let area = [
+                (place.top, place.left, place.right),
+                (place.bottom, place.left, place.right),
+            ];
             let lines = hatch(&area, hatching, &place);
             canvas.segments(&lines, &frame, ink, Stroke::solid(1.2));
         }

@@ -68,8 +68,12 @@ const fn light(ink: Ink) -> Colour {
         Ink::MoistAdiabatLabel => rgb(0x3f6d58),
         Ink::MixingRatioLabel => rgb(0x7d5373),
         Ink::Ground => rgb(0x93886f),
-        Ink::Temperature | Ink::Handle(Handle::Temperature) | Ink::Whisker(Handle::Temperature) => rgb(0xbf4a00),
-        Ink::Dewpoint | Ink::Handle(Handle::Dewpoint) | Ink::Whisker(Handle::Dewpoint) => rgb(0x0063a0),
+        Ink::Temperature | Ink::Handle(Handle::Temperature) | Ink::Whisker(Handle::Temperature) => {
+            rgb(0xbf4a00)
+        }
+        Ink::Dewpoint | Ink::Handle(Handle::Dewpoint) | Ink::Whisker(Handle::Dewpoint) => {
+            rgb(0x0063a0)
+        }
         Ink::VirtualTemperature => rgb(0x7a3a10),
         Ink::ReceivedTemperature => rgb(0xd55e00),
         Ink::ReceivedDewpoint => rgb(0x2b86c4),
@@ -107,8 +111,12 @@ const fn dark(ink: Ink) -> Colour {
         Ink::MoistAdiabatLabel => rgb(0x77b095),
         Ink::MixingRatioLabel => rgb(0xb98bb0),
         Ink::Ground => rgb(0x7f775f),
-        Ink::Temperature | Ink::Handle(Handle::Temperature) | Ink::Whisker(Handle::Temperature) => rgb(0xff8a3d),
-        Ink::Dewpoint | Ink::Handle(Handle::Dewpoint) | Ink::Whisker(Handle::Dewpoint) => rgb(0x56b4e9),
+        Ink::Temperature | Ink::Handle(Handle::Temperature) | Ink::Whisker(Handle::Temperature) => {
+            rgb(0xff8a3d)
+        }
+        Ink::Dewpoint | Ink::Handle(Handle::Dewpoint) | Ink::Whisker(Handle::Dewpoint) => {
+            rgb(0x56b4e9)
+        }
         Ink::VirtualTemperature => rgb(0xe0a684),
         Ink::ReceivedTemperature => rgb(0xd55e00),
         Ink::ReceivedDewpoint => rgb(0x2f8fd0),
@@ -155,7 +163,8 @@ mod tests {
     /// A see-through colour on an opaque one.
     fn over(top: Colour, below: Colour) -> Colour {
         let share = f64::from(top.a) / 255.0;
-        let mix = |t: u8, b: u8| (share * f64::from(t) + (1.0 - share) * f64::from(b)).round() as u8;
+        let mix =
+            |t: u8, b: u8| (share * f64::from(t) + (1.0 - share) * f64::from(b)).round() as u8;
         Colour {
             r: mix(top.r, below.r),
             g: mix(top.g, below.g),

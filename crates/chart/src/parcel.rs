@@ -1,9 +1,11 @@
 //! The parcel: its path, the band over the interval, and the areas that are CAPE and CIN.
 
-use crate::canvas::{Canvas, Lettering, clip_polyline};
+use crate::canvas::{Canvas, Lettering};
 use crate::curve::Silhouette;
 use crate::hatch::{Hatching, Pair, Row, areas, hatch};
-use crate::{Anchor, Dash, Geometry, Ink, Item, ParcelDrawing, Point, Rect, Stroke, text_width, wording};
+use crate::{
+    Anchor, Dash, Geometry, Ink, Item, ParcelDrawing, Point, Rect, Stroke, text_width, wording,
+};
 use dewbound_sounding::thermo::{Air, Environment, Pressure, parcel_path};
 
 /// Distance of computed rows, points.
@@ -15,9 +17,15 @@ const BEYOND: f64 = 0.12;
 const LEAST_ASCENT: f64 = 0.9;
 
 /// CAPE: flat strokes rising to the right.
-pub(crate) const CAPE: Hatching = Hatching { slope: -2.2, spacing: 6.5 };
+pub(crate) const CAPE: Hatching = Hatching {
+    slope: -2.2,
+    spacing: 8.0,
+};
 /// CIN: flat strokes falling to the right, denser.
-pub(crate) const CIN: Hatching = Hatching { slope: 2.2, spacing: 4.0 };
+pub(crate) const CIN: Hatching = Hatching {
+    slope: 2.2,
+    spacing: 4.5,
+};
 
 /// A parcel's path and areas at the resolution of the screen.
 #[derive(Debug, Default)]
@@ -37,7 +45,12 @@ pub(crate) struct ParcelPicture {
 }
 
 /// x of the virtual temperature of the parcel from `start` at each of the rows it reaches.
-fn path_at(geometry: &Geometry, start: Air, drawing: &ParcelDrawing<'_>, rows: &[Pressure]) -> Vec<Option<f64>> {
+fn path_at(
+    geometry: &Geometry,
+    start: Air,
+    drawing: &ParcelDrawing<'_>,
+    rows: &[Pressure],
+) -> Vec<Option<f64>> {
     let states = parcel_path(start, drawing.method, rows);
     let mut states = states.iter().peekable();
     rows.iter()
@@ -58,7 +71,10 @@ impl ParcelPicture {
             Some(ascent.lcl.pressure),
             ascent.lfc,
             ascent.el,
-            environment.pressure().last().map(|&pa| Pressure::from_pa(pa)),
+            environment
+                .pressure()
+                .last()
+                .map(|&pa| Pressure::from_pa(pa)),
         ];
         let y_start = geometry.y(ascent.start.pressure).min(plot.bottom);
         let y_end = environment
@@ -109,10 +125,22 @@ impl ParcelPicture {
             let here = pairs.get(pairs.partition_point(|p| p.y > y + 1e-6));
             here.is_some_and(|p| (p.y - y).abs() < STEP && x >= p.around)
         };
-        let path = pairs.iter().rev().find(|p| p.parcel >= p.around).map(|p| p.y);
-        let band = self.band.iter().flatten().filter(|row| warm(row.0, row.2)).map(|row| row.0);
+        let path = pairs
+            .iter()
+            .rev()
+            .find(|p| p.parcel >= p.around)
+            .map(|p| p.y);
+        let band = self
+            .band
+            .iter()
+            .flatten()
+            .filter(|row| warm(row.0, row.2))
+            .map(|row| row.0);
         let band = band.reduce(f64::min);
-        let highest = [path, band].into_iter().flatten().fold(f64::INFINITY, f64::min);
+        let highest = [path, band]
+            .into_iter()
+            .flatten()
+            .fold(f64::INFINITY, f64::min);
         let start = geometry.y(drawing.ascent.start.pressure);
         let end = (highest - BEYOND * geometry.points_per_efold())
             .min(start - LEAST_ASCENT * geometry.points_per_efold());
@@ -132,7 +160,12 @@ impl ParcelPicture {
         let lcl = geometry.y(ascent.lcl.pressure);
         let top = ascent.el.map_or(last.y, |el| geometry.y(el));
         self.cape = areas(pairs, true, lcl, top);
-        self.cin = areas(pairs, false, geometry.y(ascent.start.pressure), geometry.y(lfc));
+        self.cin = areas(
+            pairs,
+            false,
+            geometry.y(ascent.start.pressure),
+            geometry.y(lfc),
+        );
         self.around = pairs
             .iter()
             .filter(|p| p.y >= top - 1e-6)
@@ -163,13 +196,22 @@ impl ParcelPicture {
         }
     }
 
-    /// "CAPE" and "CIN" inside their areas, where those are wide enough.
+    /// "CAPE" and "CIN" inside their areas, where those are wide and tall enough.
     pub fn name_areas(&self, canvas: &mut Canvas, plot: &Rect) {
-        for (areas, name, ink) in [(&self.cape, "CAPE", Ink::CapeHatch), (&self.cin, "CIN", Ink::CinHatch)] {
+        for (areas, name, ink) in [
+            (&self.cape, "CAPE", Ink::CapeHatch),
+            (&self.cin, "CIN", Ink::CinHatch),
+        ] {
             let lettering = Lettering::new(Anchor::Centre, 12.0, ink).backed().strong();
             let need = text_width(name, 12.0) + 14.0;
+            // A name would hide a small area.
+            let tall = |area: &&Vec<Row>| match (area.first(), area.last()) {
+                (Some(low), Some(high)) => low.0 - high.0 > 70.0,
+                _ => false,
+            };
             let widest = areas
                 .iter()
+                .filter(tall)
                 .flatten()
                 .map(|&(y, left, right)| (y, left.max(plot.left), right.min(plot.right)))
                 .max_by(|a, b| (a.2 - a.1).total_cmp(&(b.2 - b.1)))
@@ -189,12 +231,28 @@ impl ParcelPicture {
                 ink: Ink::ParcelBand,
             });
         }
-        for (areas, hatching, ink) in [(&self.cape, CAPE, Ink::CapeHatch), (&self.cin, CIN, Ink::CinHatch)] {
-            let lines: Vec<_> = areas.iter().flat_map(|area| hatch(area, hatching, plot)).collect();
+        for (areas, hatching, ink) in [
+            (&self.cape, CAPE, Ink::CapeHatch),
+            (&self.cin, CIN, Ink::CinHatch),
+        ] {
+            let lines: Vec<_> = areas
+                .iter()
+                .flat_map(|area| hatch(area, hatching, plot))
+                .collect();
             canvas.segments(&lines, plot, ink, Stroke::solid(1.2));
         }
-        canvas.line(&self.around, plot, Ink::VirtualTemperature, Stroke::dashed(1.4, Dash::Dots));
-        canvas.line(&self.path, plot, Ink::Parcel, Stroke::dashed(1.9, Dash::Long));
+        canvas.line(
+            &self.around,
+            plot,
+            Ink::VirtualTemperature,
+            Stroke::dashed(1.4, Dash::Dots),
+        );
+        canvas.line(
+            &self.path,
+            plot,
+            Ink::Parcel,
+            Stroke::dashed(1.9, Dash::Long),
+        );
     }
 
     /// Ticks and labels of LCL, LFC and EL, to the right of everything.
@@ -202,7 +260,9 @@ impl ParcelPicture {
         let lettering = Lettering::new(Anchor::Left, 12.0, Ink::LevelMark).backed();
         for &(name, level, at) in &self.marks {
             let text = format!("{name} {}", wording::pressure(level.hpa()));
-            let reach = silhouette.between(at.y - 4.0, at.y + 4.0).map_or(at.x, |(_, right)| right.max(at.x));
+            let reach = silhouette
+                .between(at.y - 4.0, at.y + 4.0)
+                .map_or(at.x, |(_, right)| right.max(at.x));
             let x = (reach + 16.0).min(plot.right);
             let down = [0.0, -8.0, 8.0, -16.0, 16.0, -24.0, 24.0];
             let places = down
@@ -243,9 +303,4 @@ fn band(
         }
     }
     bands
-}
-
-/// Whether any of a curve is in sight.
-pub(crate) fn in_sight(points: &[Point], plot: &Rect) -> bool {
-    !clip_polyline(points, plot).is_empty()
 }

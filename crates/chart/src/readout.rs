@@ -84,7 +84,8 @@ impl Readout {
                 dewpoint,
             });
         let or_unknown = |text: Option<String>| text.unwrap_or_else(|| UNKNOWN.to_owned());
-        let degrees = |t: Option<Temperature>| or_unknown(t.map(|t| wording::temperature(t, units)));
+        let degrees =
+            |t: Option<Temperature>| or_unknown(t.map(|t| wording::temperature(t, units)));
         let above_sea = heights.and_then(|h| h.above_sea(pressure));
         let above_ground = heights.and_then(|h| h.above_ground(pressure));
         let metres = |z: Option<f64>| or_unknown(z.map(|z| wording::height(z, units)));
@@ -143,7 +144,8 @@ pub(crate) fn has_room(plot: &Rect) -> bool {
 
 /// Space for the readout at the right edge of the plot, its upper edge at `top`; `None` when it would take too much of the plot.
 pub(crate) fn readout_box(plot: &Rect, top: f64) -> Option<Rect> {
-    let width = text_width("potential temperature", SIZE) + text_width("not known here", SIZE) + 20.0;
+    let width =
+        text_width("potential temperature", SIZE) + text_width("not known here", SIZE) + 20.0;
     let height = 9.0 * LINE + 8.0;
     has_room(plot).then(|| Rect::new(plot.right - INSET - width, top, width, height))
 }
@@ -175,7 +177,15 @@ pub(crate) fn paint_cursor(
     }
     let tag = Lettering::new(Anchor::Right, crate::background::AXIS, Ink::Label).strong();
     let value = wording::fixed(pressure.hpa(), 0);
-    // A box hides what it half covers of the labels beneath.
+    // The label of an isobar that the box would cut through goes altogether.
+    for bar in crate::isopleths::isobars(geometry) {
+        if let Some(at) = bar.points.first().filter(|p| (p.y - y).abs() < 19.0) {
+            canvas.fill(
+                Rect::new(plot.left - 43.0, at.y - 8.5, 41.0, 17.0),
+                Ink::Paper,
+            );
+        }
+    }
     panel(canvas, &Rect::new(plot.left - 43.0, y - 10.0, 41.0, 20.0));
     canvas.text(Point::new(plot.left - 6.0, y), &value, tag);
 
@@ -198,7 +208,17 @@ fn small_readout(canvas: &mut Canvas, plot: &Rect, below: f64, readout: &Readout
     const SMALL: f64 = 11.0;
     let room = plot.width() - 2.0 * INSET;
     let mut lines: Vec<String> = Vec::new();
-    let short = ["", "", "(above ground)", "T", "Td", "w", "RH", "\u{3b8}", "wind"];
+    let short = [
+        "",
+        "",
+        "(above ground)",
+        "T",
+        "Td",
+        "w",
+        "RH",
+        "\u{3b8}",
+        "wind",
+    ];
     for ((name, value), short) in readout.rows.iter().zip(short) {
         let part = match *name {
             _ if value == UNKNOWN => continue,
@@ -217,7 +237,11 @@ fn small_readout(canvas: &mut Canvas, plot: &Rect, below: f64, readout: &Readout
     lines.truncate(3);
     for (i, line) in lines.iter().enumerate() {
         let at = Point::new(plot.left + INSET, below + (i as f64 + 0.5) * 14.0);
-        canvas.text(at, line, Lettering::new(Anchor::Left, SMALL, Ink::Label).backed());
+        canvas.text(
+            at,
+            line,
+            Lettering::new(Anchor::Left, SMALL, Ink::Label).backed(),
+        );
     }
 }
 
@@ -241,8 +265,14 @@ mod tests {
             temperature: vec![Some(293.15), None, Some(263.15)],
             dewpoint: vec![Some(288.15), Some(278.15), None],
             wind: vec![
-                Some(Wind { direction: 350.0, speed: 10.0 }),
-                Some(Wind { direction: 10.0, speed: 10.0 }),
+                Some(Wind {
+                    direction: 350.0,
+                    speed: 10.0,
+                }),
+                Some(Wind {
+                    direction: 10.0,
+                    speed: 10.0,
+                }),
                 None,
             ],
             received: vec![None; 3],
@@ -253,8 +283,18 @@ mod tests {
 
     fn value(hpa: f64, name: &str) -> String {
         let scale = HeightScale::of(&profile());
-        let readout = Readout::of(&profile(), Pressure::from_hpa(hpa), Some(&scale), Units::default());
-        readout.rows.into_iter().find(|(n, _)| *n == name).unwrap().1
+        let readout = Readout::of(
+            &profile(),
+            Pressure::from_hpa(hpa),
+            Some(&scale),
+            Units::default(),
+        );
+        readout
+            .rows
+            .into_iter()
+            .find(|(n, _)| *n == name)
+            .unwrap()
+            .1
     }
 
     #[test]

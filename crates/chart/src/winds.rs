@@ -26,9 +26,16 @@ pub(crate) fn paint(canvas: &mut Canvas, geometry: &Geometry, profile: &Profile,
     if drawn.is_empty() {
         return;
     }
-    canvas.text(Point::new(strip.right - 4.0, strip.top - 13.0), "wind, kt", title);
+    canvas.text(
+        Point::new(strip.right - 4.0, strip.top - 13.0),
+        "wind, kt",
+        title,
+    );
     let middle = strip.centre().x;
-    let spine = [Point::new(middle, strip.top), Point::new(middle, strip.bottom)];
+    let spine = [
+        Point::new(middle, strip.top),
+        Point::new(middle, strip.bottom),
+    ];
     canvas.line(&spine, &frame, Ink::QuietLabel, Stroke::solid(0.6));
     let mut lines = Vec::new();
     for (foot, barb) in &drawn {
@@ -75,7 +82,10 @@ fn select(geometry: &Geometry, profile: &Profile, southern: bool) -> Vec<(Point,
         let Some(drawn) = barb(foot, wind.direction, wind.speed * KNOTS, southern) else {
             continue;
         };
-        let room = Rect { top: plot.top - 6.0, ..frame };
+        let room = Rect {
+            top: plot.top - 6.0,
+            ..frame
+        };
         let mine = strokes(foot, &drawn);
         let inside = mine.iter().flatten().all(|&p| room.contains(p));
         // Only the last few can be within reach.
@@ -93,20 +103,26 @@ fn select(geometry: &Geometry, profile: &Profile, southern: bool) -> Vec<(Point,
 fn strokes(foot: Point, barb: &Barb) -> Vec<[Point; 2]> {
     if barb.calm {
         let at = |dx: f64, dy: f64| Point::new(foot.x + dx, foot.y + dy);
-        return vec![[at(-CALM, 0.0), at(CALM, 0.0)], [at(0.0, -CALM), at(0.0, CALM)]];
+        return vec![
+            [at(-CALM, 0.0), at(CALM, 0.0)],
+            [at(0.0, -CALM), at(0.0, CALM)],
+        ];
     }
     let edges = barb.flags.iter().flat_map(|&[a, b, c]| [[a, b], [b, c]]);
     barb.lines.iter().copied().chain(edges).collect()
 }
 
 fn touch(some: &[[Point; 2]], others: &[[Point; 2]]) -> bool {
-    some.iter().any(|a| others.iter().any(|b| distance(a, b) < CLEAR))
+    some.iter()
+        .any(|a| others.iter().any(|b| distance(a, b) < CLEAR))
 }
 
 /// Distance of two segments.
 fn distance(a: &[Point; 2], b: &[Point; 2]) -> f64 {
-    let cross = |o: Point, p: Point, q: Point| (p.x - o.x) * (q.y - o.y) - (p.y - o.y) * (q.x - o.x);
-    let apart = |l: &[Point; 2], m: &[Point; 2]| cross(l[0], l[1], m[0]) * cross(l[0], l[1], m[1]) < 0.0;
+    let cross =
+        |o: Point, p: Point, q: Point| (p.x - o.x) * (q.y - o.y) - (p.y - o.y) * (q.x - o.x);
+    let apart =
+        |l: &[Point; 2], m: &[Point; 2]| cross(l[0], l[1], m[0]) * cross(l[0], l[1], m[1]) < 0.0;
     if apart(a, b) && apart(b, a) {
         return 0.0;
     }
@@ -116,7 +132,10 @@ fn distance(a: &[Point; 2], b: &[Point; 2]) -> f64 {
         let s = along.clamp(0.0, 1.0);
         p.distance(Point::new(l[0].x + s * dx, l[0].y + s * dy))
     };
-    to(a[0], b).min(to(a[1], b)).min(to(b[0], a)).min(to(b[1], a))
+    to(a[0], b)
+        .min(to(a[1], b))
+        .min(to(b[0], a))
+        .min(to(b[1], a))
 }
 
 #[cfg(test)]
@@ -154,7 +173,13 @@ mod tests {
     #[test]
     fn distance_of_segments() {
         let s = |a: f64, b: f64, c: f64, d: f64| [Point::new(a, b), Point::new(c, d)];
-        assert_eq!(distance(&s(0.0, 0.0, 2.0, 2.0), &s(0.0, 2.0, 2.0, 0.0)), 0.0);
-        assert_eq!(distance(&s(0.0, 0.0, 2.0, 0.0), &s(1.0, 3.0, 1.0, 5.0)), 3.0);
+        assert_eq!(
+            distance(&s(0.0, 0.0, 2.0, 2.0), &s(0.0, 2.0, 2.0, 0.0)),
+            0.0
+        );
+        assert_eq!(
+            distance(&s(0.0, 0.0, 2.0, 0.0), &s(1.0, 3.0, 1.0, 5.0)),
+            3.0
+        );
     }
 }

@@ -32,14 +32,22 @@ pub fn invented(levels: usize) -> Profile {
     let mut before: Option<(f64, f64)> = None;
     for level in 0..levels {
         let hpa = bottom * (top / bottom).powf(level as f64 / (levels - 1) as f64);
-        let above = BENDS.iter().position(|b| b.0 <= hpa + 1e-9).unwrap_or(BENDS.len() - 1).max(1);
+        let above = BENDS
+            .iter()
+            .position(|b| b.0 <= hpa + 1e-9)
+            .unwrap_or(BENDS.len() - 1)
+            .max(1);
         let (a, b) = (BENDS[above - 1], BENDS[above]);
         let share = (a.0 / hpa).ln() / (a.0 / b.0).ln();
         let mix = |x: f64, y: f64| x + share * (y - x);
         let n = level as f64;
-        let ripple = if level == 0 { 0.0 } else { 0.12 * (n * 0.37).sin() + 0.1 * (n * 1.71).sin() };
+        let ripple = if level == 0 {
+            0.0
+        } else {
+            0.1 * (n * 0.037).sin() + 0.05 * (n * 1.71).sin()
+        };
         let t = mix(a.1, b.1) + ripple;
-        let td = (mix(a.2, b.2) + 4.0 * ripple).min(t);
+        let td = (mix(a.2, b.2) + 3.0 * ripple).min(t);
         let kelvin = t + 273.15;
         if let Some((p, k)) = before {
             height += 287.05 / 9.80665 * 0.5 * (k + kelvin) * (p / hpa).ln();

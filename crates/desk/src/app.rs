@@ -130,6 +130,11 @@ impl Desk {
         self.hint_focus = true;
     }
 
+    /// Waits until everything asked of the worker and the disk is done. For tests; a frame never waits.
+    pub fn wait(&mut self) {
+        self.session.wait();
+    }
+
     /// The state behind the window.
     pub fn session(&self) -> &Session {
         &self.session

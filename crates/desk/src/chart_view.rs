@@ -25,6 +25,10 @@ use eframe::egui::{
 use std::collections::HashMap;
 use std::sync::Arc;
 
+/// The one line of help, until the first drag.
+pub(crate) const HINT: &str =
+    "Drag the ring at the foot of the dew-point line, or use the arrow keys";
+
 /// Identity of the chart in the window.
 pub(crate) fn chart_id() -> Id {
     Id::unique("skew-t chart")
@@ -547,16 +551,15 @@ fn beside_handle(ui: &Ui, paint: &Paint, item: &Item, frame: &ChartFrame) {
     }
 }
 
-/// The one line of help, until the first drag.
+/// Shows it.
 fn hint_ui(ui: &mut Ui, paint: &Paint, frame: &ChartFrame) {
     if !paint.view.hint {
         return;
     }
     let plot = to_rect(frame.geometry.plot());
-    let text = "Drag the ring at the foot of the dew-point line, or use the arrow keys";
     let rect = Rect::from_center_size(
-        pos2(plot.center().x, plot.top() + 44.0),
-        vec2((plot.width() - 8.0).min(560.0), 30.0),
+        pos2(plot.center().x, plot.top() + 66.0),
+        vec2((plot.width() - 8.0).min(540.0), 28.0),
     );
     ui.painter().rect_filled(rect, 3.0, paint.theme.accent);
     ui.scope_builder(
@@ -567,7 +570,7 @@ fn hint_ui(ui: &mut Ui, paint: &Paint, frame: &ChartFrame) {
             ui.horizontal_centered(|ui| {
                 ui.add(
                     eframe::egui::Label::new(
-                        bold(text).color(paint.theme.on_accent).size(12.0),
+                        bold(HINT).color(paint.theme.on_accent).size(12.0),
                     )
                     .truncate(),
                 );

@@ -82,12 +82,12 @@ impl Layout {
         );
         let (top, bottom) = (bar.bottom(), verdict.top());
 
-        let tray_width = (!narrow).then(|| (width * 0.16).clamp(210.0, 320.0));
+        let tray_width = (!narrow).then(|| (width * 0.16).clamp(230.0, 320.0));
         let left = window.left() + tray_width.map_or(0.0, |tray| tray + GAP);
         let side_width = if narrow {
             (width - LEAST_CHART.x - GAP).min(width * 0.46).min(430.0)
         } else {
-            (width * 0.27).clamp(370.0, 600.0)
+            (width * 0.27).clamp(394.0, 600.0)
         }
         .max(0.0);
         let side_left = (window.right() - side_width).max(left + LEAST_CHART.x + GAP);

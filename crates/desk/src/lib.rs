@@ -43,3 +43,18 @@ mod view;
 pub use app::Desk;
 pub use args::{Args, Graphics, ThemeName};
 pub use startup::run;
+
+/// Strings of the interface that are not in sight all the time, so that a test can ask for their glyphs.
+pub fn interface_strings() -> Vec<String> {
+    let mut strings = vec![status::CAUTION.to_owned(), chart_view::HINT.to_owned()];
+    for quantity in quantity::QUANTITIES {
+        strings.extend(
+            [quantity.name, quantity.definition, quantity.method, quantity.source]
+                .map(str::to_owned),
+        );
+    }
+    for (keys, what) in keys::HANDLE_KEYS.iter().chain(keys::CHART_KEYS) {
+        strings.extend([(*keys).to_owned(), (*what).to_owned()]);
+    }
+    strings
+}

@@ -16,8 +16,8 @@ use eframe::egui::{
 use std::fmt::Write as _;
 
 /// Width of the names and units.
-const NAMES: f32 = 84.0;
-const ROW: f32 = 18.0;
+const NAMES: f32 = 88.0;
+const ROW: f32 = 19.0;
 const SMALL_ROW: f32 = 15.0;
 
 /// The whole table.
@@ -105,11 +105,12 @@ fn parcels_ui(ui: &mut Ui, paint: &Paint, item: &Item, asks: &mut Asks) {
         ui.add_space(5.0);
         ui.label(RichText::new("on chart:").small().weak());
     });
+    ui.spacing_mut().button_padding.x = 3.0;
     for (parcel, rect) in Parcel::ALL.into_iter().zip(cells) {
         let chosen = paint.view.parcel == parcel;
         let response = ui.place(
             rect.shrink2(vec2(0.0, 1.0)),
-            Button::new(RichText::new(parcel_heading(parcel)).size(12.0))
+            Button::new(RichText::new(parcel_heading(parcel)).size(11.5))
                 .selected(chosen)
                 .truncate(),
         );
@@ -153,18 +154,24 @@ fn row_ui(ui: &mut Ui, paint: &Paint, item: &Item, quantity: &Quantity, asks: &m
     let high = if ranges.is_some() {
         ROW + 2.0 * SMALL_ROW
     } else {
-        ROW + SMALL_ROW
+        ROW
     };
     let (row, _) = ui.allocate_exact_size(vec2(ui.available_width(), high), Sense::hover());
     let (names, cells) = columns(row);
     in_rect(ui, names, |ui| {
         let unit = (quantity.unit)(units);
-        let response = ui.add(
-            Label::new(bold(quantity.name))
-                .sense(Sense::focusable_noninteractive())
-                .selectable(false),
-        );
-        ui.label(RichText::new(unit).small().weak());
+        let response = ui
+            .horizontal(|ui| {
+                ui.spacing_mut().item_spacing.x = 4.0;
+                let name = ui.add(
+                    Label::new(bold(quantity.name))
+                        .sense(Sense::focusable_noninteractive())
+                        .selectable(false),
+                );
+                ui.label(RichText::new(unit).small().weak());
+                name
+            })
+            .inner;
         asks.describe(&response, || format!("{}: {}", quantity.name, quantity.definition));
         explain(&response, |ui| definition_ui(ui, quantity));
     });
@@ -188,6 +195,7 @@ fn cell_ui(ui: &mut Ui, paint: &Paint, item: &Item, quantity: &Quantity, parcel:
         .map(|preview| cell(quantity, &preview.numbers, parcel, units))
         .filter(|preview| *preview != working);
     let decisive = quantity.range.is_some();
+    let was = (received != working).then(|| received.text().to_owned());
     let mut text = bold(working.text()).size(if decisive { 15.0 } else { 13.0 });
     if preview.is_some() {
         text = text.color(paint.theme.quiet);
@@ -199,38 +207,55 @@ fn cell_ui(ui: &mut Ui, paint: &Paint, item: &Item, quantity: &Quantity, parcel:
             ui.label(bold(format!("→ {}", preview.text())).color(paint.theme.accent))
         })
         .inner,
-        None => ui.add(Label::new(text).truncate()),
+        None if decisive => ui.add(Label::new(text).truncate()),
+        None => {
+            ui.horizontal(|ui| {
+                ui.spacing_mut().item_spacing.x = 5.0;
+                let value = ui.label(text);
+                if let Some(was) = &was {
+                    was_ui(ui, paint, was);
+                } else if quantity.name == "Starts at"
+                    && parcel == Parcel::MostUnstable
+                    && item.results().numbers.most_unstable_is_surface
+                {
+                    ui.label(RichText::new("= surface").small().weak());
+                }
+                value
+            })
+            .inner
+        }
     };
     explain_hover(shown, quantity, &working, parcel);
-    let range = quantity
-        .range
-        .and_then(|range| range(item.results().doubt.range(parcel)));
-    if let Some(range) = &range {
-        let label = ui.add(Label::new(RichText::new(range_text(range)).size(11.5)).truncate());
-        label.on_hover_text(where_text(range, item, units));
-    } else if decisive {
-        ui.label(RichText::new("no range").small().weak());
+    if decisive {
+        let range = quantity
+            .range
+            .and_then(|range| range(item.results().doubt.range(parcel)));
+        match &range {
+            Some(range) => {
+                ui.add(Label::new(RichText::new(range_text(range)).size(11.5)).truncate())
+                    .on_hover_text(where_text(range, item, units));
+            }
+            None => {
+                ui.label(RichText::new("no range").small().weak());
+            }
+        }
+        if let Some(was) = was {
+            was_ui(ui, paint, &was);
+        }
     }
-    if received != working {
-        let label = ui.add(
-            Label::new(
-                RichText::new(format!("was {}", received.text()))
-                    .small()
-                    .color(paint.theme.quiet),
-            )
-            .truncate(),
-        );
-        label.on_hover_text(format!(
-            "As received: {} {}",
-            received.text(),
-            (quantity.unit)(units)
-        ));
-    } else if quantity.name == "Starts at"
-        && parcel == Parcel::MostUnstable
-        && item.results().numbers.most_unstable_is_surface
-    {
-        ui.label(RichText::new("= surface").small().weak());
-    }
+}
+
+/// The value received, where the working one differs.
+fn was_ui(ui: &mut Ui, paint: &Paint, was: &str) {
+    ui.add(
+        Label::new(
+            RichText::new(format!("was {was}"))
+                .small()
+                .color(paint.theme.quiet),
+        )
+        .truncate(),
+    )
+    .on_hover_text("As received");
 }
 
 fn where_text(range: &Extremes, item: &Item, units: Units) -> String {

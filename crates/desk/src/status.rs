@@ -53,7 +53,7 @@ pub(crate) fn timing_ui(ui: &Ui, paint: &Paint) {
     let mut line = paint.view.timing.line();
     if let Some(item) = paint.item() {
         line.push_str(&format!(
-            " · revision in {:.2} ms, {} levels",
+            " · session {:.2} ms, {} levels",
             item.results().computing.as_secs_f64() * 1e3,
             item.results().working.profile.len()
         ));
@@ -61,16 +61,16 @@ pub(crate) fn timing_ui(ui: &Ui, paint: &Paint) {
     Area::new(Id::unique("computing time"))
         .order(Order::Foreground)
         .interactable(false)
-        .pivot(Align2::LEFT_BOTTOM)
-        .fixed_pos(paint.layout.chart.left_bottom() + vec2(52.0, -40.0))
+        .pivot(Align2::RIGHT_TOP)
+        .fixed_pos(paint.layout.bar.right_top() + vec2(-4.0, 3.0))
         .show(ui.ctx(), |ui| {
             Frame::new()
                 .fill(paint.theme.panel)
                 .stroke((1.0, paint.theme.line))
                 .inner_margin(4.0)
                 .show(ui, |ui| {
-                    ui.set_max_width((paint.layout.chart.width() - 80.0).max(200.0));
-                    ui.label(RichText::new(line).size(11.0));
+                    ui.set_max_width((paint.layout.bar.width() - 260.0).max(200.0));
+                    ui.add(Label::new(RichText::new(line).size(10.5)).truncate());
                 });
         });
 }

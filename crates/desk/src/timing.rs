@@ -44,7 +44,7 @@ impl Timing {
             )
         };
         format!(
-            "computing: last {}, p50 {}, p99 {} of {} frames · layout {}",
+            "last {}, p50 {}, p99 {} of {} · layout {}",
             ms(self.frames.back().copied()),
             ms(self.quantile(0.5)),
             ms(self.quantile(0.99)),

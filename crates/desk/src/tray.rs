@@ -52,13 +52,14 @@ pub(crate) fn rows_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks, drop_down: bo
     });
 }
 
-/// "00 UTC Wed 21 May"; a tilde where month and year are assumed.
+/// "00 UTC 21 May", minutes where there are any; a tilde where month and year are assumed.
 pub(crate) fn time_text(row: &TrayRow) -> String {
     match row.valid {
         Some(valid) => {
             let valid = valid.to_zoned(TimeZone::UTC);
             let assumed = if row.time_assumed { "~" } else { "" };
-            format!("{assumed}{}", valid.strftime("%H:%M UTC %a %-d %b"))
+            let clock = if valid.minute() == 0 { "%H" } else { "%H:%M" };
+            format!("{assumed}{}", valid.strftime(&format!("{clock} UTC %-d %b")))
         }
         None => "time unknown".to_owned(),
     }

@@ -4,6 +4,7 @@ use crate::history::Joining;
 use crate::sounding::{Amendments, Entry};
 use crate::thermo::{Pressure, Temperature};
 use crate::trust::{with_repair, without_repair};
+use crate::wording::celsius;
 use crate::{
     Command, Document, IntervalEnd, Item, ItemId, RepairId, Results, Session, SurfaceQuantity,
     Weight, draft, edit,
@@ -299,11 +300,11 @@ fn set_surface(
     if !USABLE.contains(&value.k()) {
         return Err((
             format!(
-                "{:.1} °C is not a {} anybody has measured",
-                value.c(),
+                "{} is not a {} anybody has measured",
+                celsius(value),
                 quantity.words()
             ),
-            "Give a value from -100 to 65 °C",
+            "Give a value from −100 to 65 °C",
         ));
     }
     let value = match quantity {
@@ -331,7 +332,7 @@ fn pin(
     if value.is_some_and(|value| !USABLE.contains(&value)) {
         return Err((
             "this is not a usable dew point".to_owned(),
-            "Give a value from -100 to 65 °C",
+            "Give a value from −100 to 65 °C",
         ));
     }
     match end {

@@ -31,6 +31,10 @@ pub struct Message {
 }
 
 impl Message {
+    pub(crate) fn says_like(&self, other: &Self) -> bool {
+        (self.weight, &self.about, &self.what) == (other.weight, &other.about, &other.what)
+    }
+
     /// On one line.
     pub fn line(&self) -> String {
         let mut line = String::new();

@@ -135,8 +135,9 @@ impl Session {
                 self.take_in(arrival);
             }
         }
-        self.files.flush();
         self.poll();
+        self.files.flush();
+        self.poll_disk();
     }
 
     /// Jobs of reading still under way.
@@ -237,14 +238,16 @@ impl Session {
         what: impl Into<String>,
         remedy: impl Into<String>,
     ) {
-        let id = MessageId(self.count());
-        self.messages.push(Message {
-            id,
+        let message = Message {
+            id: MessageId(self.count()),
             weight,
             about: about.into(),
             what: what.into(),
             remedy: remedy.into(),
-        });
+        };
+        // Said again, it is said once, and last.
+        self.messages.retain(|told| !told.says_like(&message));
+        self.messages.push(message);
     }
 }
 

@@ -22,9 +22,11 @@ pub fn tray(session: &Session) -> String {
         row.push("findings".to_owned());
         row
     }];
-    rows.extend(items.iter().map(|item| row(item)));
+    // One line says it when all are; among real ones each invented one says it itself.
+    let all_demo = items.iter().all(|item| item.demo());
+    rows.extend(items.iter().map(|item| row(item, !all_demo)));
     let mut text = String::new();
-    if items.iter().all(|item| item.demo()) {
+    if all_demo {
         text.push_str(&format!("{INVENTED}\n"));
     }
     text.push_str(&aligned(&rows));
@@ -35,9 +37,13 @@ pub fn tray(session: &Session) -> String {
     text
 }
 
-fn row(item: &Item) -> Vec<String> {
+fn row(item: &Item, mark_demo: bool) -> Vec<String> {
     let results = item.results();
-    let mark = if item.demo() { " *" } else { "" };
+    let mark = if item.demo() && mark_demo {
+        format!(" ({INVENTED})")
+    } else {
+        String::new()
+    };
     let mut row = vec![
         format!("{}{mark}", item.sounding().station.label()),
         time(item.sounding().times.valid()),

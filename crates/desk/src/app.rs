@@ -381,6 +381,13 @@ impl Desk {
         }
         self.panel(ui, layout.verdict, "verdict", |ui| verdict::verdict_ui(ui, &paint, asks));
         self.panel(ui, layout.status, "status", |ui| status::status_ui(ui, &paint, asks));
+        for rect in [layout.verdict, layout.status] {
+            ui.painter().hline(
+                rect.x_range(),
+                rect.top(),
+                egui::Stroke::new(1.0, self.theme.line),
+            );
+        }
         dialogs::dialog_ui(ui.ctx(), &paint, asks);
         status::timing_ui(ui, &paint);
         seen

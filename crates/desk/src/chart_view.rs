@@ -19,8 +19,8 @@ use dewbound_session::thermo::{
 use dewbound_session::trust::Grade;
 use dewbound_session::{CandidateKind, Doubt, Item, ItemId, SurfaceQuantity, wording};
 use eframe::egui::{
-    Align2, Context, CursorIcon, Event, EventFilter, FontId, Id, Key, Pos2, Rect, Role, Sense,
-    Stroke, StrokeKind, Ui, WidgetInfo, pos2, vec2,
+    Align2, Context, CursorIcon, Event, EventFilter, FontId, Id, Key, Label, Pos2, Rect, RichText,
+    Role, Sense, Stroke, StrokeKind, Ui, WidgetInfo, pos2, text::LayoutJob, vec2,
 };
 use std::collections::HashMap;
 use std::sync::Arc;
@@ -510,38 +510,38 @@ fn beside_handle(ui: &Ui, paint: &Paint, item: &Item, frame: &ChartFrame) {
     let painter = ui.painter().with_clip_rect(frame.rect);
     let theme = paint.theme;
     let plot = to_rect(frame.geometry.plot());
-    let paper = theme.chart_ink(Ink::Paper);
-    let written = |at: Pos2, align: Align2, text: String, size: f32, ink| {
-        let galley = painter.layout_no_wrap(text, FontId::proportional(size), ink);
-        let mut rect = align.anchor_size(at, galley.size());
-        // Never beyond the edge of the plot.
-        let shift = (plot.left() + 2.0 - rect.left()).max(0.0) - (rect.right() - plot.right() + 2.0).max(0.0);
-        rect = rect.translate(vec2(shift, 0.0));
-        painter.rect_filled(rect.expand(2.0), 2.0, paper.gamma_multiply(0.9));
-        painter.galley(rect.min, galley, ink);
-        rect
-    };
-    if let Some(place) = frame.touch.handle(chart::Handle::Dewpoint) {
-        let reach = format!("edits reach: {}", item.results().working.reach.why);
-        let edited = item
-            .working_surface(SurfaceQuantity::Dewpoint)
-            .zip(item.received_surface(SurfaceQuantity::Dewpoint))
-            .is_some_and(|(a, b)| (a.k() - b.k()).abs() > 1e-6);
-        let at = pos2(place.centre.x as f32, plot.bottom() - 3.0);
-        if edited || paint.dragging() {
-            written(at, Align2::CENTER_BOTTOM, reach, 11.0, theme.quiet);
-        }
+    if frame.touch.handle(chart::Handle::Dewpoint).is_some() {
+        // In the row of the axis title, right of it: nearer to the handle it would cover the curves.
+        let right = frame.rect.right_bottom() + vec2(-4.0, -3.0);
+        let mut job = LayoutJob::simple_singleline(
+            format!("edits reach: {}", item.results().working.reach.why),
+            FontId::proportional(11.0),
+            theme.quiet,
+        );
+        job.wrap.max_width = right.x - plot.center().x - 56.0;
+        job.wrap.max_rows = 1;
+        job.wrap.break_anywhere = true;
+        let galley = painter.layout_job(job);
+        let rect = Align2::RIGHT_BOTTOM.anchor_size(right, galley.size());
+        painter.galley(rect.min, galley, theme.quiet);
     }
     if let Some(typing) = &paint.view.typing
         && let Some(place) = frame.touch.handle(handle::handle_of(typing.quantity))
     {
         let at = to_pos(place.centre) - vec2(0.0, 22.0);
         let text = format!(
-            "{}▏{}  Enter sets",
+            "{}_ {} · Enter sets",
             typing.text,
             units::sign(paint.view.units.temperature)
         );
-        let rect = written(at, Align2::CENTER_BOTTOM, text, 15.0, theme.ink);
+        let galley = painter.layout_no_wrap(text, FontId::proportional(15.0), theme.ink);
+        let mut rect = Align2::CENTER_BOTTOM.anchor_size(at, galley.size());
+        // Never beyond the edge of the plot.
+        let shift = (plot.left() + 8.0 - rect.left()).max(0.0)
+            - (rect.right() - plot.right() + 8.0).max(0.0);
+        rect = rect.translate(vec2(shift, 0.0));
+        painter.rect_filled(rect.expand(4.0), 2.0, theme.card);
+        painter.galley(rect.min, galley, theme.ink);
         painter.rect_stroke(
             rect.expand(4.0),
             2.0,
@@ -557,23 +557,30 @@ fn hint_ui(ui: &mut Ui, paint: &Paint, frame: &ChartFrame) {
         return;
     }
     let plot = to_rect(frame.geometry.plot());
-    let rect = Rect::from_center_size(
-        pos2(plot.center().x, plot.top() + 66.0),
-        vec2((plot.width() - 8.0).min(540.0), 28.0),
+    // In the margin above the plot, where it hides nothing but the upper temperature labels.
+    let narrow = plot.width() < 520.0;
+    let (left, right) = if narrow {
+        (frame.rect.left(), frame.rect.right())
+    } else {
+        (plot.left(), plot.right())
+    };
+    let rect = Rect::from_min_max(
+        pos2(left, frame.rect.top()),
+        pos2(right, plot.top() - 1.0),
     );
     ui.painter().rect_filled(rect, 3.0, paint.theme.accent);
     ui.scope_builder(
         eframe::egui::UiBuilder::new()
             .id_salt("hint")
-            .max_rect(rect.shrink2(vec2(8.0, 3.0))),
+            .max_rect(rect.shrink2(vec2(8.0, 1.0))),
         |ui| {
             ui.horizontal_centered(|ui| {
-                ui.add(
-                    eframe::egui::Label::new(
-                        bold(HINT).color(paint.theme.on_accent).size(12.0),
-                    )
-                    .truncate(),
-                );
+                let text = if narrow {
+                    RichText::new(HINT).size(11.0)
+                } else {
+                    bold(HINT).size(12.0)
+                };
+                ui.add(Label::new(text.color(paint.theme.on_accent)).truncate());
             });
         },
     );

@@ -147,6 +147,8 @@ fn card_ui(
                 format!("{label}, {}: Enter {} it", headline(finding, card), if open { "closes" } else { "opens" })
             });
             if response.clicked() {
+                // So that Tab goes on from here.
+                response.request_focus();
                 asks.push(Ask::Card(item.id(), (!open).then_some(index)));
             }
             ui.label(
@@ -216,18 +218,17 @@ fn opened_ui(
     if !finding.evidence.is_empty() {
         Grid::new(("evidence", index))
             .num_columns(2)
+            .min_row_height(15.0)
             .spacing(vec2(10.0, 2.0))
             .show(ui, |ui| {
                 for evidence in &finding.evidence {
-                    ui.label(RichText::new(evidence.label).weak());
-                    ui.label(
-                        format!(
-                            "{} {}",
-                            wording::number(evidence.value, evidence.decimals),
-                            evidence.unit
-                        )
-                        .trim_end(),
+                    ui.label(RichText::new(evidence.label).size(12.0).weak());
+                    let value = format!(
+                        "{} {}",
+                        wording::number(evidence.value, evidence.decimals),
+                        evidence.unit
                     );
+                    ui.label(RichText::new(value.trim_end()).size(12.0));
                     ui.end_row();
                 }
             });
@@ -299,6 +300,7 @@ fn cost_ui(ui: &mut Ui, paint: &Paint, id: RepairId, applied: bool, cost: Option
     };
     Grid::new(("cost", id.finding, id.repair))
         .num_columns(4)
+        .min_row_height(14.0)
         .spacing(vec2(10.0, 1.0))
         .show(ui, |ui| {
             let small = |text: &str| RichText::new(text.to_owned()).size(11.5);

@@ -10,9 +10,10 @@ use eframe::egui::{Context, Pos2};
 
 /// Takes hold, moves, lets go; scrolls.
 pub(crate) fn pointer(ctx: &Context, desk: &mut Desk) {
-    let (position, pressed, down, escape) = ctx.input(|input| {
+    let (position, origin, pressed, down, escape) = ctx.input(|input| {
         (
             input.pointer.latest_pos(),
+            input.pointer.press_origin().or(input.pointer.latest_pos()),
             input.pointer.primary_pressed(),
             input.pointer.primary_down(),
             input.key_pressed(eframe::egui::Key::Escape),
@@ -22,8 +23,9 @@ pub(crate) fn pointer(ctx: &Context, desk: &mut Desk) {
         desk.apply(Command::CancelGesture);
         desk.view.gesture = Some(Gesture::GivenUp);
     }
-    if pressed && let Some(position) = position {
-        take_hold(ctx, desk, position);
+    // A slow frame may hold both the press and what followed it: what counts is where the button went down.
+    if pressed && let Some(origin) = origin {
+        take_hold(ctx, desk, origin);
     }
     if let Some(position) = position {
         move_to(ctx, desk, position);

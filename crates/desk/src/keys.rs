@@ -35,9 +35,15 @@ fn pressed(shortcut: &Shortcut, event: &Event) -> bool {
         && modifiers.alt == shortcut.alt
 }
 
+/// Whether a text field has the keyboard.
+fn in_text_field(ctx: &Context) -> bool {
+    ctx.memory(|memory| memory.focused())
+        .is_some_and(|id| eframe::egui::TextEdit::load_state(ctx, id).is_some())
+}
+
 /// What the keys of this frame ask for. A text field keeps what it understands itself.
 pub(crate) fn actions(ctx: &Context) -> Vec<Action> {
-    let typing = ctx.egui_wants_keyboard_input();
+    let typing = in_text_field(ctx);
     let mut asked = Vec::new();
     ctx.input_mut(|input| {
         input.events.retain(|event| {

@@ -12,12 +12,13 @@ pub(crate) const LEAST_CHART: Vec2 = vec2(420.0, 380.0);
 /// The smallest window for which all of this holds.
 pub(crate) const LEAST_WINDOW: Vec2 = vec2(720.0, 530.0);
 
-const BAR: f32 = 30.0;
-const VERDICT: f32 = 42.0;
-const STATUS: f32 = 24.0;
+const BAR: f32 = 28.0;
+const VERDICT: f32 = 38.0;
+const STATUS: f32 = 20.0;
 const TITLE: f32 = 50.0;
-const LOW_TITLE: f32 = 30.0;
-const SENTENCE: f32 = 24.0;
+const LOW_TITLE: f32 = 28.0;
+/// Two lines.
+const SENTENCE: f32 = 36.0;
 /// Three parcels with value and range.
 const CAPE: f32 = 78.0;
 const GAP: f32 = 4.0;
@@ -117,7 +118,8 @@ impl Layout {
                 tabs: Rect::from_min_max(pos2(side.left(), side.top() + CAPE + GAP), side.max),
             }
         } else {
-            let numbers_high = (side.height() * 0.5).clamp(270.0, 460.0);
+            // All rows of the table and a note or two; what is left goes to the findings.
+            let numbers_high = (side.height() * 0.5).clamp(270.0, 370.0);
             let split = (side.bottom() - numbers_high).max(side.top());
             Side::Stacked {
                 findings: Rect::from_min_max(side.min, pos2(side.right(), split - GAP)),

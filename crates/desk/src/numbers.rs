@@ -16,7 +16,7 @@ use eframe::egui::{
 use std::fmt::Write as _;
 
 /// Width of the names and units.
-const NAMES: f32 = 88.0;
+const NAMES: f32 = 82.0;
 const ROW: f32 = 19.0;
 const SMALL_ROW: f32 = 15.0;
 
@@ -105,7 +105,8 @@ fn parcels_ui(ui: &mut Ui, paint: &Paint, item: &Item, asks: &mut Asks) {
         ui.add_space(5.0);
         ui.label(RichText::new("on chart:").small().weak());
     });
-    ui.spacing_mut().button_padding.x = 3.0;
+    ui.spacing_mut().button_padding = vec2(3.0, 2.0);
+    ui.spacing_mut().interact_size.y = 20.0;
     for (parcel, rect) in Parcel::ALL.into_iter().zip(cells) {
         let chosen = paint.view.parcel == parcel;
         let response = ui.place(
@@ -250,7 +251,7 @@ fn was_ui(ui: &mut Ui, paint: &Paint, was: &str) {
     ui.add(
         Label::new(
             RichText::new(format!("was {was}"))
-                .small()
+                .size(10.5)
                 .color(paint.theme.quiet),
         )
         .truncate(),

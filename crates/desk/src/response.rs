@@ -13,7 +13,7 @@ use eframe::egui::{
     Align, Align2, Color32, CursorIcon, FontId, Id, Label, Layout, Pos2, Rect, RichText, Role,
     Sense, Stroke, StrokeKind, Ui, UiBuilder, Vec2b, WidgetInfo, pos2, vec2,
 };
-use egui_plot::{Axis, HLine, Line, LineStyle, MarkerShape, Plot, PlotPoints, PlotTransform, PlotUi, Points, Span, VLine};
+use egui_plot::{Axis, AxisHints, HLine, Line, LineStyle, MarkerShape, Plot, PlotPoints, PlotTransform, PlotUi, Points, Span, VLine};
 
 /// Identity of the response in the window.
 pub(crate) fn response_id() -> Id {
@@ -44,14 +44,23 @@ impl Seen {
 pub(crate) fn sentence_ui(ui: &mut Ui, paint: &Paint, _asks: &Asks) {
     let rect = ui.max_rect().shrink2(vec2(8.0, 1.0));
     ui.scope_builder(UiBuilder::new().max_rect(rect), |ui| {
+        // Horizontal, so that a sentence of one line stands in the middle of the room for two.
         ui.with_layout(Layout::left_to_right(Align::Center), |ui| {
             if let Some(item) = paint.item() {
-                let sentence = &item.results().which_parcel;
-                ui.add(Label::new(bold(sentence.as_str()).size(13.0)).truncate())
+                let sentence = capitalised(&item.results().which_parcel);
+                ui.add(Label::new(bold(sentence.as_str()).size(12.0)).wrap())
                     .on_hover_text(sentence);
             }
         });
     });
+}
+
+/// As a sentence begins.
+fn capitalised(text: &str) -> String {
+    let mut chars = text.chars();
+    chars.next().map_or_else(String::new, |first| {
+        first.to_uppercase().chain(chars).collect()
+    })
 }
 
 /// The curve; gives back where it lies.
@@ -93,15 +102,27 @@ pub(crate) fn response_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) -> Option
         .default_y_bounds(0.0, most)
         .grid_color(theme.line)
         .label_formatter(|_| None)
-        .y_axis_min_width(44.0)
-        .x_axis_formatter(move |mark, _| {
-            format!(
-                "{} {}",
-                wording::number(mark.value, decimals(mark.step_size)),
-                units::sign(unit)
-            )
-        })
-        .y_axis_formatter(|mark, _| wording::number(mark.value, 0))
+        .custom_x_axes(vec![
+            AxisHints::new_x()
+                .formatter(move |mark, _| {
+                    format!(
+                        "{} {}",
+                        wording::number(mark.value, decimals(mark.step_size)),
+                        units::sign(unit)
+                    )
+                })
+                .label_spacing(36.0..=44.0)
+                .tick_label_font(FontId::proportional(11.0))
+                .tick_label_color(theme.ink),
+        ])
+        .custom_y_axes(vec![
+            AxisHints::new_y()
+                .formatter(|mark, _| wording::number(mark.value, 0))
+                .min_thickness(44.0)
+                .label_spacing(16.0..=20.0)
+                .tick_label_font(FontId::proportional(11.0))
+                .tick_label_color(theme.ink),
+        ])
         .show(&mut child, |plot| {
             plot.set_plot_bounds_x(low..=high);
             plot.set_plot_bounds_y(0.0..=most);
@@ -253,9 +274,19 @@ fn words(ui: &Ui, paint: &Paint, item: &Item, seen: &Seen) {
     }
     if let Some(working) = item.working_surface(SurfaceQuantity::Dewpoint) {
         let x = seen.x_of(working);
+        let mut text = units::temperature(working, paint.view.units.temperature);
+        // Beyond the curve an arrow says on which side the working value is.
+        if x < frame.left() {
+            text = format!("← {text}");
+        } else if x > frame.right() {
+            text = format!("{text} →");
+        }
+        let outside = !frame.x_range().contains(x);
+        let x = x.clamp(frame.left() - 4.0, frame.right() + 4.0);
         let top = pos2(x, frame.bottom() - 9.0);
-        painter.circle(top, 7.0, theme.card, Stroke::new(2.5, theme.accent));
-        let text = units::temperature(working, paint.view.units.temperature);
+        if !outside {
+            painter.circle(top, 7.0, theme.card, Stroke::new(2.5, theme.accent));
+        }
         let align = if x > frame.center().x {
             (vec2(-12.0, 0.0), Align2::RIGHT_CENTER)
         } else {

@@ -131,6 +131,12 @@ fn no_window(error: &eframe::Error) -> NoWindow {
         eframe::Error::Winit(_) | eframe::Error::WinitEventLoop(_) => {
             NoWindow::Display(display::dead())
         }
+        // What these libraries say runs over many lines and helps nobody who can't mend a driver.
+        eframe::Error::Glutin(_) | eframe::Error::NoGlutinConfigs(..) => {
+            NoWindow::Graphics("OpenGL has no driver for it".to_owned())
+        }
+        eframe::Error::OpenGL(_) => NoWindow::Graphics("its OpenGL is too old".to_owned()),
+        eframe::Error::Wgpu(_) => NoWindow::Graphics("wgpu can't draw on it".to_owned()),
         other => NoWindow::Graphics(first_line(&other.to_string())),
     }
 }

@@ -74,7 +74,7 @@ const LIGHT: Theme = Theme {
     card: hex(0xfd_faf4),
     raised: hex(0xe9_e2d2),
     raised_hover: hex(0xdd_d4bf),
-    line: hex(0xc9_bfa8),
+    line: hex(0xb8_ac92),
     ink: hex(0x1e_2429),
     quiet: hex(0x55_5c64),
     accent: hex(0x00_5f96),
@@ -88,7 +88,7 @@ const LIGHT: Theme = Theme {
     surface: hex(0xa8_4300),
     mixed: hex(0x00_5f96),
     most_unstable: hex(0x8a_4a74),
-    interval: hex(0xe8_dcc0),
+    interval: hex(0xef_e6d0),
     shadow: Color32::from_black_alpha(40),
 };
 
@@ -100,7 +100,7 @@ const DARK: Theme = Theme {
     card: hex(0x23_2930),
     raised: hex(0x2f_3740),
     raised_hover: hex(0x3d_4751),
-    line: hex(0x44_4e58),
+    line: hex(0x56_616c),
     ink: hex(0xee_ebe2),
     quiet: hex(0xaa_b0b6),
     accent: hex(0x56_b4e9),
@@ -114,7 +114,7 @@ const DARK: Theme = Theme {
     surface: hex(0xf0_8a4b),
     mixed: hex(0x56_b4e9),
     most_unstable: hex(0xdf_9cc4),
-    interval: hex(0x35_3528),
+    interval: hex(0x33_3a3c),
     shadow: Color32::from_black_alpha(140),
 };
 

@@ -20,8 +20,10 @@ pub(crate) fn title_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
         ui.spacing_mut().item_spacing.y = 0.0;
         if paint.layout.low {
             ui.with_layout(Layout::left_to_right(Align::Center), |ui| {
-                ui.add(Label::new(bold(station(item)).size(15.0)).truncate());
-                ui.add(Label::new(RichText::new(times(item, paint.now)).size(12.0)).truncate());
+                let full = times(item, paint.now);
+                ui.add(Label::new(bold(identity(item)).size(14.0)).truncate());
+                ui.add(Label::new(RichText::new(short_times(item, paint.now)).size(11.5)).truncate())
+                    .on_hover_text(full);
             });
         } else {
             ui.with_layout(Layout::right_to_left(Align::Min), |ui| {
@@ -48,8 +50,18 @@ pub(crate) fn title_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
     });
 }
 
-/// "Hollin Ridge 03999", and that it is invented.
+/// With the stamp of invented data.
 fn station(item: &Item) -> String {
+    let mut text = identity(item);
+    if item.demo() {
+        text.push_str(" · ");
+        text.push_str(wording::INVENTED);
+    }
+    text
+}
+
+/// "Hollin Ridge 03999".
+fn identity(item: &Item) -> String {
     let station = &item.sounding().station;
     let mut text = station.label().to_owned();
     for id in [&station.wmo, &station.icao].into_iter().flatten() {
@@ -58,11 +70,29 @@ fn station(item: &Item) -> String {
             text.push_str(id);
         }
     }
-    if item.demo() {
-        text.push_str(" · ");
-        text.push_str(wording::INVENTED);
-    }
     text
+}
+
+/// "23:12 for 00 UTC 21 May 2031 · 3 h 20 min old", where one line has to do.
+fn short_times(item: &Item, now: Timestamp) -> String {
+    let times = &item.sounding().times;
+    let format = |time: Timestamp, format| time.to_zoned(TimeZone::UTC).strftime(format).to_string();
+    let said = match (times.launch, times.nominal) {
+        (Some(launch), Some(nominal)) => format!(
+            "{} for {}",
+            format(launch, "%H:%M"),
+            format(nominal, "%H UTC %-d %b %Y")
+        ),
+        (Some(time), None) | (None, Some(time)) => format(time, "%H:%M UTC %-d %b %Y"),
+        (None, None) => String::new(),
+    };
+    let assumed = if times.assumed { "~" } else { "" };
+    let age = age(times.launch.or(times.nominal), now);
+    if said.is_empty() {
+        age
+    } else {
+        format!("{assumed}{said} · {age}")
+    }
 }
 
 fn hour(time: Timestamp) -> String {

@@ -19,7 +19,7 @@ const WIDE: f32 = 1350.0;
 
 /// The bar.
 pub(crate) fn verdict_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
-    let rect = ui.max_rect().shrink2(vec2(8.0, 5.0));
+    let rect = ui.max_rect().shrink2(vec2(8.0, 4.0));
     ui.scope_builder(UiBuilder::new().max_rect(rect), |ui| {
         ui.with_layout(Layout::left_to_right(Align::Center), |ui| {
             let Some(item) = paint.item() else {

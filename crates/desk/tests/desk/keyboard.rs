@@ -2,7 +2,7 @@
 
 use crate::support::*;
 use dewbound_session::{Standing, SurfaceQuantity};
-use eframe::egui::{Key, Modifiers, OutputCommand};
+use eframe::egui::{Event, Key, Modifiers, OutputCommand};
 use egui_kittest::kittest::Queryable as _;
 
 fn close(a: f64, b: f64) -> bool {
@@ -38,7 +38,7 @@ fn a_typed_number_is_set_by_enter_and_dropped_by_escape() {
     tab_to(&mut window, "Surface dew point");
     let start = dewpoint(&window);
     for text in ["1", "2", ".", "5"] {
-        window.event(eframe::egui::Event::Text(text.to_owned()));
+        window.event(Event::Text(text.to_owned()));
     }
     window.run();
     assert!(close(dewpoint(&window), start), "nothing is set while typing");
@@ -48,7 +48,7 @@ fn a_typed_number_is_set_by_enter_and_dropped_by_escape() {
     assert!(close(dewpoint(&window), start));
     assert_eq!(focused(&window).as_deref(), Some("Surface dew point"));
     for text in ["1", "2", ",", "5"] {
-        window.event(eframe::egui::Event::Text(text.to_owned()));
+        window.event(Event::Text(text.to_owned()));
     }
     window.key_press(Key::Enter);
     window.run();
@@ -108,14 +108,14 @@ fn a_verdict_is_chosen_signed_and_kept() {
     window.run();
     assert!(item(&window).document().verdict.is_some());
     tab_to(&mut window, "Reasons");
-    window.event(eframe::egui::Event::Text("fits its neighbours".to_owned()));
+    window.event(Event::Text("fits its neighbours".to_owned()));
     window.run();
     assert_eq!(item(&window).document().reasons, "fits its neighbours");
     window.key_press_modifiers(Modifiers::COMMAND, Key::Enter);
     window.run();
     assert!(has_text(&window, "Who decides?"), "initials are asked at the first verdict");
     assert!(!matches!(item(&window).standing(), Standing::Decided(_)));
-    window.event(eframe::egui::Event::Text("AB".to_owned()));
+    window.event(Event::Text("AB".to_owned()));
     window.run();
     window.key_press(Key::Enter);
     window.run();
@@ -132,19 +132,24 @@ fn a_verdict_is_chosen_signed_and_kept() {
 #[test]
 fn the_line_is_copied() {
     let (_folder, mut window) = usual();
-    window.key_press_modifiers(Modifiers::COMMAND | Modifiers::SHIFT, Key::C);
-    let mut copied = None;
-    for _ in 0..4 {
-        window.step();
-        for command in &window.output().platform_output.commands {
-            if let OutputCommand::CopyText(text) = command {
-                copied = Some(text.clone());
-            }
-        }
-        if copied.is_some() {
-            break;
-        }
-    }
+    // One event, one frame: what a frame puts on the clipboard is gone with the next.
+    window.input_mut().events.push(Event::Key {
+        key: Key::C,
+        physical_key: None,
+        pressed: true,
+        repeat: false,
+        modifiers: Modifiers::COMMAND | Modifiers::SHIFT,
+    });
+    window.step();
+    let copied = window
+        .output()
+        .platform_output
+        .commands
+        .iter()
+        .find_map(|command| match command {
+            OutputCommand::CopyText(text) => Some(text.clone()),
+            _ => None,
+        });
     let line = copied.expect("something is on the clipboard");
     assert_eq!(line, item(&window).copy_line());
     assert!(line.contains("official warnings"), "{line}");

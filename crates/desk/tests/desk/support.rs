@@ -3,7 +3,7 @@
 use dewbound_desk::{Args, Desk};
 use dewbound_session::{Config, Item, Session, SurfaceQuantity};
 use eframe::egui::{Key, Vec2, vec2};
-use egui_kittest::kittest::{NodeT as _, Queryable as _};
+use egui_kittest::kittest::NodeT as _;
 use egui_kittest::{Harness, HarnessBuilder};
 use jiff::Timestamp;
 use std::path::Path;

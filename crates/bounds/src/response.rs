@@ -405,6 +405,25 @@ mod tests {
         assert!(cape(at - 1) < cape(at) && cape(at) < cape(at + 1));
         // 20 °C through the layer is far from what was received.
         assert!(cape(at) > as_received.numbers.mixed.as_ref().unwrap().cape + 500.0);
+        // And it counts: about the reported value alone, the least CAPE is the received one.
+        let found = candidates(&profile, Daylight::Day, &Thresholds::default());
+        let pins = Pins {
+            low: Some(Temperature::from_c(19.9)),
+            high: Some(Temperature::from_c(20.1)),
+        };
+        let narrow = interval(&found, found.surface_temperature, pins).unwrap();
+        let list = amendments(Reach::Mixed);
+        let narrow = super::response(
+            &profile,
+            &list,
+            Daylight::Day,
+            &found,
+            &narrow,
+            Plan::default(),
+        );
+        let least = narrow.range(Parcel::Mixed).unwrap().cape.least;
+        assert_eq!(least.value, Numbers::of(&profile).mixed.unwrap().cape);
+        assert_eq!(least.dewpoint, Temperature::from_c(20.0));
         // The other reaches tend to the received profile.
         let (profile, response) = of(doubtful(5.0), &amendments(Reach::Tapered));
         assert_eq!(response.as_received, None);

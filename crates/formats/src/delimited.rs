@@ -42,6 +42,8 @@ impl Delimiter {
             .has_headers(false)
             .flexible(true)
             .delimiter(self.0)
+            // A stray carriage return inside a line is part of a field.
+            .terminator(csv::Terminator::Any(b'\n'))
             .buffer_capacity(line.len() + 1)
             .from_reader(line.as_bytes());
         let mut record = csv::StringRecord::new();
@@ -107,6 +109,7 @@ mod tests {
     fn splits_plain_and_quoted_lines() {
         assert_eq!(COMMA.fields("a,,b"), ["a", "", "b"]);
         assert_eq!(COMMA.fields("\"a,\"\"b\"\"\",c"), ["a,\"b\"", "c"]);
+        assert_eq!(COMMA.fields("\"a\rb\",c"), ["a\rb", "c"]);
         // Left open: spoils this line only.
         assert_eq!(COMMA.fields("\"a,b"), ["a,b"]);
         assert_eq!(Delimiter(b';').fields("1,5;2"), ["1,5", "2"]);

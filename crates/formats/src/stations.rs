@@ -361,18 +361,18 @@ impl StationTable {
             if !is_row(line) {
                 continue;
             }
-            let has = delimiter.fields(line).len();
-            let wanted = if index == layout.line { widest } else { total };
-            line.extend(std::iter::repeat_n(
-                delimiter.char(),
-                wanted.saturating_sub(has),
-            ));
+            // Through fields, so that a quote left open doesn't swallow what is added.
+            let mut fields: Vec<String> = delimiter
+                .fields(line)
+                .into_iter()
+                .map(|field| field.into_owned())
+                .collect();
             if index == layout.line {
-                for name in &missing {
-                    line.push(delimiter.char());
-                    line.push_str(name);
-                }
+                fields.resize(widest, String::new());
+                fields.extend(missing.iter().map(|name| (*name).to_owned()));
             }
+            fields.resize(total.max(fields.len()), String::new());
+            *line = delimiter.join(&fields);
         }
         layout.clone()
     }

@@ -223,7 +223,8 @@ fn damaged_station_tables() {
         assert_eq!(
             again.by_wmo("09876").and_then(|station| station.elevation),
             Some(7.0),
-            "{text}"
+            "{text:?} became {:?}",
+            table.to_csv()
         );
     }
 }

@@ -56,6 +56,7 @@ mod sun;
 mod telling;
 #[cfg(test)]
 mod testing;
+mod winds;
 
 pub use amend::*;
 pub use mixed_layer::*;

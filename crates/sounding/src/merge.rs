@@ -4,6 +4,7 @@ use crate::clean::{HEIGHTS, cleaned};
 use crate::flight::{Flight, flight};
 use crate::profile::SAME_PRESSURE;
 use crate::telling::{Tally, at, hpa, place};
+use crate::winds::place_winds;
 use crate::{Level, LevelKind, Note, Place, Profile, Sampling, Sounding, Wind};
 
 /// A complete level this close (Pa) above an incomplete surface serves in its place.
@@ -36,7 +37,6 @@ pub(crate) fn received(sounding: &Sounding) -> (Profile, Vec<Note>) {
     let sampling = sampling(&clean);
     unusable.tell(sampling, &mut notes);
     saturated.tell(sampling, &mut notes);
-    note_without_pressure(&sounding.levels, &clean, &mut notes);
 
     let mut marked = with_pressure.iter().copied().filter(|&row| {
         clean
@@ -73,6 +73,11 @@ pub(crate) fn received(sounding: &Sounding) -> (Profile, Vec<Note>) {
     {
         height.get_or_insert(elevation);
     }
+    let placed = match sampling {
+        Sampling::Coded => place_winds(&mut profile, &clean, &mut notes),
+        Sampling::Fine => Vec::new(),
+    };
+    note_without_pressure(&sounding.levels, &clean, &placed, &mut notes);
     (profile, notes)
 }
 
@@ -103,7 +108,12 @@ fn sampling(levels: &[Level]) -> Sampling {
     }
 }
 
-fn note_without_pressure(received: &[Level], clean: &[Level], notes: &mut Vec<Note>) {
+fn note_without_pressure(
+    received: &[Level],
+    clean: &[Level],
+    placed: &[usize],
+    notes: &mut Vec<Note>,
+) {
     let carries = |level: &Level| {
         level.height.is_some()
             || level.temperature.is_some()
@@ -113,8 +123,11 @@ fn note_without_pressure(received: &[Level], clean: &[Level], notes: &mut Vec<No
     let left_out: Vec<&Level> = clean
         .iter()
         .zip(received)
-        .filter(|(clean, level)| clean.pressure.is_none() && carries(level))
-        .map(|(_, level)| level)
+        .enumerate()
+        .filter(|(index, (clean, level))| {
+            clean.pressure.is_none() && carries(level) && !placed.contains(index)
+        })
+        .map(|(_, (_, level))| level)
         .collect();
     let Some(first) = left_out.first() else {
         return;

@@ -82,9 +82,8 @@ impl Numbers {
         let surface_row = surface.and(profile.surface);
         let mixed = mixed_start(&environment, MIXED_DEPTH);
         let candidate = |level: usize| {
-            rows.get(level).is_some_and(|&row| {
-                Some(row) == surface_row || matches!(profile.received.get(row), Some(Some(_)))
-            })
+            rows.get(level)
+                .is_some_and(|&row| matches!(profile.received.get(row), Some(Some(_))))
         };
         let unstable = most_unstable_start(&environment, MOST_UNSTABLE_DEPTH, candidate);
         numbers.surface = surface.and_then(|start| lift(&environment, start, method));
@@ -167,19 +166,26 @@ mod tests {
                 theta_e(a).total_cmp(&theta_e(b))
             });
         assert_eq!(numbers.most_unstable_row, best);
+    }
 
-        // A row inserted by an amendment is never chosen, even when it has the largest theta-e.
+    #[test]
+    fn an_inserted_row_is_never_the_most_unstable() {
+        // Two levels far apart; the dried surface leaves the moist air of before in the row inserted 10 hPa up.
+        let mut levels = afternoon();
+        levels.drain(1..3);
+        let (profile, _) = received(levels);
         let list = Amendments {
-            reach: Some(Reach::Tapered),
+            reach: Some(Reach::Level),
             ..Amendments::default()
         };
         let working = list
-            .with_surface_temperature(Temperature::from_c(31.0))
-            .with_surface_dewpoint(Temperature::from_c(12.0))
+            .with_surface_dewpoint(Temperature::from_c(5.0))
             .apply(&profile, Daylight::Day);
-        let numbers = Numbers::of(&working.profile);
-        let row = numbers.most_unstable_row.unwrap();
-        assert!(working.profile.received[row].is_some());
+        let theta_e = |row| working.profile.air(row).unwrap().theta_e().k();
+        assert_eq!(working.profile.received[1], None);
+        assert!(theta_e(1) > theta_e(0) && theta_e(1) > theta_e(2));
+        let row = Numbers::of(&working.profile).most_unstable_row.unwrap();
+        assert_eq!(row, 2);
     }
 
     #[test]

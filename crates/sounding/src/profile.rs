@@ -31,7 +31,8 @@ impl Profile {
     /// Orders and merges the levels of a sounding.
     ///
     /// Levels at one pressure are merged: the first received value of each field is kept, later ones fill gaps, a
-    /// conflict is noted. Levels without pressure are left out (noted). The surface level is the one the format marks, else the lowest that
+    /// conflict is noted. Levels without pressure are left out (noted), except winds given by height in coded data: they are placed by the
+    /// heights of the other levels. The surface level is the one the format marks, else the lowest that
     /// reports temperature or wind. If it lacks temperature or humidity and a complete level lies within 10 hPa above it, that
     /// one serves, with a note. Values that are not numbers, or physically impossible beyond any doubt, count as missing, with a note.
     ///

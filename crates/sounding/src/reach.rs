@@ -124,14 +124,9 @@ pub(crate) fn edit_surface(
         return applied;
     };
     let old = surface_state(pressure, t_old, td_old);
-    // An unchanged value has an increment of exactly zero, whatever the rounding of the conversions.
     let increment = Increment {
-        theta: if t == t_old {
-            0.0
-        } else {
-            new.theta - old.theta
-        },
-        w: if td == td_old { 0.0 } else { new.w - old.w },
+        theta: new.theta - old.theta,
+        w: new.w - old.w,
     };
     let near = pressure - LEVEL_DEPTH;
     let top = match (applied.reach, applied.mixed_top) {

@@ -2,6 +2,8 @@
 //!
 //! `cargo bench -p dewbound-thermo`
 
+#![allow(clippy::expect_used)]
+
 use dewbound_thermo::*;
 use std::hint::black_box;
 use std::time::Instant;
@@ -64,133 +66,185 @@ fn profile(levels: usize) -> (Vec<f64>, Vec<f64>, Vec<Option<f64>>) {
     (p, t, td)
 }
 
+/// The profile with the dew point of its lowest tenth moved: what dragging the surface through a mixed layer does.
+fn dragged(dewpoint: &[Option<f64>], by: f64) -> Vec<Option<f64>> {
+    let lowest = dewpoint.len() / 10;
+    dewpoint
+        .iter()
+        .enumerate()
+        .map(|(i, td)| td.map(|td| if i < lowest { td + by } else { td }))
+        .collect()
+}
+
+fn starts(environment: &Environment) -> [Air; 3] {
+    [
+        environment.bottom(),
+        mixed_start(environment, MIXED_DEPTH).expect("a mixed parcel"),
+        most_unstable_start(environment, MOST_UNSTABLE_DEPTH, |_| true)
+            .expect("a most unstable parcel")
+            .1,
+    ]
+}
+
+fn lift_all(environment: &Environment, starts: &[Air]) {
+    for start in starts {
+        black_box(lift(environment, *start, Method::PseudoAdiabat));
+    }
+}
+
+fn measure(levels: usize) {
+    let (p, t, td) = profile(levels);
+    let input: Vec<f64> = (0..levels)
+        .map(|i| -3.0 + 6.0 * i as f64 / levels as f64)
+        .collect();
+    let mut output = vec![0.0; levels];
+    let exp = median_ns(|| {
+        for (y, x) in output.iter_mut().zip(black_box(&input)) {
+            *y = x.exp();
+        }
+        black_box(&mut output);
+    });
+    let row = |what: &str, ns: f64, parcels: f64| {
+        println!(
+            "{levels:>7}  {what:<56} {:>9.1} us {:>9.2}",
+            ns / 1e3,
+            ns / exp / parcels
+        );
+    };
+    row("exp over a buffer (the yardstick)", exp, 1.0);
+
+    let build = || {
+        Environment::new(black_box(&p), black_box(&t), black_box(&td)).expect("a usable profile")
+    };
+    let environment = build();
+    let fixed = starts(&environment);
+    row(
+        "environment, new",
+        median_ns(|| drop(black_box(build()))),
+        1.0,
+    );
+    // Two profiles by turns, so that every call has something to do.
+    let moved = [dragged(&td, 0.5), dragged(&td, -0.5)];
+    let mut top_moved = [td.clone(), td.clone()];
+    for (columns, by) in top_moved.iter_mut().zip([0.1, -0.1]) {
+        if let Some(Some(last)) = columns.last_mut() {
+            *last += by;
+        }
+    }
+    let mut memory = Some(build());
+    let mut turn = 0;
+    let mut refill = |columns: &[Vec<Option<f64>>; 2], then: &dyn Fn(&Environment)| {
+        turn += 1;
+        if let Some(old) = memory.take() {
+            let environment =
+                old.refilled(black_box(&p), black_box(&t), black_box(&columns[turn % 2]));
+            let environment = environment.expect("a usable profile");
+            then(&environment);
+            memory = Some(environment);
+        }
+    };
+    row(
+        "environment, refilled, all of it different",
+        median_ns(|| refill(&top_moved, &|_| ())),
+        1.0,
+    );
+    row(
+        "environment, refilled, lowest tenth different",
+        median_ns(|| refill(&moved, &|_| ())),
+        1.0,
+    );
+    let mixed = || {
+        black_box(mixed_start(&environment, MIXED_DEPTH));
+    };
+    row("mixed start", median_ns(mixed), 1.0);
+    let most_unstable = || {
+        black_box(most_unstable_start(
+            &environment,
+            MOST_UNSTABLE_DEPTH,
+            |_| true,
+        ));
+    };
+    row("most unstable start", median_ns(most_unstable), 1.0);
+
+    row(
+        "lift, per parcel",
+        median_ns(|| lift_all(&environment, &fixed)),
+        3.0,
+    );
+    let whole = || {
+        let environment = build();
+        lift_all(&environment, &fixed);
+    };
+    row(
+        "new environment + 3 lifts, per parcel",
+        median_ns(whole),
+        3.0,
+    );
+    let whole = |environment: &Environment| lift_all(environment, &starts(environment));
+    row(
+        "refilled (all) + starts + 3 lifts, per parcel",
+        median_ns(|| refill(&top_moved, &whole)),
+        3.0,
+    );
+    row(
+        "refilled (lowest tenth) + starts + 3 lifts, per parcel",
+        median_ns(|| refill(&moved, &whole)),
+        3.0,
+    );
+    let sixty = || {
+        for i in 0..60 {
+            let dewpoint = Temperature::from_k(fixed[0].dewpoint.k() - 3.0 + 0.1 * f64::from(i));
+            black_box(lift(
+                &environment,
+                Air {
+                    dewpoint,
+                    ..fixed[0]
+                },
+                Method::PseudoAdiabat,
+            ));
+        }
+    };
+    row(
+        "60 lifts through one environment, per parcel",
+        median_ns(sixty),
+        60.0,
+    );
+    let newton = || {
+        let theta_e = fixed[0].theta_e();
+        for &p in &p {
+            black_box(temperature_on_pseudoadiabat(theta_e, Pressure::from_pa(p)));
+        }
+    };
+    row(
+        "plain Newton at every level, temperature only",
+        median_ns(newton),
+        1.0,
+    );
+    let exactly = || {
+        for start in &fixed {
+            black_box(lift_exactly(&environment, *start, Method::PseudoAdiabat));
+        }
+    };
+    row("lift_exactly, per parcel", median_ns(exactly), 3.0);
+
+    for (name, start) in ["surface", "mixed", "most unstable"].iter().zip(fixed) {
+        let fast = lift(&environment, start, Method::PseudoAdiabat).expect("an ascent");
+        let exact = lift_exactly(&environment, start, Method::PseudoAdiabat).expect("an ascent");
+        println!(
+            "{levels:>7}  {name}: CAPE {:.3} J/kg, exactly {:.3}; buoyant layers: {}",
+            fast.cape,
+            exact.cape,
+            fast.buoyant.len()
+        );
+    }
+}
+
 fn main() {
     println!(
-        "{:>7}  {:<44} {:>11} {:>10}",
+        "{:>7}  {:<56} {:>12} {:>9}",
         "levels", "what", "time", "exp/level"
     );
     for levels in [100, 6_000] {
-        let (p, t, td) = profile(levels);
-        let input: Vec<f64> = (0..levels)
-            .map(|i| -3.0 + 6.0 * i as f64 / levels as f64)
-            .collect();
-        let mut output = vec![0.0; levels];
-        let exp = median_ns(|| {
-            for (y, x) in output.iter_mut().zip(black_box(&input)) {
-                *y = x.exp();
-            }
-            black_box(&mut output);
-        });
-        let row = |what: &str, ns: f64, parcels: f64| {
-            println!(
-                "{levels:>7}  {what:<44} {:>8.1} us {:>10.2}",
-                ns / 1e3,
-                ns / exp / parcels
-            );
-        };
-        row("exp over a buffer (the yardstick)", exp, 1.0);
-        let build = || {
-            Environment::new(black_box(&p), black_box(&t), black_box(&td))
-                .expect("a usable profile")
-        };
-        let environment = build();
-        let starts = |environment: &Environment| {
-            [
-                environment.bottom(),
-                mixed_start(environment, MIXED_DEPTH).expect("a mixed parcel"),
-                most_unstable_start(environment, MOST_UNSTABLE_DEPTH, |_| true)
-                    .expect("a most unstable parcel")
-                    .1,
-            ]
-        };
-        let fixed = starts(&environment);
-        row("environment", median_ns(|| drop(black_box(build()))), 1.0);
-        row(
-            "mixed start",
-            median_ns(|| drop(black_box(mixed_start(&environment, MIXED_DEPTH)))),
-            1.0,
-        );
-        row(
-            "most unstable start",
-            median_ns(|| {
-                drop(black_box(most_unstable_start(
-                    &environment,
-                    MOST_UNSTABLE_DEPTH,
-                    |_| true,
-                )))
-            }),
-            1.0,
-        );
-        let lift_all = |environment: &Environment, starts: &[Air]| {
-            for start in starts {
-                black_box(lift(environment, *start, Method::PseudoAdiabat));
-            }
-        };
-        row(
-            "lift, per parcel",
-            median_ns(|| lift_all(&environment, &fixed)),
-            3.0,
-        );
-        row(
-            "environment + 3 lifts, per parcel",
-            median_ns(|| {
-                let environment = build();
-                lift_all(&environment, &fixed);
-            }),
-            3.0,
-        );
-        row(
-            "environment + starts + 3 lifts, per parcel",
-            median_ns(|| {
-                let environment = build();
-                let starts = starts(&environment);
-                lift_all(&environment, &starts);
-            }),
-            3.0,
-        );
-        row(
-            "plain Newton at every level, per parcel",
-            median_ns(|| {
-                let theta_e = fixed[0].theta_e();
-                for &p in &p {
-                    black_box(temperature_on_pseudoadiabat(theta_e, Pressure::from_pa(p)));
-                }
-            }),
-            1.0,
-        );
-        row(
-            "lift_exactly, per parcel",
-            median_ns(|| {
-                for start in &fixed {
-                    black_box(lift_exactly(&environment, *start, Method::PseudoAdiabat));
-                }
-            }),
-            3.0,
-        );
-        row(
-            "60 lifts of one environment (a drag)",
-            median_ns(|| {
-                for i in 0..60 {
-                    let start = Air {
-                        dewpoint: Temperature::from_k(fixed[0].dewpoint.k() - 3.0 + 0.1 * i as f64),
-                        ..fixed[0]
-                    };
-                    black_box(lift(&environment, start, Method::PseudoAdiabat));
-                }
-            }),
-            60.0,
-        );
-        for (name, start) in ["surface", "mixed", "most unstable"].iter().zip(fixed) {
-            let (fast, exact) = (
-                lift(&environment, start, Method::PseudoAdiabat).expect("an ascent"),
-                lift_exactly(&environment, start, Method::PseudoAdiabat).expect("an ascent"),
-            );
-            println!(
-                "{levels:>7}  {name}: CAPE {:.3} J/kg, exactly {:.3}; {} buoyant layers",
-                fast.cape,
-                exact.cape,
-                fast.buoyant.len()
-            );
-        }
+        measure(levels);
     }
 }

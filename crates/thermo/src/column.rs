@@ -483,8 +483,8 @@ pub(crate) fn theta_and_moisture(levels: &Levels, bottom: f64, top: f64) -> (f64
                 (wb * pb, slope(zb, wb, pb)),
             )
         } else {
-            let pieces = (change / 2.0)
-                .max((zb - za) / 0.3)
+            let pieces = (change / 0.7)
+                .max((zb - za) / 0.2)
                 .ceil()
                 .clamp(1.0, MOST_PIECES);
             let h = (zb - za) / pieces;

@@ -69,6 +69,23 @@ pub struct HumidityKnown {
 
 /// The air a parcel rises through: temperature and dew point linear in ln p between levels of falling pressure.
 ///
+/// Virtual temperature and its integral are worked out once, when it is made, at the levels and, where they are far
+/// apart or moisture bends between them, in between; lifting another parcel is then mostly additions.
+///
+/// ```
+/// use dewbound_thermo::*;
+/// let environment = Environment::new(
+///     &[100_000.0, 70_000.0, 50_000.0],
+///     &[298.0, 280.0, 262.0],
+///     &[Some(290.0), None, Some(240.0)],
+/// )?;
+/// assert_eq!(environment.humidity().interpolated, 1);
+/// // Between levels, and outside the profile.
+/// assert!(environment.at(Pressure::from_hpa(850.0)).is_some());
+/// assert!(environment.at(Pressure::from_hpa(400.0)).is_none());
+/// # Ok::<(), EnvironmentError>(())
+/// ```
+///
 /// **Invariant:** pressures fall strictly, every value is finite, the lowest level has a dew point, no dew point is
 /// above the temperature, and the vapour pressure is below half the pressure at every level.
 #[derive(Debug, Clone)]
@@ -241,9 +258,12 @@ impl Environment {
     /// Integral means over p of theta (K) and mixing ratio (kg/kg) of the interpolated profile between two
     /// pressures (`bottom` > `top`, clipped to the profile); `None` when they don't overlap with known humidity.
     pub fn layer_mean(&self, bottom: Pressure, top: Pressure) -> Option<(f64, f64)> {
+        if bottom.pa().is_nan() || top.pa().is_nan() {
+            return None;
+        }
         let bottom = bottom.pa().min(self.p[0]);
         let top = top.pa().max(self.p[self.humid - 1]);
-        if !(bottom > top) {
+        if bottom <= top {
             return None;
         }
         let (theta, moisture) =

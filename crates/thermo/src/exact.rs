@@ -17,7 +17,7 @@ const WIDEST_DEWPOINT: f64 = 1.0;
 const STEP: f64 = 1e-10;
 
 /// What [`lift`](crate::lift) returns, by exact solution of eq. 39 at the ends and the middle of steps of at most
-/// 0.01 in ln p and Simpson's rule. Some thirty times slower; for checking.
+/// 0.01 in ln p and Simpson's rule. Hundreds of times slower; for checking.
 pub fn lift_exactly(environment: &Environment, start: Air, method: Method) -> Option<Ascent> {
     let parcel = Parcel::new(start)?;
     if parcel.start.pressure < environment.top() {

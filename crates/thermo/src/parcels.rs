@@ -1,5 +1,6 @@
 //! Where a parcel starts: mixed and most unstable.
 
+use crate::air::quick_ln_theta_e;
 use crate::{
     Air, Environment, Pressure, Temperature, dewpoint_from_mixing_ratio, temperature_on_dry_adiabat,
 };
@@ -46,15 +47,19 @@ pub fn most_unstable_start(
         if !candidate(level) {
             continue;
         }
-        let air = Air {
-            pressure: Pressure::from_pa(p),
-            temperature: Temperature::from_k(t),
-            dewpoint: Temperature::from_k(td),
-        };
-        let theta_e = air.theta_e().k();
+        let ln_theta_e = quick_ln_theta_e(p, t, td);
         // Strictly greater: of equals the lowest.
-        if best.is_none_or(|(largest, _, _)| theta_e > largest) {
-            best = Some((theta_e, level, air));
+        if best.is_none_or(|(largest, _, _)| ln_theta_e > largest) {
+            let (temperature, dewpoint) = (Temperature::from_k(t), Temperature::from_k(td));
+            best = Some((
+                ln_theta_e,
+                level,
+                Air {
+                    pressure: Pressure::from_pa(p),
+                    temperature,
+                    dewpoint,
+                },
+            ));
         }
     }
     best.map(|(_, level, air)| (level, air))

@@ -1,4 +1,8 @@
-//! The saturated pseudo-adiabat: constant eq. 39 theta-e of saturated air.
+//! The saturated pseudo-adiabat: constant eq. 39 theta-e (Bolton 1980) of saturated air, where T_L = T and w is the
+//! saturation mixing ratio.
+//!
+//! Derivatives are analytic. Along the pseudo-adiabat ln theta-e(T, z) stays the same, so that dT/dz is minus the ratio
+//! of its two partial derivatives.
 
 use crate::elementary::{exp, ln};
 use crate::saturation::{E0, dln_e_water, e_water, exponent_and_slope};
@@ -121,7 +125,10 @@ pub(crate) fn refine(ln_theta_e: f64, p: f64, guess: f64, trust: f64) -> (f64, S
     solve(ln_theta_e, p, guess, trust)
 }
 
-/// A first guess of the pseudo-adiabat's temperature, K.
+/// A first guess of the pseudo-adiabat's temperature, K: Davies-Jones (2008, MWR 136), numbers as coded in earthkit-meteo.
+///
+/// The paper states 0.34 K over 100..1050 hPa and up to 40 °C of wet-bulb potential temperature; found here: 0.42 K. An
+/// error in it costs a step of Newton's, not accuracy.
 pub(crate) fn first_guess(theta_e: f64, p: f64) -> f64 {
     let ratio = p / REFERENCE_PRESSURE;
     let pi = ratio.powf(KAPPA);
@@ -143,11 +150,107 @@ pub(crate) fn first_guess(theta_e: f64, p: f64) -> f64 {
     guess.min(t_e)
 }
 
-/// Temperature at `pressure` on the saturated pseudo-adiabat of constant eq. 39 `theta_e` (exact Newton solution).
+/// Temperature at `pressure` on the saturated pseudo-adiabat of constant eq. 39 `theta_e`: Newton's method on
+/// ln theta-e, to 1e-10 K. NaN for anything that isn't finite and positive.
+///
+/// The formula itself stands for the pseudo-adiabatic process to 0.2 K (Davies-Jones 2008).
+///
+/// ```
+/// use dewbound_thermo::*;
+/// // Root of eq. 39 by SciPy 1.15.3 (Brent): theta-e 340 K at 500 hPa.
+/// let t = temperature_on_pseudoadiabat(Temperature::from_k(340.0), Pressure::from_hpa(500.0));
+/// assert!((t.k() - 266.317_432_98).abs() < 1e-6);
+/// ```
 pub fn temperature_on_pseudoadiabat(theta_e: Temperature, pressure: Pressure) -> Temperature {
     let (theta_e, p) = (theta_e.k(), pressure.pa());
     if !(theta_e > 0.0 && theta_e.is_finite() && p > 0.0 && p.is_finite()) {
         return Temperature::from_k(f64::NAN);
     }
     Temperature::from_k(solve(theta_e.ln(), p, first_guess(theta_e, p), 1e-10).0)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// Analytic derivatives against differences.
+    #[test]
+    fn derivatives_are_those_of_the_formula() {
+        for (t, p) in [
+            (300.0, 1e5),
+            (285.0, 8e4),
+            (260.0, 5e4),
+            (230.0, 3e4),
+            (200.0, 1e4),
+            (150.0, 1e3),
+        ] {
+            let state = saturated(t, p).unwrap();
+            let d = 1e-3;
+            let slope = (saturated(t + d, p).unwrap().ln_theta_e
+                - saturated(t - d, p).unwrap().ln_theta_e)
+                / (2.0 * d);
+            assert!((state.per_kelvin / slope - 1.0).abs() < 1e-6, "{t} {p}");
+            let up = |h: f64| solve(state.ln_theta_e, p * (-h).exp(), t, 1e-11);
+            let h = 1e-4;
+            assert!(
+                (state.slope - (up(h).0 - up(-h).0) / (2.0 * h)).abs() < 1e-4,
+                "{t} {p}"
+            );
+            let w = |h: f64| saturated(up(h).0, p * (-h).exp()).unwrap().w;
+            let w_slope = (w(h) - w(-h)) / (2.0 * h);
+            assert!(
+                (state.w_slope - w_slope).abs() <= 1e-5 * w_slope.abs() + 1e-12,
+                "{t} {p}"
+            );
+        }
+    }
+
+    /// From the paper's domain into deserts of it: every solution is one.
+    #[test]
+    fn solutions_solve_the_equation_anywhere() {
+        for theta_e in [150.0, 220.0, 280.0, 340.0, 400.0, 600.0, 1200.0] {
+            for p in [10.0, 100.0, 1e3, 1e4, 5e4, 1e5, 1.2e5] {
+                let t = temperature_on_pseudoadiabat(
+                    Temperature::from_k(theta_e),
+                    Pressure::from_pa(p),
+                )
+                .k();
+                let back = saturated(t, p).unwrap().ln_theta_e.exp();
+                assert!(
+                    (back / theta_e - 1.0).abs() < 1e-9,
+                    "theta-e {theta_e} K at {p} Pa: {t} K has {back} K"
+                );
+            }
+        }
+        for bad in [f64::NAN, f64::INFINITY, -1.0, 0.0] {
+            assert!(
+                temperature_on_pseudoadiabat(Temperature::from_k(bad), Pressure::from_pa(5e4))
+                    .k()
+                    .is_nan()
+            );
+            assert!(
+                temperature_on_pseudoadiabat(Temperature::from_k(300.0), Pressure::from_pa(bad))
+                    .k()
+                    .is_nan()
+            );
+        }
+    }
+
+    /// Davies-Jones (2008) states 0.34 K within 100..1050 hPa and 40 degC of wet-bulb potential temperature, for constants
+    /// that may differ a little; a wrong coefficient would show as several K.
+    #[test]
+    fn the_first_guess_is_nearly_as_good_as_published() {
+        for theta_w in (-20..=40).step_by(4) {
+            let start = 273.15 + f64::from(theta_w);
+            let ln_theta_e = saturated(start, REFERENCE_PRESSURE).unwrap().ln_theta_e;
+            for p in (100..=1050).step_by(50).map(|p| f64::from(p) * 100.0) {
+                let guess = first_guess(ln_theta_e.exp(), p);
+                let t = solve(ln_theta_e, p, guess, 1e-10).0;
+                assert!(
+                    (guess - t).abs() < 0.5,
+                    "theta-w {theta_w} degC at {p} Pa: {guess} K for {t} K"
+                );
+            }
+        }
+    }
 }

@@ -1,4 +1,7 @@
 //! Saturation over water and ice, and the dew point.
+//!
+//! e = vapour pressure, p = pressure (Pa); t = temperature in °C, T in K; w = mixing ratio, kg of vapour to a kg of dry
+//! air; eps = Rd/Rv.
 
 use crate::{EPSILON, Pressure, Temperature, ZERO_CELSIUS};
 
@@ -74,12 +77,34 @@ pub(crate) fn virtual_temperature(t: f64, w: f64) -> f64 {
     t * (1.0 + w / EPSILON) / (1.0 + w)
 }
 
-/// Saturation vapour pressure over water: Bolton (1980) eq. 10.
+/// Saturation vapour pressure over water: Bolton (1980, MWR 108, 1046-1053) eq. 10.
+///
+/// `e_s = 611.2 Pa exp(17.67 t / (t + 243.5))`, t in °C. Within 0.3 % for -35..35 °C (Bolton; found against IAPWS: 0.13 %);
+/// below, over supercooled water, it is used all the way down, to zero at its pole at -243.5 °C. A pure phase: no
+/// enhancement factor.
+///
+/// ```
+/// use dewbound_thermo::*;
+/// // Eq. 10 at 15 °C as printed in the function reference of a national centre (its constant seems to be 6.1121 hPa).
+/// let e = saturation_vapour_pressure(Temperature::from_c(15.0));
+/// assert!((e.hpa() - 17.04077).abs() < 5e-4);
+/// ```
 pub fn saturation_vapour_pressure(temperature: Temperature) -> Pressure {
     Pressure::from_pa(e_water(temperature.k()))
 }
 
-/// Saturation vapour pressure over ice, for the rules that say so.
+/// Saturation vapour pressure over ice, for the rules that say so: WMO-No. 8, annex 4.B (from memory), without the
+/// enhancement factor.
+///
+/// `e_i = 611.2 Pa exp(22.46 t / (t + 272.62))`, t in °C, for -65..0 °C; found against the sublimation pressure of IAPWS
+/// R14-08: 0.2 %. No number of an ascent uses it.
+///
+/// ```
+/// use dewbound_thermo::*;
+/// // IAPWS R14-08 at -20 °C: 103.24 Pa.
+/// let e = saturation_vapour_pressure_over_ice(Temperature::from_c(-20.0));
+/// assert!((e.pa() / 103.24 - 1.0).abs() < 0.01);
+/// ```
 pub fn saturation_vapour_pressure_over_ice(temperature: Temperature) -> Pressure {
     let c = temperature.c();
     let above_pole = c + 272.62;
@@ -89,12 +114,27 @@ pub fn saturation_vapour_pressure_over_ice(temperature: Temperature) -> Pressure
     Pressure::from_pa(611.2 * (22.46 * c / above_pole).exp())
 }
 
-/// Dew point from vapour pressure: eq. 10 inverted.
+/// Dew point from vapour pressure: eq. 10 inverted, exactly.
+///
+/// `t = 243.5 y / (17.67 - y)`, `y = ln(e / 611.2 Pa)`. No vapour at all gives the pole of eq. 10, -243.5 °C.
+///
+/// ```
+/// use dewbound_thermo::*;
+/// let dewpoint = dewpoint_from_vapour_pressure(Pressure::from_hpa(17.04077));
+/// assert!((dewpoint.c() - 15.0).abs() < 1e-3);
+/// ```
 pub fn dewpoint_from_vapour_pressure(vapour_pressure: Pressure) -> Temperature {
     Temperature::from_k(dewpoint(vapour_pressure.pa()))
 }
 
-/// Dew point from relative humidity over water (0..=1 and slightly above).
+/// Dew point from relative humidity over water (0..=1 and slightly above): the dew point of `rh e_s(T)`.
+///
+/// ```
+/// use dewbound_thermo::*;
+/// let t = Temperature::from_c(20.0);
+/// assert!((dewpoint_from_relative_humidity(t, 1.0).c() - 20.0).abs() < 1e-9);
+/// assert!(dewpoint_from_relative_humidity(t, 0.5).c() < 10.0);
+/// ```
 pub fn dewpoint_from_relative_humidity(
     temperature: Temperature,
     relative_humidity: f64,
@@ -102,14 +142,14 @@ pub fn dewpoint_from_relative_humidity(
     Temperature::from_k(dewpoint(relative_humidity * e_water(temperature.k())))
 }
 
-/// Dew point of air of this mixing ratio (kg/kg) at this pressure.
+/// Dew point of air of this mixing ratio (kg/kg) at this pressure: of `e = p w / (eps + w)`.
 pub fn dewpoint_from_mixing_ratio(pressure: Pressure, mixing_ratio: f64) -> Temperature {
     Temperature::from_k(dewpoint(
         pressure.pa() * mixing_ratio / (EPSILON + mixing_ratio),
     ))
 }
 
-/// Saturation mixing ratio, kg/kg.
+/// Saturation mixing ratio over water, kg/kg: `w = eps e_s / (p - e_s)`; infinite where e_s reaches the pressure.
 pub fn saturation_mixing_ratio(pressure: Pressure, temperature: Temperature) -> f64 {
     mixing_ratio(pressure.pa(), e_water(temperature.k()))
 }

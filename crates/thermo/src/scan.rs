@@ -32,7 +32,7 @@ struct Scan<'a> {
 
 /// Runs of one sign from `from` to `to` (both inside the column and the path).
 pub(crate) fn runs(path: &Cubic, column: &Column, levels: Levels, from: f64, to: f64) -> Vec<Run> {
-    if !(to > from) {
+    if to <= from {
         return Vec::new();
     }
     let first = column.step_at(from);

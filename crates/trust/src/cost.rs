@@ -1,11 +1,11 @@
 //! What a repair costs: numbers with it minus numbers without it, on the working profile.
 //!
 //! The cost shown is exactly the change seen when the repair is toggled with [`with_repair`] and [`without_repair`].
-//! The repairs of one finding are alternatives: taking one withdraws the others.
 
-use crate::{Finding, Repair};
+use crate::toggle::{append, without_alternatives};
+use crate::{Finding, Repair, applied_repair, with_repair, without_repair};
 use dewbound_sounding::thermo::Ascent;
-use dewbound_sounding::{Amendments, Daylight, Entry, Numbers, Parcel, Profile};
+use dewbound_sounding::{Amendments, Daylight, Numbers, Parcel, Profile};
 
 /// Change of one parcel's numbers. `None` where a number is absent on either side.
 #[derive(Debug, Clone, Copy, PartialEq, Default)]
@@ -20,7 +20,8 @@ impl Change {
     fn between(with: Option<&Ascent>, without: Option<&Ascent>) -> Self {
         let difference = |number: fn(&Ascent) -> Option<f64>| {
             let (with, without) = (with.and_then(number)?, without.and_then(number)?);
-            Some(with - without)
+            // Adding zero turns a negative zero into a plain one.
+            Some(with - without + 0.0)
         };
         Self {
             cape: difference(|ascent| Some(ascent.cape)),
@@ -100,81 +101,6 @@ impl Priced<'_> {
     }
 }
 
-/// What [`Entry::from_repair`] says of an amendment that came from a repair: `finding key/repair id`.
-pub fn repair_source(finding: &Finding, repair: &Repair) -> String {
-    format!("{}/{}", finding.key(), repair.id)
-}
-
-/// The amendments with a repair taken: its entries stand at the end, so that what was done last counts. Entries it left
-/// behind when it was withdrawn are replaced; other repairs of the same finding, being alternatives, are switched off.
-pub fn with_repair(amendments: &Amendments, finding: &Finding, repair: &Repair) -> Amendments {
-    let source = repair_source(finding, repair);
-    let mut taken = without_alternatives(amendments, finding, Some(repair.id));
-    taken
-        .entries
-        .retain(|entry| entry.from_repair.as_deref() != Some(&source));
-    append(&mut taken, repair, &source);
-    taken
-}
-
-/// The amendments with a repair withdrawn: its entries switched off where they stand.
-pub fn without_repair(amendments: &Amendments, finding: &Finding, repair: &Repair) -> Amendments {
-    let mut withdrawn = amendments.clone();
-    set_enabled(&mut withdrawn, &repair_source(finding, repair), false);
-    withdrawn
-}
-
-/// Index of the repair of a finding that is among the enabled amendments.
-pub fn applied_repair(amendments: &Amendments, finding: &Finding) -> Option<usize> {
-    let key = finding.key();
-    finding.repairs.iter().position(|repair| {
-        amendments
-            .entries
-            .iter()
-            .any(|entry| entry.enabled && source_is(entry, &key, repair.id))
-    })
-}
-
-fn source_is(entry: &Entry, key: &str, id: &str) -> bool {
-    entry
-        .from_repair
-        .as_deref()
-        .and_then(|source| source.strip_prefix(key)?.strip_prefix('/'))
-        == Some(id)
-}
-
-fn set_enabled(amendments: &mut Amendments, source: &str, enabled: bool) {
-    for entry in &mut amendments.entries {
-        if entry.from_repair.as_deref() == Some(source) {
-            entry.enabled = enabled;
-        }
-    }
-}
-
-fn append(amendments: &mut Amendments, repair: &Repair, source: &str) {
-    amendments
-        .entries
-        .extend(repair.amendments.iter().map(|&amendment| Entry {
-            amendment,
-            enabled: true,
-            from_repair: Some(source.to_owned()),
-        }));
-}
-
-fn without_alternatives(
-    amendments: &Amendments,
-    finding: &Finding,
-    keep: Option<&str>,
-) -> Amendments {
-    let mut left = amendments.clone();
-    for repair in &finding.repairs {
-        if Some(repair.id) != keep {
-            set_enabled(&mut left, &repair_source(finding, repair), false);
-        }
-    }
-    left
-}
-
 fn numbers(received: &Profile, amendments: &Amendments, daylight: Daylight) -> Numbers {
     Numbers::of(&amendments.apply(received, daylight).profile)
 }
@@ -203,7 +129,7 @@ pub fn cost(
 /// Prices every finding on the working profile. `working` are the numbers of `amendments` as they stand (not recomputed).
 ///
 /// For a repair not taken: numbers after taking it minus the working numbers. For the one that is taken: the working
-/// numbers minus the numbers after withdrawing it.
+/// numbers minus the numbers after withdrawing it. Several repairs are priced side by side on the processor's cores.
 pub fn price<'a>(
     findings: &'a [Finding],
     received: &Profile,
@@ -211,34 +137,111 @@ pub fn price<'a>(
     daylight: Daylight,
     working: &Numbers,
 ) -> Vec<Priced<'a>> {
-    findings
+    let jobs = findings
         .iter()
-        .map(|finding| {
-            let applied = applied_repair(amendments, finding);
-            let costs: Vec<Option<Cost>> = finding
-                .repairs
-                .iter()
-                .enumerate()
-                .map(|(index, repair)| {
-                    if repair.amendments.is_empty() || finding.wind_only {
-                        None
-                    } else if applied == Some(index) {
-                        let without = without_repair(amendments, finding, repair);
-                        Cost::between(working, &numbers(received, &without, daylight))
-                    } else {
-                        let with = with_repair(amendments, finding, repair);
-                        Cost::between(&numbers(received, &with, daylight), working)
-                    }
-                })
-                .collect();
-            Priced {
-                finding,
-                headline: headline(&costs),
-                costs,
-                applied,
-            }
+        .enumerate()
+        .flat_map(|(finding, f)| (0..f.repairs.len()).map(move |repair| (finding, repair)))
+        .collect();
+    let mut priced = price_jobs(findings, received, amendments, daylight, working, jobs);
+    for state in &mut priced {
+        state.headline = headline(&state.costs);
+    }
+    priced
+}
+
+/// The same for the headline repairs only, each held at the index given (in the order of `findings`); other costs are left
+/// `None`. For the frames of a drag, in which the choice of headline is held like the order of the cards.
+pub fn price_headlines<'a>(
+    findings: &'a [Finding],
+    received: &Profile,
+    amendments: &Amendments,
+    daylight: Daylight,
+    working: &Numbers,
+    held: &[Option<usize>],
+) -> Vec<Priced<'a>> {
+    let jobs = held
+        .iter()
+        .enumerate()
+        .filter_map(|(finding, &repair)| Some((finding, repair?)))
+        .filter(|&(finding, repair)| {
+            findings
+                .get(finding)
+                .is_some_and(|f| repair < f.repairs.len())
         })
-        .collect()
+        .collect();
+    let mut priced = price_jobs(findings, received, amendments, daylight, working, jobs);
+    for (state, &held) in priced.iter_mut().zip(held) {
+        state.headline = held.filter(|&index| matches!(state.costs.get(index), Some(Some(_))));
+    }
+    priced
+}
+
+/// Fewer repairs than this are priced in turn: starting threads would take as long.
+const WORTH_SHARING: usize = 3;
+
+fn price_jobs<'a>(
+    findings: &'a [Finding],
+    received: &Profile,
+    amendments: &Amendments,
+    daylight: Daylight,
+    working: &Numbers,
+    jobs: Vec<(usize, usize)>,
+) -> Vec<Priced<'a>> {
+    let mut priced: Vec<Priced<'a>> = findings
+        .iter()
+        .map(|finding| Priced {
+            finding,
+            costs: vec![None; finding.repairs.len()],
+            headline: None,
+            applied: applied_repair(amendments, finding),
+        })
+        .collect();
+    let one = |&(finding, repair): &(usize, usize)| -> Option<Cost> {
+        let state = priced.get(finding)?;
+        let finding = state.finding;
+        let wanted = finding.repairs.get(repair)?;
+        if wanted.amendments.is_empty() || finding.wind_only {
+            None
+        } else if state.applied == Some(repair) {
+            let without = without_repair(amendments, finding, wanted);
+            Cost::between(working, &numbers(received, &without, daylight))
+        } else {
+            let with = with_repair(amendments, finding, wanted);
+            Cost::between(&numbers(received, &with, daylight), working)
+        }
+    };
+    let threads = std::thread::available_parallelism()
+        .map_or(1, usize::from)
+        .min(jobs.len());
+    let costs: Vec<Option<Cost>> = if threads < 2 || jobs.len() < WORTH_SHARING {
+        jobs.iter().map(one).collect()
+    } else {
+        let share = jobs.len().div_ceil(threads);
+        let one = &one;
+        std::thread::scope(|scope| {
+            let workers: Vec<_> = jobs
+                .chunks(share)
+                .map(|chunk| scope.spawn(move || chunk.iter().map(one).collect::<Vec<_>>()))
+                .collect();
+            workers
+                .into_iter()
+                .zip(jobs.chunks(share))
+                // A worker that failed leaves its costs unknown.
+                .flat_map(|(worker, chunk)| {
+                    worker.join().unwrap_or_else(|_| vec![None; chunk.len()])
+                })
+                .collect()
+        })
+    };
+    for ((finding, repair), cost) in jobs.into_iter().zip(costs) {
+        if let Some(slot) = priced
+            .get_mut(finding)
+            .and_then(|state| state.costs.get_mut(repair))
+        {
+            *slot = cost;
+        }
+    }
+    priced
 }
 
 /// The repair with the largest |CAPE change|, CIN change breaking ties; the earlier one when both are alike.
@@ -459,6 +462,28 @@ mod tests {
             combined.most_unstable.cape.unwrap(),
             epsilon = 1e-9
         );
+    }
+
+    #[test]
+    fn held_headlines_cost_the_same() {
+        let scene = scene();
+        let findings = scene.findings();
+        let none = Amendments::default();
+        let numbers = working(&scene, &none);
+        let all = price(&findings, &scene.profile, &none, scene.daylight, &numbers);
+        let held: Vec<_> = all.iter().map(|state| state.headline).collect();
+        let again = price_headlines(
+            &findings,
+            &scene.profile,
+            &none,
+            scene.daylight,
+            &numbers,
+            &held,
+        );
+        for (all, again) in all.iter().zip(&again) {
+            assert!(all.headline.is_some());
+            assert_eq!(all.headline_cost(), again.headline_cost());
+        }
     }
 
     #[test]

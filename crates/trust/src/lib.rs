@@ -21,6 +21,7 @@ pub mod rules;
 #[cfg(test)]
 mod synthetic;
 mod thresholds;
+mod toggle;
 mod words;
 
 pub use column::*;
@@ -30,5 +31,6 @@ pub use mixed::MixedLayer;
 pub use rank::*;
 pub use rule::*;
 pub use thresholds::*;
+pub use toggle::{applied_repair, repair_source, with_repair, without_repair};
 
 pub use dewbound_sounding as sounding;

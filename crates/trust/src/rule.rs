@@ -209,4 +209,82 @@ mod tests {
             );
         }
     }
+
+    fn rubbish() -> impl proptest::strategy::Strategy<Value = f64> {
+        use proptest::prelude::*;
+        prop_oneof![
+            Just(f64::NAN),
+            Just(f64::INFINITY),
+            Just(-1.0),
+            Just(0.0),
+            100.0..350.0f64,
+            -1e6..1e6f64,
+        ]
+    }
+
+    proptest::proptest! {
+        #![proptest_config(proptest::prelude::ProptestConfig::with_cases(300))]
+
+        /// Whatever a reader lets through: no panic, unique keys, no number in the evidence that isn't one.
+        #[test]
+        fn rubbish_never_panics(
+            levels in proptest::collection::vec(
+                (500.0..105_000.0f64, 180.0..320.0f64, proptest::option::of(rubbish()), 150.0..320.0f64, 0usize..40),
+                0..60,
+            ),
+            sorted: bool,
+            day in 0usize..3,
+        ) {
+            use crate::synthetic::Scene;
+            use dewbound_sounding::{Level, LevelKind, Wind};
+            let mut levels: Vec<Level> = levels
+                .into_iter()
+                .map(|(p, t, odd, td, pick)| Level {
+                    pressure: if pick == 1 { odd } else { Some(p.round()) },
+                    temperature: if pick == 2 { odd } else { Some(t) },
+                    dewpoint: if pick == 3 { odd } else { Some(td.min(t)) },
+                    height: if pick == 4 { odd } else { None },
+                    relative_humidity: if pick == 5 { odd } else { None },
+                    elapsed: if pick == 6 { odd } else { None },
+                    wind: if pick == 7 { odd.map(|speed| Wind { direction: speed, speed }) } else { None },
+                    kind: if pick == 8 { LevelKind::Surface } else { LevelKind::Other },
+                    ..Level::default()
+                })
+                .collect();
+            if sorted {
+                levels.sort_by(|a, b| b.pressure.unwrap_or(0.0).total_cmp(&a.pressure.unwrap_or(0.0)));
+            }
+            let daylight = [Daylight::Day, Daylight::Night, Daylight::Unknown][day];
+            let scene = Scene::new(Sounding { levels, ..Sounding::default() }, daylight);
+            let found = scene.findings();
+            let keys: std::collections::BTreeSet<_> = found.iter().map(Finding::key).collect();
+            proptest::prop_assert_eq!(keys.len(), found.len());
+            for finding in &found {
+                for evidence in &finding.evidence {
+                    proptest::prop_assert!(evidence.value.is_finite(), "{} {}", finding.key(), evidence.key);
+                }
+                let ids: std::collections::BTreeSet<_> = finding.repairs.iter().map(|repair| repair.id).collect();
+                proptest::prop_assert_eq!(ids.len(), finding.repairs.len());
+            }
+            let none = dewbound_sounding::Amendments::default();
+            let priced = crate::price(&found, &scene.profile, &none, daylight, &scene.numbers);
+            proptest::prop_assert_eq!(crate::rank(&priced, false).len(), found.len());
+        }
+    }
+
+    #[test]
+    fn a_failing_thermometer_is_a_handful_of_findings() {
+        use crate::synthetic::{Air0, Dice, Scene};
+        let mut ascent = Air0::default().ascent().noisy(&mut Dice::new(4), 0.1, 0.02);
+        for i in 600..2600 {
+            ascent.t[i] += 6.0 * (i as f64 / 9.0).sin();
+        }
+        let found = Scene::day(ascent.fine()).findings();
+        assert!(
+            (1..=6).contains(&found.len()),
+            "{}: {:?}",
+            found.len(),
+            found.iter().map(Finding::key).collect::<Vec<_>>()
+        );
+    }
 }

@@ -182,13 +182,13 @@ fn wet_thermometer() -> Vec<Sample> {
         .mixed(780.0, Mixing(13.3))
         .layer(250.0, 6.0, Relative(0.995))
         .layer(DECK_TOP - base - 1050.0, 5.2, Relative(1.0))
-        .layer(60.0, -6.0, Relative(0.34))
-        .layer(1500.0, 6.9, Relative(0.22))
-        .layer(2500.0, 7.7, Relative(0.30))
-        .layer(3600.0, 7.8, Relative(0.35))
+        .layer(40.0, -20.0, Relative(0.20))
+        .layer(1700.0, 7.2, Relative(0.20))
+        .layer(2500.0, 7.8, Relative(0.30))
+        .layer(3600.0, 7.6, Relative(0.35))
         .layer(1900.0, 7.0, Relative(0.30));
     let faults = Faults {
-        wet_thermometer: Some((DECK_TOP, 22.0)),
+        wet_thermometer: Some((DECK_TOP, 45.0)),
         ..Faults::default()
     };
     launch(

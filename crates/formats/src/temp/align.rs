@@ -11,18 +11,14 @@ pub(super) struct Block {
     pub slot: usize,
     /// State the scheme is in afterwards.
     pub next: usize,
-    /// A temperature group follows the level group.
-    pub air: bool,
-    /// A wind group follows.
-    pub wind: bool,
+    /// Groups it spans, the level group among them.
+    pub length: usize,
+    /// Where in it the temperature group stands.
+    pub air: Option<usize>,
+    /// Where in it the wind group stands.
+    pub wind: Option<usize>,
     /// How unlikely.
     pub cost: u32,
-}
-
-impl Block {
-    fn length(&self) -> usize {
-        1 + usize::from(self.air) + usize::from(self.wind)
-    }
 }
 
 /// What a section may hold.
@@ -31,28 +27,45 @@ pub(super) trait Scheme {
     fn groups(&self) -> usize;
     /// Number of states; reading starts in state 0.
     fn states(&self) -> usize;
-    /// Readings of the groups from `at`, the likeliest of equals first.
+    /// Readings of the groups from `at`, the likeliest of equals first. Groups inside a block that are neither its level
+    /// group nor one of its values are strays; their cost is the scheme's to add.
     fn blocks(&self, at: usize, state: usize, found: &mut Vec<Block>);
+    /// Whether a level is left out when `slot` is read in this state.
+    fn skips(&self, state: usize, slot: usize) -> bool;
     /// The cost of the section ending before group `at`; `None` where it can't.
     fn end(&self, at: usize) -> Option<u32>;
 }
 
-/// One piece of the best reading.
+/// A level of the best reading.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub(super) enum Piece {
-    /// A level whose first group is at `at`.
-    Level {
-        /// Index of its level group.
-        at: usize,
-        /// The reading.
-        block: Block,
-    },
-    /// A group that belongs to no level.
-    Stray(usize),
+pub(super) struct Piece {
+    /// Index of its level group.
+    pub at: usize,
+    /// The reading.
+    pub block: Block,
+    /// Groups it spans with a group too many right after it, when nothing else explains that one.
+    pub span: usize,
 }
 
-/// Cost of a group that belongs to no level: dearer than any single fault inside a block.
-const STRAY: u32 = 6;
+/// The best reading of a section.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub(super) struct Reading {
+    /// Its levels in order.
+    pub levels: Vec<Piece>,
+    /// Groups that belong to no level, in order.
+    pub strays: Vec<usize>,
+    /// Index of the group after the section.
+    pub end: usize,
+}
+
+/// Cost of a group that belongs to no level.
+pub(super) const STRAY: u32 = 6;
+
+/// Cost of one between the groups of a level: a little more, so that a level isn't stitched together from leftovers.
+pub(super) const INSIDE: u32 = STRAY + 1;
+
+/// Cost of a group that should be there and isn't. A garbled group costs less than either (up to 4).
+pub(super) const MISSING: u32 = 5;
 
 #[derive(Clone, Copy)]
 enum Step {
@@ -61,8 +74,17 @@ enum Step {
     Level(Block),
 }
 
-/// The cheapest reading, and the index of the group after the section.
-pub(super) fn align(scheme: &impl Scheme) -> (Vec<Piece>, usize) {
+/// The cheapest cost of reading on from each group, when the section starts there.
+pub(super) fn costs(scheme: &impl Scheme) -> Vec<u32> {
+    let table = table(scheme);
+    let starts = table.chunks(scheme.states());
+    starts
+        .map(|states| states.first().map_or(0, |&(cost, _)| cost))
+        .collect()
+}
+
+/// Cheapest cost and first step from each group and state, last groups first.
+fn table(scheme: &impl Scheme) -> Vec<(u32, Step)> {
     let (groups, states) = (scheme.groups(), scheme.states());
     let mut best = vec![(0_u32, Step::End); (groups + 1) * states];
     let mut found = Vec::new();
@@ -80,8 +102,8 @@ pub(super) fn align(scheme: &impl Scheme) -> (Vec<Piece>, usize) {
             found.clear();
             scheme.blocks(at, state, &mut found);
             for &block in &found {
-                if at + block.length() <= groups
-                    && let Some(after) = cost_after(at + block.length(), block.next)
+                if at + block.length <= groups
+                    && let Some(after) = cost_after(at + block.length, block.next)
                 {
                     offer(block.cost.saturating_add(after), Step::Level(block));
                 }
@@ -94,23 +116,55 @@ pub(super) fn align(scheme: &impl Scheme) -> (Vec<Piece>, usize) {
             }
         }
     }
+    best
+}
+
+/// The cheapest reading.
+pub(super) fn align(scheme: &impl Scheme) -> Reading {
+    let (groups, states) = (scheme.groups(), scheme.states());
+    let best = table(scheme);
     let (mut at, mut state) = (0, 0);
-    let mut pieces = Vec::new();
+    let mut levels: Vec<Piece> = Vec::new();
+    let mut strays = Vec::new();
     while at < groups
         && let Some(&(_, step)) = best.get(at * states + state)
     {
         match step {
             Step::End => break,
             Step::Stray => {
-                pieces.push(Piece::Stray(at));
+                strays.push(at);
                 at += 1;
             }
             Step::Level(block) => {
-                pieces.push(Piece::Level { at, block });
-                at += block.length();
+                let inner = (1..block.length)
+                    .filter(|&offset| block.air != Some(offset) && block.wind != Some(offset));
+                strays.extend(inner.map(|offset| at + offset));
+                levels.push(Piece {
+                    at,
+                    block,
+                    span: block.length,
+                });
+                at += block.length;
                 state = block.next;
             }
         }
     }
-    (pieces, at)
+    let starts: Vec<_> = levels
+        .iter()
+        .map(|piece| (piece.at, piece.block.slot))
+        .collect();
+    for (index, piece) in levels.iter_mut().enumerate() {
+        // A level left out explains a group without one.
+        let (next, skips) = starts.get(index + 1).map_or((at, false), |&(next, slot)| {
+            (next, scheme.skips(piece.block.next, slot))
+        });
+        if next == piece.at + piece.span + 1 && !skips {
+            piece.span += 1;
+        }
+    }
+    Reading {
+        levels,
+        strays,
+        end: at,
+    }
 }

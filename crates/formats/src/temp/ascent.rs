@@ -352,23 +352,16 @@ impl Ascent {
     }
 
     /// Whether the message shows that the ascent ended below 100 hPa, so that parts C and D will never come: part A
-    /// has no 100 hPa level, or part C is reported as NIL.
+    /// has no 100 hPa level, and nothing else stands that high; or part C is reported as NIL.
     fn closed(&self) -> bool {
         let reaches = |report: &Report| {
-            report.levels.iter().any(|level| {
-                level.kind == LevelKind::Standard
-                    && level.pressure == Some(10_000.0)
-                    && (level.temperature.is_some()
-                        || level.wind.is_some()
-                        || level.height.is_some())
-            })
+            report.unread_top
+                || report
+                    .levels
+                    .iter()
+                    .any(|level| level.pressure.is_some_and(|pressure| pressure <= 10_000.0))
         };
-        let part_a_ends = self.has(Part::A)
-            && !self
-                .reports
-                .iter()
-                .filter(|report| report.letters.part == Part::A)
-                .any(reaches);
+        let part_a_ends = self.has(Part::A) && !self.reports.iter().any(reaches);
         part_a_ends || self.nil.iter().any(|part| part.upper())
     }
 

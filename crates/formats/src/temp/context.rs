@@ -23,6 +23,15 @@ pub(super) struct Context {
     pub aside: Vec<Aside>,
     /// A wind could not be given because the unit is unknown.
     pub unit_missed: bool,
+    /// Groups after the last standard level that was read could hold a higher one.
+    pub unread_top: bool,
+}
+
+/// Which values of a level can be told in spite of a group too many.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(super) struct Certain {
+    pub air: bool,
+    pub wind: bool,
 }
 
 /// Groups that hold no level.
@@ -74,6 +83,65 @@ impl Context {
                 return;
             }
         }
+    }
+
+    /// With a group too many, says which values are certain all the same: those that every possible reading agrees on.
+    /// `values` are the groups after the level group; the costs are `None` for a value that isn't expected.
+    pub fn certain(
+        &mut self,
+        values: &[Word],
+        name: &str,
+        air: Option<&dyn Fn(&str) -> u32>,
+        wind: Option<&dyn Fn(&str) -> u32>,
+    ) -> Certain {
+        let mut certain = Certain {
+            air: true,
+            wind: true,
+        };
+        let expected = usize::from(air.is_some()) + usize::from(wind.is_some());
+        if values.len() <= expected || expected == 0 {
+            return certain;
+        }
+        let texts: Vec<&str> = values.iter().map(|word| word.text).collect();
+        let fits = |cost: Option<&dyn Fn(&str) -> u32>, text: &str| {
+            cost.is_some_and(|cost| cost(text) == 0)
+        };
+        let mut readings: Vec<(Option<&str>, Option<&str>)> = Vec::new();
+        for (index, &first) in texts.iter().enumerate() {
+            match (air, wind) {
+                (Some(_), Some(_)) => {
+                    let later = texts.get(index + 1..).unwrap_or(&[]);
+                    let pairs = later
+                        .iter()
+                        .filter(|second| fits(air, first) && fits(wind, second));
+                    readings.extend(pairs.map(|&second| (Some(first), Some(second))));
+                }
+                (Some(_), None) if fits(air, first) => readings.push((Some(first), None)),
+                (None, Some(_)) if fits(wind, first) => readings.push((None, Some(first))),
+                _ => {}
+            }
+        }
+        if let Some((first, others)) = readings.split_first() {
+            certain.air = others.iter().all(|other| other.0 == first.0);
+            certain.wind = others.iter().all(|other| other.1 == first.1);
+        }
+        let lost = match (certain.air, certain.wind) {
+            (true, true) => return certain,
+            (false, true) => "temperature and dew point are",
+            (true, false) => "wind is",
+            (false, false) => "temperature, dew point and wind are",
+        };
+        if let Some(first) = values.first() {
+            self.note(
+                first.line,
+                format!(
+                    "groups {} compete for {name}; {lost} left out",
+                    quote(values)
+                ),
+                "one group too many stands here, and more than one reading is possible",
+            );
+        }
+        certain
     }
 
     /// Puts a temperature group into a level.
@@ -164,32 +232,34 @@ pub(super) fn is_surface_pressure(pressure: f64) -> bool {
 
 /// How unlikely it is that a group is a temperature group at this pressure.
 pub(super) fn air_cost(group: &str, pressure: Option<f64>) -> u32 {
+    // Code for "no tropopause", "no maximum wind"; as a temperature it would come with a depression of 49.
+    if matches!(group, "88999" | "77999" | "66999") {
+        return 9;
+    }
     let air = groups::air(group);
     let (Ok(temperature), Ok(_)) = (air.temperature, air.dewpoint) else {
         return if air.temperature.is_ok() { 3 } else { 4 };
     };
-    let unlikely = match (temperature, pressure) {
-        (Some(temperature), Some(pressure)) => {
-            // Wider near the ground, where continents range from -60 to 50 °C.
-            let range = if pressure > 70_000.0 { 65.0 } else { 45.0 };
-            (temperature - standard_atmosphere::temperature(pressure)).abs() > range
+    if let (Some(temperature), Some(pressure)) = (temperature, pressure) {
+        // Wider near the ground, where continents range from -60 to 50 °C.
+        let range = if pressure > 70_000.0 { 65.0 } else { 45.0 };
+        let off = (temperature - standard_atmosphere::temperature(pressure)).abs() / range;
+        if off > 1.5 {
+            return 8;
         }
-        _ => false,
-    };
-    // A section's number can be a temperature (31313 is -31.3 °C), but seldom is.
-    if unlikely {
-        3
-    } else if is_marker(group) {
-        2
-    } else {
-        0
+        if off > 1.0 {
+            return 3;
+        }
     }
+    // A section's number can be a temperature (31313 is -31.3 °C), but seldom is.
+    if is_marker(group) { 2 } else { 0 }
 }
 
 /// How unlikely it is that a group is a wind group. Winds beyond 130 m/s have not been measured below 10 hPa (from
 /// memory).
 pub(super) fn wind_cost(group: &str, unit: Option<f64>) -> u32 {
     match groups::wind(group, unit.unwrap_or(groups::KNOT)) {
+        Ok(Some(wind)) if wind.speed > 195.0 => 8,
         Ok(Some(wind)) if wind.speed > 130.0 => 3,
         Ok(_) => 0,
         Err(_) if group.starts_with("99") => 2,

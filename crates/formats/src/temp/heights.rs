@@ -56,16 +56,13 @@ impl Coded {
     }
 }
 
-/// Heights that no reading of the figures brings near what the temperatures imply: index, metres off.
-pub(super) type Doubtful = Vec<(usize, f64)>;
-
 /// Fills in the heights.
 ///
 /// At 1,000 hPa the figures are unambiguous, and from 500 hPa up the next reading is 10 km away, so the standard
 /// atmosphere decides. At 925, 850 and 700 hPa the next reading is 1 km away, too near for the standard atmosphere in a
 /// deep winter low: there the hypsometric estimate from the nearest level of known height decides, and the standard
 /// atmosphere only when no other height is known.
-pub(super) fn resolve(levels: &mut [Coded]) -> Doubtful {
+pub(super) fn resolve(levels: &mut [Coded]) {
     for level in levels.iter_mut() {
         if !level.in_metres() || level.pressure > 95_000.0 {
             level.height = level.nearest(standard::height(level.pressure));
@@ -80,7 +77,43 @@ pub(super) fn resolve(levels: &mut [Coded]) -> Doubtful {
             break;
         }
     }
-    doubtful(levels)
+}
+
+/// How a level's height disagrees with the temperatures.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) struct Misfit {
+    /// Index of the level.
+    pub index: usize,
+    /// Metres by which the layer down to the next known height is thicker than its temperatures imply.
+    pub off: f64,
+    /// The temperatures at both ends are known.
+    pub judged: bool,
+    /// Farther off than this (m), the reading of the figures itself is in question.
+    pub certain_within: f64,
+}
+
+/// Every level above the lowest known height, against the level below it.
+pub(super) fn misfits(levels: &[Coded]) -> Vec<Misfit> {
+    let known: Vec<_> = levels
+        .iter()
+        .enumerate()
+        .filter_map(|(index, level)| Some((index, level, level.height?)))
+        .collect();
+    known
+        .windows(2)
+        .filter_map(|pair| {
+            let [(_, lower, below), (index, upper, above)] = pair else {
+                return None;
+            };
+            Some(Misfit {
+                index: *index,
+                off: above - below - standard::thickness(lower.end(), upper.end()),
+                judged: lower.temperature.is_some() && upper.temperature.is_some(),
+                // A quarter of the distance between two readings, and for tens of metres what no atmosphere explains.
+                certain_within: if lower.in_metres() { 250.0 } else { 1_000.0 },
+            })
+        })
+        .collect()
 }
 
 /// The level to settle next, being nearest to one of known height, and its estimated height.
@@ -113,27 +146,6 @@ fn next(levels: &[Coded]) -> Option<(usize, f64)> {
     }
 }
 
-fn doubtful(levels: &[Coded]) -> Doubtful {
-    let known: Vec<_> = levels
-        .iter()
-        .enumerate()
-        .filter_map(|(index, level)| Some((index, level, level.height?)))
-        .collect();
-    known
-        .windows(2)
-        .filter_map(|pair| {
-            let [(_, lower, below), (index, upper, above)] = pair else {
-                return None;
-            };
-            let off = above - below - standard::thickness(lower.end(), upper.end());
-            // A quarter of the distance between two readings: beyond it the choice itself is in question.
-            let limit = if lower.in_metres() { 250.0 } else { 1_000.0 };
-            let judged = lower.temperature.is_some() && upper.temperature.is_some();
-            (judged && off.abs() > limit).then_some((*index, off))
-        })
-        .collect()
-}
-
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -150,10 +162,12 @@ mod tests {
     #[track_caller]
     fn check(levels: &[(f64, u32, Option<f64>)], expect: &[f64]) {
         let mut levels: Vec<_> = levels.iter().map(|&(p, f, t)| coded(p, f, t)).collect();
-        let doubtful = resolve(&mut levels);
+        resolve(&mut levels);
         let heights: Vec<_> = levels.iter().map(|level| level.height.unwrap()).collect();
         assert_eq!(heights, expect);
-        assert!(doubtful.is_empty(), "{doubtful:?}");
+        for misfit in misfits(&levels) {
+            assert!(misfit.off.abs() < misfit.certain_within, "{misfit:?}");
+        }
     }
 
     #[test]
@@ -209,9 +223,10 @@ mod tests {
     #[test]
     fn heights_that_fit_no_temperature_are_named() {
         let mut levels = [coded(50.0, 87, Some(-60.3)), coded(30.0, 187, Some(-60.3))];
-        let doubtful = resolve(&mut levels);
+        resolve(&mut levels);
+        let found = misfits(&levels);
         assert_eq!(levels[1].height, Some(21_870.0));
-        assert_eq!(doubtful.len(), 1);
-        assert!((doubtful[0].1 + 2183.0).abs() < 20.0, "{doubtful:?}");
+        assert_eq!(found.len(), 1);
+        assert!((found[0].off + 2183.0).abs() < 20.0, "{found:?}");
     }
 }

@@ -4,7 +4,7 @@ use super::{
     context::{Aside, Context, is_marker},
     framing::{Word, quote},
     groups::{cut, number},
-    significant::{self, Significance},
+    significant,
 };
 use dewbound_sounding::{Level, LevelKind};
 
@@ -211,7 +211,7 @@ pub(super) fn by_altitude(words: &[Word], unit: AltitudeUnit, context: &mut Cont
     while let Some(&word) = words.get(at) {
         if word.text == "21212" {
             let rest = words.get(at + 1..).unwrap_or(&[]);
-            at += 1 + significant::read(rest, Significance::Wind, context);
+            at += 1 + significant::winds(rest, context);
             continue;
         }
         if is_marker(word.text) {

@@ -7,11 +7,10 @@ use super::{
     header::{self, Header},
     pilot::{self, AltitudeUnit},
     sections::{self, Launch},
-    significant::{self, Significance},
-    standard,
+    significant, standard,
 };
+use crate::digest;
 use dewbound_sounding::{Digest, Level, Note, Place};
-use sha2::{Digest as _, Sha256};
 
 /// A decoded part.
 #[derive(Debug, Clone, PartialEq)]
@@ -25,10 +24,12 @@ pub(super) struct Report {
     pub levels: Vec<Level>,
     pub notes: Vec<Note>,
     pub aside: Vec<Aside>,
+    /// Unread groups could hold a standard level above those read.
+    pub unread_top: bool,
     /// From a bulletin marked as a correction.
     pub correction: bool,
-    /// SHA-256 of the part's groups joined by single blanks, from its letters up to its end sign (left out): the same
-    /// part has the same digest however its lines were broken or ended.
+    /// Digest of the part's groups as one line, joined by single blanks, from its letters up to its end sign (left out):
+    /// the same part has the same digest however its lines were broken or ended.
     pub digest: Digest,
 }
 
@@ -54,6 +55,7 @@ pub(super) fn decode(message: &Message) -> Result<Report, Note> {
         notes,
         aside: Vec::new(),
         unit_missed: false,
+        unread_top: false,
     };
     let body = words.get(header.length..).unwrap_or(&[]);
     let launch = if header.nil {
@@ -80,8 +82,9 @@ pub(super) fn decode(message: &Message) -> Result<Report, Note> {
         levels: context.levels,
         notes: context.notes,
         aside: context.aside,
+        unread_top: context.unread_top,
         correction: message.correction,
-        digest: Sha256::digest(text.join(" ")).into(),
+        digest: digest::of_lines([text.join(" ").as_str()]),
     })
 }
 
@@ -97,14 +100,7 @@ fn levels(
             let taken = standard::read(body, header.indicator, context);
             taken + extremes::read(from(taken), context)
         }
-        (false, Part::B | Part::D) => {
-            let mut taken = significant::read(body, Significance::Thermal, context);
-            if from(taken).first().is_some_and(|word| word.text == "21212") {
-                taken += 1;
-                taken += significant::read(from(taken), Significance::Wind, context);
-            }
-            taken
-        }
+        (false, Part::B | Part::D) => significant::read(body, context),
         (true, Part::A | Part::C) => pilot::standard(body, context),
         (true, Part::B | Part::D) => {
             let block = header.station.wmo.as_deref();

@@ -1,7 +1,7 @@
 //! Sections 5 and 6 of parts B and D: levels significant for temperature and humidity, and (21212) for wind.
 
 use super::{
-    align::{Block, Piece, Scheme, align},
+    align::{Block, INSIDE, MISSING, Piece, Scheme, align},
     context::{Context, air_cost, is_marker, wind_cost},
     framing::{Part, Word, quote},
     groups::{self, cut, is_missing},
@@ -10,7 +10,7 @@ use dewbound_sounding::{Level, LevelKind};
 
 /// For what the levels are significant.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub(super) enum Significance {
+enum Significance {
     Thermal,
     Wind,
 }
@@ -74,50 +74,134 @@ impl Scheme for Significant<'_> {
             Ok(_) => 2,
             Err(_) => 3,
         };
-        let value = match self.significance {
-            Significance::Thermal => air_cost(next, pressure.ok().flatten()),
-            Significance::Wind => wind_cost(next, self.unit),
+        let value = |offset: usize| {
+            let text = self.text(at + offset);
+            match self.significance {
+                Significance::Thermal => air_cost(text, pressure.ok().flatten()),
+                Significance::Wind => wind_cost(text, self.unit),
+            }
         };
         let base = level + 3 * skipped(state, slot) as u32;
-        let mut offer = |paired: bool, cost: u32| {
+        let mut offer = |length: usize, value: Option<usize>, cost: u32| {
+            let of = |wanted: Significance| value.filter(|_| self.significance == wanted);
             found.push(Block {
                 slot,
                 next: following(slot),
-                air: paired && self.significance == Significance::Thermal,
-                wind: paired && self.significance == Significance::Wind,
+                length,
+                air: of(Significance::Thermal),
+                wind: of(Significance::Wind),
                 cost: base + cost,
             });
         };
-        offer(true, value);
-        offer(false, 5);
+        offer(2, Some(1), value(1));
+        offer(1, None, MISSING);
+        // With one group too many between them.
+        offer(3, Some(2), value(2) + INSIDE);
+    }
+
+    fn skips(&self, state: usize, slot: usize) -> bool {
+        skipped(state, slot) > 0
     }
 
     fn end(&self, at: usize) -> Option<u32> {
-        is_marker(self.text(at)).then_some(0)
+        let text = self.text(at);
+        if is_marker(text) {
+            return Some(0);
+        }
+        // The surface level once more opens the winds even when their section number is lost.
+        let again = at > 1 && text.starts_with("00") && text == self.text(0);
+        (again && self.significance == Significance::Thermal).then_some(MISSING)
     }
 }
 
-/// Reads the section; returns the number of groups it took.
-pub(super) fn read(words: &[Word], significance: Significance, context: &mut Context) -> usize {
+/// Reads both sections; returns the number of groups they took.
+pub(super) fn read(words: &[Word], context: &mut Context) -> usize {
+    let taken = section(words, Significance::Thermal, context);
+    match words.get(taken) {
+        Some(word) if word.text == "21212" => {
+            // A number sent twice opens one section.
+            let numbers = rest(words, taken).iter();
+            let start = taken + numbers.take_while(|word| word.text == "21212").count();
+            start + winds(rest(words, start), context)
+        }
+        Some(word) if !is_marker(word.text) => {
+            context.note(
+                word.line,
+                format!("winds taken to start at group {}", quote(&[*word])),
+                "the levels start anew from below without the section number 21212",
+            );
+            taken + winds(rest(words, taken), context)
+        }
+        _ => taken,
+    }
+}
+
+/// Reads the section of winds, its number left out.
+pub(super) fn winds(words: &[Word], context: &mut Context) -> usize {
+    section(words, Significance::Wind, context)
+}
+
+fn rest<'a, 'w>(words: &'w [Word<'a>], from: usize) -> &'w [Word<'a>] {
+    words.get(from..).unwrap_or(&[])
+}
+
+/// Where levels start anew from below: numbers leave the order or begin again while pressure jumps up. A section number
+/// was lost there, and what follows must not be read as temperatures.
+fn restart(words: &[Word], levels: &[Piece], upper: bool) -> Option<usize> {
+    let pressure = |piece: &Piece| level_pressure(words, piece, upper);
+    levels.windows(2).find_map(|pair| {
+        let [below, above] = pair else { return None };
+        let slot = above.block.slot;
+        let anew = slot <= 1 || skipped(below.block.next, slot) > 0;
+        let jump = pressure(above)? > 1.2 * pressure(below)?;
+        (anew && jump).then_some(above.at)
+    })
+}
+
+fn section(words: &[Word], significance: Significance, context: &mut Context) -> usize {
     let scheme = Significant {
         words,
         significance,
         part: context.part,
         unit: context.unit,
     };
-    let (pieces, end) = align(&scheme);
-    let strays = pieces.iter().filter_map(|piece| match piece {
-        Piece::Stray(at) => Some(*at),
-        Piece::Level { .. } => None,
-    });
+    let reading = align(&scheme);
+    let end = match significance {
+        Significance::Thermal => restart(words, &reading.levels, context.part.upper()),
+        Significance::Wind => None,
+    }
+    .unwrap_or(reading.end);
+    let strays = reading.strays.into_iter().filter(|&at| at < end);
     context.strays(words, strays);
+    let pieces: Vec<Piece> = reading
+        .levels
+        .into_iter()
+        .filter(|piece| piece.at < end)
+        .collect();
     let mut expected = 0;
-    for piece in pieces {
-        let Piece::Level { at, block } = piece else {
+    let mut regular_end = 0;
+    let mut below = None;
+    for (index, &piece) in pieces.iter().enumerate() {
+        let Some(&word) = words.get(piece.at) else {
             continue;
         };
-        let Some(&word) = words.get(at) else { continue };
-        if skipped(expected, block.slot) > 0 {
+        let at = |piece: &Piece| level_pressure(words, piece, context.part.upper());
+        let pressure = at(&piece);
+        let above = pieces.get(index + 1).and_then(at);
+        let regular = piece.at == regular_end && piece.span == 2;
+        regular_end = piece.at + piece.block.length;
+        let falls =
+            |from: Option<f64>, to: Option<f64>| from.zip(to).is_none_or(|(from, to)| from > to);
+        if !regular && !(falls(below, pressure) && falls(pressure, above)) {
+            let groups = words.get(piece.at..regular_end).unwrap_or(&[]);
+            context.note(
+                word.line,
+                format!("{} set aside", quote(groups)),
+                "a group is missing or too many here, and the pressure is out of order: probably no level group",
+            );
+            continue;
+        }
+        if skipped(expected, piece.block.slot) > 0 {
             context.note(
                 word.line,
                 format!(
@@ -128,25 +212,31 @@ pub(super) fn read(words: &[Word], significance: Significance, context: &mut Con
                 "a level may have been lost",
             );
         }
-        expected = block.next;
-        let value = words
-            .get(at + 1)
-            .copied()
-            .filter(|_| block.air || block.wind);
-        if let Some(level) = level(word, value, block, significance, context) {
+        expected = piece.block.next;
+        below = pressure.or(below);
+        if let Some(level) = level(words, word, piece, significance, context) {
             context.levels.push(level);
         }
     }
     end
 }
 
+fn level_pressure(words: &[Word], piece: &Piece, upper: bool) -> Option<f64> {
+    let word = words.get(piece.at)?;
+    groups::pressure(cut(word.text, 2, 5), upper).ok().flatten()
+}
+
 fn level(
+    words: &[Word],
     word: Word,
-    value: Option<Word>,
-    block: Block,
+    piece: Piece,
     significance: Significance,
     context: &mut Context,
 ) -> Option<Level> {
+    let offset = piece.block.air.or(piece.block.wind);
+    let value = offset
+        .and_then(|offset| words.get(piece.at + offset))
+        .copied();
     let what = match significance {
         Significance::Thermal => "temperature",
         Significance::Wind => "wind",
@@ -163,7 +253,7 @@ fn level(
         return None;
     }
     let name = format!("the significant level {}", quote(&[word]));
-    let surface = block.slot == 0 && !context.part.upper();
+    let surface = piece.block.slot == 0 && !context.part.upper();
     let mut level = Level {
         pressure: if surface {
             context.surface_pressure(word)
@@ -178,14 +268,31 @@ fn level(
         line: Some(word.line),
         ..Level::default()
     };
-    match (value, significance) {
-        (Some(value), Significance::Thermal) => context.air(&mut level, value, &name),
-        (Some(value), Significance::Wind) => context.wind(&mut level, value, &name),
-        (None, _) => context.note(
+    let Some(value) = value else {
+        context.note(
             word.line,
-            format!("{name} left without {what}"),
-            "the group that should follow is missing",
-        ),
+            format!("{name} left out: no {what} group follows it"),
+            "a level group alone tells nothing",
+        );
+        return None;
+    };
+    let unit = context.unit;
+    let cost = |text: &str| match significance {
+        Significance::Thermal => air_cost(text, level.pressure),
+        Significance::Wind => wind_cost(text, unit),
+    };
+    let values = words.get(piece.at + 1..piece.at + piece.span);
+    let (air, wind): (Option<&dyn Fn(&str) -> u32>, Option<&dyn Fn(&str) -> u32>) =
+        match significance {
+            Significance::Thermal => (Some(&cost), None),
+            Significance::Wind => (None, Some(&cost)),
+        };
+    let certain = context.certain(values.unwrap_or(&[]), &name, air, wind);
+    if certain.air && certain.wind {
+        match significance {
+            Significance::Thermal => context.air(&mut level, value, &name),
+            Significance::Wind => context.wind(&mut level, value, &name),
+        }
     }
     Some(level)
 }

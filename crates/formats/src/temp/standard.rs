@@ -1,9 +1,9 @@
 //! Section 2 of parts A and C: the surface and the standard isobaric surfaces.
 
 use super::{
-    align::{Block, Piece, Scheme, align},
+    align::{Block, INSIDE, MISSING, Piece, STRAY, Scheme, align},
     context::{Context, air_cost, is_marker, is_surface_pressure, wind_cost},
-    extremes::is_extreme,
+    extremes::{self, is_extreme},
     framing::{Part, Word, quote},
     groups::{self, cut, is_missing, number},
     heights::{self, Coded},
@@ -104,6 +104,8 @@ struct Standard<'a> {
     part: Part,
     indicator: char,
     unit: Option<f64>,
+    /// Cost of reading tropopauses and maximum winds from each group on.
+    after: Vec<u32>,
 }
 
 impl Standard<'_> {
@@ -116,22 +118,31 @@ impl Standard<'_> {
         if is_missing(figures) {
             return 0;
         }
+        let Some(value) = number(figures).filter(|_| text.len() == 5) else {
+            return 3;
+        };
         let plausible = match slot.pascals() {
             None => {
-                matches!(groups::pressure(figures, false), Ok(Some(pressure)) if is_surface_pressure(pressure))
+                let pressure = groups::pressure(figures, false);
+                pressure.is_ok_and(|pressure| pressure.is_some_and(is_surface_pressure))
             }
-            Some(pressure) => number(figures).is_some_and(|figures| {
-                // From 500 hPa up only one reading is near the atmosphere; below, every figure is possible.
-                let tens = f64::from(figures) * 10.0;
+            // From 500 hPa up only one reading is near the atmosphere; below, every figure is possible. Polar winters lie
+            // farther below the standard atmosphere than the tropics above it.
+            Some(pressure) => {
+                let (below, above) = if self.part.upper() {
+                    (4_000.0, 2_500.0)
+                } else {
+                    (1_800.0, 1_000.0)
+                };
                 let standard = standard_atmosphere::height(pressure);
-                let spread = if self.part.upper() { 4_000.0 } else { 1_800.0 };
+                let near = standard - below..=standard + above;
+                let tens = f64::from(value) * 10.0;
                 pressure > 50_000.0
-                    || (0..=4).any(|leading| {
-                        (tens + 10_000.0 * f64::from(leading) - standard).abs() < spread
-                    })
-            }),
+                    || (0..=4).any(|leading| near.contains(&(tens + 10_000.0 * f64::from(leading))))
+            }
         };
-        if plausible && text.len() == 5 { 0 } else { 3 }
+        // A wind whose direction looks like a level's figures gives an absurd height: two strays, no less.
+        if plausible { 0 } else { 2 * STRAY }
     }
 }
 
@@ -154,48 +165,67 @@ impl Scheme for Standard<'_> {
             let skipped = if state <= 1 { 0 } else { index - state };
             let base = self.level_cost(slot, text) + 2 * skipped as u32;
             let promise = promise(self.indicator, slot, self.part);
+            // What a wind costs that is there, and one that isn't.
             let (given, left_out) = match promise {
-                Promise::Given => (0, 5),
+                Promise::Given => (0, MISSING),
                 Promise::Open => (0, 0),
                 Promise::LeftOut => (1, 0),
             };
-            let air = air_cost(self.text(at + 1), slot.pascals());
-            let mut offer = |air: bool, wind: bool, cost: u32| {
+            // A level below the ground is sometimes cut short to its solidi.
+            let bare = if is_missing(cut(text, 2, 5)) {
+                4
+            } else {
+                MISSING + left_out
+            };
+            let air = |offset: usize| air_cost(self.text(at + offset), slot.pascals());
+            let wind = |offset: usize| {
+                let text = self.text(at + offset);
+                let cost = wind_cost(text, self.unit);
+                // Where no wind is due, only a flawless group can be one, and a group sent twice is the next level's.
+                let doubled = !is_missing(text) && text == self.text(at + offset + 1);
+                let undue = promise == Promise::LeftOut && (cost > 0 || doubled);
+                cost + if undue { STRAY } else { 0 }
+            };
+            let mut offer = |length: usize, air: Option<usize>, wind: Option<usize>, cost: u32| {
                 found.push(Block {
                     slot: index,
                     next: index + 1,
+                    length,
                     air,
                     wind,
                     cost: base + cost,
                 });
             };
-            offer(
-                true,
-                true,
-                air + wind_cost(self.text(at + 2), self.unit) + given,
-            );
-            offer(true, false, air + left_out);
-            offer(
-                false,
-                true,
-                7 + wind_cost(self.text(at + 1), self.unit) + given,
-            );
-            offer(false, false, 8);
+            offer(3, Some(1), Some(2), air(1) + wind(2) + given);
+            offer(2, Some(1), None, air(1) + left_out);
+            offer(2, None, Some(1), MISSING + wind(1) + given);
+            offer(1, None, None, bare);
+            // With one group too many among them.
+            offer(4, Some(1), Some(3), air(1) + wind(3) + given + INSIDE);
+            offer(4, Some(2), Some(3), air(2) + wind(3) + given + INSIDE);
+            offer(3, Some(2), None, air(2) + left_out + INSIDE);
         }
+    }
+
+    fn skips(&self, state: usize, slot: usize) -> bool {
+        slot > state
     }
 
     fn end(&self, at: usize) -> Option<u32> {
         let text = self.text(at);
-        if is_marker(text) || text.starts_with("88") && is_extreme(text) {
+        if is_marker(text) {
             return Some(0);
         }
-        // Maximum wind comes after the tropopause: a 77 before an 88 is more likely a temperature.
-        let rest = self.words.get(at..).unwrap_or(&[]);
-        let tropopause_follows = rest
-            .iter()
-            .take_while(|word| !is_marker(word.text))
-            .any(|word| word.text.starts_with("88") && is_extreme(word.text));
-        is_extreme(text).then_some(if tropopause_follows { 6 } else { 0 })
+        // A temperature can look like the start of what follows (77310), so that has to make sense as well; and a maximum
+        // wind before a tropopause never does.
+        let after = *self.after.get(at).filter(|_| is_extreme(text))?;
+        let disorder = !text.starts_with("88")
+            && self
+                .words
+                .iter()
+                .skip(at)
+                .any(|word| word.text.starts_with("88") && is_extreme(word.text));
+        Some(after + if disorder { 3 * STRAY } else { 0 })
     }
 }
 
@@ -208,36 +238,44 @@ pub(super) fn read(words: &[Word], indicator: char, context: &mut Context) -> us
         part: context.part,
         indicator,
         unit: context.unit,
+        after: extremes::costs(words, context.unit, context.part.upper()),
     };
-    let (pieces, end) = align(&scheme);
-    let strays = pieces.iter().filter_map(|piece| match piece {
-        Piece::Stray(at) => Some(*at),
-        Piece::Level { .. } => None,
-    });
-    context.strays(words, strays);
-    let mut coded = Vec::new();
+    let reading = align(&scheme);
+    let last = reading.levels.last().map(|piece| piece.at);
+    context.unread_top = reading.strays.last().copied() > last;
+    context.strays(words, reading.strays.into_iter());
+    let mut entries: Vec<Entry> = Vec::new();
     let mut unpromised = None;
-    for piece in pieces {
-        let Piece::Level { at, block } = piece else {
-            continue;
-        };
-        let (Some(slot), Some(&word)) = (slots.get(block.slot), words.get(at)) else {
+    let mut before_is_whole = true;
+    let mut regular_end = 0;
+    for piece in reading.levels {
+        let (Some(slot), Some(&word)) = (slots.get(piece.block.slot), words.get(piece.at)) else {
             continue;
         };
         let promise = promise(indicator, slot, context.part);
-        let level = level(&scheme, slot, block, at, promise, context);
+        let level = level(&scheme, slot, piece, promise, context);
         if promise == Promise::LeftOut && level.wind.is_some() {
             unpromised.get_or_insert((word.line, slot.name()));
         }
-        coded.push(Coded {
-            pressure: slot.pascals().unwrap_or_default(),
-            figures: slot
-                .pascals()
-                .and_then(|_| height_figures(word, slot, context)),
-            temperature: level.temperature,
-            height: None,
+        let block = piece.block;
+        let values = usize::from(block.air.is_some()) + usize::from(block.wind.is_some());
+        let whole = piece.span == 1 + values
+            && block.air.is_some()
+            && (block.wind.is_some() || promise != Promise::Given);
+        entries.push(Entry {
+            shaky: !(whole && before_is_whole && piece.at == regular_end),
+            coded: slot.pascals().map(|pressure| Coded {
+                pressure,
+                figures: height_figures(word, slot, context),
+                temperature: level.temperature,
+                height: None,
+            }),
+            words: (piece.at, piece.at + block.length),
+            name: slot.name(),
+            level,
         });
-        context.levels.push(level);
+        before_is_whole = whole;
+        regular_end = piece.at + block.length;
     }
     if let Some((line, name)) = unpromised {
         context.note(
@@ -246,23 +284,36 @@ pub(super) fn read(words: &[Word], indicator: char, context: &mut Context) -> us
             &format!("the date group's last figure ({indicator}) says that none is given so high"),
         );
     }
-    heights(coded, context);
-    end
+    heights(words, &mut entries, context);
+    context
+        .levels
+        .extend(entries.into_iter().map(|entry| entry.level));
+    reading.end
+}
+
+/// A level read, with what is needed to judge it.
+struct Entry {
+    level: Level,
+    /// Absent for the ground.
+    coded: Option<Coded>,
+    /// A group is missing or too many in it or right before it, so that it may be stitched together wrongly.
+    shaky: bool,
+    /// Its groups, from and to.
+    words: (usize, usize),
+    name: String,
 }
 
 fn level(
     scheme: &Standard,
     slot: &Slot,
-    block: Block,
-    at: usize,
+    piece: Piece,
     promise: Promise,
     context: &mut Context,
 ) -> Level {
-    let words = scheme.words;
     let name = slot.name();
-    let word = |index: usize| words.get(index).copied();
+    let word = |offset: usize| scheme.words.get(piece.at + offset).copied();
     let mut level = Level::default();
-    let Some(first) = word(at) else { return level };
+    let Some(first) = word(0) else { return level };
     level.line = Some(first.line);
     match slot.pascals() {
         Some(pressure) => {
@@ -274,8 +325,10 @@ fn level(
             level.pressure = context.surface_pressure(first);
         }
     }
-    match (word(at + 1), block.air, block.wind) {
-        (Some(only), true, false) if promise == Promise::Given => {
+    let air = piece.block.air.and_then(word);
+    let wind = piece.block.wind.and_then(word);
+    match (air, wind) {
+        (Some(only), None) if promise != Promise::LeftOut && piece.span == 2 => {
             let either = !is_missing(only.text) && wind_cost(only.text, scheme.unit) == 0;
             if either {
                 context.note(
@@ -291,26 +344,40 @@ fn level(
                 context.note(
                     only.line,
                     format!("{name} left without wind"),
-                    "its wind group is missing",
+                    if promise == Promise::Given {
+                        "its wind group is missing"
+                    } else {
+                        "it has no wind group; the date group's last figure leaves open whether it should"
+                    },
                 );
             }
+            return level;
         }
-        (Some(air), true, _) => context.air(&mut level, air, &name),
-        (Some(wind), false, true) => {
-            context.wind(&mut level, wind, &name);
-            context.note(
-                wind.line,
-                format!("{name} left without temperature and dew point"),
-                "its temperature group is missing",
-            );
-        }
-        _ => context.note(
+        (None, Some(wind)) => context.note(
+            wind.line,
+            format!("{name} left without temperature and dew point"),
+            "its temperature group is missing",
+        ),
+        (None, None) => context.note(
             first.line,
             format!("{name} has neither a temperature nor a wind group"),
             "they are missing where they should stand",
         ),
+        (Some(_), _) => {}
     }
-    if let (true, true, Some(wind)) = (block.air, block.wind, word(at + 2)) {
+    let values = scheme.words.get(piece.at + 1..piece.at + piece.span);
+    let air_cost = |text: &str| air_cost(text, slot.pascals());
+    let wind_cost = |text: &str| wind_cost(text, scheme.unit);
+    let certain = context.certain(
+        values.unwrap_or(&[]),
+        &name,
+        air.is_some().then_some(&air_cost),
+        wind.is_some().then_some(&wind_cost),
+    );
+    if let Some(air) = air.filter(|_| certain.air) {
+        context.air(&mut level, air, &name);
+    }
+    if let Some(wind) = wind.filter(|_| certain.wind) {
         context.wind(&mut level, wind, &name);
     }
     level
@@ -336,45 +403,72 @@ fn height_figures(word: Word, slot: &Slot, context: &mut Context) -> Option<u32>
     height
 }
 
-/// Settles the heights of the levels just read, the last ones of the context.
-fn heights(coded: Vec<Coded>, context: &mut Context) {
-    let Some(first) = context.levels.len().checked_sub(coded.len()) else {
-        return;
-    };
-    let (indices, mut coded): (Vec<_>, Vec<_>) = coded
-        .into_iter()
-        .enumerate()
-        .filter(|(_, level)| level.pressure > 0.0)
-        .map(|(index, level)| (first + index, level))
-        .unzip();
-    let doubtful = heights::resolve(&mut coded);
-    for (index, resolved) in indices.iter().zip(&coded) {
-        if let Some(level) = context.levels.get_mut(*index) {
-            level.height = resolved.height;
+/// How far (m) a height may be from what the temperatures imply before a shaky level counts as misread.
+const SHAKY_WITHIN: f64 = 250.0;
+
+/// Settles the heights. A shaky level whose height fits no temperature is taken out: its level group is most likely
+/// another group.
+fn heights(words: &[Word], entries: &mut Vec<Entry>, context: &mut Context) {
+    let misfits = loop {
+        let indices: Vec<usize> = (0..entries.len())
+            .filter(|&index| {
+                entries
+                    .get(index)
+                    .is_some_and(|entry| entry.coded.is_some())
+            })
+            .collect();
+        let mut coded: Vec<Coded> = entries.iter().filter_map(|entry| entry.coded).collect();
+        heights::resolve(&mut coded);
+        let mut misfits = heights::misfits(&coded);
+        for misfit in &mut misfits {
+            misfit.index = indices.get(misfit.index).copied().unwrap_or_default();
         }
-    }
-    let doubts: Vec<_> = doubtful
+        let misread = misfits.iter().find(|misfit| {
+            let shaky = entries.get(misfit.index).is_some_and(|entry| entry.shaky);
+            shaky && misfit.off.abs() > SHAKY_WITHIN
+        });
+        let Some(misread) = misread else {
+            for (entry, resolved) in entries
+                .iter_mut()
+                .filter(|entry| entry.coded.is_some())
+                .zip(coded)
+            {
+                entry.level.height = resolved.height;
+            }
+            break misfits;
+        };
+        let entry = entries.remove(misread.index);
+        let groups = words.get(entry.words.0..entry.words.1).unwrap_or(&[]);
+        context.note(
+            entry.level.line.unwrap_or(1),
+            format!("{} set aside: {}", entry.name, quote(groups)),
+            "a group is missing or too many here, and the height doesn't fit the temperatures: probably not this level's groups",
+        );
+    };
+    let doubts: Vec<(usize, String)> = misfits
         .iter()
-        .filter_map(|&(index, off)| {
-            let level = coded.get(index)?;
-            Some(format!(
+        .filter(|misfit| misfit.judged && misfit.off.abs() > misfit.certain_within)
+        .filter_map(|misfit| {
+            let level = &entries.get(misfit.index)?.level;
+            let text = format!(
                 "{:.0} m at {:.0} hPa ({:.0} m {})",
                 level.height?,
-                level.pressure / 100.0,
-                off.abs(),
-                if off > 0.0 { "too thick" } else { "too thin" }
-            ))
+                level.pressure? / 100.0,
+                misfit.off.abs(),
+                if misfit.off > 0.0 {
+                    "too thick"
+                } else {
+                    "too thin"
+                }
+            );
+            Some((level.line?, text))
         })
         .collect();
-    let line = doubtful
-        .first()
-        .and_then(|(index, _)| indices.get(*index))
-        .and_then(|index| context.levels.get(*index))
-        .and_then(|level| level.line);
-    if let Some(line) = line {
+    if let Some((line, _)) = doubts.first() {
+        let texts: Vec<_> = doubts.iter().map(|(_, text)| text.as_str()).collect();
         context.note(
-            line,
-            format!("heights kept as coded: {}", doubts.join(", ")),
+            *line,
+            format!("heights kept as coded: {}", texts.join(", ")),
             "no reading of the figures fits the thickness that the temperatures from the level below imply",
         );
     }

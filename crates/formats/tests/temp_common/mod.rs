@@ -133,7 +133,7 @@ pub fn assert_sound(loaded: &Loaded, lines: usize) {
                 );
             };
             within(level.pressure, 1.0, 110_000.0);
-            within(level.height, -1_000.0, 50_000.0);
+            within(level.height, -1_000.0, 100_000.0);
             within(level.temperature, 173.0, 373.1);
             within(level.dewpoint, 120.0, 373.1);
             within(level.wind.map(|wind| wind.direction), 0.0, 360.0);
@@ -152,4 +152,43 @@ pub fn assert_sound(loaded: &Loaded, lines: usize) {
     for note in notes {
         assert!(!note.what.is_empty());
     }
+}
+
+/// Levels without their lines.
+pub fn bare(levels: &[Level]) -> Vec<Level> {
+    let bare = |level: &Level| Level {
+        line: None,
+        ..*level
+    };
+    levels.iter().map(bare).collect()
+}
+
+/// Whether every value of `after` is one of `before`.
+pub fn poorer(after: &Level, before: &Level) -> bool {
+    let kept = |after: Option<f64>, before: Option<f64>| after.is_none() || after == before;
+    after.kind == before.kind
+        && kept(after.pressure, before.pressure)
+        && kept(after.height, before.height)
+        && kept(after.temperature, before.temperature)
+        && kept(after.dewpoint, before.dewpoint)
+        && (after.wind.is_none() || after.wind == before.wind)
+}
+
+/// Groups of reports as (position, text), heading lines and the groups that identify a part left out.
+pub fn body(text: &str) -> Vec<(usize, &str)> {
+    let mut groups = Vec::new();
+    let mut header = 0;
+    let mut at = 0;
+    for piece in text.split_inclusive([' ', '\r', '\n', '=']) {
+        let group = piece.trim_end_matches([' ', '\r', '\n', '=']);
+        match group.len() {
+            4 if group.starts_with("XX") => header = 4,
+            4 => header = 2,
+            5 if header == 0 => groups.push((at, group)),
+            5 => header -= 1,
+            _ => {}
+        }
+        at += piece.len();
+    }
+    groups
 }

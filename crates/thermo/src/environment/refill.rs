@@ -1,9 +1,9 @@
 //! Making an environment from columns, and making it again when only its lower part has changed.
 
 use super::{Environment, EnvironmentError, HumidityKnown, coordinate};
+use crate::Pressure;
 use crate::column::{Column, Levels};
 use crate::saturation::{self, NO_VAPOUR};
-use crate::Pressure;
 
 /// Usable pressures, Pa.
 const PRESSURES: std::ops::RangeInclusive<f64> = 0.1..=200_000.0;
@@ -131,7 +131,10 @@ impl Environment {
         let flags = &self.flags[shift..];
         let same_dewpoint = |i: usize| {
             let known = flags[i] & KNOWN != 0;
-            let (new, old) = (td[i].map_or(0.0, |value| value.min(t[i])), old_td[i].unwrap_or(0.0));
+            let (new, old) = (
+                td[i].map_or(0.0, |value| value.min(t[i])),
+                old_td[i].unwrap_or(0.0),
+            );
             (td[i].is_some() == known) & (!known | (new == old))
         };
         let mut kept = same_above(most, |i| p[i] == old_p[i]);
@@ -196,6 +199,7 @@ impl Environment {
         if interpolated > 0 {
             fill_between(
                 &self.z,
+                &self.t,
                 &mut self.td[..bound.min(last_known + 1)],
                 &self.flags,
             );
@@ -285,18 +289,19 @@ fn first_unusable(pressure: &[f64], temperature: &[f64]) -> EnvironmentError {
     EnvironmentError::TooFewLevels(pressure.len())
 }
 
-/// Fills gaps between known values, linear in z. The first and last value must be known.
-fn fill_between(z: &[f64], values: &mut [Option<f64>], flags: &[u8]) {
+/// Fills gaps between known values, linear in z, but not above the temperature there. The first and last value must be
+/// known.
+fn fill_between(z: &[f64], t: &[f64], values: &mut [Option<f64>], flags: &[u8]) {
     let mut known = 0;
     for i in 1..values.len() {
-        let (Some(a), Some(b)) = (values[known], values[i]) else {
-            continue;
-        };
         if flags[i] & KNOWN == 0 {
             continue;
         }
-        for k in known + 1..i {
-            values[k] = Some(a + (b - a) * (z[k] - z[known]) / (z[i] - z[known]));
+        if let (Some(a), Some(b)) = (values[known], values[i]) {
+            let slope = (b - a) / (z[i] - z[known]);
+            for k in known + 1..i {
+                values[k] = Some((a + slope * (z[k] - z[known])).min(t[k]));
+            }
         }
         known = i;
     }

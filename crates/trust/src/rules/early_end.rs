@@ -16,6 +16,9 @@ const TROPOPAUSE_DEPTH_M: f64 = 2000.0;
 /// Not looked for below this pressure (stable layers there are not the tropopause).
 const TROPOPAUSE_BELOW: f64 = 50_000.0;
 
+/// The equilibrium level of less CAPE than this is not worth telling.
+const WORTH_TELLING_JKG: f64 = 10.0;
+
 /// The ascent ends below 100 hPa.
 pub struct EarlyEnd;
 
@@ -54,7 +57,8 @@ impl Rule for EarlyEnd {
             return Vec::new();
         };
         let top = Pressure::from_pa(column.pressure[last]);
-        if top.hpa() <= view.threshold("early-end.top_hpa") {
+        // Rounded as it is shown: an ascent that ends at 100.1 hPa has reached 100 hPa.
+        if top.hpa().round() <= view.threshold("early-end.top_hpa") {
             return Vec::new();
         }
         vec![self.finding(view, top, last)]
@@ -162,7 +166,9 @@ impl EarlyEnd {
             innocent: if clues.descending {
                 "A dropsonde knows nothing of the air above the aircraft: this is no fault.".into()
             } else {
-                "Balloons burst and signals fade in any weather; everything measured below the top stands.".into()
+                "Balloons burst and signals fade in any weather, and a sonde dropped from an aircraft starts where the aircraft \
+             flies; everything measured below the top stands."
+                .into()
             },
             caveat: caveat(view, top, awaited, &clues),
             repairs: Vec::new(),
@@ -203,6 +209,7 @@ fn against_el(
         return true;
     }
     let with_el = ascents()
+        .filter(|ascent| ascent.cape >= WORTH_TELLING_JKG)
         .filter_map(|ascent| Some((ascent, ascent.el?)))
         .max_by(|a, b| largest(&a.0, &b.0));
     if let Some((_, el)) = with_el {

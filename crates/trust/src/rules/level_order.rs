@@ -1,7 +1,7 @@
 //! Levels out of order, twice over, or with heights that run backwards.
 
 use super::repair;
-use crate::words::number;
+use crate::words::{layer, number};
 use crate::{Evidence, Finding, Grade, Repair, Rule, View};
 use dewbound_sounding::thermo::Pressure;
 use dewbound_sounding::{Amendment, Level, LevelKind, Sampling};
@@ -222,38 +222,63 @@ impl LevelOrder {
         let profile = view.context.profile;
         let limit = view.threshold("level-order.height_m");
         let from = profile.surface.unwrap_or(0);
-        let mut highest: Option<(f64, f64)> = None;
-        let mut falls: Vec<(f64, f64, f64)> = Vec::new();
-        for (&p, &height) in profile.pressure.iter().zip(&profile.height).skip(from) {
+        let mut highest: Option<(f64, usize)> = None;
+        // Row of the level above which height falls, row of the lower one, by how much.
+        let mut falls: Vec<(usize, usize, f64)> = Vec::new();
+        for (row, &height) in profile.height.iter().enumerate().skip(from) {
             let Some(z) = height else { continue };
             match highest {
-                Some((below, p_below)) if below - z > limit => falls.push((p_below, p, below - z)),
+                Some((below, row_below)) if below - z > limit => {
+                    falls.push((row_below, row, below - z))
+                }
                 Some((below, _)) if below >= z => {}
-                _ => highest = Some((z, p)),
+                _ => highest = Some((z, row)),
             }
         }
-        let &(bottom, _, _) = falls.first()?;
-        let &(_, top, _) = falls.last()?;
+        let &(first, _, _) = falls.first()?;
+        let &(_, last, _) = falls.last()?;
         let worst = falls.iter().map(|fall| fall.2).fold(0.0, f64::max);
+        let pressure = |row: usize| profile.pressure.get(row).copied();
+        let (bottom, top) = (pressure(first)?, pressure(last)?);
+        // Which of them is wrong can't be told from heights alone: the levels with them all out of the way.
+        let believed = first
+            .checked_sub(1)
+            .filter(|&row| row >= from)
+            .and_then(pressure);
+        let repairs = match (believed, pressure(last + 1)) {
+            (Some(below), Some(above)) => vec![Repair {
+                id: "drop-levels",
+                what: format!(
+                    "Drop the levels between {} and {}",
+                    repair::at(below),
+                    repair::at(above)
+                ),
+                amendments: vec![Amendment::DropLevels {
+                    bottom_pa: below,
+                    top_pa: above,
+                }],
+            }],
+            _ => Vec::new(),
+        };
         let (bottom_p, top_p) = (Pressure::from_pa(bottom), Pressure::from_pa(top));
         Some(Finding {
             heights: view.heights(bottom_p, top_p),
             summary: format!(
-                "Height falls by up to {} m while pressure falls, between {} and {}.",
+                "Height falls by up to {} m while pressure falls, {}.",
                 number(worst, 0),
-                repair::at(bottom),
-                repair::at(top)
+                layer(bottom_p, top_p)
             ),
             evidence: vec![
                 Evidence::new("height_fall_m", "height falls by up to", worst, "m", 0),
                 Evidence::new("levels", "levels lower than one beneath them", falls.len() as f64, "", 0),
             ],
-            guilty: "A height or a pressure was miscoded. Temperatures and humidity, and so CAPE, don't depend on the \
-                     heights, but they do on the pressures."
+            guilty: "A height or a pressure was miscoded. A wrong height alone doesn't touch temperature, humidity or CAPE; a \
+                     wrong pressure puts them at the wrong place."
                 .into(),
             innocent: "A single height was miscoded and everything else stands, or the height and pressure sensors \
                        disagree by more than usual."
                 .into(),
+            repairs,
             ..self.blank(Grade::Erroneous, bottom, top)
         })
     }
@@ -263,8 +288,15 @@ impl LevelOrder {
 fn reversals(view: &View) -> Vec<Reversal> {
     let sounding = view.context.sounding;
     let fine = view.context.profile.sampling == Sampling::Fine;
+    // Fine data also hold the wait before launch and the way down after the burst, which the profile leaves out.
+    let flight = if fine {
+        flight(view)
+    } else {
+        0..sounding.levels.len()
+    };
     let with_pressure = || {
-        sounding.levels.iter().filter_map(|level| {
+        let levels = sounding.levels.get(flight.clone()).unwrap_or_default();
+        levels.iter().filter_map(|level| {
             Some((level, level.pressure.filter(|p| p.is_finite() && *p > 0.0)?))
         })
     };
@@ -297,6 +329,18 @@ fn reversals(view: &View) -> Vec<Reversal> {
         reversals.extend(episodes(&sequence, waiting, tolerance));
     }
     reversals
+}
+
+/// The received levels from the surface of the profile to its top, in whichever order they came.
+fn flight(view: &View) -> std::ops::Range<usize> {
+    let profile = view.context.profile;
+    let received = |row: usize| profile.received.get(row).copied().flatten();
+    let surface = received(profile.surface.unwrap_or(0));
+    let top = (0..profile.len()).rev().find_map(received);
+    match (surface, top) {
+        (Some(surface), Some(top)) => surface.min(top)..surface.max(top) + 1,
+        _ => 0..view.context.sounding.levels.len(),
+    }
 }
 
 /// Most steps go up in pressure: a sonde dropped from an aircraft.

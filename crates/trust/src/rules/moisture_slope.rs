@@ -23,6 +23,8 @@ enum Shape {
     Even,
     /// Between the surface and the levels above it.
     Jump,
+    /// A little of each, which add up.
+    Both,
     /// Too few levels to tell.
     Unresolved,
 }
@@ -42,6 +44,8 @@ pub(super) struct Seen {
     /// brought to surface pressure, K.
     slope_k: f64,
     jump_k: f64,
+    /// The same from the surface value to the top of the fit, K.
+    total_k: f64,
 }
 
 impl Rule for MoistureSlope {
@@ -119,25 +123,29 @@ pub(super) fn seen(view: &View) -> Option<Seen> {
         .interior
         .iter()
         .filter_map(|&level| humidity_uncertainty(view, level))
-        .fold(0.0, f64::max);
+        .sum::<f64>()
+        / mixed.interior.len() as f64;
+    let total_k = dewpoint(surface_w) - dewpoint(fitted.1);
     let limit = |name| f64::hypot(view.threshold(name), uncertain);
     let slopes = slope_k.abs() >= limit("moisture-slope.slope_k");
     let jumps = jump_k.abs() >= limit("moisture-slope.jump_k");
     let shape = match (slopes, jumps) {
-        (_, true) if mixed.interior.len() == 1 => Shape::Unresolved,
+        // One level, perhaps far up: some fall of moisture on the way there is ordinary.
+        _ if mixed.interior.len() == 1 => {
+            if jump_k.abs() < limit("moisture-slope.total_k") {
+                return None;
+            }
+            Shape::Unresolved
+        }
         (true, false) => Shape::Even,
         (false, true) => Shape::Jump,
         (true, true) if jump_k.abs() >= slope_k.abs() => Shape::Jump,
         (true, true) => Shape::Even,
         // Neither is much by itself, but they add up.
-        (false, false)
-            if (dewpoint(surface_w) - dewpoint(fitted.1)).abs()
-                < limit("moisture-slope.total_k") =>
-        {
+        (false, false) if total_k.abs() < limit("moisture-slope.total_k") => {
             return None;
         }
-        (false, false) if jump_k.abs() >= slope_k.abs() => Shape::Jump,
-        (false, false) => Shape::Even,
+        (false, false) => Shape::Both,
     };
     Some(Seen {
         mixed,
@@ -148,6 +156,7 @@ pub(super) fn seen(view: &View) -> Option<Seen> {
         residual: line.residual,
         slope_k,
         jump_k,
+        total_k,
     })
 }
 
@@ -169,6 +178,7 @@ impl MoistureSlope {
         let grams = |w: f64| 1000.0 * w;
         let (from, to, at_one_pressure) = match seen.shape {
             Shape::Even => (seen.fitted.0, seen.fitted.1, seen.slope_k),
+            Shape::Both => (seen.surface_w, seen.fitted.1, seen.total_k),
             Shape::Jump | Shape::Unresolved => (seen.surface_w, seen.at_surface, seen.jump_k),
         };
         let change = grams(from - to);
@@ -176,6 +186,7 @@ impl MoistureSlope {
         let span = layer(mixed.bottom, mixed.top);
         let head = match seen.shape {
             Shape::Even => format!("Mixing ratio {direction} evenly"),
+            Shape::Both => format!("Mixing ratio {direction} from the surface to the top"),
             Shape::Jump => format!("Mixing ratio {direction} at the lowest levels"),
             Shape::Unresolved => {
                 format!("Mixing ratio {direction} from the surface to the one level above it")
@@ -301,11 +312,11 @@ fn guilty(seen: &Seen) -> String {
             "The surface hygrometer reads too dry, or the sonde too moist from the start. If the surface is wrong, \
              surface CAPE is too low."
         }
-        Shape::Even if seen.slope_k > 0.0 => {
+        Shape::Even | Shape::Both if seen.total_k > 0.0 => {
             "The sonde's humidity sensor drifts dry as it rises (lag, heating of the sensor), or surface and sonde differ \
              and smoothing has spread it. Air that is mixed in theta should be mixed in moisture."
         }
-        Shape::Even => {
+        Shape::Even | Shape::Both => {
             "The sonde's humidity sensor was too dry at first and caught up while rising, or the surface value is too \
              low. Air that is mixed in theta should be mixed in moisture."
         }
@@ -322,11 +333,11 @@ fn innocent(seen: &Seen) -> String {
         Shape::Jump | Shape::Unresolved => {
             "Outflow or downslope air, or dry ground in a moist air mass carried in above it, leaves drier air at the ground."
         }
-        Shape::Even if seen.slope_k > 0.0 => {
+        Shape::Even | Shape::Both if seen.total_k > 0.0 => {
             "Entrainment of dry air at the top of a growing mixed layer, or advection that changes with height, makes w \
              fall evenly upward; it is common in heated layers."
         }
-        Shape::Even => "Moister air carried in above, or drying of the lowest air by advection.",
+        Shape::Even | Shape::Both => "Moister air carried in above, or drying of the lowest air by advection.",
     }
     .into()
 }
@@ -409,7 +420,7 @@ mod tests {
             let found = (0..40)
                 .filter(|&seed| !sloping(seed, 4.0, sampling).is_empty())
                 .count();
-            assert!(found >= 38, "{sampling:?}: {found} of 40");
+            assert!(found >= 36, "{sampling:?}: {found} of 40");
         }
         let fine = sloping(3, 4.0, Sampling::Fine);
         assert!(fine[0].summary.contains("evenly"), "{}", fine[0].summary);

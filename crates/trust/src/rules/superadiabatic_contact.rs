@@ -10,6 +10,9 @@ use dewbound_sounding::thermo::{KAPPA, Pressure, REFERENCE_PRESSURE, Temperature
 /// Share of the fall of theta within which the depth of the layer is counted: the rest fades into the mixed layer.
 const MOST_OF_THE_FALL: f64 = 0.8;
 
+/// Theta rising by more than this from the ground to the foot of the layer parts it from the ground, K.
+const STABLE_BENEATH_K: f64 = 0.5;
+
 /// The heated surface layer: normal by day and shallow, abnormal at night or deep.
 pub struct SuperadiabaticContact;
 
@@ -68,8 +71,10 @@ impl SuperadiabaticContact {
             mut top,
             drop,
         } = falling;
-        let attached =
-            surface - column.pressure[base] <= 100.0 * view.threshold("mixed-layer.contact_hpa");
+        // No more stable air beneath its foot than noise makes.
+        let attached = surface - column.pressure[base]
+            <= 100.0 * view.threshold("mixed-layer.contact_hpa")
+            && theta[0] >= theta[base] - STABLE_BENEATH_K;
         if attached {
             top = (base..=top)
                 .find(|&level| theta[level] <= theta[base] - MOST_OF_THE_FALL * drop)

@@ -137,7 +137,7 @@ fn dewpoint_gap(view: &View, surface: f64, levels: &[usize]) -> Option<Gap> {
         Daylight::Day => view.threshold("surface-mismatch.dewpoint_day_k"),
         Daylight::Night | Daylight::Unknown => view.threshold("surface-mismatch.dewpoint_night_k"),
     };
-    (difference.abs() >= limit).then(|| Gap {
+    (difference.abs() >= limit).then_some(Gap {
         difference,
         expected: measured - difference,
     })

@@ -1,0 +1,324 @@
+//! What must hold for every profile, whatever its numbers.
+#![allow(clippy::unwrap_used, clippy::expect_used)]
+
+use dewbound_thermo::*;
+use proptest::prelude::*;
+use proptest::test_runner::RngSeed;
+
+/// Columns of a profile that a balloon could bring home: lapse rates from inversions to superadiabatic, any humidity,
+/// gaps in it, dry above some level.
+#[derive(Debug, Clone)]
+struct Columns {
+    p: Vec<f64>,
+    t: Vec<f64>,
+    td: Vec<Option<f64>>,
+}
+
+impl Columns {
+    fn environment(&self) -> Environment {
+        Environment::new(&self.p, &self.t, &self.td).unwrap()
+    }
+}
+
+prop_compose! {
+    fn step()(depth in 0.002..0.25_f64, lapse in -0.4..1.3_f64, depression in 0.0..30.0_f64, missing in 0..12) -> (f64, f64, f64, bool) {
+        (depth, lapse, depression, missing == 0)
+    }
+}
+
+prop_compose! {
+    fn columns(levels: std::ops::Range<usize>)(
+        bottom in 700e2..1040e2_f64,
+        surface in 255.0..312.0_f64,
+        first in 0.0..20.0_f64,
+        steps in prop::collection::vec(step(), levels),
+        humid_share in 0.3..1.6_f64,
+    ) -> Columns {
+        let (mut p, mut t) = (bottom, surface);
+        let mut columns = Columns { p: vec![p], t: vec![t], td: vec![Some(t - first)] };
+        let last_humid = (steps.len() as f64 * humid_share) as usize;
+        for (i, (depth, lapse, depression, missing)) in steps.into_iter().enumerate() {
+            // Above 80 hPa it would get too cold for any air: warm up instead.
+            let lapse = if p < 80e2 { -0.2 } else { lapse };
+            p *= (-depth).exp();
+            // Dry adiabat: dT = kappa T d ln p.
+            t = (t - lapse * KAPPA * t * depth).clamp(170.0, 320.0);
+            columns.p.push(p);
+            columns.t.push(t);
+            // Never more vapour than a fifth of the pressure, or it isn't air.
+            let limit = dewpoint_from_vapour_pressure(Pressure::from_pa(0.2 * p)).k();
+            columns.td.push((!missing && i < last_humid).then_some((t - depression).min(limit)));
+        }
+        columns
+    }
+}
+
+/// A profile that usually has CAPE: warm, moist below, conditionally unstable aloft.
+fn unstable() -> impl Strategy<Value = Columns> {
+    (
+        12..60_usize,
+        960e2..1020e2_f64,
+        294.0..310.0_f64,
+        1.0..9.0_f64,
+        0.55..0.8_f64,
+        any::<u64>(),
+    )
+        .prop_map(|(n, bottom, surface, depression, lapse, mut seed)| {
+            let mut noise = move || {
+                seed = seed
+                    .wrapping_mul(6_364_136_223_846_793_005)
+                    .wrapping_add(1_442_695_040_888_963_407);
+                (seed >> 33) as f64 / f64::from(1u32 << 31) - 0.5
+            };
+            let mut columns = Columns {
+                p: vec![],
+                t: vec![],
+                td: vec![],
+            };
+            let top = (bottom / 60e2_f64).ln();
+            for i in 0..n {
+                let z = top * i as f64 / (n - 1) as f64;
+                let t = (surface * (-KAPPA * lapse * z).exp()).max(212.0) + noise();
+                columns.p.push(bottom * (-z).exp());
+                columns.t.push(t);
+                columns.td.push(Some(
+                    t - depression - (8.0 * z).min(20.0) * (0.5 + noise().abs()),
+                ));
+            }
+            columns
+        })
+}
+
+/// The columns with levels interpolated at these shares of their range in ln p.
+fn with_levels_inserted(columns: &Columns, shares: &[f64]) -> Columns {
+    let environment = columns.environment();
+    let (bottom, top) = (columns.p[0].ln(), columns.p[columns.p.len() - 1].ln());
+    // Gaps filled: a known dew point set into one would be a new thing to interpolate from.
+    let mut result = Columns {
+        td: environment.dewpoint().to_vec(),
+        ..columns.clone()
+    };
+    for share in shares {
+        let p = (bottom + (top - bottom) * share).exp();
+        let place = result.p.partition_point(|&level| level > p);
+        // Not so close to a level that rounding of ln p would be a lapse rate of its own.
+        let close = |i: usize| {
+            result
+                .p
+                .get(i)
+                .is_none_or(|level| (level / p - 1.0).abs() < 1e-5)
+        };
+        if place == 0 || close(place - 1) || close(place) {
+            continue;
+        }
+        let pressure = Pressure::from_pa(p);
+        let (t, _) = environment.virtual_at(pressure).unwrap();
+        result.p.insert(place, p);
+        result.t.insert(place, t);
+        result
+            .td
+            .insert(place, environment.at(pressure).map(|air| air.dewpoint.k()));
+    }
+    result
+}
+
+fn surface(environment: &Environment) -> Ascent {
+    lift(environment, environment.bottom(), Method::PseudoAdiabat).unwrap()
+}
+
+/// Agreement to `relative` of the larger number or of 1.
+fn close(a: f64, b: f64, relative: f64) -> bool {
+    (a - b).abs() <= relative * a.abs().max(b.abs()).max(1.0)
+}
+
+fn all_starts(environment: &Environment) -> Vec<Air> {
+    let mut starts = vec![environment.bottom()];
+    starts.extend(mixed_start(environment, MIXED_DEPTH));
+    starts.extend(
+        most_unstable_start(environment, MOST_UNSTABLE_DEPTH, |_| true).map(|(_, air)| air),
+    );
+    starts
+}
+
+fn check_sane(environment: &Environment, ascent: &Ascent) {
+    assert!(
+        ascent.cape.is_finite() && ascent.cape >= 0.0 && ascent.cape.is_sign_positive(),
+        "{ascent:?}"
+    );
+    assert!(ascent.theta_e.k().is_finite() && ascent.lcl.temperature.k().is_finite());
+    assert!(ascent.lcl.pressure.pa().is_finite() && ascent.lcl.pressure <= ascent.start.pressure);
+    assert_eq!(ascent.buoyant.is_empty(), ascent.cin.is_none());
+    assert_eq!(ascent.buoyant.is_empty(), ascent.lfc.is_none());
+    assert_eq!(ascent.cape == 0.0, ascent.buoyant.is_empty());
+    if let Some(cin) = ascent.cin {
+        assert!(
+            cin.is_finite() && cin <= 0.0 && !(cin == 0.0 && cin.is_sign_negative()),
+            "{ascent:?}"
+        );
+    }
+    let mut above = f64::INFINITY;
+    for layer in &ascent.buoyant {
+        assert!(
+            layer.area > 0.0 && layer.bottom.pa() <= above && layer.top < layer.bottom,
+            "{ascent:?}"
+        );
+        assert!(
+            layer.bottom <= ascent.lcl.pressure && layer.top >= environment.top(),
+            "{ascent:?}"
+        );
+        above = layer.top.pa();
+    }
+    if let (Some(el), Some(lfc)) = (ascent.el, ascent.lfc) {
+        assert!(el < lfc, "{ascent:?}");
+    }
+    if ascent.el.is_none() && !ascent.buoyant.is_empty() {
+        assert!(ascent.at_least);
+    }
+}
+
+/// The same few hundred cases every time; with `DEWBOUND_LONG=1` many more, and new ones.
+fn config() -> ProptestConfig {
+    let long = std::env::var_os("DEWBOUND_LONG").is_some();
+    ProptestConfig {
+        cases: if long { 5_000 } else { 300 },
+        rng_seed: if long {
+            RngSeed::Random
+        } else {
+            RngSeed::Fixed(20_261_201)
+        },
+        failure_persistence: None,
+        ..ProptestConfig::default()
+    }
+}
+
+proptest! {
+    #![proptest_config(config())]
+
+    #[test]
+    fn finite_profiles_give_finite_numbers(columns in columns(1..60)) {
+        let environment = columns.environment();
+        for start in all_starts(&environment) {
+            check_sane(&environment, &lift(&environment, start, Method::PseudoAdiabat).unwrap());
+        }
+        let held = environment.with_humidity_held();
+        prop_assert_eq!(held.humidity().dry, 0);
+        check_sane(&held, &surface(&held));
+    }
+
+    /// Any finite start: between levels, saturated, bone dry, hot, cold, above, below.
+    #[test]
+    fn any_start_gives_an_ascent_or_none(columns in columns(1..30), p in prop_oneof![1.0..1e3_f64, 1e3..1200e2_f64], t in 60.0..400.0_f64, td in 30.0..400.0_f64) {
+        let environment = columns.environment();
+        let start = Air { pressure: Pressure::from_pa(p), temperature: Temperature::from_k(t), dewpoint: Temperature::from_k(td) };
+        if let Some(ascent) = lift(&environment, start, Method::PseudoAdiabat) {
+            check_sane(&environment, &ascent);
+            for state in parcel_path(start, Method::PseudoAdiabat, &columns.p.iter().map(|p| Pressure::from_pa(*p)).collect::<Vec<_>>()) {
+                prop_assert!(state.temperature.k().is_finite() && state.virtual_temperature.k() >= state.temperature.k());
+            }
+        }
+    }
+
+    /// The numbers belong to the interpolated profile, not to its levels.
+    #[test]
+    fn interpolated_levels_change_nothing(columns in unstable(), shares in prop::collection::vec(0.0..1.0_f64, 1..80)) {
+        let (coarse, fine) = (columns.environment(), with_levels_inserted(&columns, &shares).environment());
+        for (a, b) in all_starts(&coarse).into_iter().zip(all_starts(&fine)).take(2) {
+            let (a, b) = (lift(&coarse, a, Method::PseudoAdiabat).unwrap(), lift(&fine, b, Method::PseudoAdiabat).unwrap());
+            prop_assert!(close(a.cape, b.cape, 1e-6), "CAPE {} and {}", a.cape, b.cape);
+            prop_assert_eq!(a.lfc.is_some(), b.lfc.is_some());
+            if a.cape > 1e-3 {
+                let (la, lb) = (a.lfc.unwrap().pa(), b.lfc.unwrap().pa());
+                prop_assert!(close(la, lb, 1e-6), "LFC {la} and {lb}");
+                prop_assert!(close(a.cin.unwrap(), b.cin.unwrap(), 1e-6), "CIN {:?} and {:?}", a.cin, b.cin);
+                prop_assert_eq!(a.el.is_some(), b.el.is_some());
+                if let (Some(a), Some(b)) = (a.el, b.el) {
+                    prop_assert!(close(a.pa(), b.pa(), 1e-6), "EL {a:?} and {b:?}");
+                }
+            }
+        }
+    }
+
+    /// The same for profiles of any shape, gaps and dry tops included; there areas alone, which are continuous.
+    #[test]
+    fn interpolated_levels_change_no_area(columns in columns(1..30), shares in prop::collection::vec(0.0..1.0_f64, 1..40)) {
+        let (coarse, fine) = (columns.environment(), with_levels_inserted(&columns, &shares).environment());
+        let (a, b) = (surface(&coarse), surface(&fine));
+        prop_assert!(close(a.cape, b.cape, 1e-6), "CAPE {} and {}", a.cape, b.cape);
+        if let (Some((ta, wa)), Some((tb, wb))) = (
+            coarse.layer_mean(coarse.bottom().pressure, coarse.top()),
+            fine.layer_mean(fine.bottom().pressure, fine.top()),
+        ) {
+            prop_assert!((ta - tb).abs() < 1e-9 * ta && (wa - wb).abs() < 1e-9, "{ta} {wa} and {tb} {wb}");
+        }
+        let (a, b) = (coarse.thickness(coarse.bottom().pressure, coarse.top()), fine.thickness(fine.bottom().pressure, fine.top()));
+        prop_assert!((a.unwrap() - b.unwrap()).abs() < 1e-8 * a.unwrap(), "{a:?} and {b:?}");
+    }
+
+    /// With the surroundings as they are, a moister parcel is never less buoyant. The tabulated path may waver by its
+    /// own error, the exact one by its quadrature.
+    #[test]
+    fn cape_never_falls_with_the_parcels_dew_point(columns in unstable(), drier in 0.0..15.0_f64, step in 0.001..3.0_f64) {
+        let environment = columns.environment();
+        let bottom = environment.bottom();
+        let moist = bottom.temperature.k() - 0.5 * drier;
+        let start = |td: f64| Air { dewpoint: Temperature::from_k(td), ..bottom };
+        let (low, high) = (start(moist - step), start(moist));
+        let cape = |start| lift(&environment, start, Method::PseudoAdiabat).unwrap().cape;
+        prop_assert!(cape(high) >= cape(low) - 0.02, "{} then {}", cape(low), cape(high));
+        let exactly = |start| lift_exactly(&environment, start, Method::PseudoAdiabat).unwrap().cape;
+        prop_assert!(exactly(high) >= exactly(low) - 1e-3, "{} then {}", exactly(low), exactly(high));
+    }
+
+    /// The stated bound of the fast path: CAPE and CIN within 0.01 % (or 0.01 J/kg).
+    #[test]
+    fn the_fast_path_agrees_with_the_exact_one(columns in unstable()) {
+        let environment = columns.environment();
+        for start in all_starts(&environment) {
+            let fast = lift(&environment, start, Method::PseudoAdiabat).unwrap();
+            let exact = lift_exactly(&environment, start, Method::PseudoAdiabat).unwrap();
+            prop_assert!((fast.cape - exact.cape).abs() <= 1e-4 * exact.cape.max(100.0), "{} and {}", fast.cape, exact.cape);
+            if exact.buoyant.len() == 1 && exact.cape > 1.0 {
+                let (a, b) = (fast.cin.unwrap(), exact.cin.unwrap());
+                prop_assert!((a - b).abs() <= 1e-4 * b.abs().max(100.0), "CIN {a} and {b}");
+                prop_assert!((fast.lfc.unwrap().pa() / exact.lfc.unwrap().pa() - 1.0).abs() < 1e-4);
+            }
+        }
+    }
+
+    /// An environment made again from another one is the environment made afresh.
+    #[test]
+    fn a_refilled_environment_is_a_new_one(
+        first in columns(1..40),
+        second in columns(1..40),
+        lowest in 0..12_usize,
+        colder in -3.0..3.0_f64,
+        dropped in 0..3_usize,
+    ) {
+        // Only the lowest levels differ, and some are gone.
+        let mut dragged = first.clone();
+        let dropped = dropped.min(dragged.p.len() - 2);
+        dragged.p.drain(..dropped);
+        dragged.t.drain(..dropped);
+        dragged.td.drain(..dropped);
+        let end = lowest.min(dragged.t.len());
+        for t in &mut dragged.t[..end] {
+            *t += colder;
+        }
+        dragged.td[0] = dragged.td[0].or(Some(dragged.t[0] - 25.0));
+        let mut environment = first.environment();
+        for columns in [&dragged, &first, &second, &dragged, &dragged] {
+            environment = environment.refilled(&columns.p, &columns.t, &columns.td).unwrap();
+            let fresh = columns.environment();
+            prop_assert_eq!(environment.pressure(), fresh.pressure());
+            prop_assert_eq!(environment.temperature(), fresh.temperature());
+            prop_assert_eq!(environment.dewpoint(), fresh.dewpoint());
+            prop_assert_eq!(environment.humidity(), fresh.humidity());
+            let (a, b) = (surface(&environment), surface(&fresh));
+            prop_assert!((a.cape - b.cape).abs() < 1e-7 && a.buoyant.len() == b.buoyant.len(), "{a:?} and {b:?}");
+            let held = environment.with_humidity_held();
+            let again = held.refilled(&columns.p, &columns.t, &columns.td).unwrap();
+            prop_assert_eq!(again.dewpoint(), fresh.dewpoint());
+            prop_assert!((surface(&again).cape - b.cape).abs() < 1e-7);
+        }
+    }
+}

@@ -32,7 +32,7 @@ pub fn run(options: &Weigh, output: &mut Output) -> Result<bool> {
             let file = match read {
                 Ok(file) => file,
                 Err(failure) => {
-                    say(&format!("{name}: {failure}. {}", failure.remedy()));
+                    say(&failure.line(&name));
                     all = false;
                     continue;
                 }

@@ -91,9 +91,10 @@ fn yardstick() -> Duration {
 
 /// A moist-reading surface over a mixed layer, then a moist plains afternoon; one row a second, columns.
 fn profile() -> String {
-    let mut text = "# station: Upper Vale\n# time: 2031-06-14T22:00:00Z\n# position: 41.0, -146.0, 400\n\
+    let mut text =
+        "# station: Upper Vale\n# time: 2031-06-14T22:00:00Z\n# position: 41.0, -146.0, 400\n\
                     time_s,pressure_hpa,temperature_c,dewpoint_c\n0,965.0,34.0,20.0\n"
-        .to_owned();
+            .to_owned();
     // Corners above the mixed layer: pressure, theta, dew point.
     let corners = [
         (830.0, 306.0, 14.7),

@@ -50,4 +50,24 @@ impl Analysed {
             notes,
         }
     }
+
+    /// Rows of the profile the numbers are made of; when nothing can be lifted, those with a temperature.
+    pub fn usable_rows(&self) -> Vec<usize> {
+        let rows = self.profile.environment_rows();
+        if !rows.is_empty() {
+            return rows;
+        }
+        let temperatures = self.profile.temperature.iter().enumerate();
+        temperatures
+            .filter_map(|(row, temperature)| temperature.map(|_| row))
+            .collect()
+    }
+
+    /// How many of these have no humidity of their own.
+    pub fn humidity_missing(&self) -> usize {
+        self.usable_rows()
+            .into_iter()
+            .filter(|&row| !matches!(self.profile.dewpoint.get(row), Some(Some(_))))
+            .count()
+    }
 }

@@ -1,5 +1,6 @@
 //! What each command does.
 
+use crate::doubt::Sampling;
 use crate::history::Joining;
 use crate::sounding::{Amendments, Entry};
 use crate::thermo::{Pressure, Temperature};
@@ -162,18 +163,28 @@ impl Session {
         };
         let id = item.id;
         let before = item.document().clone();
-        if go(item) {
+        let moved = go(item);
+        // A drag given up where it began changes nothing, but what it left coarse is to be done in full.
+        if moved || (item.results.doubt.coarse && !item.in_gesture()) {
             self.document_changed(id, &before);
+        }
+        if moved {
             self.save_draft(id);
         }
     }
 
     fn end_gesture(&mut self) {
-        if let Some(item) = self.current.and_then(|id| self.item_mut(id)) {
-            let id = item.id;
-            if item.history.end() {
-                self.save_draft(id);
-            }
+        let Some(item) = self.current.and_then(|id| self.item_mut(id)) else {
+            return;
+        };
+        let id = item.id;
+        let changed = item.history.end();
+        if item.results.doubt.coarse {
+            let document = item.document().clone();
+            self.document_changed(id, &document);
+        }
+        if changed {
+            self.save_draft(id);
         }
     }
 
@@ -184,7 +195,13 @@ impl Session {
         let Some(item) = self.item_mut(id) else {
             return;
         };
-        if item.document().computes_like(before) {
+        let sampling = if item.history.in_gesture() {
+            Sampling::InFrame
+        } else {
+            Sampling::Full
+        };
+        let finer = item.results.doubt.coarse && sampling == Sampling::Full;
+        if item.document().computes_like(before) && !finer {
             item.results.revision = revision;
         } else {
             item.results = Results::next(
@@ -193,6 +210,7 @@ impl Session {
                 revision,
                 &item.results,
                 hold,
+                sampling,
             );
         }
         self.refresh_standing(id);

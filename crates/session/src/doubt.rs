@@ -130,6 +130,43 @@ pub struct Doubt {
     pub ranges: [ParcelRange; 3],
     /// Why there is no interval or response; empty when there is one.
     pub problem: String,
+    /// Sampled at fewer dew points, because a drag is under way that moves the whole response; done in full when it ends.
+    pub coarse: bool,
+}
+
+/// How finely the response is sampled.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum Sampling {
+    /// As finely as it is worth.
+    Full,
+    /// As finely as a frame allows.
+    InFrame,
+}
+
+/// Levels times dew points that a frame allows. Each costs about 0.1 microseconds; a frame has 12 ms, for everything.
+const FRAME_BUDGET: usize = 60_000;
+/// Never fewer dew points than these: the ends of the interval, the candidates, and a few between.
+const FEWEST_SAMPLES: usize = 7;
+
+impl Sampling {
+    /// The plan for a profile of so many levels, and whether it is a coarse one.
+    fn plan(self, levels: usize) -> (Plan, bool) {
+        let full = Plan::default();
+        match self {
+            Self::Full => (full, false),
+            Self::InFrame => {
+                let affordable = (FRAME_BUDGET / levels.max(1)).max(FEWEST_SAMPLES);
+                let most_samples = affordable.min(full.most_samples);
+                (
+                    Plan {
+                        most_samples,
+                        ..full
+                    },
+                    most_samples < full.most_samples,
+                )
+            }
+        }
+    }
 }
 
 impl Doubt {
@@ -166,7 +203,7 @@ impl DoubtKey {
 
 impl Doubt {
     /// Of a document.
-    pub(crate) fn of(analysed: &Analysed, document: &Document) -> Self {
+    pub(crate) fn of(analysed: &Analysed, document: &Document, sampling: Sampling) -> Self {
         let amendments = &document.amendments;
         let temperature = amendments
             .surface_temperature()
@@ -179,13 +216,14 @@ impl Doubt {
             Ok(interval) => interval,
             Err(problem) => return Self::without_interval(analysed, document, &problem),
         };
+        let (plan, coarse) = sampling.plan(analysed.profile.len());
         let response = bounds::response(
             &analysed.profile,
             amendments,
             analysed.daylight,
             &analysed.candidates,
             &interval,
-            Plan::default(),
+            plan,
         );
         Self {
             candidates: candidates(analysed, document, Some(&response)),
@@ -193,6 +231,7 @@ impl Doubt {
             response: response.samples.iter().map(ResponsePoint::of).collect(),
             ranges: Parcel::ALL.map(|parcel| ParcelRange::of(&response, parcel)),
             problem: String::new(),
+            coarse,
         }
     }
 

@@ -209,7 +209,7 @@ fn deliver(
         Err(failure) => {
             return tell(Arrival::Failed {
                 about: name.to_owned(),
-                what: failure.to_string(),
+                what: failure.what(name),
                 remedy: failure.remedy(),
             });
         }

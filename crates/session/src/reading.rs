@@ -33,14 +33,30 @@ pub enum ReadFailure {
 }
 
 impl ReadFailure {
-    /// What to do about it.
+    /// What happened, to be put after the name of the file, which is not said again.
+    pub fn what(&self, name: &str) -> String {
+        let text = self.to_string();
+        match text.strip_prefix(name) {
+            Some(rest) if !name.is_empty() => rest.trim_start_matches([':', ',', ' ']).to_owned(),
+            _ => text,
+        }
+    }
+
+    /// What to do about it; empty when [`ReadFailure::what`] says it.
     pub fn remedy(&self) -> &'static str {
         match self {
             Self::Io(_) => "Check that the file exists and that you may read it",
-            Self::Format(_) => {
-                "Files understood: TEMP text, station files and columns whose header names carry units"
-            }
+            Self::Format(_) => "",
             Self::Empty(_) => "Check that it is the file you meant",
+        }
+    }
+
+    /// On one line, after the name of the file.
+    pub fn line(&self, name: &str) -> String {
+        let line = format!("{name}: {}", self.what(name));
+        match self.remedy() {
+            "" => line,
+            remedy => format!("{line}. {remedy}"),
         }
     }
 }

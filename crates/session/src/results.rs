@@ -1,6 +1,6 @@
 //! What follows from a document: computed inside one command, all of one revision.
 
-use crate::doubt::DoubtKey;
+use crate::doubt::{DoubtKey, Sampling};
 use crate::sounding::{Numbers, Profile, Working};
 use crate::thermo::{Ascent, Method, Pressure, lift};
 use crate::trust::{Cost, Priced, price, rank};
@@ -80,7 +80,13 @@ pub struct Preview {
 impl Results {
     /// Results of a document, from nothing.
     pub fn of(analysed: &Analysed, document: &Document) -> Self {
-        Self::compute(analysed, document, Revision::default(), None)
+        Self::compute(
+            analysed,
+            document,
+            Revision::default(),
+            None,
+            Sampling::Full,
+        )
     }
 
     /// Results of the document that follows; keeps of `previous` what can't have changed.
@@ -90,8 +96,9 @@ impl Results {
         revision: Revision,
         previous: &Self,
         hold_order: bool,
+        sampling: Sampling,
     ) -> Self {
-        let mut results = Self::compute(analysed, document, revision, Some(previous));
+        let mut results = Self::compute(analysed, document, revision, Some(previous), sampling);
         if hold_order && previous.order.len() == results.order.len() {
             results.order.clone_from(&previous.order);
         }
@@ -110,6 +117,7 @@ impl Results {
         document: &Document,
         revision: Revision,
         previous: Option<&Self>,
+        sampling: Sampling,
     ) -> Self {
         let started = Instant::now();
         let amendments = &document.amendments;
@@ -129,8 +137,13 @@ impl Results {
         let cards = priced.iter().map(Card::of).collect();
         let doubt_key = DoubtKey::of(document);
         let sampled = match previous {
-            Some(previous) if previous.doubt_key == doubt_key => previous.sampled.clone(),
-            _ => Arc::new(Doubt::of(analysed, document)),
+            Some(previous)
+                if previous.doubt_key == doubt_key
+                    && (sampling == Sampling::InFrame || !previous.sampled.coarse) =>
+            {
+                previous.sampled.clone()
+            }
+            _ => Arc::new(Doubt::of(analysed, document, sampling)),
         };
         let dewpoint = working.profile.surface_air().map(|air| air.dewpoint);
         let doubt = sampled

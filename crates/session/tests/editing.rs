@@ -406,3 +406,38 @@ fn doubt_is_shared_until_it_changes() {
     session.apply(Command::SetSurface(Air, c(31.0)));
     assert_ne!(before.response, item(session).results().doubt.response);
 }
+
+#[test]
+fn what_a_drag_samples_coarsely_is_sampled_in_full_when_it_ends() {
+    let mut desk = Desk::new();
+    // Fine enough for a frame not to afford the whole response.
+    let mut text =
+        "# time: 2031-06-14T22:00:00Z\npressure_hpa,temperature_c,dewpoint_c\n".to_owned();
+    for row in 0..4_000 {
+        let hpa = 965.0 - 0.2 * f64::from(row);
+        let t = 30.0 - 0.09 * (965.0 - hpa);
+        text.push_str(&format!("{hpa:.1},{t:.3},{:.3}\n", t - 8.0));
+    }
+    desk.add("fine.csv", &text);
+    let session = &mut desk.session;
+    let current = item(session).id();
+    for end in [
+        Command::EndGesture,
+        Command::CancelGesture,
+        Command::Undo,
+        Command::Close(current),
+    ] {
+        session.apply(Command::BeginGesture);
+        session.apply(Command::SetSurface(Air, c(31.0)));
+        session.apply(Command::SetSurface(Air, c(32.0)));
+        let doubt = item(session).results().doubt.clone();
+        assert!(doubt.coarse, "{end:?}");
+        assert!(doubt.response.len() >= 7, "{}", doubt.response.len());
+        assert!(doubt.range(Parcel::Surface).cape.is_some());
+        session.apply(end.clone());
+        if let Some(item) = session.current() {
+            assert!(!item.results().doubt.coarse, "{end:?}");
+            check_results_fit(session);
+        }
+    }
+}

@@ -154,8 +154,6 @@ impl<'a> Weighed<'a> {
     fn of(analysed: &'a Analysed, results: &Results) -> Self {
         let sounding = &analysed.sounding;
         let profile = &analysed.profile;
-        let rows = profile.environment_rows();
-        let humid = |row: &usize| matches!(profile.dewpoint.get(*row), Some(Some(_)));
         let parcel = |which| {
             let ascent = results.numbers.parcel(which)?;
             Some(ParcelOut::of(ascent, results.doubt.range(which)))
@@ -172,8 +170,8 @@ impl<'a> Weighed<'a> {
             sounding: About {
                 station: sounding.station.canonical_id(),
                 valid: sounding.times.valid().map(|time| time.to_string()),
-                levels: rows.len(),
-                humidity_missing: rows.iter().filter(|row| !humid(row)).count(),
+                levels: analysed.usable_rows().len(),
+                humidity_missing: analysed.humidity_missing(),
                 top_hpa: profile.top().map(hpa),
             },
             parcels: Parcels {

@@ -53,12 +53,8 @@ fn heading(analysed: &Analysed) -> String {
 /// What the profile holds and what has been set.
 fn condition(analysed: &Analysed, results: &Results) -> String {
     let profile = &analysed.profile;
-    let rows = profile.environment_rows();
-    let dry = rows
-        .iter()
-        .filter(|&&row| !matches!(profile.dewpoint.get(row), Some(Some(_))))
-        .count();
-    let mut text = format!("{} levels", rows.len());
+    let dry = analysed.humidity_missing();
+    let mut text = format!("{} levels", analysed.usable_rows().len());
     if let Some(top) = profile.top() {
         text.push_str(&format!(" up to {}", pressure(top)));
     }

@@ -2,15 +2,15 @@
 
 use crate::args::{Args, ThemeName, ZOOM_RANGE};
 use crate::ask::{Ask, Asks};
-use crate::chart_view::{Caches, ChartFrame};
+use crate::chart_frame::{Caches, ChartFrame};
 use crate::config::config;
 use crate::files::{Files, Picked, dropped, typed_paths};
 use crate::layout::{Layout, Side};
 use crate::theme::Theme;
 use crate::view::{DialogBox, Gesture, Previewed, View};
 use crate::{
-    chart_view, dialogs, findings, fonts, handle, input, keys, menu, numbers, response, status,
-    title, tray, verdict,
+    chart_frame, chart_keys, chart_view, dialogs, findings, fonts, handle, input, keys, menu,
+    numbers, response, status, title, tray, verdict,
 };
 use dewbound_session::chart::{SpeedUnit, TemperatureUnit};
 use dewbound_session::{Action, Command, Item, Session, SurfaceQuantity};
@@ -34,14 +34,6 @@ impl Paint<'_> {
     /// The current sounding.
     pub fn item(&self) -> Option<&Item> {
         self.session.current()
-    }
-
-    /// A value is being dragged.
-    pub fn dragging(&self) -> bool {
-        matches!(
-            self.view.gesture,
-            Some(Gesture::Handle { .. } | Gesture::Response { .. })
-        )
     }
 }
 
@@ -143,7 +135,10 @@ impl Desk {
     /// What comes before painting: everything asked for and typed is carried out and computed.
     pub fn before_painting(&mut self, ctx: &Context) {
         let begun = Instant::now();
-        let before = self.session.current().map(|item| (item.id(), item.revision()));
+        let before = self
+            .session
+            .current()
+            .map(|item| (item.id(), item.revision()));
         self.now = (self.clock)();
         self.take_in(ctx);
         for ask in std::mem::take(&mut self.asks.list) {
@@ -153,16 +148,19 @@ impl Desk {
             self.act(ctx, action);
         }
         handle::keys(ctx, self);
-        chart_view::keys(ctx, self);
+        chart_keys::keys(ctx, self);
         input::pointer(ctx, self);
         self.focus_for_hint(ctx);
         let held = ctx.input(|input| input.pointer.any_down() || !input.keys_down.is_empty())
-            || self.view.card.is_some();
+            || self
+                .session
+                .current()
+                .is_some_and(|item| self.view.open_card(item.id()).is_some());
         self.session.hold_order(held);
         self.preview(ctx);
         self.layout = Layout::of(ctx.content_rect());
         self.seen = self.session.current().map(|item| {
-            chart_view::prepare(
+            chart_frame::prepare(
                 ctx,
                 item,
                 &self.view,
@@ -171,10 +169,14 @@ impl Desk {
                 &mut self.caches,
             )
         });
-        let after = self.session.current().map(|item| (item.id(), item.revision()));
+        let after = self
+            .session
+            .current()
+            .map(|item| (item.id(), item.revision()));
         if before != after {
             self.view.timing.computed(begun.elapsed());
         }
+        self.view.reveal = before.map(|(item, _)| item) != after.map(|(item, _)| item);
     }
 
     /// Files and worker results.
@@ -359,7 +361,9 @@ impl Desk {
         if let Some(rect) = layout.tray {
             self.panel(ui, rect, "tray", |ui| tray::tray_ui(ui, &paint, asks));
         }
-        self.panel(ui, layout.title, "title", |ui| title::title_ui(ui, &paint, asks));
+        self.panel(ui, layout.title, "title", |ui| {
+            title::title_ui(ui, &paint, asks)
+        });
         self.panel(ui, layout.chart, "chart", |ui| {
             chart_view::chart_ui(ui, &paint, asks);
         });
@@ -367,20 +371,30 @@ impl Desk {
             response::sentence_ui(ui, &paint, asks);
         });
         let seen = layout.response.and_then(|rect| {
-            self.panel(ui, rect, "response", |ui| response::response_ui(ui, &paint, asks))
+            self.panel(ui, rect, "response", |ui| {
+                response::response_ui(ui, &paint, asks)
+            })
         });
         match layout.side {
             Side::Stacked { findings, numbers } => {
-                self.panel(ui, findings, "findings", |ui| findings::findings_ui(ui, &paint, asks));
-                self.panel(ui, numbers, "numbers", |ui| numbers::numbers_ui(ui, &paint, asks));
+                self.panel(ui, findings, "findings", |ui| {
+                    findings::findings_ui(ui, &paint, asks)
+                });
+                self.panel(ui, numbers, "numbers", |ui| {
+                    numbers::numbers_ui(ui, &paint, asks)
+                });
             }
             Side::Tabbed { cape, tabs } => {
                 self.panel(ui, cape, "cape", |ui| numbers::cape_ui(ui, &paint, asks));
                 self.panel(ui, tabs, "tabs", |ui| findings::tabs_ui(ui, &paint, asks));
             }
         }
-        self.panel(ui, layout.verdict, "verdict", |ui| verdict::verdict_ui(ui, &paint, asks));
-        self.panel(ui, layout.status, "status", |ui| status::status_ui(ui, &paint, asks));
+        self.panel(ui, layout.verdict, "verdict", |ui| {
+            verdict::verdict_ui(ui, &paint, asks)
+        });
+        self.panel(ui, layout.status, "status", |ui| {
+            status::status_ui(ui, &paint, asks)
+        });
         for rect in [layout.verdict, layout.status] {
             ui.painter().hline(
                 rect.x_range(),
@@ -389,6 +403,7 @@ impl Desk {
             );
         }
         dialogs::dialog_ui(ui.ctx(), &paint, asks);
+        dialogs::drop_ui(ui, &paint);
         status::timing_ui(ui, &paint);
         seen
     }

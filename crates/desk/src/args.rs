@@ -85,11 +85,28 @@ mod tests {
     #[test]
     fn every_option_is_read() {
         let args = Args::try_parse_from([
-            "dewbound", "a.txt", "folder", "--ledger", "l", "--office", "o", "--as-of", "2024-05-20",
-            "--theme", "dark", "--zoom", "1.5", "--graphics", "glow", "--debug-overlay",
+            "dewbound",
+            "a.txt",
+            "folder",
+            "--ledger",
+            "l",
+            "--office",
+            "o",
+            "--as-of",
+            "2024-05-20",
+            "--theme",
+            "dark",
+            "--zoom",
+            "1.5",
+            "--graphics",
+            "glow",
+            "--debug-overlay",
         ])
         .unwrap();
-        assert_eq!(args.paths, [PathBuf::from("a.txt"), PathBuf::from("folder")]);
+        assert_eq!(
+            args.paths,
+            [PathBuf::from("a.txt"), PathBuf::from("folder")]
+        );
         assert_eq!(args.ledger, Some("l".into()));
         assert_eq!(args.office, Some("o".into()));
         assert_eq!(args.as_of, Some(jiff::civil::date(2024, 5, 20)));

@@ -4,9 +4,7 @@ use crate::fonts;
 use crate::theme::Theme;
 use dewbound_session::chart::{Anchor, Ink, Item, Point, Scene, Stroke, text_box};
 use eframe::egui::epaint::{Mesh, PathStroke, TextShape};
-use eframe::egui::{
-    self, Align2, Color32, FontFamily, FontId, Painter, Pos2, Rect, Shape, pos2,
-};
+use eframe::egui::{self, Align2, Color32, FontFamily, FontId, Painter, Pos2, Rect, Shape, pos2};
 
 /// A point of the display list on the screen.
 pub(crate) fn to_pos(point: Point) -> Pos2 {
@@ -40,7 +38,12 @@ fn paint_item(painter: &Painter, item: &Item, theme: &Theme) {
                 );
             } else {
                 for &[a, b] in lines {
-                    line(painter, vec![to_pos(a), to_pos(b)], theme.chart_ink(*ink), *stroke);
+                    line(
+                        painter,
+                        vec![to_pos(a), to_pos(b)],
+                        theme.chart_ink(*ink),
+                        *stroke,
+                    );
                 }
             }
         }
@@ -92,16 +95,16 @@ fn paint_item(painter: &Painter, item: &Item, theme: &Theme) {
                 Anchor::Right => Align2::RIGHT_CENTER,
             };
             let colour = theme.chart_ink(*ink);
-            let galley = painter.layout_no_wrap(
-                text.clone(),
-                FontId::new(*size as f32, family),
-                colour,
-            );
+            let galley =
+                painter.layout_no_wrap(text.clone(), FontId::new(*size as f32, family), colour);
             if *angle == 0.0 {
                 let rect = align.anchor_size(to_pos(*at), galley.size());
                 painter.galley(rect.min, galley, colour);
             } else {
-                let corner = to_pos(*at) - align.pos_in_rect(&Rect::from_min_size(Pos2::ZERO, galley.size())).to_vec2();
+                let corner = to_pos(*at)
+                    - align
+                        .pos_in_rect(&Rect::from_min_size(Pos2::ZERO, galley.size()))
+                        .to_vec2();
                 painter.add(
                     TextShape::new(corner, galley, colour)
                         .with_angle_and_anchor(*angle as f32, align),
@@ -131,7 +134,12 @@ fn line(painter: &Painter, points: Vec<Pos2>, colour: Color32, stroke: Stroke) {
         return;
     }
     let dashes: Vec<f32> = pattern.iter().step_by(2).map(|&v| v as f32).collect();
-    let gaps: Vec<f32> = pattern.iter().skip(1).step_by(2).map(|&v| v as f32).collect();
+    let gaps: Vec<f32> = pattern
+        .iter()
+        .skip(1)
+        .step_by(2)
+        .map(|&v| v as f32)
+        .collect();
     painter.extend(Shape::dashed_line_with_offset(
         &points, pen, &dashes, &gaps, 0.0,
     ));
@@ -158,7 +166,10 @@ mod tests {
 
     #[test]
     fn a_band_is_two_triangles_a_row() {
-        let mesh = band(&[(0.0, 0.0, 1.0), (1.0, 0.5, 2.0), (2.0, 1.0, 1.0)], Color32::RED);
+        let mesh = band(
+            &[(0.0, 0.0, 1.0), (1.0, 0.5, 2.0), (2.0, 1.0, 1.0)],
+            Color32::RED,
+        );
         assert_eq!(mesh.vertices.len(), 6);
         assert_eq!(mesh.indices.len(), 12);
         assert!(mesh.is_valid());

@@ -10,7 +10,10 @@ use crate::units;
 use crate::view::DialogBox;
 use dewbound_session::sounding::Position;
 use dewbound_session::{ACTIONS, Command, wording};
-use eframe::egui::{Context, Grid, Id, Key, Modal, RichText, ScrollArea, TextEdit, Ui, vec2};
+use eframe::egui::{
+    Align2, Context, FontId, Grid, Id, Key, Modal, RichText, ScrollArea, Stroke, StrokeKind,
+    TextEdit, Ui, vec2,
+};
 
 /// The open box, if any.
 pub(crate) fn dialog_ui(ctx: &Context, paint: &Paint, asks: &mut Asks) {
@@ -64,7 +67,11 @@ fn keys_ui(ui: &mut Ui, asks: &mut Asks) {
                 .map(|&(keys, what)| (keys.to_owned(), what.to_owned()))
                 .collect()
         };
-        group(ui, "On a surface handle or the response", owned(HANDLE_KEYS));
+        group(
+            ui,
+            "On a surface handle or the response",
+            owned(HANDLE_KEYS),
+        );
         group(ui, "On the chart", owned(CHART_KEYS));
         group(
             ui,
@@ -72,10 +79,7 @@ fn keys_ui(ui: &mut Ui, asks: &mut Asks) {
             ACTIONS
                 .iter()
                 .filter_map(|declaration| {
-                    Some((
-                        declaration.shortcut?.text(),
-                        declaration.tooltip.to_owned(),
-                    ))
+                    Some((declaration.shortcut?.text(), declaration.tooltip.to_owned()))
                 })
                 .collect(),
         );
@@ -85,7 +89,9 @@ fn keys_ui(ui: &mut Ui, asks: &mut Asks) {
 
 fn about_ui(ui: &mut Ui, asks: &mut Asks) {
     ui.label(bold("Dewbound").size(16.0));
-    ui.label("Which parts of a sounding can be believed, and how far the answer moves if they can't.");
+    ui.label(
+        "Which parts of a sounding can be believed, and how far the answer moves if they can't.",
+    );
     ui.add_space(6.0);
     ui.label(bold(wording::CAUTION));
     ui.label(
@@ -180,7 +186,9 @@ pub(crate) fn position(latitude: &str, longitude: &str) -> Option<Position> {
 
 fn position_ui(ui: &mut Ui, latitude: &str, longitude: &str, asks: &mut Asks) {
     ui.label(bold("Where is the station?").size(16.0));
-    ui.label("North and east count positive, degrees and decimals. It is remembered for this station.");
+    ui.label(
+        "North and east count positive, degrees and decimals. It is remembered for this station.",
+    );
     let (mut north, mut east) = (latitude.to_owned(), longitude.to_owned());
     field_ui(ui, "latitude", "Latitude, −90 to 90", &mut north, true);
     field_ui(ui, "longitude", "Longitude, −180 to 180", &mut east, false);
@@ -218,7 +226,44 @@ fn messages_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
             });
         }
     });
-    close_ui(ui, asks);
+    ui.horizontal(|ui| {
+        if ui.button("Dismiss all").clicked() {
+            for message in paint.session.messages() {
+                asks.command(Command::Dismiss(message.id));
+            }
+            asks.push(Ask::Dialog(None));
+        }
+        close_ui(ui, asks);
+    });
+}
+
+/// What happens when the files held over the window are let go.
+pub(crate) fn drop_ui(ui: &Ui, paint: &Paint) {
+    let held = ui.input(|input| input.raw.hovered_files.len());
+    if held == 0 {
+        return;
+    }
+    let theme = paint.theme;
+    let rect = paint.layout.chart.shrink(20.0);
+    let painter = ui.painter();
+    painter.rect(
+        rect,
+        6.0,
+        theme.card.gamma_multiply(0.92),
+        Stroke::new(3.0, theme.accent),
+        StrokeKind::Inside,
+    );
+    painter.text(
+        rect.center(),
+        Align2::CENTER_CENTER,
+        if held == 1 {
+            "Let go to open it".to_owned()
+        } else {
+            format!("Let go to open these {held}")
+        },
+        FontId::new(18.0, crate::fonts::bold()),
+        theme.ink,
+    );
 }
 
 #[cfg(test)]

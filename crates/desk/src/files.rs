@@ -57,16 +57,18 @@ impl Files {
         if folder {
             let folders = dialog.pick_folders();
             std::thread::spawn(move || {
-                tell(pollster::block_on(folders).map(|all| {
-                    all.iter().map(|one| one.path().to_owned()).collect()
-                }));
+                tell(
+                    pollster::block_on(folders)
+                        .map(|all| all.iter().map(|one| one.path().to_owned()).collect()),
+                );
             });
         } else {
             let files = dialog.pick_files();
             std::thread::spawn(move || {
-                tell(pollster::block_on(files).map(|all| {
-                    all.iter().map(|one| one.path().to_owned()).collect()
-                }));
+                tell(
+                    pollster::block_on(files)
+                        .map(|all| all.iter().map(|one| one.path().to_owned()).collect()),
+                );
             });
         }
     }

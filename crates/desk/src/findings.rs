@@ -144,7 +144,11 @@ fn card_ui(
                 );
             }
             asks.describe(&response, || {
-                format!("{label}, {}: Enter {} it", headline(finding, card), if open { "closes" } else { "opens" })
+                format!(
+                    "{label}, {}: Enter {} it",
+                    headline(finding, card),
+                    if open { "closes" } else { "opens" }
+                )
             });
             if response.clicked() {
                 // So that Tab goes on from here.
@@ -215,23 +219,13 @@ fn opened_ui(
     asks: &mut Asks,
 ) {
     ui.add_space(2.0);
-    if !finding.evidence.is_empty() {
-        Grid::new(("evidence", index))
-            .num_columns(2)
-            .min_row_height(15.0)
-            .spacing(vec2(10.0, 2.0))
-            .show(ui, |ui| {
-                for evidence in &finding.evidence {
-                    ui.label(RichText::new(evidence.label).size(12.0).weak());
-                    let value = format!(
-                        "{} {}",
-                        wording::number(evidence.value, evidence.decimals),
-                        evidence.unit
-                    );
-                    ui.label(RichText::new(value.trim_end()).size(12.0));
-                    ui.end_row();
-                }
-            });
+    for evidence in &finding.evidence {
+        let value = format!(
+            "{} {}",
+            wording::number(evidence.value, evidence.decimals),
+            evidence.unit
+        );
+        evidence_ui(ui, evidence.label, value.trim_end());
     }
     ui.add_space(2.0);
     let half = (ui.available_width() - 8.0) / 2.0;
@@ -260,6 +254,20 @@ fn opened_ui(
         let cost = card.costs.get(repair_index).and_then(Option::as_ref);
         repair_ui(ui, paint, id, &repair.what, applied, cost, asks);
     }
+}
+
+/// Name and value of one piece of evidence; a long name goes on below itself.
+fn evidence_ui(ui: &mut Ui, label: &str, value: &str) {
+    const VALUE: f32 = 76.0;
+    ui.horizontal_top(|ui| {
+        ui.spacing_mut().item_spacing.x = 6.0;
+        let width = (ui.available_width() - VALUE - 6.0).max(40.0);
+        ui.vertical(|ui| {
+            ui.set_width(width);
+            ui.add(Label::new(RichText::new(label).size(12.0).weak()).wrap());
+        });
+        ui.add(Label::new(RichText::new(value).size(12.0)).extend());
+    });
 }
 
 fn repair_ui(
@@ -304,20 +312,29 @@ fn cost_ui(ui: &mut Ui, paint: &Paint, id: RepairId, applied: bool, cost: Option
         .spacing(vec2(10.0, 1.0))
         .show(ui, |ui| {
             let small = |text: &str| RichText::new(text.to_owned()).size(11.5);
-            ui.label(small(if applied { "has changed" } else { "would change" }).weak());
+            ui.label(
+                small(if applied {
+                    "has changed"
+                } else {
+                    "would change"
+                })
+                .weak(),
+            );
             for parcel in Parcel::ALL {
                 ui.label(small(parcel_heading(parcel)).weak());
             }
             ui.end_row();
             let all = [cost.surface, cost.mixed, cost.most_unstable];
             for (name, pick) in [
-                ("CAPE", (|change: &Change| change.cape) as fn(&Change) -> Option<f64>),
+                (
+                    "CAPE",
+                    (|change: &Change| change.cape) as fn(&Change) -> Option<f64>,
+                ),
                 ("CIN", |change: &Change| change.cin),
             ] {
                 ui.label(small(name));
                 for change in &all {
-                    let text = pick(change)
-                        .map_or_else(|| "–".to_owned(), wording::energy_change);
+                    let text = pick(change).map_or_else(|| "–".to_owned(), wording::energy_change);
                     ui.label(small(&text).color(paint.theme.ink));
                 }
                 ui.end_row();
@@ -474,10 +491,7 @@ mod tests {
 
     #[test]
     fn the_largest_change_keeps_its_sign() {
-        let change = |cape| Change {
-            cape,
-            cin: None,
-        };
+        let change = |cape| Change { cape, cin: None };
         let cost = Cost {
             surface: change(Some(100.0)),
             mixed: change(Some(-900.0)),

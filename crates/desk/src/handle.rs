@@ -104,7 +104,11 @@ pub(crate) fn keys(ctx: &Context, desk: &mut Desk) {
         }
         return;
     };
-    if desk.view.typing.as_ref().is_some_and(|typing| typing.quantity != quantity)
+    if desk
+        .view
+        .typing
+        .as_ref()
+        .is_some_and(|typing| typing.quantity != quantity)
         && let Some(typing) = desk.view.typing.take()
     {
         set_typed(desk, &typing);
@@ -227,9 +231,7 @@ fn requests(ctx: &Context, desk: &mut Desk) {
             let unit = desk.view.units.temperature;
             let value = match (request.action, request.data) {
                 (accesskit::Action::SetValue, Some(ActionData::NumericValue(value))) => Some(value),
-                (accesskit::Action::SetValue, Some(ActionData::Value(text))) => {
-                    units::typed(&text)
-                }
+                (accesskit::Action::SetValue, Some(ActionData::Value(text))) => units::typed(&text),
                 _ => None,
             };
             match (request.action, value) {
@@ -240,7 +242,10 @@ fn requests(ctx: &Context, desk: &mut Desk) {
                     carry_out(desk, quantity, Stroke::Step(-0.1, false));
                 }
                 (_, Some(value)) => {
-                    desk.apply(Command::SetSurface(quantity, units::from_shown(value, unit)));
+                    desk.apply(Command::SetSurface(
+                        quantity,
+                        units::from_shown(value, unit),
+                    ));
                 }
                 _ => {}
             }
@@ -327,9 +332,21 @@ mod tests {
         let check = |key, modifiers, expect| {
             assert_eq!(stroke(key, modifiers, false, false), expect, "{key:?}");
         };
-        check(Key::ArrowRight, Modifiers::NONE, Some(Stroke::Step(0.1, false)));
-        check(Key::ArrowUp, Modifiers::SHIFT, Some(Stroke::Step(0.5, false)));
-        check(Key::ArrowLeft, Modifiers::COMMAND, Some(Stroke::Step(-1.0, false)));
+        check(
+            Key::ArrowRight,
+            Modifiers::NONE,
+            Some(Stroke::Step(0.1, false)),
+        );
+        check(
+            Key::ArrowUp,
+            Modifiers::SHIFT,
+            Some(Stroke::Step(0.5, false)),
+        );
+        check(
+            Key::ArrowLeft,
+            Modifiers::COMMAND,
+            Some(Stroke::Step(-1.0, false)),
+        );
         check(Key::Home, Modifiers::NONE, Some(Stroke::Received));
         check(Key::Enter, Modifiers::NONE, None);
         check(Key::Tab, Modifiers::NONE, None);

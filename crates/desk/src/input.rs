@@ -1,7 +1,7 @@
 //! Pointer: read before painting, against the geometry of the frame last painted.
 
 use crate::app::Desk;
-use crate::chart_view::{chart_id, to_point};
+use crate::chart_frame::{chart_id, to_point};
 use crate::handle::{handle_id, quantity_of};
 use crate::response::response_id;
 use crate::view::Gesture;
@@ -37,6 +37,25 @@ pub(crate) fn pointer(ctx: &Context, desk: &mut Desk) {
         }
     }
     scroll(ctx, desk);
+    pick(ctx, desk);
+}
+
+/// A double click lifts a parcel from that level too.
+fn pick(ctx: &Context, desk: &mut Desk) {
+    let Some(position) = ctx
+        .read_response(chart_id())
+        .filter(|response| response.double_clicked())
+        .and_then(|response| response.interact_pointer_pos())
+    else {
+        return;
+    };
+    if let Some(seen) = &desk.seen
+        && seen.touch.handle_at(to_point(position)).is_none()
+        && seen.geometry.plot().contains(to_point(position))
+    {
+        let level = seen.geometry.pressure_at(f64::from(position.y));
+        desk.apply(Command::PickLevel(Some(level)));
+    }
 }
 
 /// Whether a widget of the last frame lies under the pointer, on top.

@@ -86,6 +86,10 @@ pub(crate) const CHART_KEYS: &[(&str, &str)] = &[
     ("+ −", "Closer, farther"),
     ("0", "The whole profile again"),
     ("Shift + ↑ ↓", "Read values up and down the profile"),
+    (
+        "Enter, double click",
+        "Lift a parcel from the level read as well",
+    ),
     ("Tab", "To the next thing; Shift+Tab back"),
 ];
 

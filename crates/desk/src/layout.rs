@@ -129,10 +129,7 @@ impl Layout {
         Self {
             bar,
             tray: tray_width.map(|tray| {
-                Rect::from_min_max(
-                    pos2(window.left(), top),
-                    pos2(window.left() + tray, bottom),
-                )
+                Rect::from_min_max(pos2(window.left(), top), pos2(window.left() + tray, bottom))
             }),
             title,
             low,
@@ -192,7 +189,10 @@ mod tests {
             let all = layout.named();
             for (i, (name, rect)) in all.iter().enumerate() {
                 assert!(rect.is_positive(), "{size:?}: {name} is {rect:?}");
-                assert!(window.expand(0.01).contains_rect(*rect), "{size:?}: {name} is {rect:?}");
+                assert!(
+                    window.expand(0.01).contains_rect(*rect),
+                    "{size:?}: {name} is {rect:?}"
+                );
                 for (other_name, other) in all.iter().skip(i + 1) {
                     let shared = rect.shrink(0.01).intersect(other.shrink(0.01));
                     assert!(!shared.is_positive(), "{size:?}: {name} and {other_name}");
@@ -205,8 +205,16 @@ mod tests {
     fn the_chart_keeps_its_least_size() {
         for size in sizes() {
             let (_, layout) = layout(size);
-            assert!(layout.chart.width() >= LEAST_CHART.x - 0.01, "{size:?}: {:?}", layout.chart);
-            assert!(layout.chart.height() >= LEAST_CHART.y - 0.01, "{size:?}: {:?}", layout.chart);
+            assert!(
+                layout.chart.width() >= LEAST_CHART.x - 0.01,
+                "{size:?}: {:?}",
+                layout.chart
+            );
+            assert!(
+                layout.chart.height() >= LEAST_CHART.y - 0.01,
+                "{size:?}: {:?}",
+                layout.chart
+            );
         }
         // Even in a window smaller than it was made for.
         let (_, tiny) = layout(vec2(300.0, 200.0));
@@ -226,7 +234,10 @@ mod tests {
                 }
                 Side::Tabbed { cape, tabs } => {
                     assert!(size.x < NARROW, "{size:?}");
-                    assert!(cape.height() >= CAPE - 0.01 && cape.width() >= 290.0, "{size:?}: {cape:?}");
+                    assert!(
+                        cape.height() >= CAPE - 0.01 && cape.width() >= 290.0,
+                        "{size:?}: {cape:?}"
+                    );
                     assert!(tabs.height() >= 200.0, "{size:?}: {tabs:?}");
                 }
             }

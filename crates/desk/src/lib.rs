@@ -11,6 +11,8 @@
 mod app;
 mod args;
 mod ask;
+mod chart_frame;
+mod chart_keys;
 mod chart_paint;
 mod chart_view;
 mod config;
@@ -49,8 +51,13 @@ pub fn interface_strings() -> Vec<String> {
     let mut strings = vec![status::CAUTION.to_owned(), chart_view::HINT.to_owned()];
     for quantity in quantity::QUANTITIES {
         strings.extend(
-            [quantity.name, quantity.definition, quantity.method, quantity.source]
-                .map(str::to_owned),
+            [
+                quantity.name,
+                quantity.definition,
+                quantity.method,
+                quantity.source,
+            ]
+            .map(str::to_owned),
         );
     }
     for (keys, what) in keys::HANDLE_KEYS.iter().chain(keys::CHART_KEYS) {

@@ -1,7 +1,7 @@
 //! Small painted marks: a state is told by shape and word, colour only helps.
 
-use crate::theme::Theme;
 use crate::fonts;
+use crate::theme::Theme;
 use dewbound_session::trust::Grade;
 use dewbound_session::{Standing, Weight};
 use eframe::egui::{
@@ -21,7 +21,11 @@ pub(crate) fn grade_mark(ui: &mut Ui, theme: &Theme, number: usize, grade: Grade
     } else {
         match grade {
             Grade::Erroneous => {
-                painter.rect_filled(Rect::from_center_size(centre, Vec2::splat(19.0)), 2.0, theme.danger);
+                painter.rect_filled(
+                    Rect::from_center_size(centre, Vec2::splat(19.0)),
+                    2.0,
+                    theme.danger,
+                );
                 theme.on_danger
             }
             Grade::Doubtful => {
@@ -68,7 +72,11 @@ fn diamond(centre: Pos2, radius: f32, fill: Color32) -> Shape {
 
 fn tick(painter: &Painter, at: Pos2, colour: Color32) {
     painter.add(Shape::line(
-        vec![at + vec2(-3.5, -0.5), at + vec2(-1.0, 2.5), at + vec2(4.0, -4.0)],
+        vec![
+            at + vec2(-3.5, -0.5),
+            at + vec2(-1.0, 2.5),
+            at + vec2(4.0, -4.0),
+        ],
         Stroke::new(2.0, colour),
     ));
 }
@@ -77,10 +85,20 @@ fn tick(painter: &Painter, at: Pos2, colour: Color32) {
 pub(crate) fn standing_mark(painter: &Painter, theme: &Theme, centre: Pos2, standing: Mark) {
     match standing {
         Mark::Open => {
-            painter.circle(centre, 5.0, Color32::TRANSPARENT, Stroke::new(1.5, theme.quiet));
+            painter.circle(
+                centre,
+                5.0,
+                Color32::TRANSPARENT,
+                Stroke::new(1.5, theme.quiet),
+            );
         }
         Mark::Draft => {
-            painter.circle(centre, 5.0, Color32::TRANSPARENT, Stroke::new(1.5, theme.accent));
+            painter.circle(
+                centre,
+                5.0,
+                Color32::TRANSPARENT,
+                Stroke::new(1.5, theme.accent),
+            );
             painter.circle_filled(centre, 2.5, theme.accent);
         }
         Mark::Decided => {

@@ -9,7 +9,9 @@ use crate::units;
 use crate::view::DialogBox;
 use dewbound_session::chart::{SpeedUnit, TemperatureUnit};
 use dewbound_session::{ACTIONS, Action, Menu, MessageId, Weight};
-use eframe::egui::{Align, Button, Label, Layout, MenuBar, Response, RichText, Ui, UiBuilder, vec2};
+use eframe::egui::{
+    Align, Button, Label, Layout, MenuBar, Response, RichText, Ui, UiBuilder, vec2,
+};
 
 const MENUS: [(Menu, &str); 5] = [
     (Menu::File, "File"),
@@ -30,7 +32,8 @@ pub(crate) fn bar_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
             if paint.layout.tray.is_none() {
                 let label = format!("Tray: {}", tray::waiting(paint));
                 ui.menu_button(label, |ui| {
-                    ui.set_min_width(300.0);
+                    ui.set_min_width(320.0);
+                    ui.set_max_width(340.0);
                     tray::rows_ui(ui, paint, asks, true);
                 });
             }

@@ -8,7 +8,7 @@ use crate::units;
 use dewbound_session::chart::Units;
 use dewbound_session::sounding::Parcel;
 use dewbound_session::thermo::Pressure;
-use dewbound_session::{Action, Extremes, Item, wording};
+use dewbound_session::{Action, Command, Extremes, Item, wording};
 use eframe::egui::{
     Align, Button, Label, Layout, Rect, Response, RichText, ScrollArea, Sense, Tooltip, Ui,
     UiBuilder, pos2, vec2,
@@ -16,7 +16,7 @@ use eframe::egui::{
 use std::fmt::Write as _;
 
 /// Width of the names and units.
-const NAMES: f32 = 82.0;
+const NAMES: f32 = 80.0;
 const ROW: f32 = 19.0;
 const SMALL_ROW: f32 = 15.0;
 
@@ -55,6 +55,7 @@ pub(crate) fn table_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
             for quantity in QUANTITIES {
                 row_ui(ui, paint, item, quantity, asks);
             }
+            picked_ui(ui, item, asks);
             humidity_ui(ui, item);
         });
 }
@@ -173,7 +174,9 @@ fn row_ui(ui: &mut Ui, paint: &Paint, item: &Item, quantity: &Quantity, asks: &m
                 name
             })
             .inner;
-        asks.describe(&response, || format!("{}: {}", quantity.name, quantity.definition));
+        asks.describe(&response, || {
+            format!("{}: {}", quantity.name, quantity.definition)
+        });
         explain(&response, |ui| definition_ui(ui, quantity));
     });
     for (parcel, rect) in Parcel::ALL.into_iter().zip(cells) {
@@ -202,12 +205,14 @@ fn cell_ui(ui: &mut Ui, paint: &Paint, item: &Item, quantity: &Quantity, parcel:
         text = text.color(paint.theme.quiet);
     }
     let shown = match &preview {
-        Some(preview) => ui.horizontal(|ui| {
-            ui.spacing_mut().item_spacing.x = 3.0;
-            ui.label(text.size(12.0));
-            ui.label(bold(format!("→ {}", preview.text())).color(paint.theme.accent))
-        })
-        .inner,
+        Some(preview) => {
+            ui.horizontal(|ui| {
+                ui.spacing_mut().item_spacing.x = 3.0;
+                ui.label(text.size(12.0));
+                ui.label(bold(format!("→ {}", preview.text())).color(paint.theme.accent))
+            })
+            .inner
+        }
         None if decisive => ui.add(Label::new(text).truncate()),
         None => {
             ui.horizontal(|ui| {
@@ -215,7 +220,7 @@ fn cell_ui(ui: &mut Ui, paint: &Paint, item: &Item, quantity: &Quantity, parcel:
                 let value = ui.label(text);
                 if let Some(was) = &was {
                     was_ui(ui, paint, was);
-                } else if quantity.name == "Starts at"
+                } else if quantity.name == "Start p"
                     && parcel == Parcel::MostUnstable
                     && item.results().numbers.most_unstable_is_surface
                 {
@@ -316,6 +321,34 @@ pub(crate) fn explain(response: &Response, content: impl FnOnce(&mut Ui)) {
     tooltip.show(content);
 }
 
+/// The parcel of the level picked on the chart.
+fn picked_ui(ui: &mut Ui, item: &Item, asks: &mut Asks) {
+    let Some(level) = item.document().picked_level() else {
+        return;
+    };
+    ui.separator();
+    ui.horizontal_wrapped(|ui| {
+        let text = item.results().picked.as_ref().map_or_else(
+            || "no parcel can be formed there".to_owned(),
+            |ascent| {
+                let cin = ascent.cin.map_or_else(
+                    || "no free convection".to_owned(),
+                    |cin| format!("CIN {}", wording::energy(Some(cin), false)),
+                );
+                format!("CAPE {}, {cin}", wording::cape(Some(ascent)))
+            },
+        );
+        ui.label(format!("Parcel from {}: {text}", wording::pressure(level)));
+        let response = ui.small_button("Let it go");
+        asks.describe(&response, || {
+            "Let it go: no parcel is lifted from the picked level any more".to_owned()
+        });
+        if response.clicked() {
+            asks.command(Command::PickLevel(None));
+        }
+    });
+}
+
 fn humidity_ui(ui: &mut Ui, item: &Item) {
     let numbers = &item.results().numbers;
     let mut lines = Vec::new();
@@ -339,7 +372,10 @@ fn humidity_ui(ui: &mut Ui, item: &Item) {
             .iter()
             .map(|cape| wording::energy(*cape, false))
             .collect();
-        lines.push(format!("CAPE with relative humidity held there: {}.", all.join(", ")));
+        lines.push(format!(
+            "CAPE with relative humidity held there: {}.",
+            all.join(", ")
+        ));
     }
     if let Some(from) = numbers.starts_at {
         lines.push(format!(

@@ -44,8 +44,7 @@ pub(crate) struct Quantity {
     pub range: Option<fn(&ParcelRange) -> Option<Extremes>>,
 }
 
-const NO_FREE_CONVECTION: &str =
-    "No free convection: nowhere above its condensation level is the parcel lighter than its surroundings.";
+const NO_FREE_CONVECTION: &str = "No free convection: nowhere above its condensation level is the parcel lighter than its surroundings.";
 
 fn energy(_: Units) -> &'static str {
     "J/kg"
@@ -141,7 +140,7 @@ pub(crate) const QUANTITIES: &[Quantity] = &[
         range: None,
     },
     Quantity {
-        name: "Starts at",
+        name: "Start p",
         unit: pressure,
         definition: "Pressure where the parcel starts.",
         method: "Surface level; surface level with the means of the lowest 100 hPa; received level of largest \
@@ -205,7 +204,8 @@ pub(crate) fn cell(quantity: &Quantity, numbers: &Numbers, parcel: Parcel, units
         None => Cell::Absent(match (&numbers.problem, parcel) {
             (Some(problem), _) => format!("No parcel: {problem}."),
             (None, Parcel::Surface) => {
-                "No parcel: the surface has no temperature or no dew point. Set it with the handle.".to_owned()
+                "No parcel: the surface has no temperature or no dew point. Set it with the handle."
+                    .to_owned()
             }
             (None, _) => "No parcel can be formed from this profile.".to_owned(),
         }),
@@ -242,14 +242,22 @@ mod tests {
     fn ranges() {
         assert_eq!(range_text(&extremes(1480.2, 3119.7, false)), "1480 to 3120");
         assert_eq!(range_text(&extremes(0.0, 0.4, false)), "0");
-        assert_eq!(range_text(&extremes(-250.0, -12.0, false)), "\u{2212}250 to \u{2212}12");
+        assert_eq!(
+            range_text(&extremes(-250.0, -12.0, false)),
+            "\u{2212}250 to \u{2212}12"
+        );
         assert_eq!(range_text(&extremes(800.0, 900.0, true)), "≥ 800 to 900");
     }
 
     #[test]
     fn every_row_says_what_it_is() {
         for quantity in QUANTITIES {
-            for text in [quantity.name, quantity.definition, quantity.method, quantity.source] {
+            for text in [
+                quantity.name,
+                quantity.definition,
+                quantity.method,
+                quantity.source,
+            ] {
                 assert!(!text.is_empty(), "{}", quantity.name);
             }
         }

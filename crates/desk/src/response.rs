@@ -2,6 +2,7 @@
 
 use crate::app::Paint;
 use crate::ask::Asks;
+use crate::chart_frame::candidate_word;
 use crate::handle::{self, name};
 use crate::quantity::{parcel_heading, parcel_name};
 use crate::theme::{Theme, bold};
@@ -13,7 +14,10 @@ use eframe::egui::{
     Align, Align2, Color32, CursorIcon, FontId, Id, Label, Layout, Pos2, Rect, RichText, Role,
     Sense, Stroke, StrokeKind, Ui, UiBuilder, Vec2b, WidgetInfo, pos2, vec2,
 };
-use egui_plot::{Axis, AxisHints, HLine, Line, LineStyle, MarkerShape, Plot, PlotPoints, PlotTransform, PlotUi, Points, Span, VLine};
+use egui_plot::{
+    Axis, AxisHints, HLine, Line, LineStyle, MarkerShape, Plot, PlotPoints, PlotTransform, PlotUi,
+    Points, Span, VLine,
+};
 
 /// Identity of the response in the window.
 pub(crate) fn response_id() -> Id {
@@ -222,11 +226,14 @@ fn curves(
             CandidateKind::PinnedLow | CandidateKind::PinnedHigh => MarkerShape::Square,
         };
         plot.points(
-            Points::new("", PlotPoints::from(vec![[units::shown(dewpoint, unit), cape]]))
-                .shape(shape)
-                .radius(5.0)
-                .filled(true)
-                .color(theme.ink),
+            Points::new(
+                "",
+                PlotPoints::from(vec![[units::shown(dewpoint, unit), cape]]),
+            )
+            .shape(shape)
+            .radius(5.0)
+            .filled(true)
+            .color(theme.ink),
         );
     }
     if let Some(working) = working {
@@ -252,25 +259,21 @@ fn words(ui: &Ui, paint: &Paint, item: &Item, seen: &Seen) {
         theme.quiet,
     );
     legend(&painter, theme, frame);
+    let mut taken = vec![Rect::from_min_size(frame.min, vec2(300.0, 36.0))];
     for candidate in &doubt.candidates {
         let (Some(dewpoint), [Some(cape), ..]) = (candidate.dewpoint, candidate.cape) else {
             continue;
         };
-        let word = match candidate.kind {
-            CandidateKind::Reported => "reported",
-            CandidateKind::MixedLayer => "mixed layer",
-            CandidateKind::PinnedLow | CandidateKind::PinnedHigh => "pinned",
-        };
+        let word = candidate_word(candidate.kind);
         let at = pos2(
             seen.x_of(dewpoint),
             seen.transform.position_from_point_y(cape),
         );
-        let (offset, align) = if at.x > frame.center().x {
-            (vec2(-8.0, -6.0), Align2::RIGHT_BOTTOM)
-        } else {
-            (vec2(8.0, 6.0), Align2::LEFT_TOP)
-        };
-        painter.text(at + offset, align, word, FontId::proportional(11.0), theme.ink);
+        let galley = painter.layout_no_wrap(word.to_owned(), FontId::proportional(11.0), theme.ink);
+        let rect = clear_place(at, galley.size(), frame, &taken);
+        painter.rect_filled(rect.expand(1.0), 1.0, theme.card.gamma_multiply(0.8));
+        painter.galley(rect.min, galley, theme.ink);
+        taken.push(rect);
     }
     if let Some(working) = item.working_surface(SurfaceQuantity::Dewpoint) {
         let x = seen.x_of(working);
@@ -292,14 +295,28 @@ fn words(ui: &Ui, paint: &Paint, item: &Item, seen: &Seen) {
         } else {
             (vec2(12.0, 0.0), Align2::LEFT_CENTER)
         };
-        painter.text(
-            top + align.0,
-            align.1,
-            text,
-            FontId::new(12.0, crate::fonts::bold()),
-            theme.ink,
-        );
+        let galley =
+            painter.layout_no_wrap(text, FontId::new(12.0, crate::fonts::bold()), theme.ink);
+        let rect = align.1.anchor_size(top + align.0, galley.size());
+        painter.rect_filled(rect.expand(1.0), 1.0, theme.card.gamma_multiply(0.8));
+        painter.galley(rect.min, galley, theme.ink);
     }
+}
+
+/// Where a label beside a point covers no other: the first free corner around it.
+fn clear_place(at: Pos2, size: eframe::egui::Vec2, frame: Rect, taken: &[Rect]) -> Rect {
+    let places = [
+        (vec2(-8.0, -6.0), Align2::RIGHT_BOTTOM),
+        (vec2(8.0, 6.0), Align2::LEFT_TOP),
+        (vec2(8.0, -6.0), Align2::LEFT_BOTTOM),
+        (vec2(-8.0, 6.0), Align2::RIGHT_TOP),
+    ];
+    let all = places.map(|(offset, align)| align.anchor_size(at + offset, size));
+    let clear = |rect: &&Rect| {
+        frame.contains_rect(**rect) && taken.iter().all(|other| !other.intersects(**rect))
+    };
+    let [first, ..] = all;
+    all.iter().find(clear).copied().unwrap_or(first)
 }
 
 fn legend(painter: &eframe::egui::Painter, theme: &Theme, frame: Rect) {
@@ -352,4 +369,32 @@ fn node(ui: &Ui, paint: &Paint, item: &Item, frame: Rect, asks: &mut Asks) {
         handle::line(paint, item, quantity).unwrap_or_else(|| name(quantity).to_owned())
     });
     response.on_hover_cursor(CursorIcon::ResizeHorizontal);
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn labels_keep_clear_of_each_other_and_of_the_edge() {
+        let frame = Rect::from_min_size(pos2(0.0, 0.0), vec2(300.0, 120.0));
+        let size = vec2(60.0, 12.0);
+        let at = pos2(150.0, 60.0);
+        let mut taken = Vec::new();
+        for _ in 0..4 {
+            let rect = clear_place(at, size, frame, &taken);
+            assert!(taken.iter().all(|other: &Rect| !other.intersects(rect)));
+            assert!(frame.contains_rect(rect));
+            taken.push(rect);
+        }
+        let corner = clear_place(pos2(2.0, 2.0), size, frame, &[]);
+        assert!(frame.contains_rect(corner), "{corner:?}");
+    }
+
+    #[test]
+    fn a_sentence_begins_with_a_capital() {
+        assert_eq!(capitalised("surface inhibited"), "Surface inhibited");
+        assert_eq!(capitalised("θ rises"), "Θ rises");
+        assert_eq!(capitalised(""), "");
+    }
 }

@@ -197,17 +197,19 @@ impl Tried {
             return Err(NoWindow::Graphics(why.to_owned()));
         }
         eprintln!("Starting once more, with {}: {why}.", self.instead());
-        let program = std::env::current_exe()
-            .map_err(|error| NoWindow::Graphics(format!("{why}; starting again failed: {error}")))?;
+        let program = std::env::current_exe().map_err(|error| {
+            NoWindow::Graphics(format!("{why}; starting again failed: {error}"))
+        })?;
         let arguments: Vec<OsString> = std::env::args_os().skip(1).collect();
         let mut command = Command::new(program);
         command.args(arguments).env(TRIED, self.list());
         if self.wayland {
-            command.env_remove("WAYLAND_DISPLAY").env_remove("WAYLAND_SOCKET");
+            command
+                .env_remove("WAYLAND_DISPLAY")
+                .env_remove("WAYLAND_SOCKET");
         }
-        replace(command).map_err(|error| {
-            NoWindow::Graphics(format!("{why}; starting again failed: {error}"))
-        })
+        replace(command)
+            .map_err(|error| NoWindow::Graphics(format!("{why}; starting again failed: {error}")))
     }
 
     fn instead(self) -> &'static str {
@@ -241,9 +243,7 @@ impl QuietPanics {
             if started.load(Ordering::Relaxed) {
                 usual(info);
             } else {
-                let words = info
-                    .payload_as_str()
-                    .unwrap_or("the window system gave up");
+                let words = info.payload_as_str().unwrap_or("the window system gave up");
                 *slot.lock().unwrap_or_else(PoisonError::into_inner) = Some(first_line(words));
             }
         }));

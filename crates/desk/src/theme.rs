@@ -158,11 +158,20 @@ impl Theme {
             ..Style::default()
         };
         style.text_styles = [
-            (TextStyle::Small, FontId::new(11.0, FontFamily::Proportional)),
+            (
+                TextStyle::Small,
+                FontId::new(11.0, FontFamily::Proportional),
+            ),
             (TextStyle::Body, FontId::new(13.0, FontFamily::Proportional)),
-            (TextStyle::Button, FontId::new(13.0, FontFamily::Proportional)),
+            (
+                TextStyle::Button,
+                FontId::new(13.0, FontFamily::Proportional),
+            ),
             (TextStyle::Heading, FontId::new(20.0, fonts::bold())),
-            (TextStyle::Monospace, FontId::new(13.0, FontFamily::Monospace)),
+            (
+                TextStyle::Monospace,
+                FontId::new(13.0, FontFamily::Monospace),
+            ),
         ]
         .into();
         style.spacing.item_spacing = vec2(6.0, 4.0);
@@ -210,11 +219,31 @@ impl Theme {
         let corner = CornerRadius::same(3);
         let widgets = &mut visuals.widgets;
         for (widget, fill, edge) in [
-            (&mut widgets.noninteractive, self.panel, Stroke::new(1.0, self.line)),
-            (&mut widgets.inactive, self.raised, Stroke::new(1.0, self.line)),
-            (&mut widgets.hovered, self.raised_hover, Stroke::new(1.0, self.quiet)),
-            (&mut widgets.active, self.raised_hover, Stroke::new(2.0, self.accent)),
-            (&mut widgets.open, self.raised_hover, Stroke::new(1.0, self.line)),
+            (
+                &mut widgets.noninteractive,
+                self.panel,
+                Stroke::new(1.0, self.line),
+            ),
+            (
+                &mut widgets.inactive,
+                self.raised,
+                Stroke::new(1.0, self.line),
+            ),
+            (
+                &mut widgets.hovered,
+                self.raised_hover,
+                Stroke::new(1.0, self.quiet),
+            ),
+            (
+                &mut widgets.active,
+                self.raised_hover,
+                Stroke::new(2.0, self.accent),
+            ),
+            (
+                &mut widgets.open,
+                self.raised_hover,
+                Stroke::new(1.0, self.line),
+            ),
         ] {
             widget.bg_fill = fill;
             widget.weak_bg_fill = fill;
@@ -247,7 +276,9 @@ mod tests {
                     ((c + 0.055) / 1.055).powf(2.4)
                 }
             };
-            0.2126 * channel(colour.r()) + 0.7152 * channel(colour.g()) + 0.0722 * channel(colour.b())
+            0.2126 * channel(colour.r())
+                + 0.7152 * channel(colour.g())
+                + 0.0722 * channel(colour.b())
         };
         let (a, b) = (luminance(a), luminance(b));
         (a.max(b) + 0.05) / (a.min(b) + 0.05)
@@ -258,8 +289,22 @@ mod tests {
         for name in [ThemeName::Light, ThemeName::Dark] {
             let theme = Theme::of(name);
             let pairs = [
-                ("ink", theme.ink, vec![theme.panel, theme.card, theme.raised, theme.raised_hover, theme.selected]),
-                ("quiet", theme.quiet, vec![theme.panel, theme.card, theme.selected]),
+                (
+                    "ink",
+                    theme.ink,
+                    vec![
+                        theme.panel,
+                        theme.card,
+                        theme.raised,
+                        theme.raised_hover,
+                        theme.selected,
+                    ],
+                ),
+                (
+                    "quiet",
+                    theme.quiet,
+                    vec![theme.panel, theme.card, theme.selected],
+                ),
                 ("danger", theme.danger, vec![theme.panel, theme.card]),
                 ("good", theme.good, vec![theme.panel, theme.card]),
                 ("accent", theme.accent, vec![theme.panel, theme.card]),
@@ -274,7 +319,10 @@ mod tests {
                 for ground in grounds {
                     let found = contrast(text, ground);
                     // 4.5:1 is level AA for text of ordinary size.
-                    assert!(found >= 4.5, "{name:?}: {what} on {ground:?} has {found:.2}");
+                    assert!(
+                        found >= 4.5,
+                        "{name:?}: {what} on {ground:?} has {found:.2}"
+                    );
                 }
             }
         }

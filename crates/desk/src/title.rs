@@ -76,7 +76,8 @@ fn identity(item: &Item) -> String {
 /// "23:12 for 00 UTC 21 May 2031 · 3 h 20 min old", where one line has to do.
 fn short_times(item: &Item, now: Timestamp) -> String {
     let times = &item.sounding().times;
-    let format = |time: Timestamp, format| time.to_zoned(TimeZone::UTC).strftime(format).to_string();
+    let format =
+        |time: Timestamp, format| time.to_zoned(TimeZone::UTC).strftime(format).to_string();
     let said = match (times.launch, times.nominal) {
         (Some(launch), Some(nominal)) => format!(
             "{} for {}",
@@ -112,7 +113,12 @@ fn times(item: &Item, now: Timestamp) -> String {
     let times = &item.sounding().times;
     let said = match (times.launch, times.nominal) {
         (Some(launch), Some(nominal)) => {
-            format!("launched {} for {} {}", hour(launch), hour(nominal), day(nominal))
+            format!(
+                "launched {} for {} {}",
+                hour(launch),
+                hour(nominal),
+                day(nominal)
+            )
         }
         (Some(launch), None) => format!("launched {} {}", hour(launch), day(launch)),
         (None, Some(nominal)) => format!("for {} {}", hour(nominal), day(nominal)),

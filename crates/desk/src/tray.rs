@@ -8,7 +8,7 @@ use crate::quantity::parcel_name;
 use crate::theme::bold;
 use dewbound_session::{Command, TrayRow, wording};
 use eframe::egui::{
-    FontFamily, FontId, Role, RichText, ScrollArea, Sense, Stroke, StrokeKind, Ui, UiBuilder,
+    FontFamily, FontId, RichText, Role, ScrollArea, Sense, Stroke, StrokeKind, Ui, UiBuilder,
     WidgetInfo, pos2, vec2,
 };
 use jiff::tz::TimeZone;
@@ -36,18 +36,44 @@ pub(crate) fn waiting(paint: &Paint) -> String {
     format!("{open} of {} to decide{reading}", rows.len())
 }
 
+/// From so many lines on only those in sight are laid out.
+const MANY: usize = 150;
+const GAP: f32 = 3.0;
+
 /// The lines of the tray. In a drop-down, choosing one closes it.
 pub(crate) fn rows_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks, drop_down: bool) {
-    let mut area = ScrollArea::vertical().id_salt("tray rows").auto_shrink([false, drop_down]);
+    let rows = paint.session.tray();
+    // One height for all, so that any of them can be found without laying out the rest.
+    let high = if rows.iter().any(|row| row.demo) {
+        80.0
+    } else {
+        66.0
+    };
+    ui.spacing_mut().item_spacing.y = GAP;
+    let mut area = ScrollArea::vertical()
+        .id_salt("tray rows")
+        .auto_shrink([false, drop_down]);
     if drop_down {
         area = area.max_height(380.0);
     }
-    area.show(ui, |ui| {
-        ui.spacing_mut().item_spacing.y = 3.0;
-        for row in paint.session.tray() {
-            if row_ui(ui, paint, row, asks) && drop_down {
-                ui.close();
+    let current = paint.item().map(dewbound_session::Item::id);
+    if rows.len() <= MANY {
+        area.show(ui, |ui| {
+            for row in rows {
+                row_ui(ui, paint, row, high, drop_down, asks);
             }
+        });
+        return;
+    }
+    if paint.view.reveal
+        && let Some(index) = rows.iter().position(|row| Some(row.item) == current)
+    {
+        let above = (ui.available_height() - high) / 2.0;
+        area = area.vertical_scroll_offset((index as f32 * (high + GAP) - above).max(0.0));
+    }
+    area.show_rows(ui, high, rows.len(), |ui, seen| {
+        for row in rows.iter().skip(seen.start).take(seen.len()) {
+            row_ui(ui, paint, row, high, drop_down, asks);
         }
     });
 }
@@ -59,7 +85,10 @@ pub(crate) fn time_text(row: &TrayRow) -> String {
             let valid = valid.to_zoned(TimeZone::UTC);
             let assumed = if row.time_assumed { "~" } else { "" };
             let clock = if valid.minute() == 0 { "%H" } else { "%H:%M" };
-            format!("{assumed}{}", valid.strftime(&format!("{clock} UTC %-d %b")))
+            format!(
+                "{assumed}{}",
+                valid.strftime(&format!("{clock} UTC %-d %b"))
+            )
         }
         None => "time unknown".to_owned(),
     }
@@ -81,10 +110,9 @@ fn findings_text(row: &TrayRow) -> String {
     }
 }
 
-fn row_ui(ui: &mut Ui, paint: &Paint, row: &TrayRow, asks: &mut Asks) -> bool {
+fn row_ui(ui: &mut Ui, paint: &Paint, row: &TrayRow, high: f32, drop_down: bool, asks: &mut Asks) {
     let theme = paint.theme;
     let chosen = paint.item().is_some_and(|item| item.id() == row.item);
-    let high = if row.demo { 80.0 } else { 66.0 };
     let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), high), Sense::click());
     let label = format!(
         "{}, {}, {}, {}, {}, {}{}",
@@ -116,7 +144,11 @@ fn row_ui(ui: &mut Ui, paint: &Paint, row: &TrayRow, asks: &mut Asks) -> bool {
         painter.rect_stroke(rect, 3.0, edge, StrokeKind::Inside);
         let inside = rect.shrink2(vec2(8.0, 6.0));
         let write = |x: f32, y: f32, text: String, size: f32, strong: bool, ink| {
-            let family = if strong { fonts::bold() } else { FontFamily::Proportional };
+            let family = if strong {
+                fonts::bold()
+            } else {
+                FontFamily::Proportional
+            };
             let mut job = eframe::egui::text::LayoutJob::simple_singleline(
                 text,
                 FontId::new(size, family),
@@ -129,7 +161,14 @@ fn row_ui(ui: &mut Ui, paint: &Paint, row: &TrayRow, asks: &mut Asks) -> bool {
             painter.galley(pos2(x, y), galley, ink);
         };
         let left = inside.left();
-        write(left, inside.top(), row.station.clone(), 13.0, true, theme.ink);
+        write(
+            left,
+            inside.top(),
+            row.station.clone(),
+            13.0,
+            true,
+            theme.ink,
+        );
         write(
             left,
             inside.top() + 18.0,
@@ -148,8 +187,16 @@ fn row_ui(ui: &mut Ui, paint: &Paint, row: &TrayRow, asks: &mut Asks) -> bool {
             Mark::Open
         };
         standing_mark(&painter, theme, pos2(left + 8.0, inside.top() + 43.0), mark);
-        write(left + 20.0, inside.top() + 36.0, row.verdict.clone(), 11.5, false, theme.ink);
-        let cost = painter.layout_no_wrap(cost_text(row), FontId::new(12.0, fonts::bold()), theme.ink);
+        write(
+            left + 20.0,
+            inside.top() + 36.0,
+            row.verdict.clone(),
+            11.5,
+            false,
+            theme.ink,
+        );
+        let cost =
+            painter.layout_no_wrap(cost_text(row), FontId::new(12.0, fonts::bold()), theme.ink);
         let at = pos2(inside.right() - cost.size().x, inside.top() + 35.0);
         painter.rect_filled(
             eframe::egui::Rect::from_min_size(at, cost.size()).expand2(vec2(4.0, 0.0)),
@@ -158,12 +205,24 @@ fn row_ui(ui: &mut Ui, paint: &Paint, row: &TrayRow, asks: &mut Asks) -> bool {
         );
         painter.galley(at, cost, theme.ink);
         if row.demo {
-            write(left, inside.top() + 55.0, wording::INVENTED.to_owned(), 10.5, true, theme.danger);
+            write(
+                left,
+                inside.top() + 55.0,
+                wording::INVENTED.to_owned(),
+                10.5,
+                true,
+                theme.danger,
+            );
         }
     }
-    let clicked = response.clicked();
-    if clicked {
+    if chosen && paint.view.reveal {
+        response.scroll_to_me(None);
+    }
+    if response.clicked() {
         asks.command(Command::Select(row.item));
+        if drop_down {
+            ui.close();
+        }
     }
     response.on_hover_ui(|ui| {
         ui.label(bold(&row.station));
@@ -181,5 +240,4 @@ fn row_ui(ui: &mut Ui, paint: &Paint, row: &TrayRow, asks: &mut Asks) -> bool {
         }
         ui.label(format!("Verdict: {}", row.verdict));
     });
-    clicked
 }

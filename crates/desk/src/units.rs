@@ -43,7 +43,10 @@ pub(crate) fn temperature(temperature: Temperature, unit: TemperatureUnit) -> St
 
 /// The other choices a person can make.
 pub(crate) fn with_temperature(units: Units, temperature: TemperatureUnit) -> Units {
-    Units { temperature, ..units }
+    Units {
+        temperature,
+        ..units
+    }
 }
 
 /// The same for wind speed.
@@ -69,7 +72,10 @@ mod tests {
     fn both_scales() {
         let freezing = Temperature::from_c(0.0);
         assert_eq!(temperature(freezing, TemperatureUnit::Celsius), "0.0 °C");
-        assert_eq!(temperature(freezing, TemperatureUnit::Fahrenheit), "32.0 °F");
+        assert_eq!(
+            temperature(freezing, TemperatureUnit::Fahrenheit),
+            "32.0 °F"
+        );
         assert_eq!(
             temperature(Temperature::from_c(-40.0), TemperatureUnit::Fahrenheit),
             "\u{2212}40.0 °F"

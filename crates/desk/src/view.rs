@@ -105,6 +105,8 @@ pub(crate) struct View {
     pub cursor: Option<egui::Pos2>,
     /// The line over the chart until the first drag.
     pub hint: bool,
+    /// Another sounding has become the current one: its line of the tray is brought into sight.
+    pub reveal: bool,
     /// The box over the window.
     pub dialog: Option<DialogBox>,
     /// Computing times.
@@ -129,6 +131,7 @@ impl View {
             gesture: None,
             cursor: None,
             hint: false,
+            reveal: false,
             dialog: None,
             timing: Timing::default(),
             show_timing,

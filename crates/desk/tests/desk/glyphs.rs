@@ -35,7 +35,10 @@ fn figures_are_tabular() {
                 .fonts_mut(|fonts| fonts.glyph_width(&FontId::proportional(13.0), c))
         })
         .collect();
-    assert!(widths.iter().all(|width| (width - widths[0]).abs() < 1e-3), "{widths:?}");
+    assert!(
+        widths.iter().all(|width| (width - widths[0]).abs() < 1e-3),
+        "{widths:?}"
+    );
 }
 
 /// The harness panics at the first character no font can draw; here every story, card and box has been laid out, and the

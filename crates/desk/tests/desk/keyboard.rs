@@ -25,11 +25,17 @@ fn arrows_move_the_dew_point_by_a_tenth_a_half_and_a_whole() {
         window.key_press_modifiers(modifiers, key);
         window.run();
         let now = dewpoint(&window) - start;
-        assert!(close(now, by), "{modifiers:?} {key:?}: {now} instead of {by}");
+        assert!(
+            close(now, by),
+            "{modifiers:?} {key:?}: {now} instead of {by}"
+        );
     }
     window.key_press(Key::Home);
     window.run();
-    assert!(close(dewpoint(&window), start), "Home is the received value");
+    assert!(
+        close(dewpoint(&window), start),
+        "Home is the received value"
+    );
 }
 
 #[test]
@@ -41,7 +47,10 @@ fn a_typed_number_is_set_by_enter_and_dropped_by_escape() {
         window.event(Event::Text(text.to_owned()));
     }
     window.run();
-    assert!(close(dewpoint(&window), start), "nothing is set while typing");
+    assert!(
+        close(dewpoint(&window), start),
+        "nothing is set while typing"
+    );
     assert!(has_text(&window, "typing 12.5 °C"));
     window.key_press(Key::Escape);
     window.run();
@@ -86,7 +95,10 @@ fn a_repair_is_seen_applied_and_taken_back() {
     window.key_press(Key::Enter);
     window.run();
     tab_to(&mut window, "Apply: ");
-    assert!(has_text(&window, "→ "), "the numbers show what the focused repair would do");
+    assert!(
+        has_text(&window, "→ "),
+        "the numbers show what the focused repair would do"
+    );
     window.key_press(Key::Enter);
     window.run();
     assert_eq!(item(&window).results().cards[index].applied, Some(0));
@@ -113,7 +125,10 @@ fn a_verdict_is_chosen_signed_and_kept() {
     assert_eq!(item(&window).document().reasons, "fits its neighbours");
     window.key_press_modifiers(Modifiers::COMMAND, Key::Enter);
     window.run();
-    assert!(has_text(&window, "Who decides?"), "initials are asked at the first verdict");
+    assert!(
+        has_text(&window, "Who decides?"),
+        "initials are asked at the first verdict"
+    );
     assert!(!matches!(item(&window).standing(), Standing::Decided(_)));
     window.event(Event::Text("AB".to_owned()));
     window.run();
@@ -141,15 +156,16 @@ fn the_line_is_copied() {
         modifiers: Modifiers::COMMAND | Modifiers::SHIFT,
     });
     window.step();
-    let copied = window
-        .output()
-        .platform_output
-        .commands
-        .iter()
-        .find_map(|command| match command {
-            OutputCommand::CopyText(text) => Some(text.clone()),
-            _ => None,
-        });
+    let copied =
+        window
+            .output()
+            .platform_output
+            .commands
+            .iter()
+            .find_map(|command| match command {
+                OutputCommand::CopyText(text) => Some(text.clone()),
+                _ => None,
+            });
     let line = copied.expect("something is on the clipboard");
     assert_eq!(line, item(&window).copy_line());
     assert!(line.contains("official warnings"), "{line}");
@@ -176,14 +192,30 @@ fn the_chart_is_moved_and_read_without_a_pointer() {
     let before = handle(&window);
     window.key_press(Key::ArrowRight);
     window.run();
-    assert!(handle(&window).x < before.x - 10.0, "the paper moves under the window");
+    assert!(
+        handle(&window).x < before.x - 10.0,
+        "the paper moves under the window"
+    );
     window.key_press(Key::Num0);
     window.run();
-    assert!((handle(&window) - before).length() < 1.0, "0 shows all again");
+    assert!(
+        (handle(&window) - before).length() < 1.0,
+        "0 shows all again"
+    );
     window.key_press_modifiers(Modifiers::SHIFT, Key::ArrowUp);
     window.run();
-    assert!(has_text(&window, "hPa"), "values are read in the status line");
-    assert_eq!(focused(&window).unwrap().as_str().split(" of ").next(), Some("Skew-T chart"));
+    assert!(
+        has_text(&window, "hPa"),
+        "values are read in the status line"
+    );
+    window.key_press(Key::Enter);
+    window.run();
+    assert!(item(&window).document().picked_level().is_some());
+    assert!(has_text(&window, "Parcel from "));
+    assert_eq!(
+        focused(&window).unwrap().as_str().split(" of ").next(),
+        Some("Skew-T chart")
+    );
 }
 
 #[test]
@@ -193,7 +225,9 @@ fn tab_reaches_every_task_and_comes_round() {
     for _ in 0..150 {
         window.key_press(Key::Tab);
         window.run();
-        let Some(now) = focused(&window) else { continue };
+        let Some(now) = focused(&window) else {
+            continue;
+        };
         if seen.first() == Some(&now) {
             break;
         }

@@ -28,12 +28,16 @@ fn check_painted(window: &Window) {
         };
         let cape = wording::number(ascent.cape, 0);
         assert!(
-            texts(window).iter().any(|text| text.trim_start_matches("≥ ") == cape),
+            texts(window)
+                .iter()
+                .any(|text| text.trim_start_matches("≥ ") == cape),
             "CAPE {cape} of {parcel:?} is not in the window"
         );
     }
     for card in &item.results().cards {
-        let Some(cost) = card.headline_cost() else { continue };
+        let Some(cost) = card.headline_cost() else {
+            continue;
+        };
         let worst = [cost.surface, cost.mixed, cost.most_unstable]
             .into_iter()
             .filter_map(|change| change.cape)
@@ -52,12 +56,21 @@ fn every_frame_of_a_drag_shows_its_own_value() {
     let (_folder, mut window) = usual();
     let start = handle(&window);
     let before = dewpoint(&window);
-    let cape_before = item(&window).results().numbers.surface.as_ref().unwrap().cape;
+    let cape_before = item(&window)
+        .results()
+        .numbers
+        .surface
+        .as_ref()
+        .unwrap()
+        .cape;
     window.hover_at(start);
     window.step();
     button(&window, start, true);
     window.step();
-    assert!((dewpoint(&window) - before).abs() < 1e-9, "taking hold changes nothing");
+    assert!(
+        (dewpoint(&window) - before).abs() < 1e-9,
+        "taking hold changes nothing"
+    );
     let mut last = before;
     for i in 1..=6 {
         let to = start - vec2(8.0 * i as f32, 0.0);
@@ -68,15 +81,30 @@ fn every_frame_of_a_drag_shows_its_own_value() {
         assert!(now < last, "frame {i}: {now} after {last}");
         last = now;
         check_painted(&window);
-        assert!((handle(&window).x - to.x).abs() < 2.5, "the ring stays under the pointer");
+        assert!(
+            (handle(&window).x - to.x).abs() < 2.5,
+            "the ring stays under the pointer"
+        );
     }
     button(&window, start - vec2(48.0, 0.0), false);
     window.run();
-    assert!(item(&window).results().numbers.surface.as_ref().unwrap().cape < cape_before);
+    assert!(
+        item(&window)
+            .results()
+            .numbers
+            .surface
+            .as_ref()
+            .unwrap()
+            .cape
+            < cape_before
+    );
     assert!((dewpoint(&window) - last).abs() < 1e-9);
     window.key_press_modifiers(eframe::egui::Modifiers::COMMAND, Key::Z);
     window.run();
-    assert!((dewpoint(&window) - before).abs() < 1e-6, "a drag is one step to undo");
+    assert!(
+        (dewpoint(&window) - before).abs() < 1e-6,
+        "a drag is one step to undo"
+    );
 }
 
 #[test]
@@ -94,7 +122,10 @@ fn escape_during_a_drag_restores() {
     assert!((dewpoint(&window) - before).abs() < 1e-9);
     window.hover_at(start - vec2(60.0, 0.0));
     window.run();
-    assert!((dewpoint(&window) - before).abs() < 1e-9, "given up until the button is up");
+    assert!(
+        (dewpoint(&window) - before).abs() < 1e-9,
+        "given up until the button is up"
+    );
     button(&window, start - vec2(60.0, 0.0), false);
     window.run();
     assert!((dewpoint(&window) - before).abs() < 1e-9);
@@ -105,7 +136,10 @@ fn a_drag_elsewhere_moves_the_paper_and_scrolling_zooms() {
     let (_folder, mut window) = usual();
     let before = dewpoint(&window);
     let place = handle(&window);
-    let from = window.get_by_label_contains("Skew-T chart of").rect().center();
+    let from = window
+        .get_by_label_contains("Skew-T chart of")
+        .rect()
+        .center();
     window.hover_at(from);
     button(&window, from, true);
     window.hover_at(from + vec2(30.0, 0.0));
@@ -120,9 +154,7 @@ fn a_drag_elsewhere_moves_the_paper_and_scrolling_zooms() {
 fn the_response_is_dragged_too() {
     let (_folder, mut window) = usual();
     let before = dewpoint(&window);
-    let plot = window
-        .get_by_label_contains("Response: CAPE")
-        .rect();
+    let plot = window.get_by_label_contains("Response: CAPE").rect();
     let to = plot.left_center() + vec2(plot.width() * 0.2, 0.0);
     window.hover_at(to);
     window.step();

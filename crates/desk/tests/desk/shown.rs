@@ -22,7 +22,10 @@ fn the_caution_and_cape_with_its_range_never_disappear() {
         vec2(2560.0, 1440.0),
     ] {
         let (_folder, window) = at(size);
-        assert!(has_text(&window, "Official warnings and local procedures rule"), "{size:?}");
+        assert!(
+            has_text(&window, "Official warnings and local procedures rule"),
+            "{size:?}"
+        );
         let item = item(&window);
         let cape = wording::number(item.results().numbers.surface.as_ref().unwrap().cape, 0);
         assert!(texts(&window).contains(&cape), "{size:?}: CAPE {cape}");
@@ -32,7 +35,10 @@ fn the_caution_and_cape_with_its_range_never_disappear() {
         }
         assert!(has_text(&window, wording::INVENTED), "{size:?}");
         let chart = window.get_by_label_contains("Skew-T chart of").rect();
-        assert!(chart.width() >= 415.0 && chart.height() >= 375.0, "{size:?}: {chart:?}");
+        assert!(
+            chart.width() >= 415.0 && chart.height() >= 375.0,
+            "{size:?}: {chart:?}"
+        );
     }
 }
 
@@ -80,7 +86,10 @@ fn every_story_of_the_tray_can_be_shown() {
                 .get_by_label(&format!("Finding {}: {title}", index + 1))
                 .click();
             window.run();
-            assert!(has_text(&window, "If the sonde is wrong"), "{name}: {title}");
+            assert!(
+                has_text(&window, "If the sonde is wrong"),
+                "{name}: {title}"
+            );
         }
     }
 }
@@ -90,7 +99,11 @@ fn the_boxes_open_and_close() {
     let (_folder, mut window) = at(SIZE);
     for (menu, entry, inside) in [
         ("Help", "Keys", "Back to the received value"),
-        ("Help", "About and caution", "Nothing here issues or replaces a warning"),
+        (
+            "Help",
+            "About and caution",
+            "Nothing here issues or replaces a warning",
+        ),
     ] {
         window.get_by_label(menu).click();
         window.run();

@@ -118,7 +118,10 @@ mod without_a_window {
         drop(child.stdout.take());
         let output = child.wait_with_output().unwrap();
         let err = String::from_utf8_lossy(&output.stderr);
-        assert!(output.status.success() && !err.contains("panicked"), "{err}");
+        assert!(
+            output.status.success() && !err.contains("panicked"),
+            "{err}"
+        );
     }
 
     #[test]
@@ -144,7 +147,10 @@ mod without_a_window {
     #[test]
     fn without_an_adapter_it_starts_again_with_glow() {
         let Some(server) = Server::start(&["+extension", "GLX"]) else {
-            skipped("without_an_adapter_it_starts_again_with_glow", "Xvfb is not installed");
+            skipped(
+                "without_an_adapter_it_starts_again_with_glow",
+                "Xvfb is not installed",
+            );
             return;
         };
         let home = tempfile::tempdir().unwrap();
@@ -161,8 +167,13 @@ mod without_a_window {
         let err = String::from_utf8_lossy(&output.stderr);
         assert!(output.status.success(), "{err}");
         assert!(err.contains("Starting once more, with OpenGL"), "{err}");
-        if err.contains("No usable graphics") || String::from_utf8_lossy(&output.stdout).contains("No usable graphics") {
-            skipped("without_an_adapter_it_starts_again_with_glow", "no software OpenGL is installed");
+        if err.contains("No usable graphics")
+            || String::from_utf8_lossy(&output.stdout).contains("No usable graphics")
+        {
+            skipped(
+                "without_an_adapter_it_starts_again_with_glow",
+                "no software OpenGL is installed",
+            );
             return;
         }
         assert!(err.contains("Drawn with glow"), "{err}");

@@ -21,7 +21,10 @@ pub fn session(folder: &Path) -> Session {
     let mut session = Session::new(Config::within(folder));
     session.open_demo();
     session.wait();
-    assert!(!session.items().is_empty(), "the demonstration tray is empty");
+    assert!(
+        !session.items().is_empty(),
+        "the demonstration tray is empty"
+    );
     session
 }
 
@@ -31,9 +34,8 @@ pub fn builder(size: Vec2) -> HarnessBuilder<Desk> {
 
 pub fn desk(builder: HarnessBuilder<Desk>, folder: &Path, args: Args) -> Window {
     let session = session(folder);
-    let mut window = builder.build_eframe(move |creation| {
-        Desk::with_session(&creation.egui_ctx, session, &args, now)
-    });
+    let mut window = builder
+        .build_eframe(move |creation| Desk::with_session(&creation.egui_ctx, session, &args, now));
     window.run();
     window
 }
@@ -53,7 +55,11 @@ pub fn plain() -> Args {
 }
 
 pub fn item(window: &Window) -> &Item {
-    window.state().session().current().expect("a sounding is open")
+    window
+        .state()
+        .session()
+        .current()
+        .expect("a sounding is open")
 }
 
 /// Surface dew point of the working profile, degC.

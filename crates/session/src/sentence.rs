@@ -15,6 +15,16 @@ const UNMOVED: f64 = 1.0;
 
 /// Which parcel matters, and whether the surface doubt reaches it.
 pub(crate) fn which_parcel(working: &Profile, numbers: &Numbers, doubt: &Doubt) -> String {
+    let said = parcel_that_matters(working, numbers, doubt);
+    match (working.surface_air(), &doubt.interval) {
+        (Some(air), Some(interval)) if !interval.contains(air.dewpoint) => {
+            format!("{said}; the dew point now set lies outside the interval")
+        }
+        _ => said,
+    }
+}
+
+fn parcel_that_matters(working: &Profile, numbers: &Numbers, doubt: &Doubt) -> String {
     if let Some(problem) = &numbers.problem {
         return format!("no parcel can be lifted: {problem}");
     }

@@ -4,6 +4,8 @@
 mod common;
 
 use common::Desk;
+use dewbound_session::sounding::thermo::Temperature;
+use dewbound_session::{Command, SurfaceQuantity};
 
 /// Columns under a heading.
 fn columns(levels: &[(f64, f64, f64)]) -> String {
@@ -48,7 +50,7 @@ fn an_elevated_parcel_above_a_cold_surface_is_not_reached() {
 
 #[test]
 fn a_surface_parcel_is_said_to_hang_on_the_doubt() {
-    let desk = Desk::open();
+    let mut desk = Desk::open();
     let results = desk.session.current().unwrap().results();
     let said = &results.which_parcel;
     assert!(said.contains("it is the most unstable parcel"), "{said}");
@@ -58,6 +60,16 @@ fn a_surface_parcel_is_said_to_hang_on_the_doubt() {
         range.least, range.most
     );
     assert!(said.ends_with(&tail), "{said}, not {tail}");
+    // A value beyond what is credible is said to be so, since its numbers lie outside the ranges.
+    desk.session.apply(Command::SetSurface(
+        SurfaceQuantity::Dewpoint,
+        Temperature::from_c(25.0),
+    ));
+    let said = &desk.session.current().unwrap().results().which_parcel;
+    assert!(
+        said.ends_with("the dew point now set lies outside the interval"),
+        "{said}"
+    );
 }
 
 #[test]

@@ -62,9 +62,14 @@ pub(crate) fn sentence_ui(ui: &mut Ui, paint: &Paint, _asks: &Asks) {
 /// As a sentence begins.
 fn capitalised(text: &str) -> String {
     let mut chars = text.chars();
-    chars.next().map_or_else(String::new, |first| {
-        first.to_uppercase().chain(chars).collect()
-    })
+    chars
+        .next()
+        .map_or_else(String::new, |first| {
+            first.to_uppercase().chain(chars).collect::<String>()
+        })
+        // A unit stays with its number.
+        .replace(" J/kg", "\u{a0}J/kg")
+        .replace(" hPa", "\u{a0}hPa")
 }
 
 /// The curve; gives back where it lies.
@@ -87,7 +92,9 @@ pub(crate) fn response_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) -> Option
     let theme = paint.theme;
     let working = item.working_surface(SurfaceQuantity::Dewpoint);
     let (low, high) = span(doubt, unit);
-    let most = most_cape(doubt);
+    // Room above the curves for title and legend.
+    let inner = f64::from((rect.height() - 24.0).max(60.0));
+    let most = most_cape(doubt) * inner / (inner - 40.0).max(20.0);
     let mut child = ui.new_child(UiBuilder::new().max_rect(rect));
     let shown = Plot::new(("response", item.id()))
         .width(rect.width())
@@ -159,7 +166,7 @@ fn most_cape(doubt: &Doubt) -> f64 {
         .flat_map(|point| point.parcels)
         .filter_map(|parcel| parcel.cape)
         .fold(0.0, f64::max);
-    (most * 1.12).max(100.0)
+    most.max(100.0)
 }
 
 fn parcel_colour(theme: &Theme, parcel: Parcel) -> Color32 {
@@ -260,21 +267,6 @@ fn words(ui: &Ui, paint: &Paint, item: &Item, seen: &Seen) {
     );
     legend(&painter, theme, frame);
     let mut taken = vec![Rect::from_min_size(frame.min, vec2(300.0, 36.0))];
-    for candidate in &doubt.candidates {
-        let (Some(dewpoint), [Some(cape), ..]) = (candidate.dewpoint, candidate.cape) else {
-            continue;
-        };
-        let word = candidate_word(candidate.kind);
-        let at = pos2(
-            seen.x_of(dewpoint),
-            seen.transform.position_from_point_y(cape),
-        );
-        let galley = painter.layout_no_wrap(word.to_owned(), FontId::proportional(11.0), theme.ink);
-        let rect = clear_place(at, galley.size(), frame, &taken);
-        painter.rect_filled(rect.expand(1.0), 1.0, theme.card.gamma_multiply(0.8));
-        painter.galley(rect.min, galley, theme.ink);
-        taken.push(rect);
-    }
     if let Some(working) = item.working_surface(SurfaceQuantity::Dewpoint) {
         let x = seen.x_of(working);
         let mut text = units::temperature(working, paint.view.units.temperature);
@@ -300,6 +292,22 @@ fn words(ui: &Ui, paint: &Paint, item: &Item, seen: &Seen) {
         let rect = align.1.anchor_size(top + align.0, galley.size());
         painter.rect_filled(rect.expand(1.0), 1.0, theme.card.gamma_multiply(0.8));
         painter.galley(rect.min, galley, theme.ink);
+        taken.push(rect);
+    }
+    for candidate in &doubt.candidates {
+        let (Some(dewpoint), [Some(cape), ..]) = (candidate.dewpoint, candidate.cape) else {
+            continue;
+        };
+        let word = candidate_word(candidate.kind);
+        let at = pos2(
+            seen.x_of(dewpoint),
+            seen.transform.position_from_point_y(cape),
+        );
+        let galley = painter.layout_no_wrap(word.to_owned(), FontId::proportional(11.0), theme.ink);
+        let rect = clear_place(at, galley.size(), frame, &taken);
+        painter.rect_filled(rect.expand(1.0), 1.0, theme.card.gamma_multiply(0.8));
+        painter.galley(rect.min, galley, theme.ink);
+        taken.push(rect);
     }
 }
 

@@ -310,7 +310,7 @@ fn an_ascent_that_ended_early_is_closed() {
 fn drops_and_their_remarks() {
     let text = "\
 XXAA 57187 99123 70456 04125 99011 27018 09025 00097 26417 09025
-92774 21611 10035 85504 17218 10530 70148 09066 88999 77999
+92774 21611 10035 85504 17218 10530 70148 09456 88999 77999
 31313 09608 81744
 61616 ABC12 0102A NOBODY OB 07
 62626 MBL WND 09530 AEV 20801 TTXX 31313 99012 REL 1230N04560W 174400=
@@ -332,7 +332,7 @@ XXBB 57188 99123 70456 04125 00011 27018 11987 25615 22795 14056
         row(Standard, [925.0, 774.0, 21.6, 20.5, 100.0, 35.0]),
         row(Standard, [850.0, 1504.0, 17.2, 15.4, 105.0, 30.0]),
         // 7 in the date group: winds up to 700 hPa, so this one is missing.
-        row(Standard, [700.0, 3148.0, 9.0, -7.0, NO, NO]),
+        row(Standard, [700.0, 3148.0, 9.4, 3.4, NO, NO]),
         row(Surface, [1011.0, NO, 27.0, 25.2, NO, NO]),
         row(SignificantThermal, [987.0, NO, 25.6, 24.1, NO, NO]),
         row(SignificantThermal, [795.0, NO, 14.0, 8.0, NO, NO]),
@@ -535,6 +535,44 @@ fn miscounted_winds() {
     let sounding = only("PPAA 06121 00612 55385 24012 26021 55340 27030 27535 28040=");
     let pressures: Vec<_> = sounding.levels.iter().map(|level| level.pressure).collect();
     assert_eq!(pressures, [Some(40_000.0), Some(30_000.0), Some(25_000.0)]);
+}
+
+/// Winds whose section number is lost are not read as temperatures; they start anew from below.
+#[test]
+fn winds_without_their_section_number() {
+    let text = "TTDD 2312/ 00451 11842 59764 22465 561// 33201 469// 21212 11900 28526 22700 29030 33510 30015=";
+    let plain = only(text);
+    assert_eq!(plain.levels.len(), 6);
+    for broken in ["21x12 ", ""] {
+        let sounding = only(&text.replace("21212 ", broken));
+        assert_eq!(bare(&sounding.levels), bare(&plain.levels), "{broken}");
+        assert!(said(&sounding).contains("without the section number 21212"));
+    }
+}
+
+/// A ship: call sign, 35.2 S 18.4 E, m/s; and one that hides its call sign.
+#[test]
+fn ships() {
+    let text = "\
+UUAA ABCD7 06121 99352 30184 44258 99015 18240 20508 00127 17640 21010=
+UUBB ABCD7 0612/ 99352 30184 44258 00015 18240 11960 14640 22900 10456=
+UUAA SHIP 06121 99401 30184 47808 99009 12240 25012=
+";
+    let loaded = read("20310630.txt", text);
+    let names: Vec<_> = loaded
+        .soundings
+        .iter()
+        .map(|sounding| sounding.station.text.as_deref())
+        .collect();
+    assert_eq!(names, [Some("ABCD7"), Some("SHIP 40.1S 18.4E")]);
+    let expect = [
+        row(Surface, [1015.0, NO, 18.2, 14.2, 205.0, 8.0]),
+        row(Standard, [1000.0, 127.0, 17.6, 13.6, 210.0, 10.0]),
+        row(Surface, [1015.0, NO, 18.2, 14.2, NO, NO]),
+        row(SignificantThermal, [960.0, NO, 14.6, 10.6, NO, NO]),
+        row(SignificantThermal, [900.0, NO, 10.4, 4.4, NO, NO]),
+    ];
+    compare(&loaded.soundings[0].levels, &expect, 1.0);
 }
 
 /// Winds above the level the indicator names are taken, and said.

@@ -76,11 +76,11 @@ fn place(ascents: &mut Vec<Ascent>, report: Report) {
             .find(|other| other.same_part(&report))
         {
             Some(other) if other.digest == report.digest => {
-                ascent.notes.push(note(
-                    report.line,
-                    format!("{}: repeats the part of line {}", report.name, other.line),
-                    "read once",
-                ));
+                let text = format!("{}: repeats the part of line {}", report.name, other.line);
+                // Said once, however often a circuit sends it.
+                if !ascent.notes.iter().any(|note| note.what == text) {
+                    ascent.notes.push(note(report.line, text, "read once"));
+                }
                 return;
             }
             Some(other) if report.correction => {

@@ -27,6 +27,9 @@ pub(super) struct Context {
     pub unread_top: bool,
 }
 
+/// How unlikely it is that a group is a certain value; `None` when no such value is expected.
+pub(super) type Cost<'a> = Option<&'a dyn Fn(&str) -> u32>;
+
 /// Which values of a level can be told in spite of a group too many.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub(super) struct Certain {
@@ -87,13 +90,7 @@ impl Context {
 
     /// With a group too many, says which values are certain all the same: those that every possible reading agrees on.
     /// `values` are the groups after the level group; the costs are `None` for a value that isn't expected.
-    pub fn certain(
-        &mut self,
-        values: &[Word],
-        name: &str,
-        air: Option<&dyn Fn(&str) -> u32>,
-        wind: Option<&dyn Fn(&str) -> u32>,
-    ) -> Certain {
+    pub fn certain(&mut self, values: &[Word], name: &str, air: Cost, wind: Cost) -> Certain {
         let mut certain = Certain {
             air: true,
             wind: true,
@@ -103,9 +100,7 @@ impl Context {
             return certain;
         }
         let texts: Vec<&str> = values.iter().map(|word| word.text).collect();
-        let fits = |cost: Option<&dyn Fn(&str) -> u32>, text: &str| {
-            cost.is_some_and(|cost| cost(text) == 0)
-        };
+        let fits = |cost: Cost, text: &str| cost.is_some_and(|cost| cost(text) == 0);
         let mut readings: Vec<(Option<&str>, Option<&str>)> = Vec::new();
         for (index, &first) in texts.iter().enumerate() {
             match (air, wind) {
@@ -142,6 +137,23 @@ impl Context {
             );
         }
         certain
+    }
+
+    /// Where a temperature and a wind should stand and only one group does: whether it could be the wind. Then it is
+    /// neither.
+    pub fn could_be_either(&mut self, only: Word, name: &str) -> bool {
+        let either = !groups::is_missing(only.text) && wind_cost(only.text, self.unit) == 0;
+        if either {
+            self.note(
+                only.line,
+                format!(
+                    "one group of two is missing at {name}; group {} could be either and is set aside",
+                    quote(&[only])
+                ),
+                "it reads as a temperature and as a wind",
+            );
+        }
+        either
     }
 
     /// Puts a temperature group into a level.
@@ -262,9 +274,18 @@ pub(super) fn wind_cost(group: &str, unit: Option<f64>) -> u32 {
         Ok(Some(wind)) if wind.speed > 195.0 => 8,
         Ok(Some(wind)) if wind.speed > 130.0 => 3,
         Ok(_) => 0,
+        Err(_) if is_extreme(group) => 9,
         Err(_) if group.starts_with("99") => 2,
         Err(_) => 4,
     }
+}
+
+/// Whether a group opens a tropopause (88) or a maximum wind (77, 66), or says that there is none (999).
+pub(super) fn is_extreme(group: &str) -> bool {
+    let rest = groups::cut(group, 2, 5);
+    group.len() == 5
+        && matches!(groups::cut(group, 0, 2), "88" | "77" | "66")
+        && (groups::number(rest).is_some() || groups::is_missing(rest))
 }
 
 /// Whether a group is the number of a section: 21212, 31313, 41414, 51515 to 59595, 61616 to 69696.

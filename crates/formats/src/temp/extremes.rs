@@ -2,19 +2,11 @@
 
 use super::{
     align::{self, Block, INSIDE, MISSING, Piece, Scheme, align},
-    context::{Aside, Context, air_cost, is_marker, wind_cost},
+    context::{Aside, Context, air_cost, is_extreme, is_marker, wind_cost},
     framing::{Word, quote},
     groups::{self, cut, is_missing, number},
 };
 use dewbound_sounding::{Level, LevelKind};
-
-/// Whether a group opens a tropopause or maximum-wind level, or says that there is none (999).
-pub(super) fn is_extreme(group: &str) -> bool {
-    let rest = cut(group, 2, 5);
-    group.len() == 5
-        && matches!(cut(group, 0, 2), "88" | "77" | "66")
-        && (number(rest).is_some() || is_missing(rest))
-}
 
 /// `4vbvbvava`: the shear 1 km below and above the maximum wind.
 fn is_shear(group: &str) -> bool {
@@ -153,6 +145,12 @@ fn level(
     let word = |offset: usize| words.get(piece.at + offset).copied();
     let air = piece.block.air.and_then(word);
     let wind = piece.block.wind.and_then(word);
+    if let (Some(only), None) = (air, wind)
+        && context.could_be_either(only, &name)
+    {
+        context.levels.push(level);
+        return;
+    }
     if air.is_none() && kind == LevelKind::Tropopause {
         context.note(
             head.line,

@@ -41,7 +41,7 @@ pub(super) fn read(words: &[Word], context: &mut Context) -> Option<Launch> {
         context.aside.push(Aside {
             what: match head.text.as_bytes().first() {
                 Some(b'2') => "winds out of place",
-                Some(b'3') => "sonde and sea temperature",
+                Some(b'3') => "sonde",
                 Some(b'4') => "cloud",
                 Some(b'5') => "regional",
                 _ => "national",

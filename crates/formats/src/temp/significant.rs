@@ -1,8 +1,8 @@
 //! Sections 5 and 6 of parts B and D: levels significant for temperature and humidity, and (21212) for wind.
 
 use super::{
-    align::{Block, INSIDE, MISSING, Piece, Scheme, align},
-    context::{Context, air_cost, is_marker, wind_cost},
+    align::{Block, INSIDE, MISSING, Piece, STRAY, Scheme, align},
+    context::{Context, Cost, air_cost, is_marker, wind_cost},
     framing::{Part, Word, quote},
     groups::{self, cut, is_missing},
 };
@@ -75,11 +75,13 @@ impl Scheme for Significant<'_> {
             Err(_) => 3,
         };
         let value = |offset: usize| {
-            let text = self.text(at + offset);
-            match self.significance {
-                Significance::Thermal => air_cost(text, pressure.ok().flatten()),
-                Significance::Wind => wind_cost(text, self.unit),
-            }
+            let value = self.text(at + offset);
+            let cost = match self.significance {
+                Significance::Thermal => air_cost(value, pressure.ok().flatten()),
+                Significance::Wind => wind_cost(value, self.unit),
+            };
+            // A level group sent twice is no value.
+            cost + if value == text { STRAY } else { 0 }
         };
         let base = level + 3 * skipped(state, slot) as u32;
         let mut offer = |length: usize, value: Option<usize>, cost: u32| {
@@ -192,13 +194,32 @@ fn section(words: &[Word], significance: Significance, context: &mut Context) ->
         regular_end = piece.at + piece.block.length;
         let falls =
             |from: Option<f64>, to: Option<f64>| from.zip(to).is_none_or(|(from, to)| from > to);
-        if !regular && !(falls(below, pressure) && falls(pressure, above)) {
+        let in_order = falls(below, pressure) && falls(pressure, above);
+        if !regular && !in_order {
             let groups = words.get(piece.at..regular_end).unwrap_or(&[]);
             context.note(
                 word.line,
                 format!("{} set aside", quote(groups)),
                 "a group is missing or too many here, and the pressure is out of order: probably no level group",
             );
+            continue;
+        }
+        // Its value could be the next level's group, its own value being the one that is lost.
+        let next_lacks = pieces.get(index + 1).is_some_and(|next| {
+            let lost = scheme.skips(piece.block.next, next.block.slot) && next.at > regular_end;
+            lost || next.block.length == 1
+        });
+        let opens_next = words
+            .get(piece.at + 1)
+            .is_some_and(|value| ordinal(value.text) == Some(piece.block.next));
+        if next_lacks && opens_next {
+            let groups = words.get(piece.at..regular_end).unwrap_or(&[]);
+            context.note(
+                word.line,
+                format!("{} set aside", quote(groups)),
+                "a group is missing here, and the second could open the level that is missing after it",
+            );
+            expected = piece.block.next;
             continue;
         }
         if skipped(expected, piece.block.slot) > 0 {
@@ -282,11 +303,10 @@ fn level(
         Significance::Wind => wind_cost(text, unit),
     };
     let values = words.get(piece.at + 1..piece.at + piece.span);
-    let (air, wind): (Option<&dyn Fn(&str) -> u32>, Option<&dyn Fn(&str) -> u32>) =
-        match significance {
-            Significance::Thermal => (Some(&cost), None),
-            Significance::Wind => (None, Some(&cost)),
-        };
+    let (air, wind): (Cost, Cost) = match significance {
+        Significance::Thermal => (Some(&cost), None),
+        Significance::Wind => (None, Some(&cost)),
+    };
     let certain = context.certain(values.unwrap_or(&[]), &name, air, wind);
     if certain.air && certain.wind {
         match significance {

@@ -2,8 +2,8 @@
 
 use super::{
     align::{Block, INSIDE, MISSING, Piece, STRAY, Scheme, align},
-    context::{Context, air_cost, is_marker, is_surface_pressure, wind_cost},
-    extremes::{self, is_extreme},
+    context::{Context, air_cost, is_extreme, is_marker, is_surface_pressure, wind_cost},
+    extremes,
     framing::{Part, Word, quote},
     groups::{self, cut, is_missing, number},
     heights::{self, Coded},
@@ -177,7 +177,11 @@ impl Scheme for Standard<'_> {
             } else {
                 MISSING + left_out
             };
-            let air = |offset: usize| air_cost(self.text(at + offset), slot.pascals());
+            let air = |offset: usize| {
+                let value = self.text(at + offset);
+                let doubled = value == text && offset == 1;
+                air_cost(value, slot.pascals()) + if doubled { STRAY } else { 0 }
+            };
             let wind = |offset: usize| {
                 let text = self.text(at + offset);
                 let cost = wind_cost(text, self.unit);
@@ -328,28 +332,25 @@ fn level(
     let air = piece.block.air.and_then(word);
     let wind = piece.block.wind.and_then(word);
     match (air, wind) {
-        (Some(only), None) if promise != Promise::LeftOut && piece.span == 2 => {
-            let either = !is_missing(only.text) && wind_cost(only.text, scheme.unit) == 0;
-            if either {
-                context.note(
-                    only.line,
-                    format!(
-                        "one group of two is missing at {name}; group {} could be either and is set aside",
-                        quote(&[only])
-                    ),
-                    "it reads as a temperature and as a wind",
-                );
-            } else {
+        // Above 100 hPa a temperature hardly ever reads as a wind, so there the rule holds even where no wind is due.
+        (Some(only), None)
+            if piece.span == 2 && (promise != Promise::LeftOut || context.part.upper()) =>
+        {
+            if !context.could_be_either(only, &name) {
                 context.air(&mut level, only, &name);
-                context.note(
-                    only.line,
-                    format!("{name} left without wind"),
-                    if promise == Promise::Given {
-                        "its wind group is missing"
-                    } else {
-                        "it has no wind group; the date group's last figure leaves open whether it should"
-                    },
-                );
+                match promise {
+                    Promise::Given => context.note(
+                        only.line,
+                        format!("{name} left without wind"),
+                        "its wind group is missing",
+                    ),
+                    Promise::Open => context.note(
+                        only.line,
+                        format!("{name} left without wind"),
+                        "it has no wind group; the date group's last figure leaves open whether it should",
+                    ),
+                    Promise::LeftOut => {}
+                }
             }
             return level;
         }
@@ -451,7 +452,7 @@ fn heights(words: &[Word], entries: &mut Vec<Entry>, context: &mut Context) {
         .filter_map(|misfit| {
             let level = &entries.get(misfit.index)?.level;
             let text = format!(
-                "{:.0} m at {:.0} hPa ({:.0} m {})",
+                "{:.0} m at {:.0} hPa (the layer below it {:.0} m {})",
                 level.height?,
                 level.pressure? / 100.0,
                 misfit.off.abs(),
@@ -471,5 +472,39 @@ fn heights(words: &[Word], entries: &mut Vec<Entry>, context: &mut Context) {
             format!("heights kept as coded: {}", texts.join(", ")),
             "no reading of the figures fits the thickness that the temperatures from the level below imply",
         );
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// Code table 1734, from memory: levels with wind, perhaps, and without, as hPa.
+    #[test]
+    fn what_the_indicator_promises() {
+        let check = |indicator: char, part: Part, given: &[u16], open: &[u16]| {
+            let slots: &[Slot] = if part.upper() { &UPPER } else { &LOWER };
+            let with = |wanted: Promise| -> Vec<u16> {
+                let fitting = slots
+                    .iter()
+                    .filter(|slot| promise(indicator, slot, part) == wanted);
+                fitting.filter_map(|slot| slot.hectopascals).collect()
+            };
+            assert_eq!(with(Promise::Given), given, "{indicator} {part:?}");
+            assert_eq!(with(Promise::Open), open, "{indicator} {part:?}");
+        };
+        check('5', Part::A, &[1000, 925, 850, 700, 500], &[]);
+        check('8', Part::A, &[1000, 925, 850], &[]);
+        check('0', Part::A, &[1000], &[]);
+        check(
+            '2',
+            Part::A,
+            &[1000, 925, 850, 700, 500, 400, 300, 250],
+            &[200],
+        );
+        check('/', Part::A, &[], &[]);
+        check('3', Part::C, &[70, 50, 30], &[]);
+        check('1', Part::C, &[70, 50, 30, 20, 10], &[]);
+        check('x', Part::C, &[], &[70, 50, 30, 20, 10]);
     }
 }

@@ -340,7 +340,7 @@ impl Desk {
         }
         self.asks = asks;
         self.response_seen = response_seen;
-        self.view.timing.painted(begun.elapsed());
+        self.view.timing.painted(begun.elapsed(), Instant::now());
         // The age of the data moves on by itself.
         ui.ctx().request_repaint_after(Duration::from_secs(60));
     }

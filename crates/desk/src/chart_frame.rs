@@ -12,7 +12,6 @@ use dewbound_session::thermo::{self, Air, MIXED_DEPTH, MOST_UNSTABLE_DEPTH, Meth
 use dewbound_session::trust::Grade;
 use dewbound_session::{CandidateKind, Doubt, Item, ItemId, SurfaceQuantity, wording};
 use eframe::egui::{Context, Id, Pos2, Rect};
-use std::collections::HashMap;
 use std::sync::Arc;
 
 /// Identity of the chart in the window.
@@ -61,7 +60,7 @@ impl ChartFrame {
 #[derive(Debug, Default)]
 pub(crate) struct Caches {
     background: Option<(Geometry, Arc<Scene>)>,
-    heights: HashMap<ItemId, HeightScale>,
+    heights: Option<(ItemId, HeightScale)>,
     band: Option<Band>,
 }
 
@@ -84,6 +83,21 @@ impl Caches {
         let scene = Arc::new(chart::background(geometry));
         self.background = Some((*geometry, Arc::clone(&scene)));
         scene
+    }
+
+    /// Heights of the sounding as received.
+    fn heights(&mut self, item: &Item) -> &HeightScale {
+        if self
+            .heights
+            .as_ref()
+            .is_some_and(|(of, _)| *of != item.id())
+        {
+            self.heights = None;
+        }
+        let (_, heights) = self
+            .heights
+            .get_or_insert_with(|| (item.id(), HeightScale::of(item.received())));
+        heights
     }
 
     /// Starts of the parcel at both ends of the interval; they stay while only the dew point is dragged.
@@ -238,12 +252,9 @@ pub(crate) fn prepare(
         .copied()
         .unwrap_or_else(|| chart::View::fit(item.received()));
     let geometry = Geometry::new(frame, window);
-    let heights = caches
-        .heights
-        .entry(item.id())
-        .or_insert_with(|| HeightScale::of(item.received()))
-        .clone();
+    let background = caches.background(&geometry);
     let band = caches.band(item, view.parcel);
+    let heights = caches.heights(item);
     let pointer = ctx
         .read_response(chart_id())
         .filter(|_| before.is_some_and(|before| before.item == item.id()))
@@ -284,7 +295,7 @@ pub(crate) fn prepare(
             }),
         brackets: &brackets,
         surface: marks.as_ref(),
-        heights: Some(&heights),
+        heights: Some(heights),
         cursor,
         southern: item
             .sounding()
@@ -300,7 +311,7 @@ pub(crate) fn prepare(
         item: item.id(),
         rect,
         geometry,
-        background: caches.background(&geometry),
+        background,
         foreground: foreground.scene,
         touch: foreground.touch,
         readout: foreground.readout,

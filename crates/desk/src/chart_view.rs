@@ -9,11 +9,12 @@ use crate::quantity::parcel_name;
 use crate::theme::bold;
 use crate::units;
 use crate::view::Gesture;
-use dewbound_session::chart::{self, Ink, Readout};
+use dewbound_session::chart::{Ink, Readout};
+use dewbound_session::sounding::Reach;
 use dewbound_session::{Item, wording};
 use eframe::egui::{
-    Align2, CursorIcon, FontId, Id, Label, Rect, RichText, Role, Sense, Stroke, StrokeKind, Ui,
-    WidgetInfo, pos2, text::LayoutJob, vec2,
+    Align, Align2, Color32, CursorIcon, FontId, Id, Label, Layout, Rect, RichText, Role, Sense,
+    Stroke, StrokeKind, Ui, UiBuilder, WidgetInfo, pos2, vec2,
 };
 
 /// The one line of help, until the first drag.
@@ -72,7 +73,8 @@ pub(crate) fn chart_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
     handle::handles_ui(ui, paint, item, asks);
     brackets_ui(ui, paint, item, frame, asks);
     areas_ui(ui, paint, item, frame);
-    beside_handle(ui, paint, item, frame);
+    reach_ui(ui, item, frame);
+    typing_ui(ui, paint, frame);
     hint_ui(ui, paint, frame);
 }
 
@@ -158,26 +160,55 @@ fn areas_ui(ui: &Ui, paint: &Paint, item: &Item, frame: &ChartFrame) {
     }
 }
 
-/// The reach of surface edits and the number being typed, beside the dew-point handle.
-fn beside_handle(ui: &Ui, paint: &Paint, item: &Item, frame: &ChartFrame) {
+/// How far surface edits reach, below the handles: nearer to them it would cover the curves.
+fn reach_ui(ui: &mut Ui, item: &Item, frame: &ChartFrame) {
+    let plot = to_rect(frame.geometry.plot());
+    let applied = &item.results().working.reach;
+    let full = format!("edits reach: {}", applied.why);
+    let word = match applied.reach {
+        Reach::Level => "level",
+        Reach::Mixed => "mixed",
+        Reach::Tapered => "tapered",
+    };
+    let short = match applied.mixed_top {
+        Some(top) if applied.reach != Reach::Level => {
+            format!(
+                "edits reach: {word}, to {} hPa",
+                wording::number(top.hpa(), 0)
+            )
+        }
+        _ => format!("edits reach: {word}"),
+    };
+    // Right of the axis title, in its row.
+    let room = Rect::from_min_max(
+        pos2(plot.center().x + 56.0, frame.rect.bottom() - 17.0),
+        frame.rect.right_bottom() - vec2(4.0, 1.0),
+    );
+    let width = ui
+        .painter()
+        .layout_no_wrap(
+            full.clone(),
+            FontId::proportional(11.0),
+            Color32::PLACEHOLDER,
+        )
+        .size()
+        .x;
+    let shown = if width <= room.width() { &full } else { &short };
+    ui.scope_builder(UiBuilder::new().id_salt("reach").max_rect(room), |ui| {
+        ui.with_layout(Layout::right_to_left(Align::Center), |ui| {
+            ui.add(Label::new(RichText::new(shown).size(11.0).weak()).truncate())
+                .on_hover_text(format!(
+                    "{full}. The Sounding menu changes how far an edit of the surface reaches."
+                ));
+        });
+    });
+}
+
+/// The number being typed, beside its handle.
+fn typing_ui(ui: &Ui, paint: &Paint, frame: &ChartFrame) {
     let painter = ui.painter().with_clip_rect(frame.rect);
     let theme = paint.theme;
     let plot = to_rect(frame.geometry.plot());
-    if frame.touch.handle(chart::Handle::Dewpoint).is_some() {
-        // In the row of the axis title, right of it: nearer to the handle it would cover the curves.
-        let right = frame.rect.right_bottom() + vec2(-4.0, -3.0);
-        let mut job = LayoutJob::simple_singleline(
-            format!("edits reach: {}", item.results().working.reach.why),
-            FontId::proportional(11.0),
-            theme.quiet,
-        );
-        job.wrap.max_width = right.x - plot.center().x - 56.0;
-        job.wrap.max_rows = 1;
-        job.wrap.break_anywhere = true;
-        let galley = painter.layout_job(job);
-        let rect = Align2::RIGHT_BOTTOM.anchor_size(right, galley.size());
-        painter.galley(rect.min, galley, theme.quiet);
-    }
     if let Some(typing) = &paint.view.typing
         && let Some(place) = frame.touch.handle(handle::handle_of(typing.quantity))
     {
@@ -220,7 +251,7 @@ fn hint_ui(ui: &mut Ui, paint: &Paint, frame: &ChartFrame) {
     let rect = Rect::from_min_max(pos2(left, frame.rect.top()), pos2(right, plot.top() - 1.0));
     ui.painter().rect_filled(rect, 3.0, paint.theme.accent);
     ui.scope_builder(
-        eframe::egui::UiBuilder::new()
+        UiBuilder::new()
             .id_salt("hint")
             .max_rect(rect.shrink2(vec2(8.0, 1.0))),
         |ui| {

@@ -53,6 +53,7 @@ fn keys_ui(ui: &mut Ui, asks: &mut Asks) {
             Grid::new(title)
                 .num_columns(2)
                 .min_col_width(130.0)
+                .min_row_height(16.0)
                 .spacing(vec2(12.0, 2.0))
                 .show(ui, |ui| {
                     for (keys, what) in rows {

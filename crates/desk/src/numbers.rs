@@ -297,6 +297,9 @@ fn explain_hover(response: Response, quantity: &Quantity, value: &Cell, parcel: 
         ),
         Cell::Value(_) => None,
     };
+    response.ctx.accesskit_node_builder(response.id, |node| {
+        node.set_description(format!("{} of the {}", quantity.name, parcel_name(parcel)));
+    });
     response.on_hover_ui(|ui| {
         ui.label(bold(format!("{}, {}", quantity.name, parcel_name(parcel))));
         if let Some(reason) = &reason {

@@ -15,8 +15,8 @@ use eframe::egui::{
     Sense, Stroke, StrokeKind, Ui, UiBuilder, Vec2b, WidgetInfo, pos2, vec2,
 };
 use egui_plot::{
-    Axis, AxisHints, HLine, Line, LineStyle, MarkerShape, Plot, PlotPoints, PlotTransform, PlotUi,
-    Points, Span, VLine,
+    Axis, AxisHints, GridMark, HLine, Line, LineStyle, MarkerShape, Plot, PlotPoints,
+    PlotTransform, PlotUi, Points, Span, VLine,
 };
 
 /// Identity of the response in the window.
@@ -62,9 +62,14 @@ pub(crate) fn sentence_ui(ui: &mut Ui, paint: &Paint, _asks: &Asks) {
 /// As a sentence begins.
 fn capitalised(text: &str) -> String {
     let mut chars = text.chars();
-    chars.next().map_or_else(String::new, |first| {
-        first.to_uppercase().chain(chars).collect()
-    })
+    chars
+        .next()
+        .map_or_else(String::new, |first| {
+            first.to_uppercase().chain(chars).collect::<String>()
+        })
+        // A unit stays with its number.
+        .replace(" J/kg", "\u{a0}J/kg")
+        .replace(" hPa", "\u{a0}hPa")
 }
 
 /// The curve; gives back where it lies.
@@ -87,7 +92,10 @@ pub(crate) fn response_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) -> Option
     let theme = paint.theme;
     let working = item.working_surface(SurfaceQuantity::Dewpoint);
     let (low, high) = span(doubt, unit);
-    let most = most_cape(doubt);
+    // Room above the curves for the legend.
+    let inner = f64::from((rect.height() - 24.0).max(60.0));
+    let most = most_cape(doubt) * inner / (inner - 24.0);
+    let lines = inner / 26.0;
     let mut child = ui.new_child(UiBuilder::new().max_rect(rect));
     let shown = Plot::new(("response", item.id()))
         .width(rect.width())
@@ -105,6 +113,7 @@ pub(crate) fn response_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) -> Option
         .default_x_bounds(low, high)
         .default_y_bounds(0.0, most)
         .grid_color(theme.line)
+        .y_grid_spacer(move |_| marks(most, lines))
         .label_formatter(|_| None)
         .custom_x_axes(vec![
             AxisHints::new_x()
@@ -123,7 +132,7 @@ pub(crate) fn response_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) -> Option
             AxisHints::new_y()
                 .formatter(|mark, _| wording::number(mark.value, 0))
                 .min_thickness(44.0)
-                .label_spacing(16.0..=20.0)
+                .label_spacing(8.0..=10.0)
                 .tick_label_font(FontId::proportional(11.0))
                 .tick_label_color(theme.ink),
         ])
@@ -143,6 +152,24 @@ fn decimals(step: f64) -> usize {
     usize::from(step < 0.999)
 }
 
+/// Lines at round values, at most so many of them between 0 and `most`.
+fn marks(most: f64, lines: f64) -> Vec<GridMark> {
+    let least = most / lines.max(2.0);
+    let power = 10_f64.powf(least.log10().floor());
+    let step_size = [1.0, 2.0, 5.0, 10.0]
+        .into_iter()
+        .map(|nice| nice * power)
+        .find(|&step| step >= least)
+        .unwrap_or(10.0 * power);
+    let count = (most / step_size) as u32;
+    (0..=count)
+        .map(|index| GridMark {
+            value: f64::from(index) * step_size,
+            step_size,
+        })
+        .collect()
+}
+
 fn span(doubt: &Doubt, unit: dewbound_session::chart::TemperatureUnit) -> (f64, f64) {
     let at = |point: Option<&dewbound_session::ResponsePoint>| {
         point.map(|point| units::shown(point.dewpoint, unit))
@@ -159,7 +186,7 @@ fn most_cape(doubt: &Doubt) -> f64 {
         .flat_map(|point| point.parcels)
         .filter_map(|parcel| parcel.cape)
         .fold(0.0, f64::max);
-    (most * 1.12).max(100.0)
+    most.max(100.0)
 }
 
 fn parcel_colour(theme: &Theme, parcel: Parcel) -> Color32 {
@@ -251,30 +278,8 @@ fn words(ui: &Ui, paint: &Paint, item: &Item, seen: &Seen) {
     let frame = *seen.transform.frame();
     let painter = ui.painter().with_clip_rect(frame);
     let doubt = &item.results().doubt;
-    painter.text(
-        frame.left_top() + vec2(6.0, 4.0),
-        Align2::LEFT_TOP,
-        "CAPE, J/kg, against surface dew point",
-        FontId::proportional(11.0),
-        theme.quiet,
-    );
-    legend(&painter, theme, frame);
-    let mut taken = vec![Rect::from_min_size(frame.min, vec2(300.0, 36.0))];
-    for candidate in &doubt.candidates {
-        let (Some(dewpoint), [Some(cape), ..]) = (candidate.dewpoint, candidate.cape) else {
-            continue;
-        };
-        let word = candidate_word(candidate.kind);
-        let at = pos2(
-            seen.x_of(dewpoint),
-            seen.transform.position_from_point_y(cape),
-        );
-        let galley = painter.layout_no_wrap(word.to_owned(), FontId::proportional(11.0), theme.ink);
-        let rect = clear_place(at, galley.size(), frame, &taken);
-        painter.rect_filled(rect.expand(1.0), 1.0, theme.card.gamma_multiply(0.8));
-        painter.galley(rect.min, galley, theme.ink);
-        taken.push(rect);
-    }
+    let legend = legend(&painter, theme, frame);
+    let mut taken = vec![legend];
     if let Some(working) = item.working_surface(SurfaceQuantity::Dewpoint) {
         let x = seen.x_of(working);
         let mut text = units::temperature(working, paint.view.units.temperature);
@@ -300,6 +305,22 @@ fn words(ui: &Ui, paint: &Paint, item: &Item, seen: &Seen) {
         let rect = align.1.anchor_size(top + align.0, galley.size());
         painter.rect_filled(rect.expand(1.0), 1.0, theme.card.gamma_multiply(0.8));
         painter.galley(rect.min, galley, theme.ink);
+        taken.push(rect);
+    }
+    for candidate in &doubt.candidates {
+        let (Some(dewpoint), [Some(cape), ..]) = (candidate.dewpoint, candidate.cape) else {
+            continue;
+        };
+        let word = candidate_word(candidate.kind);
+        let at = pos2(
+            seen.x_of(dewpoint),
+            seen.transform.position_from_point_y(cape),
+        );
+        let galley = painter.layout_no_wrap(word.to_owned(), FontId::proportional(11.0), theme.ink);
+        let rect = clear_place(at, galley.size(), frame, &taken);
+        painter.rect_filled(rect.expand(1.0), 1.0, theme.card.gamma_multiply(0.8));
+        painter.galley(rect.min, galley, theme.ink);
+        taken.push(rect);
     }
 }
 
@@ -319,9 +340,19 @@ fn clear_place(at: Pos2, size: eframe::egui::Vec2, frame: Rect, taken: &[Rect]) 
     all.iter().find(clear).copied().unwrap_or(first)
 }
 
-fn legend(painter: &eframe::egui::Painter, theme: &Theme, frame: Rect) {
-    let mut x = frame.left() + 8.0;
-    let y = frame.top() + 26.0;
+/// What the lines are, in one row; gives back where it stands.
+fn legend(painter: &eframe::egui::Painter, theme: &Theme, frame: Rect) -> Rect {
+    let y = frame.top() + 11.0;
+    let write = |x: f32, text: &str, ink| {
+        painter.text(
+            pos2(x, y),
+            Align2::LEFT_CENTER,
+            text,
+            FontId::proportional(11.0),
+            ink,
+        )
+    };
+    let mut x = write(frame.left() + 6.0, "CAPE, J/kg", theme.quiet).right() + 12.0;
     for parcel in Parcel::ALL {
         let colour = parcel_colour(theme, parcel);
         let (_, width) = parcel_style(parcel);
@@ -333,15 +364,9 @@ fn legend(painter: &eframe::egui::Painter, theme: &Theme, frame: Rect) {
             Parcel::MostUnstable => eframe::egui::Shape::dotted_line(&ends, colour, 4.0, 1.4),
         };
         painter.extend(shapes);
-        let text = painter.text(
-            pos2(x + 26.0, y),
-            Align2::LEFT_CENTER,
-            parcel_heading(parcel),
-            FontId::proportional(11.0),
-            theme.ink,
-        );
-        x = text.right() + 12.0;
+        x = write(x + 26.0, parcel_heading(parcel), theme.ink).right() + 12.0;
     }
+    Rect::from_min_max(frame.min, pos2(x, y + 9.0))
 }
 
 /// The plot as one thing that can be dragged, has the keyboard, and can be read out.
@@ -389,6 +414,17 @@ mod tests {
         }
         let corner = clear_place(pos2(2.0, 2.0), size, frame, &[]);
         assert!(frame.contains_rect(corner), "{corner:?}");
+    }
+
+    #[test]
+    fn lines_stand_at_round_values() {
+        let check = |most, lines, expect: &[f64]| {
+            let values: Vec<f64> = marks(most, lines).iter().map(|mark| mark.value).collect();
+            assert_eq!(values, expect);
+        };
+        check(5900.0, 3.0, &[0.0, 2000.0, 4000.0]);
+        check(5900.0, 7.0, &[0.0, 1000.0, 2000.0, 3000.0, 4000.0, 5000.0]);
+        check(120.0, 3.0, &[0.0, 50.0, 100.0]);
     }
 
     #[test]

@@ -148,7 +148,9 @@ impl Theme {
             ThemeName::Dark => egui::Theme::Dark,
         };
         ctx.set_theme(theme);
-        ctx.set_style_of(theme, self.style());
+        // For both, so that nothing outside can bring in colours that are not ours.
+        ctx.set_style_of(egui::Theme::Light, self.style());
+        ctx.set_style_of(egui::Theme::Dark, self.style());
     }
 
     fn style(&self) -> Style {

@@ -5,7 +5,7 @@ use crate::ask::{Ask, Asks};
 use crate::theme::bold;
 use crate::view::DialogBox;
 use dewbound_session::{Item, age, wording};
-use eframe::egui::{Align, Label, Layout, RichText, Ui, UiBuilder, vec2};
+use eframe::egui::{Align, Color32, FontId, Label, Layout, RichText, Ui, UiBuilder, vec2};
 use jiff::Timestamp;
 use jiff::tz::TimeZone;
 
@@ -43,11 +43,39 @@ pub(crate) fn title_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
                 ui.vertical(|ui| {
                     ui.spacing_mut().item_spacing.y = 0.0;
                     ui.add(Label::new(bold(station(item)).size(19.0)).truncate());
-                    ui.add(Label::new(RichText::new(times(item, paint.now)).size(14.0)).truncate());
+                    let full = times(item, paint.now);
+                    let short = short_times(item, paint.now);
+                    let text = fitting(
+                        ui,
+                        [(full.clone(), 14.0), (short.clone(), 14.0), (short, 12.0)],
+                    );
+                    ui.add(Label::new(text).truncate()).on_hover_text(full);
                 });
             });
         }
     });
+}
+
+/// The first of these that fits, else the last.
+fn fitting<const N: usize>(ui: &Ui, choices: [(String, f32); N]) -> RichText {
+    let room = ui.available_width();
+    let fits = |text: &str, size: f32| {
+        let galley = ui.painter().layout_no_wrap(
+            text.to_owned(),
+            FontId::proportional(size),
+            Color32::PLACEHOLDER,
+        );
+        galley.size().x <= room
+    };
+    let mut chosen = RichText::default();
+    for (text, size) in choices {
+        let fit = fits(&text, size);
+        chosen = RichText::new(text).size(size);
+        if fit {
+            break;
+        }
+    }
+    chosen
 }
 
 /// With the stamp of invented data.

@@ -61,8 +61,7 @@ fn whatever_was_said_to_be_kept_is_in_the_ledger_after_a_kill() {
         let kept = kept_until_killed(folder.path(), after, round * 20_000);
         assert!(kept.len() >= after, "round {round}: {kept:?}");
 
-        let session = Session::new(config(folder.path()));
-        let mut session = session;
+        let mut session = Session::new(config(folder.path()));
         session.wait();
         let decided: BTreeSet<String> = session
             .decisions(false)

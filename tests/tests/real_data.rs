@@ -286,7 +286,19 @@ fn check(place: &str, analysed: &Analysed) -> bool {
         !table.contains("NaN") && !table.contains("inf "),
         "{place}: {table}"
     );
-    results.numbers.problem.is_none()
+    // There are numbers when a level has both, and another above it a temperature.
+    let levels = &analysed.sounding.levels;
+    let complete = levels
+        .iter()
+        .any(|level| level.temperature.is_some() && level.dewpoint.is_some());
+    let has_numbers = results.numbers.problem.is_none();
+    assert!(complete || !has_numbers, "{place}: numbers out of nothing");
+    assert!(
+        !complete || has_numbers,
+        "{place}: {:?}",
+        results.numbers.problem
+    );
+    has_numbers
 }
 
 #[test]
@@ -317,5 +329,6 @@ fn every_real_file_loads_and_every_number_is_one() {
         }
     }
     println!("{files} files, {soundings} soundings, {with_numbers} with numbers");
-    assert!(files >= 30 && soundings > 60 && with_numbers * 10 > soundings * 8);
+    // One of the station files holds winds only, 130 ascents of them.
+    assert!(files >= 37 && soundings >= 170 && with_numbers >= 47);
 }

@@ -40,12 +40,14 @@ pub fn run(options: &Weigh, output: &mut Output) -> Result<bool> {
             for note in &file.notes {
                 say(&format!("{name}: {}", wording::note(note)));
             }
-            for analysed in &file.soundings {
+            // One after the other, so that a reader of a long file gets each as soon as it is there.
+            for sounding in file.soundings {
+                let analysed = Analysed::of(sounding, &office.thresholds);
                 if !options.json && !first {
                     output.write("\n")?;
                 }
                 first = false;
-                output.write(&weighed(analysed, options)?)?;
+                output.write(&weighed(&analysed, options)?)?;
             }
         }
     }

@@ -1,2 +1,8 @@
-//! The desk.
-fn main() {}
+//! Dewbound: a desk for judging soundings.
+
+use clap::Parser;
+use std::process::ExitCode;
+
+fn main() -> ExitCode {
+    dewbound_desk::run(dewbound_desk::Args::parse())
+}

@@ -28,7 +28,9 @@ impl Delimiter {
     /// Splits a line, calling `each` with index and field. Quotes are removed where the line has any.
     pub fn split<'a>(self, line: &'a str, mut each: impl FnMut(usize, Cow<'a, str>)) {
         if line.contains('"') {
-            self.split_quoted(line, &mut each);
+            for (index, field) in self.quoted_fields(line).iter().enumerate() {
+                each(index, Cow::Owned(field.to_owned()));
+            }
         } else {
             for (index, field) in line.split(self.char()).enumerate() {
                 each(index, Cow::Borrowed(field));
@@ -36,22 +38,18 @@ impl Delimiter {
         }
     }
 
-    #[cold]
-    fn split_quoted<'a>(self, line: &'a str, each: &mut impl FnMut(usize, Cow<'a, str>)) {
-        let mut reader = csv::ReaderBuilder::new()
-            .has_headers(false)
-            .flexible(true)
-            .delimiter(self.0)
-            // A stray carriage return inside a line is part of a field.
-            .terminator(csv::Terminator::Any(b'\n'))
-            .buffer_capacity(line.len() + 1)
-            .from_reader(line.as_bytes());
+    /// The fields of a line with quotes.
+    fn quoted_fields(self, line: &str) -> csv::StringRecord {
         let mut record = csv::StringRecord::new();
-        if matches!(reader.read_record(&mut record), Ok(true)) {
-            for (index, field) in record.iter().enumerate() {
-                each(index, Cow::Owned(field.to_owned()));
-            }
-        }
+        // Reading from memory can't fail, and a line of a `str` is UTF-8: there is always one record.
+        let _ = csv::ReaderBuilder::new()
+            .delimiter(self.0)
+            .has_headers(false)
+            // A stray carriage return is part of its field.
+            .terminator(csv::Terminator::Any(b'\n'))
+            .from_reader(line.as_bytes())
+            .read_record(&mut record);
+        record
     }
 
     /// All fields of a line.

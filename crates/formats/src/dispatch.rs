@@ -7,8 +7,8 @@ use dewbound_sounding::{Note, Place};
 use jiff::Timestamp;
 use std::path::Path;
 
-/// Members of a container that are named one by one when they hold no sounding.
-const NAMED: usize = 10;
+/// Notes, or members of a container that hold no sounding, that are told one by one.
+const NAMED: usize = 8;
 
 /// Reads bytes by content (the name only helps with dates and in messages).
 ///
@@ -25,8 +25,12 @@ pub fn read(name: &str, bytes: &[u8], options: &ReadOptions) -> Result<Loaded, R
         let what = match loaded.notes.as_slice() {
             [] => "no sounding in it".into(),
             notes => {
-                let words: Vec<_> = notes.iter().map(said).collect();
-                format!("no sounding in it: {}", words.join("; "))
+                let words: Vec<_> = notes.iter().take(NAMED).map(said).collect();
+                let more = match notes.len().saturating_sub(NAMED) {
+                    0 => String::new(),
+                    more => format!("; and {more} more notes"),
+                };
+                format!("no sounding in it: {}{more}", words.join("; "))
             }
         };
         return Err(ReadError::NothingUsable {

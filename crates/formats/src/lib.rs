@@ -7,6 +7,42 @@
 //! members) are opened on the way. [`StationTable`] holds what an office knows about its stations and fills in what a
 //! message leaves out.
 //!
+//! # Columns with units
+//!
+//! A table separated by comma, tab or semicolon (then also with decimal commas), columns in any order, under a header
+//! whose names carry their units. `Pressure (hPa)` and `pressure_hpa` are one name.
+//!
+//! | quantity | names |
+//! |---|---|
+//! | pressure (needed) | `pressure_hpa`, `pressure_pa` |
+//! | temperature | `temperature_c`, `temperature_k`, `temperature_f` |
+//! | dew point | `dewpoint_c`, `dewpoint_k`, `dewpoint_f` |
+//! | or relative humidity over water | `rh_pct`, `rh_1` |
+//! | or mixing ratio | `mixing_ratio_gkg`, `mixing_ratio_kgkg` |
+//! | height above sea level | `height_m`, `height_ft` |
+//! | or above ground | `height_agl_m`, `height_agl_ft` |
+//! | wind, both of | `wind_dir_deg` and one of `wind_speed_ms`, `wind_speed_kt`, `wind_speed_kmh` |
+//! | time since launch | `time_s` |
+//! | or of the clock | `time_utc` |
+//! | position of the sonde | `lat`, `lon` |
+//!
+//! Where dew point and relative humidity both stand, each is kept as written, and relative humidity counts as what the
+//! instrument reported. Missing values are empty, `NaN`, `NA`, `/`, or a row of nines beyond what the quantity can be
+//! (`-999`, `-9999.0`, `99999`). Lines that begin with `#` say the rest, one `key: value` each:
+//!
+//! | line | meaning |
+//! |---|---|
+//! | `# station: Upper Vale` | name for people |
+//! | `# wmo: 01234`, `# wigos:`, `# icao:`, `# id:` | identifiers |
+//! | `# time: 2031-05-17T17:31:05Z` | launch |
+//! | `# nominal: 2031-05-17T18:00Z` | the hour it is filed under |
+//! | `# position: 47.5, 8.25, 430` | latitude, longitude, elevation in metres |
+//! | `# heights: above ground` | `height_m` is not above sea level |
+//! | `# demo: true` | invented data |
+//!
+//! Rows before the launch and after the balloon burst are another profile in the same table; they are taken out, with
+//! a note. Times are UTC.
+//!
 //! Deliberately absent: any opinion on whether a value is to be believed. An impossible number that is spelled
 //! properly is handed on as received; only the spellings of "missing" become absent here.
 //!
@@ -48,6 +84,7 @@ mod when;
 use dewbound_sounding::{Note, Sounding};
 use jiff::{Timestamp, civil::Date};
 
+pub use columns::names::understood as column_names;
 pub use dispatch::{read, read_path};
 pub use error::ReadError;
 pub use stations::{StationTable, StationTableError};

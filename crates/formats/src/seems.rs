@@ -94,7 +94,8 @@ pub(crate) fn seems(bytes: &[u8]) -> Option<Seems> {
     })
 }
 
-/// Whether this is no text: zero bytes (outside UTF-16) or many control characters. Bulletins from the wire carry a few.
+/// Whether this is no text: one byte in 25 or more is a control character (in random bytes, one in twelve). What frames
+/// bulletins on the wire (start and end of heading and text, record separator) doesn't count, nor does a stray zero.
 fn is_binary(bytes: &[u8]) -> bool {
     if bytes.starts_with(b"\xFF\xFE") || bytes.starts_with(b"\xFE\xFF") {
         return false;
@@ -102,9 +103,9 @@ fn is_binary(bytes: &[u8]) -> bool {
     let looked_at = bytes.get(..65_536).unwrap_or(bytes);
     let control = looked_at
         .iter()
-        .filter(|byte| matches!(byte, 0x00..=0x08 | 0x0E..=0x1F | 0x7F))
+        .filter(|byte| matches!(byte, 0x00 | 0x05..=0x08 | 0x0E..=0x1D | 0x1F | 0x7F))
         .count();
-    looked_at.contains(&0) || control * 10 > looked_at.len()
+    control * 25 > looked_at.len()
 }
 
 #[cfg(test)]
@@ -120,9 +121,10 @@ mod tests {
     fn kinds() {
         check(b"BUFR\x00\x01\x00\x04rest\0", Some("BUFR"));
         check(
-            b"\x01\r\r\n123\r\r\nIUSZ01 ZZZZ 171800\r\r\nBUFR\x00\x01\x00\x04\0",
+            b"\x01\r\r\n123\r\r\nIUSZ01 ZZZZ 171800\r\r\nBUFR\x00\x01\x00\x04\0\0\0\0",
             Some("BUFR"),
         );
+        check(b"TTAA 67181 01234 99965 27415 20010 00123 27015\0 =", None);
         check(b"GRIB\x00\x00\x00\x02", Some("GRIB"));
         check(b"CDF\x01\0\0", Some("NetCDF"));
         check(b"\x89HDF\r\n\x1a\n", Some("NetCDF or HDF5"));

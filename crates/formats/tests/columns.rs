@@ -284,15 +284,15 @@ fn heights_above_ground_wait_for_the_station_table() {
 
 #[test]
 fn the_sondes_own_position_outweighs_a_far_one() {
-    let rows = "pressure_hpa,temperature_c,lat,lon\n1000,20,,\n990,19,0,0\n985,19,6.9,79.87\n980,18,6.91,79.88\n";
-    let near = one(&format!("# position: 6.905, 79.872, 16\n{rows}"));
-    assert_eq!(near.station.position.unwrap().longitude, 79.872);
+    let rows = "pressure_hpa,temperature_c,lat,lon\n1000,20,,\n990,19,0,0\n985,19,7.1,60.25\n980,18,7.11,60.26\n";
+    let near = one(&format!("# position: 7.105, 60.252, 16\n{rows}"));
+    assert_eq!(near.station.position.unwrap().longitude, 60.252);
     assert_eq!(near.notes, []);
-    let far = one(&format!("# position: 6.905, 88.2, 16\n{rows}"));
-    assert_eq!(far.station.position.unwrap().longitude, 79.87);
+    let far = one(&format!("# position: 7.105, 68.9, 16\n{rows}"));
+    assert_eq!(far.station.position.unwrap().longitude, 60.25);
     assert_eq!(far.notes.len(), 1);
     let none = one(rows);
-    assert_eq!(none.station.position.unwrap().longitude, 79.87);
+    assert_eq!(none.station.position.unwrap().longitude, 60.25);
     assert_eq!(none.notes.len(), 1);
 }
 

@@ -4,6 +4,8 @@
 
 #![allow(clippy::unwrap_used, clippy::expect_used)]
 
+mod support;
+
 use approx::assert_relative_eq;
 use dewbound_formats::{Loaded, ReadOptions, read_path};
 use dewbound_sounding::{HumidityReported, LevelKind, Note, Profile, Sounding};
@@ -11,13 +13,14 @@ use std::io::Write;
 use std::path::{Path, PathBuf};
 
 /// Checks below, for the count of what is skipped.
-const CHECKS: [fn(&Path); 6] = [
+const CHECKS: [fn(&Path); 7] = [
     every_table_loads,
     every_station_file_loads,
     fine_tables,
     whole_flights,
     drop_and_heights_above_ground,
     station_files,
+    damaged_files,
 ];
 
 #[test]
@@ -245,4 +248,15 @@ fn station_files(folder: &Path) {
     assert_eq!(loaded.soundings[1].times.nominal, None);
     assert!(loaded.soundings[1].times.assumed);
     assert!(loaded.notes[0].what.contains("repeats the one at line 168"));
+}
+
+fn damaged_files(folder: &Path) {
+    for (name, seed) in [
+        ("csv/GTS_BUFR_HANZHONG_201910251115_62_SONDE.csv", 7),
+        ("igra/SWM00002527_observation_multi.txt", 8),
+        ("igra/ASM00094703-data.txt.zip", 9),
+    ] {
+        let bytes = std::fs::read(folder.join(name)).unwrap();
+        support::damage(&bytes, seed, 50);
+    }
 }

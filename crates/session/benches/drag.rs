@@ -2,7 +2,8 @@
 //!
 //! `cargo bench -p dewbound-session --bench drag` moves a surface value 500 times on a profile of 6,000 levels and prints
 //! the median and the 99th percentile of the computing time of a step, in milliseconds of this machine and as a ratio to the
-//! yardstick: `f64::exp` mapped over a buffer of 6,000 (median of 31 runs). The ratio is what may be compared between machines.
+//! yardstick: `f64::exp` mapped over a buffer of the same length (median of 31 runs). The ratio is what may be compared
+//! between machines. A file named after `--` is used instead of the invented profile.
 #![allow(clippy::unwrap_used, clippy::expect_used)]
 
 use dewbound_session::sounding::thermo::{
@@ -19,22 +20,30 @@ const STEPS: usize = 500;
 fn main() {
     let folder = tempfile::tempdir().unwrap();
     let mut session = Session::new(Config::within(folder.path()));
-    session.open_bytes("invented.csv".to_owned(), profile().into_bytes());
+    // cargo adds `--bench` of its own.
+    match std::env::args()
+        .skip(1)
+        .find(|argument| !argument.starts_with("--"))
+    {
+        Some(file) => session.open_paths(vec![file.into()]),
+        None => session.open_bytes("invented.csv".to_owned(), profile().into_bytes()),
+    }
     session.wait();
-    let item = session.current().expect("the invented profile can be read");
+    let item = session.current().expect("a sounding that can be read");
+    let levels = item.received().environment_rows().len();
     let repairs: usize = item
         .findings()
         .iter()
         .map(|finding| finding.repairs.len())
         .sum();
     println!(
-        "{} levels, {} findings with {repairs} repairs priced at every step",
-        item.received().environment_rows().len(),
+        "{} levels, {} findings with {repairs} repairs",
+        levels,
         item.findings().len()
     );
-    let yardstick = yardstick();
+    let yardstick = yardstick(levels);
     println!(
-        "yardstick: exp over {LEVELS} numbers, {:.3} ms",
+        "yardstick: exp over {levels} numbers, {:.3} ms",
         millis(yardstick)
     );
     for (quantity, from, to) in [
@@ -72,9 +81,9 @@ fn millis(time: Duration) -> f64 {
     time.as_secs_f64() * 1e3
 }
 
-fn yardstick() -> Duration {
-    let input: Vec<f64> = (0..LEVELS).map(|n| -(n as f64) / LEVELS as f64).collect();
-    let mut output = vec![0.0; LEVELS];
+fn yardstick(levels: usize) -> Duration {
+    let input: Vec<f64> = (0..levels).map(|n| -(n as f64) / levels as f64).collect();
+    let mut output = vec![0.0; levels];
     let mut times: Vec<Duration> = (0..31)
         .map(|_| {
             let started = Instant::now();

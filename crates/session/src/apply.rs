@@ -1,7 +1,7 @@
 //! What each command does.
 
-use crate::doubt::Sampling;
 use crate::history::Joining;
+use crate::results::Effort;
 use crate::sounding::{Amendments, Entry};
 use crate::thermo::{Pressure, Temperature};
 use crate::trust::{with_repair, without_repair};
@@ -164,8 +164,8 @@ impl Session {
         let id = item.id;
         let before = item.document().clone();
         let moved = go(item);
-        // A drag given up where it began changes nothing, but what it left coarse is to be done in full.
-        if moved || (item.results.doubt.coarse && !item.in_gesture()) {
+        // A drag given up where it began changes nothing, but what it left hasty is to be done in full.
+        if moved || (item.results.is_hasty() && !item.in_gesture()) {
             self.document_changed(id, &before);
         }
         if moved {
@@ -179,7 +179,7 @@ impl Session {
         };
         let id = item.id;
         let changed = item.history.end();
-        if item.results.doubt.coarse {
+        if item.results.is_hasty() {
             let document = item.document().clone();
             self.document_changed(id, &document);
         }
@@ -195,12 +195,12 @@ impl Session {
         let Some(item) = self.item_mut(id) else {
             return;
         };
-        let sampling = if item.history.in_gesture() {
-            Sampling::InFrame
+        let effort = if item.history.in_gesture() {
+            Effort::InFrame
         } else {
-            Sampling::Full
+            Effort::Full
         };
-        let finer = item.results.doubt.coarse && sampling == Sampling::Full;
+        let finer = item.results.is_hasty() && effort == Effort::Full;
         if item.document().computes_like(before) && !finer {
             item.results.revision = revision;
         } else {
@@ -210,7 +210,7 @@ impl Session {
                 revision,
                 &item.results,
                 hold,
-                sampling,
+                effort,
             );
         }
         self.refresh_standing(id);

@@ -134,40 +134,8 @@ pub struct Doubt {
     pub coarse: bool,
 }
 
-/// How finely the response is sampled.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub(crate) enum Sampling {
-    /// As finely as it is worth.
-    Full,
-    /// As finely as a frame allows.
-    InFrame,
-}
-
-/// Levels times dew points that a frame allows. Each costs about 0.1 microseconds; a frame has 12 ms, for everything.
-const FRAME_BUDGET: usize = 60_000;
 /// Never fewer dew points than these: the ends of the interval, the candidates, and a few between.
 const FEWEST_SAMPLES: usize = 7;
-
-impl Sampling {
-    /// The plan for a profile of so many levels, and whether it is a coarse one.
-    fn plan(self, levels: usize) -> (Plan, bool) {
-        let full = Plan::default();
-        match self {
-            Self::Full => (full, false),
-            Self::InFrame => {
-                let affordable = (FRAME_BUDGET / levels.max(1)).max(FEWEST_SAMPLES);
-                let most_samples = affordable.min(full.most_samples);
-                (
-                    Plan {
-                        most_samples,
-                        ..full
-                    },
-                    most_samples < full.most_samples,
-                )
-            }
-        }
-    }
-}
 
 impl Doubt {
     /// Range of one parcel.
@@ -202,8 +170,12 @@ impl DoubtKey {
 }
 
 impl Doubt {
-    /// Of a document.
-    pub(crate) fn of(analysed: &Analysed, document: &Document, sampling: Sampling) -> Self {
+    /// Of a document. `most_samples`: how many dew points a frame affords; `None`: as many as it is worth.
+    pub(crate) fn of(
+        analysed: &Analysed,
+        document: &Document,
+        most_samples: Option<usize>,
+    ) -> Self {
         let amendments = &document.amendments;
         let temperature = amendments
             .surface_temperature()
@@ -216,7 +188,13 @@ impl Doubt {
             Ok(interval) => interval,
             Err(problem) => return Self::without_interval(analysed, document, &problem),
         };
-        let (plan, coarse) = sampling.plan(analysed.profile.len());
+        let full = Plan::default();
+        let plan = Plan {
+            most_samples: most_samples
+                .unwrap_or(full.most_samples)
+                .clamp(FEWEST_SAMPLES, full.most_samples),
+            ..full
+        };
         let response = bounds::response(
             &analysed.profile,
             amendments,
@@ -231,7 +209,7 @@ impl Doubt {
             response: response.samples.iter().map(ResponsePoint::of).collect(),
             ranges: Parcel::ALL.map(|parcel| ParcelRange::of(&response, parcel)),
             problem: String::new(),
-            coarse,
+            coarse: plan.most_samples < full.most_samples,
         }
     }
 

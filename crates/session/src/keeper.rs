@@ -44,6 +44,8 @@ pub(crate) struct Keeper {
     desk: String,
     ledger: Option<Ledger>,
     away: Option<Receiver<Answer>>,
+    /// The decision that is away with it.
+    in_flight: Option<(ItemId, Decision)>,
     queue: VecDeque<Job>,
     news: News,
     told: Vec<Problem>,
@@ -63,6 +65,7 @@ impl Keeper {
             desk,
             ledger: None,
             away: None,
+            in_flight: None,
             queue: VecDeque::new(),
             news: News::default(),
             told: Vec::new(),
@@ -119,17 +122,20 @@ impl Keeper {
             return;
         };
         match self.queue.pop_front() {
-            Some(Job::Keep(item, decision)) => self.send(move || {
-                let result = ledger
-                    .keep((*decision).clone())
-                    .map_err(|error| error.to_string());
-                let outcome = Outcome {
-                    item,
-                    decision: *decision,
-                    result,
-                };
-                (Some(ledger), Some(outcome), None)
-            }),
+            Some(Job::Keep(item, decision)) => {
+                self.in_flight = Some((item, (*decision).clone()));
+                self.send(move || {
+                    let result = ledger
+                        .keep((*decision).clone())
+                        .map_err(|error| error.to_string());
+                    let outcome = Outcome {
+                        item,
+                        decision: *decision,
+                        result,
+                    };
+                    (Some(ledger), Some(outcome), None)
+                });
+            }
             Some(Job::Refresh) => self.send(move || {
                 let failure = ledger.refresh().err().map(|error| error.to_string());
                 (Some(ledger), None, failure)
@@ -170,6 +176,15 @@ impl Keeper {
                 )),
             )
         });
+        if let Some((item, decision)) = self.in_flight.take()
+            && outcome.is_none()
+        {
+            self.news.outcomes.push(Outcome {
+                item,
+                decision,
+                result: Err("it is not known to be kept: the writer stopped; look at the record, then decide again".to_owned()),
+            });
+        }
         self.ledger = ledger;
         self.news.changed = true;
         self.news.outcomes.extend(outcome);

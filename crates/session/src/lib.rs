@@ -43,6 +43,7 @@ mod message;
 mod office;
 mod opening;
 mod possible;
+mod pricing;
 mod reading;
 pub mod report;
 mod results;

@@ -1,13 +1,14 @@
 //! The worker that reads and analyses while the window goes on.
 
 use crate::reading::{ReadFailure, ReadFile, STATION_TABLE, files_of, read_bytes, read_file};
+use crate::sounding::Sounding;
 use crate::wake::SharedWaker;
 use crate::{Analysed, Document, Identity, Office, Results, demo, draft, wording};
 use jiff::{Timestamp, civil::Date};
 use std::panic::{AssertUnwindSafe, catch_unwind};
 use std::path::PathBuf;
 use std::sync::Arc;
-use std::sync::mpsc::{Receiver, Sender, channel};
+use std::sync::mpsc::{Receiver, Sender, TryRecvError, channel};
 
 /// What the worker needs to know; replaced whole when it changes.
 #[derive(Debug, Clone)]
@@ -116,7 +117,14 @@ impl Opening {
 
     /// The next thing that has arrived.
     pub(crate) fn next(&mut self) -> Option<Arrival> {
-        let arrival = self.arrivals.try_recv().ok();
+        let arrival = match self.arrivals.try_recv() {
+            Ok(arrival) => Some(arrival),
+            Err(TryRecvError::Empty) => None,
+            Err(TryRecvError::Disconnected) => {
+                self.outstanding = 0;
+                None
+            }
+        };
         self.count(arrival)
     }
 
@@ -153,7 +161,7 @@ fn read(desk: &Desk, wanted: Wanted, tell: &dyn Fn(Arrival) -> bool) -> bool {
                 });
                 told && meant.files.into_iter().all(|file| {
                     let name = file.display().to_string();
-                    guarded(desk, &name, tell, || {
+                    deliver(desk, &name, tell, || {
                         read_file(&file, &desk.office, desk.as_of)
                     })
                 })
@@ -164,7 +172,7 @@ fn read(desk: &Desk, wanted: Wanted, tell: &dyn Fn(Arrival) -> bool) -> bool {
                 remedy: "Check that the folder exists and that you may read it",
             }),
         }),
-        Wanted::Bytes(name, bytes) => guarded(desk, &name, tell, || {
+        Wanted::Bytes(name, bytes) => deliver(desk, &name, tell, || {
             read_bytes(
                 &name,
                 &bytes,
@@ -174,36 +182,24 @@ fn read(desk: &Desk, wanted: Wanted, tell: &dyn Fn(Arrival) -> bool) -> bool {
             )
         }),
         Wanted::Demo => demo::FILES.iter().all(|file| {
-            guarded(desk, file.name, tell, || {
+            deliver(desk, file.name, tell, || {
                 read_bytes(file.name, file.bytes, None, &desk.office, None)
             })
         }),
     }
 }
 
-/// One file. A fault of ours in one file must not take the others with it, nor the window.
-fn guarded(
+/// One file. Its soundings are told one by one, as soon as each is analysed.
+fn deliver(
     desk: &Desk,
     name: &str,
     tell: &dyn Fn(Arrival) -> bool,
     read: impl FnOnce() -> Result<ReadFile, ReadFailure>,
 ) -> bool {
-    let told = catch_unwind(AssertUnwindSafe(|| deliver(desk, name, tell, read())));
-    told.unwrap_or_else(|_| {
-        tell(Arrival::Failed {
-            about: name.to_owned(),
-            what: "the program failed on this file, which is a defect of the program".to_owned(),
-            remedy: "The other files are not touched by it; please report it with the file",
-        })
-    })
-}
-
-fn deliver(
-    desk: &Desk,
-    name: &str,
-    tell: &dyn Fn(Arrival) -> bool,
-    read: Result<ReadFile, ReadFailure>,
-) -> bool {
+    let read = match guarded(read) {
+        Ok(read) => read,
+        Err(Defect) => return tell(defect(name)),
+    };
     let file = match read {
         Ok(file) => file,
         Err(failure) => {
@@ -223,22 +219,78 @@ fn deliver(
     {
         return false;
     }
-    file.soundings.into_iter().all(|analysed| {
-        let identity = Identity::of(&analysed.sounding);
-        let draft = match draft::load(&desk.drafts, &identity) {
-            Ok(draft) => draft,
-            Err(what) => {
-                let about = analysed.sounding.station.label().to_owned();
-                tell(Arrival::Draft { about, what });
-                None
+    file.soundings.into_iter().all(|sounding| {
+        let label = sounding.station.label().to_owned();
+        match guarded(|| prepare(desk, sounding)) {
+            Ok((fresh, trouble)) => {
+                let told = trouble.is_none_or(|what| tell(Arrival::Draft { about: label, what }));
+                told && tell(Arrival::Sounding(Box::new(fresh)))
             }
-        };
-        let results = Results::of(&analysed, &draft.clone().unwrap_or_default());
-        tell(Arrival::Sounding(Box::new(Fresh {
-            analysed: Arc::new(analysed),
-            identity,
-            draft,
-            results,
-        })))
+            Err(Defect) => tell(defect(&format!("{name}, {label}"))),
+        }
     })
+}
+
+/// A sounding with all that follows from it, and trouble with its draft.
+fn prepare(desk: &Desk, sounding: Sounding) -> (Fresh, Option<String>) {
+    let analysed = Analysed::of(sounding, &desk.office.thresholds);
+    let identity = Identity::of(&analysed.sounding);
+    let (draft, trouble) = match draft::load(&desk.drafts, &identity) {
+        Ok(draft) => (draft, None),
+        Err(what) => (None, Some(what)),
+    };
+    let results = Results::of(&analysed, &draft.clone().unwrap_or_default());
+    let fresh = Fresh {
+        analysed: Arc::new(analysed),
+        identity,
+        draft,
+        results,
+    };
+    (fresh, trouble)
+}
+
+/// The program itself failed.
+struct Defect;
+
+/// A fault of ours in one sounding must not take the others with it, nor the window.
+fn guarded<T>(work: impl FnOnce() -> T) -> Result<T, Defect> {
+    catch_unwind(AssertUnwindSafe(work)).map_err(|_| Defect)
+}
+
+fn defect(about: &str) -> Arrival {
+    Arrival::Failed {
+        about: about.to_owned(),
+        what: "the program failed on this, which is a defect of the program".to_owned(),
+        remedy: "Everything else is untouched by it; please report it with the file",
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use std::sync::Mutex;
+
+    #[test]
+    fn a_fault_in_the_reader_is_told_and_the_next_file_is_read() {
+        let desk = Desk {
+            office: Arc::new(Office::default()),
+            drafts: PathBuf::from("nowhere"),
+            as_of: None,
+        };
+        let told = Mutex::new(Vec::new());
+        let tell = |arrival: Arrival| {
+            told.lock().unwrap().push(arrival);
+            true
+        };
+        assert!(deliver(&desk, "bad", &tell, || panic!("on purpose")));
+        let good = ReadFile {
+            soundings: vec![Sounding::default()],
+            notes: Vec::new(),
+        };
+        assert!(deliver(&desk, "good", &tell, || Ok(good)));
+        let told = told.into_inner().unwrap();
+        assert!(
+            matches!(&told[..], [Arrival::Failed { about, .. }, Arrival::Sounding(_)] if about == "bad")
+        );
+    }
 }

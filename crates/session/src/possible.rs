@@ -1,7 +1,7 @@
 //! What can be done now, and which command an action stands for.
 
 use crate::ledger::Verdict;
-use crate::sounding::Reach;
+use crate::sounding::{MIXED_LAYER_LEAST_DEPTH, Reach};
 use crate::thermo::Pressure;
 use crate::trust::Grade;
 use crate::{Action, Command, IntervalEnd, Item, Session, SurfaceQuantity};
@@ -43,6 +43,7 @@ impl Session {
             ),
             Action::UnpinLow => need(document.pins.low_k.is_some(), "this end is not pinned"),
             Action::UnpinHigh => need(document.pins.high_k.is_some(), "this end is not pinned"),
+            Action::ReachMixed | Action::ReachTapered => mixed_layer(item),
             Action::Decide => self.decidable().map(|_| ()),
             Action::SelectNext | Action::SelectPrevious => {
                 need(self.tray().len() > 1, "there is no other sounding")
@@ -94,6 +95,21 @@ impl Session {
             | Action::ShowKeys
             | Action::ShowCaution => return None,
         })
+    }
+}
+
+/// Whether there is a mixed layer for a surface edit to reach through.
+fn mixed_layer(item: &Item) -> Result<(), String> {
+    let working = &item.results().working;
+    let least = MIXED_LAYER_LEAST_DEPTH;
+    match (working.profile.surface_pressure(), working.reach.mixed_top) {
+        (Some(surface), Some(top)) if surface.pa() - top.pa() >= least.pa() => Ok(()),
+        (Some(surface), Some(top)) => Err(format!(
+            "the mixed layer is only {:.0} hPa deep, {:.0} are needed",
+            surface.hpa() - top.hpa(),
+            least.hpa()
+        )),
+        _ => Err("no mixed layer reaches the surface".to_owned()),
     }
 }
 

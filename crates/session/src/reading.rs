@@ -1,18 +1,18 @@
-//! From a path or from bytes to analysed soundings.
+//! From a path or from bytes to soundings.
 
 use crate::formats::{self, ReadOptions};
-use crate::sounding::Note;
-use crate::{Analysed, Office, demo};
+use crate::sounding::{Note, Sounding};
+use crate::{Office, demo};
 use jiff::{Timestamp, civil::Date};
 use std::fs;
 use std::io;
 use std::path::{Path, PathBuf};
 
-/// Soundings of one file, analysed, and the notes that belong to none of them.
+/// Soundings of one file, ready for [`crate::Analysed::of`], and the notes that belong to none of them.
 #[derive(Debug, Default)]
 pub struct ReadFile {
     /// In file order.
-    pub soundings: Vec<Analysed>,
+    pub soundings: Vec<Sounding>,
     /// Notes about the file.
     pub notes: Vec<Note>,
 }
@@ -70,7 +70,7 @@ fn notes_text(notes: &[Note]) -> String {
     text
 }
 
-/// Reads and analyses one file.
+/// Reads one file.
 pub fn read_file(
     path: &Path,
     office: &Office,
@@ -84,7 +84,7 @@ pub fn read_file(
     read_bytes(&path.display().to_string(), &bytes, modified, office, as_of)
 }
 
-/// Reads and analyses bytes. `modified`: their date, for messages that code day and hour only.
+/// Reads bytes. `modified`: their date, for messages that code day and hour only.
 pub fn read_bytes(
     name: &str,
     bytes: &[u8],
@@ -104,15 +104,11 @@ pub fn read_bytes(
     if loaded.soundings.is_empty() {
         return Err(ReadFailure::Empty(loaded.notes));
     }
-    let soundings = loaded
-        .soundings
-        .into_iter()
-        .map(|mut sounding| {
-            sounding.demo |= demo.is_some();
-            office.locate(&mut sounding);
-            Analysed::of(sounding, &office.thresholds)
-        })
-        .collect();
+    let mut soundings = loaded.soundings;
+    for sounding in &mut soundings {
+        sounding.demo |= demo.is_some();
+        office.locate(sounding);
+    }
     Ok(ReadFile {
         soundings,
         notes: loaded.notes,

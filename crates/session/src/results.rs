@@ -1,9 +1,10 @@
 //! What follows from a document: computed inside one command, all of one revision.
 
-use crate::doubt::{DoubtKey, Sampling};
+use crate::doubt::DoubtKey;
+use crate::pricing::Pricing;
 use crate::sounding::{Numbers, Profile, Working};
 use crate::thermo::{Ascent, Method, Pressure, lift};
-use crate::trust::{Cost, Priced, price, rank};
+use crate::trust::{Cost, Priced};
 use crate::{Analysed, Document, Doubt, sentence};
 use std::sync::Arc;
 use std::time::{Duration, Instant};
@@ -21,6 +22,9 @@ pub struct Card {
     pub headline: Option<usize>,
     /// The repair that is applied at the moment. Its cost is what it has changed.
     pub applied: Option<usize>,
+    /// Repairs whose cost is of an earlier revision, because a drag is under way and there are more than a frame can price;
+    /// the headline is never among them. To be drawn as stale. Empty: none.
+    pub stale: Vec<bool>,
 }
 
 impl Card {
@@ -29,11 +33,17 @@ impl Card {
         self.costs.get(self.headline?)?.as_ref()
     }
 
-    fn of(priced: &Priced) -> Self {
+    /// The cost of a repair is of an earlier revision.
+    pub fn is_stale(&self, repair: usize) -> bool {
+        self.stale.get(repair).copied().unwrap_or(false)
+    }
+
+    pub(crate) fn of(priced: &Priced) -> Self {
         Self {
             costs: priced.costs.clone(),
             headline: priced.headline,
             applied: priced.applied,
+            stale: Vec::new(),
         }
     }
 }
@@ -66,6 +76,15 @@ pub struct Results {
     sampled: Arc<Doubt>,
 }
 
+/// How much is computed.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum Effort {
+    /// Everything.
+    Full,
+    /// What a frame allows.
+    InFrame,
+}
+
 /// A repair seen but not applied.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Preview {
@@ -80,13 +99,7 @@ pub struct Preview {
 impl Results {
     /// Results of a document, from nothing.
     pub fn of(analysed: &Analysed, document: &Document) -> Self {
-        Self::compute(
-            analysed,
-            document,
-            Revision::default(),
-            None,
-            Sampling::Full,
-        )
+        Self::compute(analysed, document, Revision::default(), None, Effort::Full)
     }
 
     /// Results of the document that follows; keeps of `previous` what can't have changed.
@@ -96,13 +109,18 @@ impl Results {
         revision: Revision,
         previous: &Self,
         hold_order: bool,
-        sampling: Sampling,
+        effort: Effort,
     ) -> Self {
-        let mut results = Self::compute(analysed, document, revision, Some(previous), sampling);
+        let mut results = Self::compute(analysed, document, revision, Some(previous), effort);
         if hold_order && previous.order.len() == results.order.len() {
             results.order.clone_from(&previous.order);
         }
         results
+    }
+
+    /// Something was left coarse or stale because a drag is under way.
+    pub(crate) fn is_hasty(&self) -> bool {
+        self.doubt.coarse || self.cards.iter().any(|card| card.stale.contains(&true))
     }
 
     /// Lets the order follow the costs again; true when that changed it.
@@ -117,7 +135,7 @@ impl Results {
         document: &Document,
         revision: Revision,
         previous: Option<&Self>,
-        sampling: Sampling,
+        effort: Effort,
     ) -> Self {
         let started = Instant::now();
         let amendments = &document.amendments;
@@ -126,24 +144,27 @@ impl Results {
         let picked = document
             .picked_level()
             .and_then(|level| picked_ascent(&working.profile, level));
-        let priced = price(
-            &analysed.findings,
-            &analysed.profile,
-            amendments,
-            analysed.daylight,
-            &numbers,
-        );
-        let ranked = rank(&priced, at_least(&numbers));
-        let cards = priced.iter().map(Card::of).collect();
+        let frame = Frame::of(&working.profile);
+        let Pricing { cards, ranked } = match (previous, effort) {
+            (Some(previous), Effort::InFrame) => Pricing::in_frame(
+                analysed,
+                amendments,
+                &numbers,
+                &previous.cards,
+                frame.repairs,
+            ),
+            _ => Pricing::full(analysed, amendments, &numbers),
+        };
         let doubt_key = DoubtKey::of(document);
+        let most_samples = (effort == Effort::InFrame).then_some(frame.samples);
         let sampled = match previous {
             Some(previous)
                 if previous.doubt_key == doubt_key
-                    && (sampling == Sampling::InFrame || !previous.sampled.coarse) =>
+                    && (effort == Effort::InFrame || !previous.sampled.coarse) =>
             {
                 previous.sampled.clone()
             }
-            _ => Arc::new(Doubt::of(analysed, document, sampling)),
+            _ => Arc::new(Doubt::of(analysed, document, most_samples)),
         };
         let dewpoint = working.profile.surface_air().map(|air| air.dewpoint);
         let doubt = sampled
@@ -167,12 +188,22 @@ impl Results {
     }
 }
 
-/// Any of the three is a lower limit only.
-fn at_least(numbers: &Numbers) -> bool {
-    [&numbers.surface, &numbers.mixed, &numbers.most_unstable]
-        .into_iter()
-        .flatten()
-        .any(|ascent| ascent.at_least)
+/// How much a frame affords while a drag is under way, in computations of the whole profile. Each takes about 0.15
+/// microseconds a level, and a frame has 12 ms for everything.
+#[derive(Debug, Clone, Copy)]
+struct Frame {
+    repairs: usize,
+    samples: usize,
+}
+
+impl Frame {
+    fn of(profile: &Profile) -> Self {
+        let affordable = 80_000 / profile.len().max(1);
+        Self {
+            repairs: affordable / 4,
+            samples: affordable * 5 / 8,
+        }
+    }
 }
 
 fn picked_ascent(profile: &Profile, level: Pressure) -> Option<Ascent> {

@@ -441,3 +441,76 @@ fn what_a_drag_samples_coarsely_is_sampled_in_full_when_it_ends() {
         }
     }
 }
+
+#[test]
+fn a_reach_through_a_layer_that_is_not_mixed_is_off_with_the_reason() {
+    let mut desk = Desk::new();
+    desk.add(
+        "night.csv",
+        "# time: 2031-06-14T10:00:00Z\npressure_hpa,temperature_c,dewpoint_c\n\
+         965,15,13\n955,18,12\n850,14,8\n500,-12,-30\n100,-60,-80\n",
+    );
+    for action in [Action::ReachMixed, Action::ReachTapered] {
+        let why = desk.session.can(action).unwrap_err();
+        assert!(why.contains("hPa deep"), "{why}");
+    }
+    assert_eq!(desk.session.can(Action::ReachLevel), Ok(()));
+}
+
+#[test]
+fn what_a_frame_cannot_price_is_stale_during_the_drag_the_headline_never() {
+    let mut desk = Desk::new();
+    let mut text =
+        "# time: 2031-06-14T22:00:00Z\n# position: 41.0, -146.0, 400\ntime_s,pressure_hpa,temperature_c,dewpoint_c\n"
+            .to_owned();
+    for row in 0..5_000 {
+        let hpa = 965.0 - 0.17 * f64::from(row);
+        // Dips of 4 K, 12 hPa deep: theta falls into each.
+        let dip = [780.0, 700.0, 620.0, 540.0, 460.0]
+            .iter()
+            .map(|at: &f64| (1.0 - (hpa - at).abs() / 6.0).max(0.0))
+            .sum::<f64>();
+        let t = 30.0 - 0.09 * (965.0 - hpa) - 4.0 * dip;
+        text.push_str(&format!(
+            "{row},{hpa:.2},{t:.3},{:.3}\n",
+            30.0 - 0.1 * (965.0 - hpa) - 14.0
+        ));
+    }
+    desk.add("dips.csv", &text);
+    let session = &mut desk.session;
+    let count: usize = item(session)
+        .findings()
+        .iter()
+        .map(|finding| finding.repairs.len())
+        .sum();
+    assert!(count >= 8, "{count} repairs");
+    let stale = |session: &Session| -> usize {
+        let cards = item(session).results().cards.iter();
+        cards
+            .flat_map(|card| &card.stale)
+            .filter(|&&stale| stale)
+            .count()
+    };
+    session.apply(Command::BeginGesture);
+    session.apply(Command::SetSurface(Dewpoint, c(17.0)));
+    session.apply(Command::SetSurface(Dewpoint, c(18.0)));
+    assert!(stale(session) > 0);
+    let afresh = dewbound_session::Results::of(item(session).analysed(), item(session).document());
+    for (card, fresh) in item(session).results().cards.iter().zip(&afresh.cards) {
+        for (index, cost) in card.costs.iter().enumerate() {
+            if !card.is_stale(index) {
+                assert_eq!(
+                    *cost, fresh.costs[index],
+                    "what isn't stale is of this revision"
+                );
+            }
+        }
+        assert!(
+            card.headline
+                .is_none_or(|headline| !card.is_stale(headline))
+        );
+    }
+    session.apply(Command::EndGesture);
+    assert_eq!(stale(session), 0);
+    check_results_fit(session);
+}

@@ -7,9 +7,9 @@ use super::header::TableHeader;
 use super::names::Quantity;
 use super::rows::{self, Row};
 use super::units;
+use crate::ReadOptions;
 use crate::stations::{distance_km, position};
 use crate::tally::Tally;
-use crate::{ReadOptions, digest};
 use dewbound_sounding::{
     HumidityReported, Level, LevelKind, Note, Place, Position, Sounding, Source, Station, Times,
     Wind,
@@ -84,7 +84,7 @@ pub(crate) fn sounding(
         humidity_reported: humidity_reported(&rows),
         source: Source {
             format: "columns",
-            parts: BTreeSet::from([digest::of_lines(section.lines.iter().copied())]),
+            parts: BTreeSet::from([section.digest.clone().digest()]),
             ..Source::default()
         },
         notes,

@@ -426,13 +426,13 @@ mod tests {
     #[test]
     fn pairs_in_one_line() {
         let comments = read(
-            "# taken from the raw file; site=Nowhere_Vale code=ZZUV lat=-3.5 lon=+188.5 alt_m=+13 \
+            "# taken from the raw file; site=Nowhere_Vale code=ZZUV lat=-3.5 lon=+188.5 alt_m=+21 \
              date=2031/01/18 start_utc=20:44:13 sonde=X-6",
         );
         assert_eq!(comments.station.name.as_deref(), Some("Nowhere Vale"));
         assert_eq!(comments.station.icao.as_deref(), Some("ZZUV"));
         assert_eq!(comments.station.position, at(-3.5, -171.5));
-        assert_eq!(comments.station.elevation, Some(13.0));
+        assert_eq!(comments.station.elevation, Some(21.0));
         assert_eq!(comments.launch, "2031-01-18T20:44:13Z".parse().ok());
         assert_eq!(comments.unused, ["sonde"]);
     }
@@ -441,13 +441,13 @@ mod tests {
     fn positions_and_times_of_other_habits() {
         let comments = read(
             "# release: 203102030100 UTC (nominal)\n\
-             # location_lon_lat_alt: 099 16.57'W, 37 36.38'N, -99.276, 37.606, 680.0\n\
+             # location_lon_lat_alt: 008 15.00'W, 47 30.00'N, -8.250, 47.500, 430.0\n\
              # height_reference: GPM_AGL\n",
         );
         assert_eq!(comments.nominal, "2031-02-03T01:00:00Z".parse().ok());
         assert_eq!(comments.launch, None);
-        assert_eq!(comments.station.position, at(37.606, -99.276));
-        assert_eq!(comments.station.elevation, Some(680.0));
+        assert_eq!(comments.station.position, at(47.5, -8.25));
+        assert_eq!(comments.station.elevation, Some(430.0));
         assert!(comments.heights_above_ground);
         assert_eq!(
             read("# position: 3.5S, 60W").station.position,

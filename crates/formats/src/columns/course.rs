@@ -246,14 +246,15 @@ impl Track {
 /// Median of up to five neighbours: one or two wild values don't make a top.
 fn median_around(values: &[f64], index: usize) -> f64 {
     let from = index.saturating_sub(2);
-    let mut near: Vec<f64> = values
-        .iter()
-        .skip(from)
-        .take(index + 3 - from)
-        .copied()
-        .collect();
-    near.sort_by(f64::total_cmp);
-    near.get(near.len() / 2).copied().unwrap_or(f64::NAN)
+    let near = values
+        .get(from..values.len().min(index + 3))
+        .unwrap_or_default();
+    let mut room = [f64::INFINITY; 5];
+    for (slot, value) in room.iter_mut().zip(near) {
+        *slot = *value;
+    }
+    room.sort_unstable_by(f64::total_cmp);
+    room.get(near.len() / 2).copied().unwrap_or(f64::NAN)
 }
 
 #[cfg(test)]

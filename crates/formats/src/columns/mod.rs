@@ -8,11 +8,11 @@ mod build;
 mod comments;
 mod course;
 mod header;
-mod names;
+pub(crate) mod names;
 mod rows;
 mod units;
 
-use crate::{Loaded, ReadError, ReadOptions, text};
+use crate::{Loaded, ReadError, ReadOptions, digest, text};
 use comments::{bare, is_comment};
 use dewbound_sounding::{Note, Place};
 use header::TableHeader;
@@ -29,8 +29,8 @@ struct Section<'a> {
     header_line: usize,
     header: TableHeader,
     rows: Vec<(usize, &'a str)>,
-    /// Every line of it, for the digest.
-    lines: Vec<&'a str>,
+    /// Over every line of it.
+    digest: digest::Lines,
 }
 
 /// Whether the text has a header that names pressure and something measured, with units.
@@ -77,15 +77,17 @@ pub(crate) fn complaint(file: &str, text: &str, only_meaningful: bool) -> Option
                 .iter()
                 .any(|name| name.eq_ignore_ascii_case(id))
         });
-    let what = if station_table {
-        "this is a table of stations, not a sounding; its place is the office folder, as stations.csv".into()
-    } else {
-        header.complaint()
-    };
+    if station_table {
+        return Some(ReadError::LooksLike {
+            file: file.into(),
+            what: "a table of stations, not a sounding",
+            hint: "its place is the office folder, as stations.csv",
+        });
+    }
     Some(ReadError::UnknownHeader {
         file: file.into(),
         line,
-        what,
+        what: header.complaint(),
         found: header.names,
         understood: names::understood(),
     })
@@ -145,26 +147,31 @@ fn sections(text: &str, commented_header: Option<usize>) -> (Vec<Section<'_>>, V
             continue;
         }
         if let Some(header) = header_of(if is_header { bare(line) } else { line }) {
-            let mut lines: Vec<&str> = waiting.iter().map(|(_, line)| *line).collect();
-            lines.push(line);
+            let mut digest = digest::Lines::default();
+            waiting.iter().for_each(|(_, line)| digest.add(line));
+            digest.add(line);
             sections.push(Section {
                 comments: std::mem::take(&mut waiting),
                 header_line: number,
                 header,
                 rows: Vec::new(),
-                lines,
+                digest,
             });
         } else if let Some(section) = sections.last_mut() {
-            section.lines.extend(waiting.iter().map(|(_, line)| *line));
+            waiting
+                .iter()
+                .for_each(|(_, line)| section.digest.add(line));
             section.comments.append(&mut waiting);
-            section.lines.push(line);
+            section.digest.add(line);
             section.rows.push((number, line));
         } else {
             stray.push(number);
         }
     }
     if let Some(section) = sections.last_mut() {
-        section.lines.extend(waiting.iter().map(|(_, line)| *line));
+        waiting
+            .iter()
+            .for_each(|(_, line)| section.digest.add(line));
         section.comments.append(&mut waiting);
     }
     (sections, stray)

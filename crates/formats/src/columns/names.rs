@@ -28,6 +28,11 @@ impl Quantity {
     pub const fn index(self) -> usize {
         self as usize
     }
+
+    /// A bit of its own.
+    pub const fn bit(self) -> u16 {
+        1 << self as u16
+    }
 }
 
 /// A unit: how to bring it to SI, and what is plausible in it.
@@ -313,8 +318,8 @@ pub(crate) fn names_with_unit(plain: &str) -> Option<Vec<&'static str>> {
     )
 }
 
-/// Every name this project writes.
-pub(crate) fn understood() -> Vec<&'static str> {
+/// Names a header of columns may use (further spellings are forgiven), in the order in which people should read them.
+pub fn understood() -> Vec<&'static str> {
     COLUMNS.iter().map(|column| column.name).collect()
 }
 
@@ -334,6 +339,14 @@ mod tests {
                 assert_eq!(column_named(name).unwrap().name, column.name);
             }
             assert!(column.quantity.index() < Quantity::COUNT);
+        }
+    }
+
+    #[test]
+    fn the_crate_s_page_names_every_column() {
+        let page = include_str!("../lib.rs");
+        for name in understood() {
+            assert!(page.contains(&format!("`{name}`")), "{name}");
         }
     }
 

@@ -20,6 +20,17 @@ pub(crate) fn set_aside_impossible(
     let mut notes = Vec::new();
     for column in header.columns.iter().flatten() {
         let quantity = column.quantity;
+        let judged = matches!(
+            quantity,
+            Quantity::Pressure
+                | Quantity::Temperature
+                | Quantity::Dewpoint
+                | Quantity::RelativeHumidity
+                | Quantity::MixingRatio
+        );
+        if !judged {
+            continue;
+        }
         let values: Vec<f64> = rows.iter().filter_map(|row| row.get(quantity)).collect();
         if values.len() < FEWEST {
             continue;
@@ -57,13 +68,18 @@ struct Spread {
 
 impl Spread {
     fn of(mut values: Vec<f64>) -> Self {
-        values.sort_by(f64::total_cmp);
-        let at = |index: usize| values.get(index).copied().unwrap_or(f64::NAN);
+        let count = values.len();
+        let least = values.iter().copied().fold(f64::INFINITY, f64::min);
+        let most = values.iter().copied().fold(f64::NEG_INFINITY, f64::max);
+        let median = match values.is_empty() {
+            true => f64::NAN,
+            false => *values.select_nth_unstable_by(count / 2, f64::total_cmp).1,
+        };
         Self {
-            least: at(0),
-            median: at(values.len() / 2),
-            most: at(values.len().saturating_sub(1)),
-            count: values.len(),
+            least,
+            median,
+            most,
+            count,
         }
     }
 }

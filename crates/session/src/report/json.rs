@@ -294,7 +294,7 @@ mod tests {
     #[test]
     fn numbers_are_rounded_and_what_is_no_number_is_null() {
         for (value, decimals, expected) in [
-            (1850.348_6, 2, "1850.35"),
+            (1_850.348_6, 2, "1850.35"),
             (-0.001, 2, "0.0"),
             (f64::NAN, 2, "null"),
             (f64::INFINITY, 2, "null"),

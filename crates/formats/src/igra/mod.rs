@@ -5,17 +5,18 @@
 //! archive's quality control removed and is counted in a note. The processing flags say which climatological checks a
 //! value has passed; they change no value and are not kept.
 
+mod fields;
+mod times;
+
 use crate::stations::{position, wmo_number};
 use crate::tally::Tally;
-use crate::{Loaded, digest, text, when};
+use crate::{Loaded, digest, text};
 use dewbound_sounding::{
-    Digest, HumidityReported, Level, LevelKind, Note, Place, Sounding, Source, Station, Times,
-    Wind,
-    thermo::{Pressure, Temperature, dewpoint_from_relative_humidity},
+    Digest, HumidityReported, LevelKind, Note, Place, Sounding, Source, Station,
 };
-use jiff::{SignedDuration, Timestamp, civil::Date};
+use fields::Fields;
 use std::collections::{BTreeSet, HashMap};
-use std::ops::Range;
+use times::times;
 
 /// Lines in which the first header is looked for.
 const HEADER_WITHIN: usize = 50;
@@ -249,94 +250,6 @@ fn place(
     place
 }
 
-/// Nominal hour and release.
-fn times(header: &Fields, notes: &mut Notes, tally: &mut Tally) -> Times {
-    let mut number = |name, columns| header.number(name, columns, tally);
-    let date = (|| {
-        let year = i16::try_from(number("YEAR", 13..17)?).ok()?;
-        let month = i8::try_from(number("MONTH", 18..20)?).ok()?;
-        let day = i8::try_from(number("DAY", 21..23)?).ok()?;
-        Date::new(year, month, day).ok()
-    })();
-    let hour = number("HOUR", 24..26);
-    let release = number("RELTIME", 27..31);
-    let Some(date) = date else {
-        notes.add(
-            "the header's date cannot be read; the time is unknown".into(),
-            "",
-        );
-        return Times::default();
-    };
-    let at = |hour: i64, minute: i64| {
-        let hour = i8::try_from(hour).ok()?;
-        let minute = i8::try_from(minute).ok()?;
-        let time = jiff::civil::Time::new(hour, minute, 0, 0).ok()?;
-        when::utc(date.to_datetime(time))
-    };
-    let nominal = hour.filter(|hour| *hour != 99).and_then(|hour| at(hour, 0));
-    if hour.is_some_and(|hour| hour != 99) && nominal.is_none() {
-        notes.add(
-            "the header's hour is impossible; it counts as missing".into(),
-            "",
-        );
-    }
-    let mut times = Times {
-        nominal,
-        ..Times::default()
-    };
-    let Some(release) = release.filter(|release| *release != 9999) else {
-        if nominal.is_none() {
-            notes.add("the header gives neither hour nor release time".into(), "");
-        }
-        return times;
-    };
-    let (hour, minute) = (release / 100, release % 100);
-    let minute_known = minute != 99;
-    let Some(release) = at(hour, if minute_known { minute } else { 0 }) else {
-        notes.add(
-            format!("release time {release:04} is impossible; it counts as missing"),
-            "",
-        );
-        return times;
-    };
-    if !minute_known {
-        notes.add(
-            format!("the minute of the release is not known; {hour:02}:00 is taken"),
-            "",
-        );
-    }
-    times.launch = match nominal {
-        Some(nominal) => Some(nearest_day(release, nominal)),
-        None => {
-            times.assumed = true;
-            notes.add(
-                format!(
-                    "the hour is missing; the release at {hour:02}:{:02} is taken to be on {date}",
-                    if minute_known { minute } else { 0 }
-                ),
-                "the date is that of the hour: a release late in the evening may belong to the day before",
-            );
-            Some(release)
-        }
-    };
-    times
-}
-
-/// The date belongs to the nominal hour: a release at 23:03 for 00 UTC was the day before.
-fn nearest_day(release: Timestamp, nominal: Timestamp) -> Timestamp {
-    let half = SignedDuration::from_hours(12);
-    let day = SignedDuration::from_hours(24);
-    let ahead = release.duration_since(nominal);
-    let shifted = if ahead > half {
-        release.checked_sub(day)
-    } else if ahead < -half {
-        release.checked_add(day)
-    } else {
-        Ok(release)
-    };
-    shifted.unwrap_or(release)
-}
-
 /// Temperatures in tenths of a degree that are all even when positive and odd when negative come from the coded message,
 /// in which the tenths digit carries the sign (FM 35 TEMP, code table 3931): their step is 0.2 K.
 fn temperature_step(tenths: &[i64]) -> f64 {
@@ -348,209 +261,11 @@ fn temperature_step(tenths: &[i64]) -> f64 {
     }
 }
 
-/// Why a field has no number.
-enum Absent {
-    Missing,
-    Removed,
-}
-
-/// A line of fixed columns.
-struct Fields<'a> {
-    text: &'a str,
-    line: usize,
-}
-
-impl Fields<'_> {
-    /// The integer in columns (from 0); a field the line doesn't reach, or holds garbage, is noted.
-    fn number(&self, name: &'static str, columns: Range<usize>, tally: &mut Tally) -> Option<i64> {
-        self.raw(name, columns, tally).ok()
-    }
-
-    fn raw(
-        &self,
-        name: &'static str,
-        columns: Range<usize>,
-        tally: &mut Tally,
-    ) -> Result<i64, Absent> {
-        if self.text.len() < columns.end {
-            tally.add(
-                "cut",
-                0,
-                self.line,
-                || format!("the record ends before {name}; what is there was used"),
-                "a field that is cut in two is no number",
-            );
-            return Err(Absent::Missing);
-        }
-        let field = self.text.get(columns.clone()).map(str::trim);
-        match field.map(|field| (field, field.parse::<i64>())) {
-            Some((_, Ok(-9999))) => Err(Absent::Missing),
-            Some((_, Ok(-8888))) => Err(Absent::Removed),
-            Some((_, Ok(number))) => Ok(number),
-            Some(("", _)) => Err(Absent::Missing),
-            Some((field, Err(_))) => {
-                tally.add(
-                    name,
-                    columns.start,
-                    self.line,
-                    || {
-                        format!(
-                            "`{field}` in columns {} to {} ({name}) is not a number and was set aside",
-                            columns.start + 1,
-                            columns.end
-                        )
-                    },
-                    "",
-                );
-                Err(Absent::Missing)
-            }
-            // A sign of several bytes stands across the edge of the field.
-            None => {
-                tally.add(
-                    "signs",
-                    0,
-                    self.line,
-                    || format!("foreign signs in {name}; it was set aside"),
-                    "",
-                );
-                Err(Absent::Missing)
-            }
-        }
-    }
-
-    fn level(
-        &self,
-        removed: &mut usize,
-        tenths: &mut Vec<i64>,
-        tally: &mut Tally,
-    ) -> Option<Level> {
-        let kinds = self.text.as_bytes();
-        let (Some(major @ b'1'..=b'3'), Some(minor @ b'0'..=b'2')) = (kinds.first(), kinds.get(1))
-        else {
-            tally.add(
-                "kind",
-                0,
-                self.line,
-                || "the line doesn't start with a kind of level and was not used".into(),
-                "",
-            );
-            return None;
-        };
-        let mut field = |name, columns| match self.raw(name, columns, tally) {
-            Ok(number) => Some(number),
-            Err(Absent::Removed) => {
-                *removed += 1;
-                None
-            }
-            Err(Absent::Missing) => None,
-        };
-        let elapsed = field("ETIME", 3..8);
-        let pressure = field("PRESS", 9..15);
-        let height = field("GPH", 16..21);
-        let temperature = field("TEMP", 22..27);
-        let humidity = field("RH", 28..33);
-        let depression = field("DPDP", 34..39);
-        let direction = field("WDIR", 40..45);
-        let speed = field("WSPD", 46..51);
-
-        tenths.extend(temperature);
-        let elapsed = elapsed.and_then(|elapsed| {
-            let (minutes, seconds) = (elapsed / 100, elapsed % 100);
-            let valid = elapsed >= 0 && seconds < 60;
-            if !valid {
-                tally.add(
-                    "ETIME",
-                    0,
-                    self.line,
-                    || format!("elapsed time {elapsed} is impossible and was set aside"),
-                    "the format is minutes and two digits of seconds",
-                );
-            }
-            valid.then_some((minutes * 60 + seconds) as f64)
-        });
-        let temperature = temperature.map(|tenths| Temperature::from_c(tenths as f64 / 10.0).k());
-        let relative_humidity = humidity
-            .map(|tenths| tenths as f64 / 1000.0)
-            .filter(|humidity| {
-                let possible = (0.0..=1.5).contains(humidity);
-                if !possible {
-                    tally.add(
-                        "RH",
-                        1,
-                        self.line,
-                        || {
-                            format!(
-                                "relative humidity {:.1} % is impossible and was set aside",
-                                humidity * 100.0
-                            )
-                        },
-                        "",
-                    );
-                }
-                possible
-            });
-        let depressed = || {
-            let depression = depression.filter(|depression| *depression >= 0)?;
-            Some(temperature? - depression as f64 / 10.0)
-        };
-        if depression.is_some_and(|depression| depression < 0) {
-            tally.add(
-                "DPDP",
-                1,
-                self.line,
-                || "a negative dew-point depression was set aside".into(),
-                "",
-            );
-        }
-        let from_humidity = || {
-            let humidity = relative_humidity.filter(|humidity| *humidity > 0.0)?;
-            let air = Temperature::from_k(temperature?);
-            Some(dewpoint_from_relative_humidity(air, humidity).k())
-        };
-        let dewpoint = depressed()
-            .or_else(from_humidity)
-            .filter(|dewpoint| dewpoint.is_finite());
-        let wind = match (direction, speed) {
-            (Some(direction @ 0..=360), Some(speed @ 0..)) => Some(Wind {
-                direction: direction as f64,
-                speed: speed as f64 / 10.0,
-            }),
-            (None, None) => None,
-            _ => {
-                tally.add(
-                    "wind",
-                    0,
-                    self.line,
-                    || "direction and speed make no wind together and were set aside".into(),
-                    "",
-                );
-                None
-            }
-        };
-        let kind = match (major, minor) {
-            (_, b'1') => LevelKind::Surface,
-            (_, b'2') => LevelKind::Tropopause,
-            (b'1', _) => LevelKind::Standard,
-            _ => LevelKind::Other,
-        };
-        Some(Level {
-            pressure: pressure.map(|pa| Pressure::from_pa(pa as f64).pa()),
-            height: height.map(|metres| metres as f64),
-            temperature,
-            dewpoint,
-            relative_humidity,
-            wind,
-            elapsed,
-            kind,
-            line: Some(self.line),
-        })
-    }
-}
-
 #[cfg(test)]
 mod tests {
     use super::*;
     use approx::assert_relative_eq;
+    use dewbound_sounding::Wind;
 
     /// An invented station with one level of every kind.
     const FILE: &str = "\
@@ -724,11 +439,11 @@ mod tests {
 
     #[test]
     fn coded_temperatures_step_by_a_fifth() {
-        let coded = [38, 42, 26, 14, 20, 4, -7, -43, -93, -217];
+        let coded = [36, 44, 28, 12, 22, 6, -5, -41, -95, -213];
         assert_eq!(temperature_step(&coded), 0.2);
         assert_eq!(temperature_step(&coded[1..]), 0.1, "too few to tell");
         assert_eq!(
-            temperature_step(&[37, 42, 26, 14, 20, 4, -7, -43, -93, -217]),
+            temperature_step(&[37, 44, 28, 12, 22, 6, -5, -41, -95, -213]),
             0.1
         );
     }

@@ -4,10 +4,14 @@
 //! left alone. Lines that begin with `#` are remarks. What is added later is written back without touching the rest of
 //! the file: remarks, further columns and rows that could not be read all stay as the office wrote them.
 
-use crate::delimited::{Delimiter, plain_name};
-use crate::number::{self, Cell};
+mod layout;
+mod place;
+
+use crate::delimited::Delimiter;
 use crate::text;
-use dewbound_sounding::{Note, Place, Position, Station};
+use dewbound_sounding::{Note, Place, Station};
+use layout::{COLUMNS, ELEVATIONS, Layout, column, is_row};
+pub(crate) use place::{distance_km, position, wmo_number};
 use std::collections::HashMap;
 
 /// Why a station cannot be added.
@@ -24,23 +28,6 @@ pub enum StationTableError {
         what: String,
     },
 }
-
-/// The columns of the table, in the order in which a new one is written.
-const COLUMNS: [&str; 7] = ["wmo", "wigos", "icao", "name", "lat", "lon", "elevation_m"];
-
-/// Column by any of its names.
-fn column(plain: &str) -> Option<usize> {
-    let name = match plain {
-        "latitude" => "lat",
-        "longitude" => "lon",
-        "elevation" => "elevation_m",
-        name => name,
-    };
-    COLUMNS.iter().position(|column| *column == name)
-}
-
-/// Lowest and highest ground, m, with room to spare.
-const ELEVATIONS: std::ops::RangeInclusive<f64> = -500.0..=9_000.0;
 
 /// Stations by WMO number, WIGOS id and ICAO indicator.
 ///
@@ -68,15 +55,6 @@ struct Entry {
     station: Station,
     /// Index of its line.
     line: usize,
-}
-
-#[derive(Debug, Clone, PartialEq)]
-struct Layout {
-    delimiter: Delimiter,
-    /// Index of the header line.
-    line: usize,
-    /// For every field, the column it is.
-    columns: Vec<Option<usize>>,
 }
 
 impl StationTable {
@@ -378,144 +356,6 @@ impl StationTable {
     }
 }
 
-impl Layout {
-    fn read(line: &str, index: usize) -> Self {
-        let under = |delimiter: Delimiter| Self {
-            delimiter,
-            line: index,
-            columns: delimiter
-                .fields(line)
-                .iter()
-                .map(|name| column(&plain_name(name)))
-                .collect(),
-        };
-        Delimiter::ALL
-            .into_iter()
-            .map(under)
-            .max_by_key(|layout| layout.columns.iter().flatten().count())
-            .unwrap_or_else(|| under(Delimiter::COMMA))
-    }
-
-    fn missing(&self) -> Vec<&'static str> {
-        COLUMNS
-            .iter()
-            .enumerate()
-            .filter(|(column, _)| !self.columns.contains(&Some(*column)))
-            .map(|(_, name)| *name)
-            .collect()
-    }
-
-    fn station(&self, line: &str, mut note: impl FnMut(String, &'static str)) -> Station {
-        let fields = self.delimiter.fields(line);
-        let field = |name: &str| {
-            let wanted = column(name);
-            let index = self.columns.iter().position(|column| *column == wanted)?;
-            let field = fields.get(index)?.trim();
-            (!field.is_empty()).then_some(field)
-        };
-        let comma = self.delimiter.allows_decimal_comma();
-        let mut number = |name: &'static str| match number::cell(field(name)?, comma) {
-            Cell::Value(value) => Some(value),
-            Cell::Missing => None,
-            Cell::Garbage => {
-                note(
-                    format!("{name} `{}` is not a number and was not used", field(name)?),
-                    "",
-                );
-                None
-            }
-        };
-        let (latitude, longitude, elevation) =
-            (number("lat"), number("lon"), number("elevation_m"));
-        let place = match (latitude, longitude) {
-            (Some(latitude), Some(longitude)) => {
-                let place = position(latitude, longitude);
-                if place.is_none() {
-                    note(
-                        format!("position {latitude}, {longitude} is impossible and was not used"),
-                        "latitude runs from -90 to 90, longitude from -180 to 180 (or to 360)",
-                    );
-                }
-                place
-            }
-            (None, None) => None,
-            _ => {
-                note(
-                    "the position is incomplete and was not used".into(),
-                    "both lat and lon are needed",
-                );
-                None
-            }
-        };
-        let elevation = elevation.filter(|elevation| {
-            let possible = ELEVATIONS.contains(elevation);
-            if !possible {
-                note(
-                    format!("elevation_m {elevation} is impossible and was not used"),
-                    "it is the height of the ground above sea level in metres",
-                );
-            }
-            possible
-        });
-        let wmo = field("wmo").and_then(|wmo| {
-            let number = wmo_number(wmo);
-            if number.is_none() {
-                note(
-                    format!("`{wmo}` is no WMO number and was not used"),
-                    "a WMO number has five digits",
-                );
-            }
-            number
-        });
-        Station {
-            wigos: field("wigos").map(str::to_owned),
-            wmo,
-            icao: field("icao").map(str::to_ascii_uppercase),
-            text: None,
-            name: field("name").map(str::to_owned),
-            position: place,
-            elevation,
-        }
-    }
-
-    /// A row: the fields of `old`, those known of the station put in their places.
-    fn write(&self, station: &Station, old: &str) -> String {
-        let mut fields: Vec<String> = self
-            .delimiter
-            .fields(old)
-            .into_iter()
-            .map(|field| field.into_owned())
-            .collect();
-        fields.resize(fields.len().max(self.columns.len()), String::new());
-        let number = |value: Option<f64>| value.map(|value| value.to_string());
-        let values = [
-            station.wmo.clone(),
-            station.wigos.clone(),
-            station.icao.clone(),
-            station.name.clone(),
-            number(station.position.map(|place| place.latitude)),
-            number(station.position.map(|place| place.longitude)),
-            number(station.elevation),
-        ];
-        for (field, column) in fields.iter_mut().zip(&self.columns) {
-            let value = column
-                .and_then(|column| values.get(column))
-                .cloned()
-                .flatten();
-            if let Some(value) = value {
-                // One line a row, whatever was typed.
-                *field = value.replace(['\n', '\r'], " ");
-            }
-        }
-        self.delimiter.join(&fields)
-    }
-}
-
-/// Whether a line is neither blank nor a remark.
-fn is_row(line: &str) -> bool {
-    !line.trim().is_empty() && !line.trim_start().starts_with('#')
-}
-
 /// Given fields replace, absent ones leave what is there.
 fn merge(known: &mut Station, new: Station) {
     let Station {
@@ -575,42 +415,10 @@ fn keys(station: &Station) -> Vec<String> {
     keys
 }
 
-/// A WMO number in five digits: zeros in front, lost in a spreadsheet, are put back.
-pub(crate) fn wmo_number(text: &str) -> Option<String> {
-    let text = text.trim();
-    let digits = (1..=5).contains(&text.len()) && text.bytes().all(|byte| byte.is_ascii_digit());
-    let zero = text.bytes().all(|byte| byte == b'0');
-    (digits && !zero).then(|| format!("{text:0>5}"))
-}
-
-/// A position, longitude brought to -180..=180; `None` off the globe.
-pub(crate) fn position(latitude: f64, longitude: f64) -> Option<Position> {
-    let longitude = if longitude > 180.0 {
-        longitude - 360.0
-    } else {
-        longitude
-    };
-    let on_globe = (-90.0..=90.0).contains(&latitude) && (-180.0..=180.0).contains(&longitude);
-    on_globe.then_some(Position {
-        latitude,
-        longitude,
-    })
-}
-
-/// Great-circle distance (haversine formula on a sphere of 6371 km).
-pub(crate) fn distance_km(a: Position, b: Position) -> f64 {
-    let half = |from: f64, to: f64| ((to - from).to_radians() / 2.0).sin().powi(2);
-    let along = half(a.latitude, b.latitude);
-    let across = half(a.longitude, b.longitude)
-        * a.latitude.to_radians().cos()
-        * b.latitude.to_radians().cos();
-    2.0 * 6371.0 * (along + across).clamp(0.0, 1.0).sqrt().asin()
-}
-
 #[cfg(test)]
 mod tests {
     use super::*;
-    use approx::assert_relative_eq;
+    use dewbound_sounding::Position;
 
     fn parse(text: &str) -> StationTable {
         let (table, notes) = StationTable::parse(text);
@@ -822,19 +630,6 @@ elevation_m,name,wmo,icao,lat,lon,wigos,remark
             ..named
         });
         assert_eq!(error.to_string(), "position 91, 0 is impossible");
-    }
-
-    /// A quarter of the circumference of the sphere used.
-    #[test]
-    fn distances() {
-        let pole = position(90.0, 0.0).unwrap();
-        let equator = position(0.0, 8.0).unwrap();
-        assert_relative_eq!(
-            distance_km(pole, equator),
-            6371.0 * std::f64::consts::FRAC_PI_2,
-            max_relative = 1e-12
-        );
-        assert_eq!(distance_km(equator, equator), 0.0);
     }
 
     #[test]

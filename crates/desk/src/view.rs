@@ -1,0 +1,146 @@
+//! What the window remembers that is no part of any document.
+
+use crate::args::ThemeName;
+use crate::timing::Timing;
+use dewbound_session::chart::{Units, View as ChartView};
+use dewbound_session::sounding::Parcel;
+use dewbound_session::{ItemId, Preview, RepairId, Revision, SurfaceQuantity};
+use eframe::egui;
+use std::collections::HashMap;
+
+/// Findings or numbers, where only one has room.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
+pub(crate) enum Tab {
+    /// Findings.
+    #[default]
+    Findings,
+    /// Numbers.
+    Numbers,
+}
+
+/// A box over the window.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub(crate) enum DialogBox {
+    /// What every key does.
+    Keys,
+    /// What the program is for, and what it is not.
+    About,
+    /// Who decides; asked at the first verdict.
+    Initials(String),
+    /// Paths, where the system offers no file dialog.
+    Paths(String),
+    /// Where the station lies: latitude and longitude as typed.
+    Position(String, String),
+    /// Everything the desk has to tell.
+    Messages,
+}
+
+/// What the pointer is doing since it went down.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(crate) enum Gesture {
+    /// Dragging a handle; `grab_k` is the handle's value less the value under the pointer when it was taken.
+    Handle {
+        /// Which.
+        quantity: SurfaceQuantity,
+        /// K.
+        grab_k: f64,
+    },
+    /// Dragging the working value of the response.
+    Response {
+        /// K.
+        grab_k: f64,
+    },
+    /// Dragging the paper.
+    Pan,
+    /// Given up with Esc; nothing until the button is up.
+    GivenUp,
+}
+
+/// A number being typed into a handle.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub(crate) struct Typing {
+    /// Which handle.
+    pub quantity: SurfaceQuantity,
+    /// So far.
+    pub text: String,
+}
+
+/// A repair seen but not applied, kept while its button is under the pointer.
+#[derive(Debug, Clone)]
+pub(crate) struct Previewed {
+    /// Of which sounding.
+    pub item: ItemId,
+    /// Of which revision.
+    pub revision: Revision,
+    /// Which repair.
+    pub repair: RepairId,
+    /// What it would make of the profile; `None`: it can't be told.
+    pub preview: Option<Preview>,
+}
+
+/// The window's own state.
+#[derive(Debug)]
+pub(crate) struct View {
+    /// Colours.
+    pub theme: ThemeName,
+    /// Size of everything.
+    pub zoom: f32,
+    /// Units shown.
+    pub units: Units,
+    /// Which tab.
+    pub tab: Tab,
+    /// Whose path is drawn.
+    pub parcel: Parcel,
+    /// Part of the diagram looked at, where it isn't the fitting one.
+    pub charts: HashMap<ItemId, ChartView>,
+    /// The open card.
+    pub card: Option<(ItemId, usize)>,
+    /// The repair being looked at.
+    pub previewed: Option<Previewed>,
+    /// The number being typed.
+    pub typing: Option<Typing>,
+    /// What the pointer is doing.
+    pub gesture: Option<Gesture>,
+    /// Where the chart is read, from the keyboard.
+    pub cursor: Option<egui::Pos2>,
+    /// The line over the chart until the first drag.
+    pub hint: bool,
+    /// Another sounding has become the current one: its line of the tray is brought into sight.
+    pub reveal: bool,
+    /// The box over the window.
+    pub dialog: Option<DialogBox>,
+    /// Computing times.
+    pub timing: Timing,
+    /// They are shown.
+    pub show_timing: bool,
+}
+
+impl View {
+    /// At the start.
+    pub fn new(theme: ThemeName, zoom: f32, show_timing: bool) -> Self {
+        Self {
+            theme,
+            zoom,
+            units: Units::default(),
+            tab: Tab::default(),
+            parcel: Parcel::Surface,
+            charts: HashMap::new(),
+            card: None,
+            previewed: None,
+            typing: None,
+            gesture: None,
+            cursor: None,
+            hint: false,
+            reveal: false,
+            dialog: None,
+            timing: Timing::default(),
+            show_timing,
+        }
+    }
+
+    /// The open card of a sounding.
+    pub fn open_card(&self, item: ItemId) -> Option<usize> {
+        self.card
+            .and_then(|(of, card)| (of == item).then_some(card))
+    }
+}

@@ -3,7 +3,7 @@
 use crate::wire;
 use dewbound_session::sounding::thermo::{Ascent, Temperature};
 use dewbound_session::sounding::{Numbers, Parcel};
-use dewbound_session::{Config, Item, Message, Session};
+use dewbound_session::{Analysed, Config, Item, Message, Office, ReadFailure, Session, read_file};
 use jiff::civil::date;
 use std::io;
 use std::path::{Path, PathBuf};
@@ -81,6 +81,20 @@ impl Desk {
     pub fn told(&self) -> Vec<String> {
         self.session.messages().iter().map(Message::line).collect()
     }
+}
+
+/// Every sounding of a file, analysed as `weigh` does without an office.
+///
+/// # Errors
+///
+/// When the file can't be read or holds no sounding.
+pub fn soundings_of(path: &Path) -> Result<Vec<Analysed>, ReadFailure> {
+    let office = Office::default();
+    let file = read_file(path, &office, None)?;
+    let soundings = file.soundings.into_iter();
+    Ok(soundings
+        .map(|sounding| Analysed::of(sounding, &office.thresholds))
+        .collect())
 }
 
 /// Degrees Celsius.

@@ -2,8 +2,9 @@
 
 #![allow(clippy::unwrap_used, clippy::expect_used)]
 
+use dewbound_session::Analysed;
 use dewbound_session::sounding::thermo::Ascent;
-use dewbound_session::{Analysed, Office, read_file};
+use dewbound_tests::desk::soundings_of;
 use dewbound_tests::open_data;
 use dewbound_tests::slow_parcel::{Lifted, Point, lift, mixed_start, most_unstable_start};
 
@@ -56,8 +57,8 @@ fn real_ascents_agree_with_a_slow_integration() {
         "csv/tropics_Padang_2012031518.csv",
         "csv/GTS_BUFR_KSGF_202305222307_01_SONDE.csv",
     ] {
-        let read = read_file(&folder.join(file), &Office::default(), None).unwrap();
-        let analysed = &read.soundings[0];
+        let soundings = soundings_of(&folder.join(file)).unwrap();
+        let analysed = &soundings[0];
         let levels = levels(analysed);
         let surface = levels[0];
         let surface = Point {

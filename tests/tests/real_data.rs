@@ -4,8 +4,8 @@
 
 use dewbound_session::sounding::Parcel;
 use dewbound_session::sounding::thermo::Ascent;
-use dewbound_session::{Analysed, Document, Office, Results, read_file, report};
-use dewbound_tests::desk::Desk;
+use dewbound_session::{Analysed, Document, Results, report};
+use dewbound_tests::desk::{Desk, soundings_of};
 use dewbound_tests::open_data;
 use serde_json::Value;
 
@@ -314,21 +314,21 @@ fn every_real_file_loads_and_every_number_is_one() {
     let Some(folder) = open_data::folder("every real file weighed") else {
         return;
     };
-    let (mut files, mut soundings, mut with_numbers) = (0, 0, 0);
+    let (mut files, mut count, mut with_numbers) = (0, 0, 0);
     for path in open_data::files(&folder).unwrap() {
         let name = path.file_name().unwrap().to_string_lossy().into_owned();
-        let read = read_file(&path, &Office::default(), None)
-            .unwrap_or_else(|failure| panic!("{}", failure.line(&name)));
-        assert!(!read.soundings.is_empty(), "{name}");
+        let soundings =
+            soundings_of(&path).unwrap_or_else(|failure| panic!("{}", failure.line(&name)));
+        assert!(!soundings.is_empty(), "{name}");
         files += 1;
-        for (index, analysed) in read.soundings.iter().enumerate() {
+        for (index, analysed) in soundings.iter().enumerate() {
             assert!(!analysed.sounding.demo, "{name}");
             assert_eq!(analysed.sounding.source.index, index, "{name}");
             with_numbers += usize::from(check(&format!("{name}, {index}"), analysed));
-            soundings += 1;
+            count += 1;
         }
     }
-    println!("{files} files, {soundings} soundings, {with_numbers} with numbers");
+    println!("{files} files, {count} soundings, {with_numbers} with numbers");
     // One of the station files holds winds only, 130 ascents of them.
-    assert!(files >= 37 && soundings >= 170 && with_numbers >= 47);
+    assert!(files >= 37 && count >= 170 && with_numbers >= 47);
 }

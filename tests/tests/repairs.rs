@@ -5,7 +5,7 @@
 
 use dewbound_session::sounding::Parcel;
 use dewbound_session::trust::Cost;
-use dewbound_session::{Command, Item, ItemId, RepairId, Session, SurfaceQuantity};
+use dewbound_session::{Command, Item, ItemId, RepairId, Results, Session, SurfaceQuantity};
 use dewbound_tests::desk::{Desk, cape_and_cin};
 
 type Shown = [(Option<f64>, Option<f64>); 3];
@@ -129,4 +129,42 @@ fn every_repair_of_the_demo_tray_costs_what_its_card_shows() {
         toggle_in_turn(session);
     }
     assert!(count >= 10, "{count} repairs");
+}
+
+#[test]
+fn while_dragging_the_headline_costs_are_those_of_the_value_under_the_pointer() {
+    let mut desk = Desk::demo().unwrap();
+    let session = &mut desk.session;
+    let ids: Vec<ItemId> = session.items().iter().map(Item::id).collect();
+    let mut compared = 0;
+    for id in ids {
+        session.apply(Command::Select(id));
+        session.apply(Command::BeginGesture);
+        for _ in 0..4 {
+            session.apply(Command::Nudge {
+                quantity: SurfaceQuantity::Dewpoint,
+                by_k: -0.7,
+                repeat: false,
+            });
+            let now = item(session);
+            let afresh = Results::of(now.analysed(), now.document());
+            assert_eq!(now.results().numbers, afresh.numbers);
+            for (card, anew) in now.results().cards.iter().zip(&afresh.cards) {
+                if let Some(headline) = card.headline {
+                    assert!(!card.is_stale(headline));
+                    assert_eq!(card.costs[headline], anew.costs[headline]);
+                    compared += 1;
+                }
+            }
+        }
+        session.apply(Command::EndGesture);
+        let now = item(session);
+        let afresh = Results::of(now.analysed(), now.document());
+        assert_eq!(
+            now.results().cards,
+            afresh.cards,
+            "in full when the drag is over"
+        );
+    }
+    assert!(compared >= 12, "{compared}");
 }

@@ -4,12 +4,12 @@
 
 use dewbound_formats::{ReadOptions, StationTable, read_path};
 use dewbound_sounding::{Amendments, Daylight, Numbers, Profile, Sounding, daylight};
+use dewbound_tests::open_data;
 use dewbound_trust::{
     Context, Cost, Finding, Grade, Priced, Thresholds, findings, price, rank, with_repair,
 };
 use std::collections::BTreeSet;
-use std::io::Write;
-use std::path::{Path, PathBuf};
+use std::path::Path;
 
 struct Judged {
     profile: Profile,
@@ -146,30 +146,15 @@ fn demo_soundings_tell_their_story_first() {
 /// Real ascents, which are not part of the repository: `DEWBOUND_OPEN_DATA` names the folder that holds them.
 #[test]
 fn real_ascents_are_judged_without_panic() {
-    let Some(folder) = std::env::var_os("DEWBOUND_OPEN_DATA").map(PathBuf::from) else {
-        assert!(
-            std::env::var_os("DEWBOUND_REQUIRE_ALL").is_none_or(|value| value != "1"),
-            "DEWBOUND_REQUIRE_ALL=1, but DEWBOUND_OPEN_DATA names no folder"
-        );
-        // Past the test harness, which hides what passing tests print.
-        let _ = writeln!(
-            std::io::stderr(),
-            "skipped: findings on real files (set DEWBOUND_OPEN_DATA to their folder)"
-        );
+    let Some(folder) = open_data::folder("findings on real files") else {
         return;
     };
     let mut judged = 0;
-    for part in ["csv", "temp", "igra"] {
-        for entry in std::fs::read_dir(folder.join(part)).unwrap() {
-            let path = entry.unwrap().path();
-            if path.extension().is_some_and(|extension| extension == "rst") {
-                continue;
-            }
-            let loaded = read_path(&path, &ReadOptions::default()).unwrap();
-            for sounding in &loaded.soundings {
-                judge(sounding).check(&path.display().to_string());
-                judged += 1;
-            }
+    for path in open_data::files(&folder).unwrap() {
+        let loaded = read_path(&path, &ReadOptions::default()).unwrap();
+        for sounding in &loaded.soundings {
+            judge(sounding).check(&path.display().to_string());
+            judged += 1;
         }
     }
     assert!(judged > 100, "{judged} soundings");

@@ -22,6 +22,7 @@ pub mod rules;
 mod synthetic;
 mod thresholds;
 mod toggle;
+mod turns;
 mod words;
 
 pub use column::*;

@@ -13,6 +13,7 @@ mod wet_thermometer;
 pub use early_end::EarlyEnd;
 pub use impossible_value::ImpossibleValue;
 pub use level_order::LevelOrder;
+pub(crate) use level_order::PASSES_APART;
 pub use moisture_slope::MoistureSlope;
 pub use superadiabatic_aloft::SuperadiabaticAloft;
 pub use superadiabatic_contact::SuperadiabaticContact;

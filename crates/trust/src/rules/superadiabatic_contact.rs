@@ -57,6 +57,9 @@ impl Rule for SuperadiabaticContact {
         falling_layers(&column.smooth_theta, 0..end, least)
             .into_iter()
             .filter(|layer| column.pressure[layer.base] > surface - near)
+            .filter(|layer| {
+                !view.passes_mixed(column.pressure[layer.base], column.pressure[layer.top])
+            })
             .filter_map(|layer| self.finding(view, surface, layer))
             .collect()
     }

@@ -4,7 +4,7 @@ use crate::turns::{Mixed, Turn, mixed_passes, turns};
 use crate::words::layer;
 use crate::{Column, Finding, Grade, Thresholds, rules};
 use dewbound_sounding::thermo::Pressure;
-use dewbound_sounding::{Daylight, Numbers, Profile, Sounding};
+use dewbound_sounding::{Daylight, Numbers, Profile, Sounding, missing_for_daylight};
 
 /// Everything a rule may look at. Read only.
 #[derive(Debug, Clone, Copy)]
@@ -57,6 +57,11 @@ impl<'a> View<'a> {
 
     pub(crate) fn threshold(&self, name: &str) -> f64 {
         self.context.thresholds.get(name)
+    }
+
+    /// What is missing to tell day from night, for a sentence that says so.
+    pub(crate) fn missing_for_daylight(&self) -> &'static str {
+        missing_for_daylight(self.context.sounding)
     }
 
     /// Heights above mean sea level of the two ends of a layer, m, when something anchors them.

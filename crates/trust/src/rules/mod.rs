@@ -8,6 +8,7 @@ mod repair;
 mod superadiabatic_aloft;
 mod superadiabatic_contact;
 mod surface_mismatch;
+mod unsettled;
 mod wet_thermometer;
 
 pub use early_end::EarlyEnd;
@@ -17,5 +18,5 @@ pub(crate) use level_order::PASSES_APART;
 pub use moisture_slope::MoistureSlope;
 pub use superadiabatic_aloft::SuperadiabaticAloft;
 pub use superadiabatic_contact::SuperadiabaticContact;
-pub use surface_mismatch::SurfaceMismatch;
+pub use surface_mismatch::{Refuted, RefutedSurface, SurfaceMismatch};
 pub use wet_thermometer::WetThermometer;

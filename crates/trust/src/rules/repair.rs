@@ -123,6 +123,31 @@ pub(super) fn surface_temperature(
     }
 }
 
+/// Surface temperature and dew point set.
+pub(super) fn surface_air(
+    id: &'static str,
+    temperature: Temperature,
+    dewpoint: Temperature,
+    because: &str,
+) -> Repair {
+    Repair {
+        id,
+        what: format!(
+            "Set the surface temperature to {} and the dew point to {}, {because}",
+            celsius(temperature),
+            celsius(dewpoint)
+        ),
+        amendments: vec![
+            Amendment::SurfaceTemperature {
+                temperature_k: temperature.k(),
+            },
+            Amendment::SurfaceDewpoint {
+                dewpoint_k: dewpoint.k(),
+            },
+        ],
+    }
+}
+
 /// Mixing ratio of a layer set.
 pub(super) fn mixed_moisture(
     id: &'static str,

@@ -126,8 +126,8 @@ impl Rule for SurfaceMismatch {
         "The surface dew point or temperature doesn't continue into the first levels of the sonde. Moisture is compared \
          as mixing ratio brought to one pressure, never as dew points at two; temperature as theta, by day or when no \
          ground inversion explains it. The sonde may be carried down as constant or along its own slope, whichever is \
-         nearer the surface value. Also first rows of the sonde that differ from both the surface and the levels above \
-         while the most unstable parcel starts from them."
+         nearer the surface value. Also first rows of the sonde moister than the surface, when the most unstable parcel \
+         starts from them and that costs much."
     }
 
     fn thresholds(&self) -> &'static [&'static str] {
@@ -211,7 +211,7 @@ pub(super) fn carried_down(points: &[(f64, f64)], surface: f64) -> Option<(f64, 
 }
 
 /// How far `value` lies outside the range between two expectations.
-pub(super) fn outside(value: f64, (a, b): (f64, f64)) -> f64 {
+fn outside(value: f64, (a, b): (f64, f64)) -> f64 {
     value - value.clamp(a.min(b), a.max(b))
 }
 

@@ -1,13 +1,14 @@
-//! First rows of a sonde whose sensors still tell of the launch place, when a parcel starts from them.
+//! First rows of a sonde that are moister than the surface, when a parcel starts from them.
 
-use super::surface_mismatch::{SurfaceMismatch, at_pressure, carried_down, outside};
+use super::repair;
+use super::surface_mismatch::{SurfaceMismatch, at_pressure, carried_down};
 use crate::words::{layer, number};
 use crate::{Evidence, Finding, Grade, Repair, Rule, View};
 use dewbound_sounding::Amendment;
-use dewbound_sounding::thermo::Pressure;
+use dewbound_sounding::thermo::{Pressure, Temperature};
 
-/// The most unstable parcel of fine data starts within the first few hPa, from air moister than the surface and than the
-/// levels above lead to, and has far more CAPE than the surface parcel.
+/// The most unstable parcel of fine data starts within the first few hPa, from air moister than the surface, and has far
+/// more CAPE than the surface parcel.
 ///
 /// `levels`: the first settled levels.
 pub(super) fn look(view: &View, surface: f64, levels: &[usize]) -> Option<Finding> {
@@ -25,46 +26,66 @@ pub(super) fn look(view: &View, surface: f64, levels: &[usize]) -> Option<Findin
     {
         return None;
     }
+    let measured = at_pressure(surface, column.mixing_ratio.first().copied().flatten()?);
+    let rows = (1..settled)
+        .filter_map(|level| column.mixing_ratio[level])
+        .map(|w| at_pressure(surface, w))
+        .reduce(f64::max)?;
+    let excess = rows - measured;
+    if excess < view.threshold("surface-mismatch.unsettled_k") {
+        return None;
+    }
     let points: Vec<(f64, f64)> = levels
         .iter()
         .filter_map(|&level| Some((column.pressure[level], column.mixing_ratio[level]?)))
         .collect();
-    let (constant, along) = carried_down(&points, surface)?;
-    let expected = [constant, along].map(|w| at_pressure(surface, w));
-    let measured = at_pressure(surface, column.mixing_ratio.first().copied().flatten()?);
-    let lowest = expected[0].min(expected[1]).min(measured);
-    let highest = expected[0].max(expected[1]).max(measured);
-    let excess = (1..settled)
-        .filter_map(|level| column.mixing_ratio[level])
-        .map(|w| outside(at_pressure(surface, w), (lowest, highest)))
-        .fold(0.0, f64::max);
-    if excess < view.threshold("surface-mismatch.unsettled_k") {
-        return None;
-    }
+    let (constant, _) = carried_down(&points, surface)?;
+    let above = rows - at_pressure(surface, constant);
     let (bottom, top) = (
         Pressure::from_pa(surface),
         Pressure::from_pa(column.pressure[settled]),
     );
     let span = layer(bottom, top);
+    let mut repairs = vec![Repair {
+        id: "drop-first-rows",
+        what: format!("Drop the rows between the surface and {}", layer(top, top)),
+        amendments: vec![Amendment::DropLevels {
+            bottom_pa: bottom.pa(),
+            top_pa: top.pa(),
+        }],
+    }];
+    if rows <= column.temperature[0] {
+        repairs.push(repair::surface_dewpoint(
+            "dewpoint-from-first-rows",
+            Temperature::from_k(rows),
+            "believing the first rows",
+        ));
+    }
     Some(Finding {
         rule: SurfaceMismatch.id(),
-        title: "First rows of the sonde stand apart",
+        title: "Surface and first rows of the sonde disagree",
         grade: Grade::Doubtful,
         bottom: Some(bottom),
         top: Some(top),
         heights: view.heights(bottom, top),
         summary: format!(
-            "The first rows of the sonde, {span}, are moister than the surface and than the levels above lead to, by {} K as dew \
-             point at surface pressure; the most unstable parcel starts from them with {} J/kg more CAPE than the surface \
-             parcel.",
+            "The first rows of the sonde, {span}, are moister than the surface by up to {} K as dew point at surface pressure; \
+             the most unstable parcel starts from them with {} J/kg more CAPE than the surface parcel.",
             number(excess, 1),
             number(gain, 0)
         ),
         evidence: vec![
             Evidence::new(
                 "excess_dewpoint_k",
-                "first rows moister, as dew point at surface pressure, by up to",
+                "first rows minus surface, as dew point at surface pressure",
                 excess,
+                "K",
+                1,
+            ),
+            Evidence::new(
+                "excess_above_k",
+                "first rows minus the levels next above, as dew point at surface pressure",
+                above,
                 "K",
                 1,
             ),
@@ -76,21 +97,15 @@ pub(super) fn look(view: &View, surface: f64, levels: &[usize]) -> Option<Findin
                 0,
             ),
         ],
-        guilty: "The sensors still told of the place of launch (wet ground or hands, a shelter, still air) or pressure \
-                 wandered before release; the air of the parcel was never there."
+        guilty: "The sonde's sensors still told of the place of launch (wet ground or hands, a shelter, still air), or \
+                 pressure wandered before release: then the most unstable parcel starts from air that was never there. Or \
+                 the surface value is too dry: then the surface parcel has too little CAPE."
             .into(),
-        innocent: "A skin of moist air over wet ground, crops or water, moister than the screen and only a few metres deep: it \
-                   can't feed a storm for long."
+        innocent: "A skin of moist air over wet ground, crops or water, a few metres deep and missed by the screen: it can't \
+                   feed a storm for long."
             .into(),
         caveat: String::new(),
-        repairs: vec![Repair {
-            id: "drop-first-rows",
-            what: format!("Drop the rows between the surface and {}", layer(top, top)),
-            amendments: vec![Amendment::DropLevels {
-                bottom_pa: bottom.pa(),
-                top_pa: top.pa(),
-            }],
-        }],
+        repairs,
         wind_only: false,
     })
 }

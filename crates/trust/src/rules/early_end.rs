@@ -103,7 +103,7 @@ impl EarlyEnd {
         let awaited = view.context.sounding.completeness == Completeness::LaterPartsNotReceived;
         let mut summary = if clues.descending {
             format!(
-                "Measured on the way down by a sonde released aloft: nothing is known of the air above {} hPa ({})",
+                "A sonde released aloft starts at {} hPa ({})",
                 number(top.hpa(), 0),
                 celsius(temperature)
             )

@@ -146,10 +146,10 @@ fn remarks(analysed: &Analysed, results: &Results) -> String {
     lines.extend(limits(&results.numbers));
     lines.extend(results.working.notes.iter().map(wording::note));
     if analysed.daylight == crate::sounding::Daylight::Unknown {
-        lines.push(
-            "day or night not known (no time or no position), so some rules stay at doubtful"
-                .to_owned(),
-        );
+        lines.push(format!(
+            "day or night not known ({}), so some rules stay at doubtful",
+            crate::sounding::missing_for_daylight(&analysed.sounding)
+        ));
     }
     let mut text = String::from("\n");
     for line in lines {

@@ -151,7 +151,11 @@ fn the_object_has_the_keys_of_schema_1_and_no_others() {
             keys(&parcel["start"]),
             ["dewpoint_c", "pressure_hpa", "temperature_c"]
         );
-        assert_eq!(keys(&parcel["range"]), ["cape_jkg", "cin_jkg"]);
+        assert_eq!(
+            keys(&parcel["range"]),
+            ["cape_jkg", "cin_absent_somewhere", "cin_jkg"]
+        );
+        assert!(parcel["range"]["cin_absent_somewhere"].is_boolean());
         let (cape, least, most) = (
             number(parcel, "/cape_jkg"),
             number(parcel, "/range/cape_jkg/0"),
@@ -308,6 +312,7 @@ fn absent_is_null() {
         assert_eq!(surface[key], Value::Null, "{key}");
     }
     assert_eq!(surface["range"]["cin_jkg"], Value::Null);
+    assert_eq!(surface["range"]["cin_absent_somewhere"], true);
 }
 
 #[test]

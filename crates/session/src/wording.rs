@@ -1,6 +1,6 @@
 //! Numbers as people read them: one precision a quantity, a real minus sign, the unit always there.
 
-use crate::Extremes;
+use crate::{Extremes, ParcelRange};
 use crate::sounding::{Note, Parcel, Place, Sounding};
 use crate::thermo::{Ascent, Pressure, Temperature};
 use crate::trust::{Change, Cost};
@@ -80,6 +80,18 @@ pub fn range(extremes: &Extremes) -> String {
         format!("{mark}{least}")
     } else {
         format!("{mark}{least} to {mark}{most}")
+    }
+}
+
+/// Range of CIN: "−30 to 0"; "−30 to 0, or none" where there is no free convection somewhere inside; "none" when that is
+/// so throughout.
+pub fn cin_range(of: &ParcelRange) -> String {
+    match &of.cin {
+        None => "none".to_owned(),
+        Some(extremes) if of.sometimes_no_free_convection => {
+            format!("{}, or none", range(extremes))
+        }
+        Some(extremes) => range(extremes),
     }
 }
 
@@ -197,5 +209,25 @@ mod tests {
         extremes.most = 250.0;
         extremes.at_least = true;
         assert_eq!(range(&extremes), "≥ 100 to ≥ 250");
+    }
+
+    #[test]
+    fn a_range_of_cin_says_where_there_is_none() {
+        let at = Temperature::from_c(10.0);
+        let mut of = ParcelRange {
+            cin: Some(Extremes {
+                least: -30.0,
+                least_at: at,
+                most: -0.2,
+                most_at: at,
+                at_least: false,
+            }),
+            ..ParcelRange::default()
+        };
+        assert_eq!(cin_range(&of), "\u{2212}30 to 0");
+        of.sometimes_no_free_convection = true;
+        assert_eq!(cin_range(&of), "\u{2212}30 to 0, or none");
+        of.cin = None;
+        assert_eq!(cin_range(&of), "none");
     }
 }

@@ -110,7 +110,7 @@ fn numbers(results: &Results) -> String {
             .cin
             .map_or_else(|| "none".to_owned(), |cin| number(cin, 0))
     });
-    add("  in range", &|_, range| ends(&range.cin));
+    add("  in range", &|_, range| wording::cin_range(range));
     add("starts at, hPa", &|ascent, _| {
         level(Some(ascent.start.pressure))
     });

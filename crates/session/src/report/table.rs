@@ -1,7 +1,7 @@
 //! One sounding for people.
 
 use super::columns::aligned;
-use crate::sounding::{Numbers, Parcel};
+use crate::sounding::{Numbers, Parcel, Profile};
 use crate::thermo::{Ascent, Pressure};
 use crate::trust::{Evidence, Finding, Grade};
 use crate::wording::{
@@ -143,7 +143,7 @@ fn remarks(analysed: &Analysed, results: &Results) -> String {
         lines.push(format!("no range: {}", results.doubt.problem));
     }
     lines.push(results.which_parcel.clone());
-    lines.extend(limits(&results.numbers));
+    lines.extend(limits(&results.working.profile, &results.numbers));
     lines.extend(results.working.notes.iter().map(wording::note));
     if analysed.daylight == crate::sounding::Daylight::Unknown {
         lines.push(
@@ -159,14 +159,18 @@ fn remarks(analysed: &Analysed, results: &Results) -> String {
     text
 }
 
-fn limits(numbers: &Numbers) -> Vec<String> {
+fn limits(profile: &Profile, numbers: &Numbers) -> Vec<String> {
     let mut lines = Vec::new();
     if Parcel::ALL
         .into_iter()
         .filter_map(|which| numbers.parcel(which))
         .any(|ascent| ascent.at_least)
+        && let Some(top) = profile.top()
     {
-        lines.push("≥: a lower limit; the profile ends before the parcel does".to_owned());
+        lines.push(format!(
+            "≥: a lower limit: the sounding ends at {}, and what a parcel would do above isn't counted",
+            pressure(top)
+        ));
     }
     if let Some(start) = numbers.starts_at {
         lines.push(format!(

@@ -107,11 +107,13 @@ pub fn time(time: Option<Timestamp>) -> String {
     )
 }
 
-/// Valid time of a sounding; says so when month and year were assumed.
+/// Valid time of a sounding; says so when month and year, or the day, were assumed.
 pub fn valid_time(sounding: &Sounding) -> String {
     let text = time(sounding.times.valid());
     if sounding.times.assumed {
         format!("{text} (month and year assumed)")
+    } else if sounding.times.day_assumed {
+        format!("{text} (day assumed)")
     } else {
         text
     }
@@ -193,6 +195,24 @@ mod tests {
         assert_eq!(energy_change(0.6), "+1 J/kg");
         assert_eq!(energy(Some(1850.4), true), "≥ 1850 J/kg");
         assert_eq!(energy(None, false), "none");
+    }
+
+    #[test]
+    fn a_time_says_what_of_it_was_assumed() {
+        let mut sounding = Sounding::default();
+        sounding.times.launch = "2031-06-14T23:30:00Z".parse().ok();
+        assert_eq!(valid_time(&sounding), "2031-06-14 23:30 UTC");
+        sounding.times.day_assumed = true;
+        assert_eq!(valid_time(&sounding), "2031-06-14 23:30 UTC (day assumed)");
+        sounding.times = crate::sounding::Times {
+            assumed: true,
+            day_assumed: false,
+            ..sounding.times
+        };
+        assert_eq!(
+            valid_time(&sounding),
+            "2031-06-14 23:30 UTC (month and year assumed)"
+        );
     }
 
     #[test]

@@ -365,6 +365,12 @@ mod tests {
         let parse = |time: Option<&str>| time.map(|time| time.parse().unwrap());
         assert_eq!(sounding.times.nominal, parse(nominal));
         assert_eq!(sounding.times.launch, parse(launch));
+        // Without the hour the day of the release is a guess; year and month never are.
+        let guessed = nominal.is_none() && launch.is_some();
+        assert_eq!(
+            (sounding.times.assumed, sounding.times.day_assumed),
+            (false, guessed)
+        );
         assert_eq!(sounding.notes.len(), notes, "{:?}", sounding.notes);
     }
 

@@ -28,6 +28,7 @@ pub fn read(name: &str, bytes: &[u8], options: &ReadOptions) -> Result<Loaded, R
                 let words: Vec<_> = notes.iter().take(NAMED).map(said).collect();
                 let more = match notes.len().saturating_sub(NAMED) {
                     0 => String::new(),
+                    1 => "; and 1 more note".into(),
                     more => format!("; and {more} more notes"),
                 };
                 format!("no sounding in it: {}{more}", words.join("; "))
@@ -128,7 +129,10 @@ fn read_container(name: &str, bytes: &[u8], options: &ReadOptions) -> Result<Loa
     if more > 0 {
         loaded.notes.push(Note {
             place: Place::File,
-            what: format!("{more} more members hold no sounding"),
+            what: match more {
+                1 => "1 more member holds no sounding".into(),
+                more => format!("{more} more members hold no sounding"),
+            },
             why: String::new(),
         });
     }

@@ -1,9 +1,9 @@
 //! Numbers as people read them: one precision a quantity, a real minus sign, the unit always there.
 
-use crate::{Extremes, ParcelRange};
 use crate::sounding::{Note, Parcel, Place, Sounding};
 use crate::thermo::{Ascent, Pressure, Temperature};
 use crate::trust::{Change, Cost};
+use crate::{Extremes, ParcelRange};
 use jiff::{Timestamp, tz::TimeZone};
 
 /// The sentence that goes wherever the numbers go.
@@ -30,6 +30,11 @@ pub fn energy(value: Option<f64>, at_least: bool) -> String {
         Some(value) => format!("{} J/kg", number(value, 0)),
         None => "none".to_owned(),
     }
+}
+
+/// "1 level", "3 levels".
+pub fn counted(count: usize, one: &str, many: &str) -> String {
+    format!("{count} {}", if count == 1 { one } else { many })
 }
 
 /// A change with its sign: "+320 J/kg", "−40 J/kg", "±0 J/kg".
@@ -119,45 +124,52 @@ pub fn valid_time(sounding: &Sounding) -> String {
     }
 }
 
-/// The change of a cost that counts most: "CAPE −850 J/kg (mixed)"; "cost unknown" without one.
+/// The change of a cost that counts most: "CAPE −850 J/kg (mixed)"; "no change in CAPE" where all of it reads as zero;
+/// "cost unknown" without one.
 pub fn cost(cost: Option<&Cost>) -> String {
-    match cost.and_then(worst_change) {
-        Some((which, change)) => {
-            let mut text = format!(
-                "CAPE {} ({})",
-                energy_change(change.cape.unwrap_or_default()),
+    let Some((which, change)) = cost.and_then(worst_change) else {
+        return "cost unknown".to_owned();
+    };
+    let shows = |value: &f64| value.abs() >= 0.5;
+    let cin = change.cin.filter(shows).map(energy_change);
+    match (change.cape.filter(shows), cin) {
+        (Some(cape), None) => format!("CAPE {} ({})", energy_change(cape), parcel(which)),
+        (Some(cape), Some(cin)) => {
+            format!(
+                "CAPE {} ({}), CIN {cin}",
+                energy_change(cape),
                 parcel(which)
-            );
-            if let Some(cin) = change.cin.filter(|cin| cin.abs() >= 0.5) {
-                text.push_str(&format!(", CIN {}", energy_change(cin)));
-            }
-            text
+            )
         }
-        None => "cost unknown".to_owned(),
+        (None, None) => "no change in CAPE".to_owned(),
+        (None, Some(cin)) => format!("no change in CAPE; CIN {cin} ({})", parcel(which)),
     }
 }
 
-/// The parcel whose CAPE changes most, and by how much.
+/// The parcel whose CAPE changes most, and by how much; of changes that read alike, that with the largest change of CIN.
 pub fn worst_change(cost: &Cost) -> Option<(Parcel, Change)> {
-    let mut worst: Option<(Parcel, Change, f64)> = None;
+    let mut worst: Option<(Parcel, Change, (f64, f64))> = None;
     for which in Parcel::ALL {
         let change = cost.parcel(which);
-        if let Some(size) = change.cape.map(f64::abs)
-            && worst.is_none_or(|(.., largest)| size > largest)
-        {
+        let Some(cape) = change.cape else { continue };
+        let size = (
+            cape.abs().round(),
+            change.cin.unwrap_or_default().abs().round(),
+        );
+        if worst.is_none_or(|(.., largest)| size > largest) {
             worst = Some((which, change, size));
         }
     }
     worst.map(|(which, change, _)| (which, change))
 }
 
-/// "line 12", "level 3", "byte 100"; empty for the file as a whole.
+/// "line 12", "byte 100"; empty for the file as a whole, and for a level of the merged profile, whose number means nothing
+/// to people: such notes name the surface or the pressure.
 pub fn place(place: Place) -> String {
     match place {
-        Place::File => String::new(),
+        Place::File | Place::Level(_) => String::new(),
         Place::Line(line) => format!("line {line}"),
         Place::Byte(byte) => format!("byte {byte}"),
-        Place::Level(level) => format!("level {level}"),
     }
 }
 
@@ -195,6 +207,34 @@ mod tests {
         assert_eq!(energy_change(0.6), "+1 J/kg");
         assert_eq!(energy(Some(1850.4), true), "≥ 1850 J/kg");
         assert_eq!(energy(None, false), "none");
+    }
+
+    #[test]
+    fn a_cost_names_what_changes() {
+        let change = |cape, cin| Change {
+            cape: Some(cape),
+            cin: Some(cin),
+        };
+        let cost = |surface, mixed| {
+            super::cost(Some(&Cost {
+                surface,
+                mixed,
+                most_unstable: change(0.0, 0.0),
+            }))
+        };
+        let none = change(-0.2, 0.1);
+        assert_eq!(cost(none, change(0.3, 0.0)), "no change in CAPE");
+        assert_eq!(
+            cost(none, change(0.0, 12.0)),
+            "no change in CAPE; CIN +12 J/kg (mixed)"
+        );
+        assert_eq!(
+            cost(change(850.0, 0.0), change(-850.4, -5.0)),
+            "CAPE \u{2212}850 J/kg (mixed), CIN \u{2212}5 J/kg"
+        );
+        assert_eq!(super::cost(None), "cost unknown");
+        assert_eq!(counted(1, "level", "levels"), "1 level");
+        assert_eq!(counted(0, "level", "levels"), "0 levels");
     }
 
     #[test]

@@ -143,7 +143,8 @@ impl Record<'_> {
         {
             notes.add(
                 format!(
-                    "the header announces {announced} levels, {} follow",
+                    "the header announces {announced} level{}, {} follow",
+                    if announced == 1 { "" } else { "s" },
                     self.rows.len()
                 ),
                 "the record may be cut short",

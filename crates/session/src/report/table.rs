@@ -54,7 +54,7 @@ fn heading(analysed: &Analysed) -> String {
 fn condition(analysed: &Analysed, results: &Results) -> String {
     let profile = &analysed.profile;
     let dry = analysed.humidity_missing();
-    let mut text = format!("{} levels", analysed.usable_rows().len());
+    let mut text = wording::counted(analysed.usable_rows().len(), "level", "levels");
     if let Some(top) = profile.top() {
         text.push_str(&format!(" up to {}", pressure(top)));
     }
@@ -181,14 +181,14 @@ fn limits(profile: &Profile, numbers: &Numbers) -> Vec<String> {
     if let Some(humidity) = numbers.humidity {
         if humidity.interpolated > 0 {
             lines.push(format!(
-                "{} levels with interpolated dew point",
-                humidity.interpolated
+                "{} with interpolated dew point",
+                wording::counted(humidity.interpolated, "level", "levels")
             ));
         }
         if let Some(from) = humidity.dry_above {
             lines.push(format!(
-                "{} levels above {} counted as dry",
-                humidity.dry,
+                "{} above {} counted as dry",
+                wording::counted(humidity.dry, "level", "levels"),
                 pressure(from)
             ));
         }

@@ -182,14 +182,32 @@ fn read_plain(
         return Err(
             columns::complaint(shown, &text, false).unwrap_or_else(|| ReadError::Unrecognised {
                 file: file(),
-                hint: "a table needs a header such as pressure_hpa,temperature_c,dewpoint_c; a bulletin starts with \
-                       TTAA, TTBB, TTCC or TTDD"
-                    .into(),
+                hint: format!(
+                    "a table needs a header such as pressure_hpa,temperature_c,dewpoint_c; a bulletin starts with TTAA, TTBB, \
+                     TTCC or TTDD; this file starts with `{}`",
+                    beginning(&text)
+                ),
             }),
         );
     };
     loaded.notes.splice(0..0, notes);
     Ok(loaded)
+}
+
+/// The first line that isn't blank, cut short.
+fn beginning(text: &str) -> String {
+    const LONGEST: usize = 40;
+    let line = text.lines().map(str::trim).find(|line| !line.is_empty());
+    let line = line.unwrap_or_default();
+    let mut start: String = line
+        .chars()
+        .filter(|c| !c.is_control())
+        .take(LONGEST)
+        .collect();
+    if line.chars().nth(LONGEST).is_some() {
+        start.push('…');
+    }
+    start
 }
 
 /// What every sounding gets, whatever its format: file, index, and what the station table knows.

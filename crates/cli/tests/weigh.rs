@@ -463,7 +463,11 @@ fn the_station_table_fills_in_what_the_message_lacks() {
         "wmo,name,lat,lon,elevation_m\n99001,Nether Vale,41,-146,400\n",
     );
     let without = out(&run(&["weigh", &path]));
-    assert!(without.contains("day or night not known"), "{without}");
+    assert!(
+        without.contains("day or night not known")
+            && without.contains("no position (add the station to stations.csv)"),
+        "{without}"
+    );
     let with = out(&run(&["weigh", "--stations", &table, &path]));
     assert!(!with.contains("day or night not known"), "{with}");
 }
@@ -561,6 +565,45 @@ fn the_table_for_people_has_the_numbers_with_range_the_findings_with_cost_and_th
             .any(|line| line.starts_with("CAPE") && line.matches('≥').count() == 3),
         "{text}"
     );
+}
+
+#[test]
+fn wind_only_takes_a_line_and_not_a_table() {
+    let folder = tempfile::tempdir().unwrap();
+    let path = file(
+        &folder,
+        "winds.csv",
+        "# time: 2031-06-14T22:00:00Z\npressure_hpa,wind_dir_deg,wind_speed_kt\n1000,180,10\n850,200,20\n700,220,30\n",
+    );
+    let text = out(&run(&["weigh", &path]));
+    assert!(
+        text.contains("wind only, 3 levels: no temperature, so no parcels\n"),
+        "{text}"
+    );
+    assert!(
+        !text.contains("CAPE") && !text.contains("day or night"),
+        "{text}"
+    );
+}
+
+#[test]
+fn the_long_help_says_what_the_object_holds() {
+    let text = out(&run(&["weigh", "--help"]));
+    let folder = tempfile::tempdir().unwrap();
+    let object = one(&["weigh", "--json", &file(&folder, "vale.csv", VALE)]);
+    for key in keys(&object).into_iter().filter(|key| *key != "schema") {
+        assert!(
+            text.lines()
+                .any(|line| line.starts_with(&format!("  {key} "))),
+            "{key}: {text}"
+        );
+    }
+    for key in keys(&object["parcels"]["surface"]["range"]) {
+        assert!(text.contains(key), "{key}: {text}");
+    }
+    for place in ["line", "byte", "level", "file"] {
+        assert!(text.contains(&format!("{{\"{place}\":")), "{place}: {text}");
+    }
 }
 
 #[test]

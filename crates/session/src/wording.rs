@@ -124,6 +124,21 @@ pub fn valid_time(sounding: &Sounding) -> String {
     }
 }
 
+/// What a sounding lacks for day or night to be known, and what to do about it.
+pub fn daylight_lacks(sounding: &Sounding) -> String {
+    let station = &sounding.station;
+    let position = if station.position.is_some() {
+        None
+    } else if station.wmo.is_some() || station.wigos.is_some() || station.icao.is_some() {
+        Some("no position (add the station to stations.csv)")
+    } else {
+        Some("no position, and no station number to look it up by")
+    };
+    let time = sounding.times.valid().is_none().then_some("no time");
+    let lacks: Vec<&str> = [time, position].into_iter().flatten().collect();
+    lacks.join("; ")
+}
+
 /// The change of a cost that counts most: "CAPE −850 J/kg (mixed)"; "no change in CAPE" where all of it reads as zero;
 /// "cost unknown" without one.
 pub fn cost(cost: Option<&Cost>) -> String {
@@ -207,6 +222,21 @@ mod tests {
         assert_eq!(energy_change(0.6), "+1 J/kg");
         assert_eq!(energy(Some(1850.4), true), "≥ 1850 J/kg");
         assert_eq!(energy(None, false), "none");
+    }
+
+    #[test]
+    fn what_day_and_night_lack_is_named_with_the_remedy() {
+        let mut sounding = Sounding::default();
+        assert_eq!(
+            daylight_lacks(&sounding),
+            "no time; no position, and no station number to look it up by"
+        );
+        sounding.station.wmo = Some("99001".to_owned());
+        sounding.times.nominal = "2031-06-14T12:00:00Z".parse().ok();
+        assert_eq!(
+            daylight_lacks(&sounding),
+            "no position (add the station to stations.csv)"
+        );
     }
 
     #[test]

@@ -12,10 +12,19 @@ use crate::{Analysed, Card, Extremes, ParcelRange, Results};
 /// The table of `weigh` for one sounding.
 pub fn table(analysed: &Analysed, results: &Results) -> String {
     let mut text = heading(analysed);
-    text.push_str(&condition(analysed, results));
-    text.push('\n');
-    text.push_str(&numbers(results));
-    text.push_str(&remarks(analysed, results));
+    if is_wind_only(analysed) {
+        text.push_str(&wind_only(analysed, results));
+    } else {
+        text.push_str(&condition(analysed, results));
+        if Parcel::ALL
+            .into_iter()
+            .any(|which| results.numbers.parcel(which).is_some())
+        {
+            text.push('\n');
+            text.push_str(&numbers(results));
+        }
+        text.push_str(&remarks(analysed, results));
+    }
     text.push_str(&findings(analysed, results));
     text.push_str(&notes(analysed));
     text.push_str(&format!("\n{CAUTION}.\n"));
@@ -47,6 +56,23 @@ fn heading(analysed: &Analysed) -> String {
         text.push_str(&format!(", sounding {}", sounding.source.index + 1));
     }
     text.push('\n');
+    text
+}
+
+fn is_wind_only(analysed: &Analysed) -> bool {
+    let profile = &analysed.profile;
+    profile.temperature.iter().all(Option::is_none) && profile.wind.iter().any(Option::is_some)
+}
+
+fn wind_only(analysed: &Analysed, results: &Results) -> String {
+    let winds = analysed.profile.wind.iter().flatten().count();
+    let mut text = format!(
+        "wind only, {}: no temperature, so no parcels\n",
+        wording::counted(winds, "level", "levels")
+    );
+    for note in &results.working.notes {
+        text.push_str(&format!("{}\n", wording::note(note)));
+    }
     text
 }
 
@@ -146,10 +172,10 @@ fn remarks(analysed: &Analysed, results: &Results) -> String {
     lines.extend(limits(&results.working.profile, &results.numbers));
     lines.extend(results.working.notes.iter().map(wording::note));
     if analysed.daylight == crate::sounding::Daylight::Unknown {
-        lines.push(
-            "day or night not known (no time or no position), so some rules stay at doubtful"
-                .to_owned(),
-        );
+        lines.push(format!(
+            "day or night not known, so some rules stay at doubtful: {}",
+            wording::daylight_lacks(&analysed.sounding)
+        ));
     }
     let mut text = String::from("\n");
     for line in lines {

@@ -17,12 +17,15 @@ pub fn run(options: &Weigh, output: &mut Output) -> Result<bool> {
     let (office, problems) =
         Office::load(options.stations.as_deref(), options.thresholds.as_deref());
     for problem in &problems {
-        say(&format!(
-            "{}: {}. {}",
-            problem.about, problem.what, problem.remedy
-        ));
+        for line in problem.what.lines() {
+            say(&format!("{}: {line}", problem.about));
+        }
+        if !problem.unused {
+            say(&format!("{}: {}", problem.about, problem.remedy));
+        }
     }
     if problems.iter().any(|problem| problem.unused) {
+        say("Nothing was weighed: correct the file, or leave its option out");
         return Ok(false);
     }
     let mut all = true;

@@ -361,7 +361,25 @@ fn exit_codes_and_streams() {
         (output.status.code(), out(&output)),
         (Some(1), String::new())
     );
-    assert!(err(&output).contains("list.csv"));
+    assert!(err(&output).contains("list.csv") && err(&output).contains("Nothing was weighed"));
+    // Each line of what is wrong says in which file; rows that can be used are.
+    let table = file(
+        &folder,
+        "table.csv",
+        "wmo,name,lat,lon,elevation_m\n99002,A,95,10,1\n99003,B,40,500,1\n99001,Nether Vale,41,-146,400\n",
+    );
+    let output = run(&["weigh", "--stations", &table, &good]);
+    assert_eq!(output.status.code(), Some(0), "{}", err(&output));
+    assert!(out(&output).starts_with("Upper Vale"));
+    let told = err(&output);
+    assert!(
+        told.lines().count() == 3 && told.lines().all(|line| line.starts_with(&table)),
+        "{told}"
+    );
+    let empty = file(&folder, "empty.csv", "\n");
+    let output = run(&["weigh", "--stations", &empty, &good]);
+    assert_eq!(output.status.code(), Some(1));
+    assert!(err(&output).contains("the station table is empty"));
 }
 
 #[test]

@@ -599,7 +599,7 @@ fn wind_only_takes_a_line_and_not_a_table() {
         "{text}"
     );
     assert!(
-        !text.contains("CAPE") && !text.contains("day or night"),
+        !text.contains("CAPE") && !text.contains("parcel until") && !text.contains("day or night"),
         "{text}"
     );
 }

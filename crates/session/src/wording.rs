@@ -127,14 +127,22 @@ pub fn valid_time(sounding: &Sounding) -> String {
 /// What a sounding lacks for day or night to be known, and what to do about it.
 pub fn daylight_lacks(sounding: &Sounding) -> String {
     let station = &sounding.station;
+    // A table can say itself what its station and name don't.
+    let table = sounding.source.format == "columns";
     let position = if station.position.is_some() {
         None
     } else if station.wmo.is_some() || station.wigos.is_some() || station.icao.is_some() {
         Some("no position (add the station to stations.csv)")
+    } else if table {
+        Some("no position (add a line `# position: latitude, longitude, elevation`)")
     } else {
         Some("no position, and no station number to look it up by")
     };
-    let time = sounding.times.valid().is_none().then_some("no time");
+    let time = sounding.times.valid().is_none().then_some(if table {
+        "no time (add a line `# time:` with date and time in UTC)"
+    } else {
+        "no time"
+    });
     let lacks: Vec<&str> = [time, position].into_iter().flatten().collect();
     lacks.join("; ")
 }

@@ -373,6 +373,8 @@ fn choose_surface(
                 });
                 profile.surface = Some(above);
             }
+            // Of winds alone nobody expects a parcel.
+            None if profile.temperature.iter().all(Option::is_none) => {}
             None => notes.push(Note {
                 place,
                 what: format!(

@@ -150,7 +150,14 @@ fn numbers(results: &Results) -> String {
         level(Some(ascent.lcl.pressure))
     });
     add("free convection (LFC), hPa", &|ascent, _| level(ascent.lfc));
-    add("equilibrium level (EL), hPa", &|ascent, _| level(ascent.el));
+    let top = results.working.profile.top();
+    add("equilibrium level (EL), hPa", &|ascent, _| {
+        match (ascent.el, ascent.lfc, top) {
+            // Still buoyant where the sounding ends.
+            (None, Some(_), Some(top)) => format!("above {}", number(top.hpa(), 0)),
+            (el, ..) => level(el),
+        }
+    });
     add("theta-e, K", &|ascent, _| number(ascent.theta_e.k(), 1));
     aligned(&rows)
 }
@@ -223,7 +230,10 @@ fn limits(profile: &Profile, numbers: &Numbers) -> Vec<String> {
         let held: Vec<String> = Parcel::ALL
             .into_iter()
             .zip(held)
-            .map(|(which, cape)| format!("{} {}", parcel(which), wording::energy(*cape, false)))
+            .map(|(which, cape)| {
+                let at_least = numbers.parcel(which).is_some_and(|ascent| ascent.at_least);
+                format!("{} {}", parcel(which), wording::energy(*cape, at_least))
+            })
             .collect();
         lines.push(format!(
             "CAPE with relative humidity held above that: {}",

@@ -103,7 +103,13 @@ fn check_parcel(place: &str, parcel: &Value) {
     );
     let range = &parcel["range"];
     if !range.is_null() {
-        check_keys(place, range, "cape_jkg cin_jkg");
+        check_keys(place, range, "cape_jkg cin_jkg cin_absent_somewhere");
+        let absent = range["cin_absent_somewhere"].as_bool();
+        let absent = absent.unwrap_or_else(|| panic!("{place}: absent somewhere or not? {range}"));
+        assert!(
+            absent || !(range["cin_jkg"].is_null() || parcel["cin_jkg"].is_null()),
+            "{place}: CIN absent unsaid"
+        );
         for key in ["cape_jkg", "cin_jkg"] {
             if !range[key].is_null() {
                 let ends: Vec<f64> = array(&range[key]).iter().map(number).collect();

@@ -15,10 +15,32 @@ pub struct Arguments {
     pub task: Task,
 }
 
+/// What `weigh --help` says of the objects.
+const JSON: &str = "\
+JSON (--json): one object a sounding, on one line, schema 1. Every key carries its unit; what is absent is null.
+
+  source      file; index of the sounding in it, from 0; sha256 over its own text; parts: digest of each message part
+  demo        true for invented demonstration data
+  sounding    station (\"wmo:12345\" or the like), valid (UTC), levels, humidity_missing, top_hpa
+  parcels     surface, mixed, most_unstable; null where none can be lifted
+    cape_jkg, cin_jkg      cin_jkg is null when there is no free convection
+    at_least               cape_jkg is a lower limit: the sounding ends too low
+    range                  over the credible surface dew points; null without any
+      cape_jkg             [smallest, largest]
+      cin_jkg              [strongest cap, weakest cap], where there is free convection; null if nowhere
+      cin_absent_somewhere true when somewhere in the range there is no free convection
+  findings    rule, grade, bottom_hpa, top_hpa, evidence, explains, repairs with cost, cost of the headline repair;
+              a cost is the change of CAPE and CIN for each parcel, null when unknown
+  notes       what and why, and where: {\"line\":n} and {\"byte\":n} in the file, lines from 1, bytes from 0;
+              {\"level\":n} of the merged profile, from 0 at the bottom; {\"file\":name} for the file as a whole
+
+Exit codes: 0 all weighed; 1 a file could not be read, or a sounding not weighed; 2 wrong usage.";
+
 /// What to do.
 #[derive(Debug, Subcommand)]
 pub enum Task {
     /// Numbers with their range, and findings with their cost, for each sounding of the files.
+    #[command(after_long_help = JSON)]
     Weigh(Weigh),
     /// Lists the rules, with source and thresholds.
     Rules {

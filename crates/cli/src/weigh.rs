@@ -5,8 +5,8 @@ use crate::output::{Output, say};
 use anyhow::Result;
 use dewbound_session::sounding::thermo::Temperature;
 use dewbound_session::{
-    Analysed, Document, Office, ReadFailure, ReadFile, Results, STATION_TABLE, files_of,
-    read_bytes, read_file, report, wording,
+    Analysed, Defect, Document, Office, ReadFailure, ReadFile, Results, STATION_TABLE, files_of,
+    guarded, read_bytes, read_file, report, wording,
 };
 use jiff::{Timestamp, civil::Date};
 use std::io::Read;
@@ -17,12 +17,15 @@ pub fn run(options: &Weigh, output: &mut Output) -> Result<bool> {
     let (office, problems) =
         Office::load(options.stations.as_deref(), options.thresholds.as_deref());
     for problem in &problems {
-        say(&format!(
-            "{}: {}. {}",
-            problem.about, problem.what, problem.remedy
-        ));
+        for line in problem.what.lines() {
+            say(&format!("{}: {line}", problem.about));
+        }
+        if !problem.unused {
+            say(&format!("{}: {}", problem.about, problem.remedy));
+        }
     }
     if problems.iter().any(|problem| problem.unused) {
+        say("Nothing was weighed: correct the file, or leave its option out");
         return Ok(false);
     }
     let mut all = true;
@@ -30,8 +33,13 @@ pub fn run(options: &Weigh, output: &mut Output) -> Result<bool> {
     for path in &options.files {
         for (name, read) in sources(path, &office, options.as_of) {
             let file = match read {
-                Ok(file) => file,
-                Err(failure) => {
+                Ok(Ok(file)) => file,
+                Err(defect) => {
+                    say(&defect.line(&name));
+                    all = false;
+                    continue;
+                }
+                Ok(Err(failure)) => {
                     say(&failure.line(&name));
                     all = false;
                     continue;
@@ -42,19 +50,35 @@ pub fn run(options: &Weigh, output: &mut Output) -> Result<bool> {
             }
             // One after the other, so that a reader of a long file gets each as soon as it is there.
             for sounding in file.soundings {
-                let analysed = Analysed::of(sounding, &office.thresholds);
+                let about = format!(
+                    "{name}, sounding {} ({})",
+                    sounding.source.index + 1,
+                    sounding.station.label()
+                );
+                let weighed = guarded(|| {
+                    let analysed = Analysed::of(sounding, &office.thresholds);
+                    weighed(&analysed, options)
+                });
+                let text = match weighed {
+                    Ok(text) => text?,
+                    Err(defect) => {
+                        say(&defect.line(&about));
+                        all = false;
+                        continue;
+                    }
+                };
                 if !options.json && !first {
                     output.write("\n")?;
                 }
                 first = false;
-                output.write(&weighed(&analysed, options)?)?;
+                output.write(&text)?;
             }
         }
     }
     Ok(all)
 }
 
-type Named = (String, Result<ReadFile, ReadFailure>);
+type Named = (String, Result<Result<ReadFile, ReadFailure>, Defect>);
 
 /// The files meant by a path, read one after the other as they are asked for.
 fn sources<'a>(
@@ -64,7 +88,8 @@ fn sources<'a>(
 ) -> Box<dyn Iterator<Item = Named> + 'a> {
     if path == Path::new("-") {
         return Box::new(std::iter::once_with(move || {
-            ("standard input".to_owned(), standard_input(office, as_of))
+            let read = guarded(|| standard_input(office, as_of));
+            ("standard input".to_owned(), read)
         }));
     }
     match files_of(path) {
@@ -73,13 +98,13 @@ fn sources<'a>(
                 say(&format!("{}: {STATION_TABLE}", table.display()));
             }
             Box::new(meant.files.into_iter().map(move |file: PathBuf| {
-                let read = read_file(&file, office, as_of);
+                let read = guarded(|| read_file(&file, office, as_of));
                 (file.display().to_string(), read)
             }))
         }
         Err(error) => Box::new(std::iter::once((
             path.display().to_string(),
-            Err(error.into()),
+            Ok(Err(error.into())),
         ))),
     }
 }

@@ -151,7 +151,11 @@ fn the_object_has_the_keys_of_schema_1_and_no_others() {
             keys(&parcel["start"]),
             ["dewpoint_c", "pressure_hpa", "temperature_c"]
         );
-        assert_eq!(keys(&parcel["range"]), ["cape_jkg", "cin_jkg"]);
+        assert_eq!(
+            keys(&parcel["range"]),
+            ["cape_jkg", "cin_absent_somewhere", "cin_jkg"]
+        );
+        assert!(parcel["range"]["cin_absent_somewhere"].is_boolean());
         let (cape, least, most) = (
             number(parcel, "/cape_jkg"),
             number(parcel, "/range/cape_jkg/0"),
@@ -308,6 +312,7 @@ fn absent_is_null() {
         assert_eq!(surface[key], Value::Null, "{key}");
     }
     assert_eq!(surface["range"]["cin_jkg"], Value::Null);
+    assert_eq!(surface["range"]["cin_absent_somewhere"], true);
 }
 
 #[test]
@@ -356,7 +361,25 @@ fn exit_codes_and_streams() {
         (output.status.code(), out(&output)),
         (Some(1), String::new())
     );
-    assert!(err(&output).contains("list.csv"));
+    assert!(err(&output).contains("list.csv") && err(&output).contains("Nothing was weighed"));
+    // Each line of what is wrong says in which file; rows that can be used are.
+    let table = file(
+        &folder,
+        "table.csv",
+        "wmo,name,lat,lon,elevation_m\n99002,A,95,10,1\n99003,B,40,500,1\n99001,Nether Vale,41,-146,400\n",
+    );
+    let output = run(&["weigh", "--stations", &table, &good]);
+    assert_eq!(output.status.code(), Some(0), "{}", err(&output));
+    assert!(out(&output).starts_with("Upper Vale"));
+    let told = err(&output);
+    assert!(
+        told.lines().count() == 3 && told.lines().all(|line| line.starts_with(&table)),
+        "{told}"
+    );
+    let empty = file(&folder, "empty.csv", "\n");
+    let output = run(&["weigh", "--stations", &empty, &good]);
+    assert_eq!(output.status.code(), Some(1));
+    assert!(err(&output).contains("the station table is empty"));
 }
 
 #[test]
@@ -458,7 +481,11 @@ fn the_station_table_fills_in_what_the_message_lacks() {
         "wmo,name,lat,lon,elevation_m\n99001,Nether Vale,41,-146,400\n",
     );
     let without = out(&run(&["weigh", &path]));
-    assert!(without.contains("day or night not known"), "{without}");
+    assert!(
+        without.contains("day or night not known")
+            && without.contains("no position (add the station to stations.csv)"),
+        "{without}"
+    );
     let with = out(&run(&["weigh", "--stations", &table, &path]));
     assert!(!with.contains("day or night not known"), "{with}");
 }
@@ -556,6 +583,45 @@ fn the_table_for_people_has_the_numbers_with_range_the_findings_with_cost_and_th
             .any(|line| line.starts_with("CAPE") && line.matches('≥').count() == 3),
         "{text}"
     );
+}
+
+#[test]
+fn wind_only_takes_a_line_and_not_a_table() {
+    let folder = tempfile::tempdir().unwrap();
+    let path = file(
+        &folder,
+        "winds.csv",
+        "# time: 2031-06-14T22:00:00Z\npressure_hpa,wind_dir_deg,wind_speed_kt\n1000,180,10\n850,200,20\n700,220,30\n",
+    );
+    let text = out(&run(&["weigh", &path]));
+    assert!(
+        text.contains("wind only, 3 levels: no temperature, so no parcels\n"),
+        "{text}"
+    );
+    assert!(
+        !text.contains("CAPE") && !text.contains("parcel until") && !text.contains("day or night"),
+        "{text}"
+    );
+}
+
+#[test]
+fn the_long_help_says_what_the_object_holds() {
+    let text = out(&run(&["weigh", "--help"]));
+    let folder = tempfile::tempdir().unwrap();
+    let object = one(&["weigh", "--json", &file(&folder, "vale.csv", VALE)]);
+    for key in keys(&object).into_iter().filter(|key| *key != "schema") {
+        assert!(
+            text.lines()
+                .any(|line| line.starts_with(&format!("  {key} "))),
+            "{key}: {text}"
+        );
+    }
+    for key in keys(&object["parcels"]["surface"]["range"]) {
+        assert!(text.contains(key), "{key}: {text}");
+    }
+    for place in ["line", "byte", "level", "file"] {
+        assert!(text.contains(&format!("{{\"{place}\":")), "{place}: {text}");
+    }
 }
 
 #[test]

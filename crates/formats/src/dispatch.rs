@@ -28,6 +28,7 @@ pub fn read(name: &str, bytes: &[u8], options: &ReadOptions) -> Result<Loaded, R
                 let words: Vec<_> = notes.iter().take(NAMED).map(said).collect();
                 let more = match notes.len().saturating_sub(NAMED) {
                     0 => String::new(),
+                    1 => "; and 1 more note".into(),
                     more => format!("; and {more} more notes"),
                 };
                 format!("no sounding in it: {}{more}", words.join("; "))
@@ -128,7 +129,10 @@ fn read_container(name: &str, bytes: &[u8], options: &ReadOptions) -> Result<Loa
     if more > 0 {
         loaded.notes.push(Note {
             place: Place::File,
-            what: format!("{more} more members hold no sounding"),
+            what: match more {
+                1 => "1 more member holds no sounding".into(),
+                more => format!("{more} more members hold no sounding"),
+            },
             why: String::new(),
         });
     }
@@ -178,14 +182,32 @@ fn read_plain(
         return Err(
             columns::complaint(shown, &text, false).unwrap_or_else(|| ReadError::Unrecognised {
                 file: file(),
-                hint: "a table needs a header such as pressure_hpa,temperature_c,dewpoint_c; a bulletin starts with \
-                       TTAA, TTBB, TTCC or TTDD"
-                    .into(),
+                hint: format!(
+                    "a table needs a header such as pressure_hpa,temperature_c,dewpoint_c; a bulletin starts with TTAA, TTBB, \
+                     TTCC or TTDD; this file starts with `{}`",
+                    beginning(&text)
+                ),
             }),
         );
     };
     loaded.notes.splice(0..0, notes);
     Ok(loaded)
+}
+
+/// The first line that isn't blank, cut short.
+fn beginning(text: &str) -> String {
+    const LONGEST: usize = 40;
+    let line = text.lines().map(str::trim).find(|line| !line.is_empty());
+    let line = line.unwrap_or_default();
+    let mut start: String = line
+        .chars()
+        .filter(|c| !c.is_control())
+        .take(LONGEST)
+        .collect();
+    if line.chars().nth(LONGEST).is_some() {
+        start.push('…');
+    }
+    start
 }
 
 /// What every sounding gets, whatever its format: file, index, and what the station table knows.

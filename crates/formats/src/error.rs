@@ -19,9 +19,7 @@ pub enum ReadError {
         file: String,
     },
     /// No reader recognises the content.
-    #[error(
-        "{file}: not recognised as TEMP text, an IGRA station file or columns with units; {hint}"
-    )]
+    #[error("{file}: not a sounding format Dewbound reads; {hint}")]
     Unrecognised {
         /// File name.
         file: String,

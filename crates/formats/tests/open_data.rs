@@ -246,7 +246,7 @@ fn station_files(folder: &Path) {
     assert_eq!(first.humidity_reported, HumidityReported::DewPoint);
     assert_eq!(first.temperature_step, 0.2);
     assert_eq!(loaded.soundings[1].times.nominal, None);
-    assert!(loaded.soundings[1].times.assumed);
+    assert!(loaded.soundings[1].times.day_assumed);
     assert!(loaded.notes[0].what.contains("repeats the one at line 168"));
 }
 

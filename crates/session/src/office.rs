@@ -96,13 +96,27 @@ impl Office {
     fn take_stations(&mut self, path: &Path, text: &str, problems: &mut Vec<OfficeProblem>) {
         let (table, notes) = StationTable::parse(text);
         self.stations = table;
-        if !notes.is_empty() {
+        if text.trim().is_empty() {
+            problems.push(OfficeProblem {
+                about: path.display().to_string(),
+                what: "the station table is empty".to_owned(),
+                remedy:
+                    "Its first line must name the columns: wmo,wigos,icao,name,lat,lon,elevation_m"
+                        .to_owned(),
+                unused: true,
+            });
+        } else if !notes.is_empty() {
+            let unused = self.stations.is_empty();
             let lines: Vec<String> = notes.iter().map(crate::wording::note).collect();
             problems.push(OfficeProblem {
                 about: path.display().to_string(),
                 what: lines.join("\n"),
-                remedy: "The other rows serve; correct these and start again".to_owned(),
-                unused: self.stations.is_empty(),
+                remedy: if unused {
+                    "No row of it can be used; correct it and start again".to_owned()
+                } else {
+                    "The other rows serve; correct these and start again".to_owned()
+                },
+                unused,
             });
         }
     }
@@ -164,9 +178,14 @@ fn read_optional(path: &Path) -> Result<Option<String>, String> {
 }
 
 fn unreadable(path: &Path, error: &io::Error, remedy: &str) -> OfficeProblem {
+    let what = if error.kind() == io::ErrorKind::InvalidData {
+        "is not text in UTF-8: save it in that encoding".to_owned()
+    } else {
+        format!("can't be read: {error}")
+    };
     OfficeProblem {
         about: path.display().to_string(),
-        what: format!("can't be read: {error}"),
+        what,
         remedy: remedy.to_owned(),
         unused: true,
     }

@@ -1,11 +1,11 @@
 //! The worker that reads and analyses while the window goes on.
 
+use crate::guard::{Defect, guarded};
 use crate::reading::{ReadFailure, ReadFile, STATION_TABLE, files_of, read_bytes, read_file};
 use crate::sounding::Sounding;
 use crate::wake::SharedWaker;
 use crate::{Analysed, Document, Identity, Office, Results, demo, draft, wording};
 use jiff::{Timestamp, civil::Date};
-use std::panic::{AssertUnwindSafe, catch_unwind};
 use std::path::PathBuf;
 use std::sync::Arc;
 use std::sync::mpsc::{Receiver, Sender, TryRecvError, channel};
@@ -198,7 +198,7 @@ fn deliver(
 ) -> bool {
     let read = match guarded(read) {
         Ok(read) => read,
-        Err(Defect) => return tell(defect(name)),
+        Err(defect) => return tell(failed(name, &defect)),
     };
     let file = match read {
         Ok(file) => file,
@@ -226,7 +226,7 @@ fn deliver(
                 let told = trouble.is_none_or(|what| tell(Arrival::Draft { about: label, what }));
                 told && tell(Arrival::Sounding(Box::new(fresh)))
             }
-            Err(Defect) => tell(defect(&format!("{name}, {label}"))),
+            Err(defect) => tell(failed(&format!("{name}, {label}"), &defect)),
         }
     })
 }
@@ -249,19 +249,11 @@ fn prepare(desk: &Desk, sounding: Sounding) -> (Fresh, Option<String>) {
     (fresh, trouble)
 }
 
-/// The program itself failed.
-struct Defect;
-
-/// A fault of ours in one sounding must not take the others with it, nor the window.
-fn guarded<T>(work: impl FnOnce() -> T) -> Result<T, Defect> {
-    catch_unwind(AssertUnwindSafe(work)).map_err(|_| Defect)
-}
-
-fn defect(about: &str) -> Arrival {
+fn failed(about: &str, defect: &Defect) -> Arrival {
     Arrival::Failed {
         about: about.to_owned(),
-        what: "the program failed on this, which is a defect of the program".to_owned(),
-        remedy: "Everything else is untouched by it; please report it with the file",
+        what: defect.to_string(),
+        remedy: Defect::REMEDY,
     }
 }
 

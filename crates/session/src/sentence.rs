@@ -1,7 +1,7 @@
 //! Sentences made of numbers.
 
 use crate::sounding::{Numbers, Parcel, Profile};
-use crate::thermo::Ascent;
+use crate::thermo::{Ascent, Pressure};
 use crate::wording::{
     CAUTION, INVENTED, cape, energy, number, parcel, pressure, range, time, valid_time,
 };
@@ -12,6 +12,11 @@ const INHIBITED: f64 = -50.0;
 
 /// A range narrower than this is not moved by the doubt, J/kg: it would not show in whole numbers.
 const UNMOVED: f64 = 1.0;
+
+/// Less CAPE than this reads as zero in whole numbers, J/kg.
+const SHOWN: f64 = 0.5;
+
+const NO_SURFACE: &str = "no surface parcel until a surface value is set";
 
 /// Which parcel matters, and whether the surface doubt reaches it.
 pub(crate) fn which_parcel(working: &Profile, numbers: &Numbers, doubt: &Doubt) -> String {
@@ -31,57 +36,115 @@ fn parcel_that_matters(working: &Profile, numbers: &Numbers, doubt: &Doubt) -> S
     let Some(unstable) = &numbers.most_unstable else {
         return "no parcel can be lifted: no level of the lowest 300 hPa has temperature and humidity".to_owned();
     };
-    let surface = surface_clause(numbers);
-    if numbers.most_unstable_is_surface {
-        return format!(
-            "{surface}; it is the most unstable parcel; {}",
-            reach_clause(doubt, Parcel::Surface)
-        );
+    // What each parcel may come to, the doubt included.
+    let reachable = |which| {
+        let cape = numbers.parcel(which).map_or(0.0, |ascent| ascent.cape);
+        let range = doubt.range(which).cape;
+        cape.max(range.map_or(0.0, |range| range.most))
+    };
+    let has_cape = |which| reachable(which) >= SHOWN;
+    if !Parcel::ALL.into_iter().any(has_cape) {
+        return no_cape(working, numbers);
     }
-    if unstable.cape <= 0.0
-        && doubt
-            .range(Parcel::MostUnstable)
-            .cape
-            .is_none_or(|cape| cape.most <= 0.0)
-    {
-        return format!("{surface}; no parcel has CAPE");
-    }
+    let surface = surface_clause(working, numbers);
     let start = numbers
         .most_unstable_row
         .and_then(|row| working.pressure.get(row))
-        .map_or(unstable.start.pressure, |&pa| {
-            crate::thermo::Pressure::from_pa(pa)
-        });
+        .map_or(unstable.start.pressure, |&pa| Pressure::from_pa(pa));
+    let start = pressure(start);
+    if has_cape(Parcel::MostUnstable) {
+        if numbers.most_unstable_is_surface {
+            let reach = reach_clause(doubt, Parcel::Surface, "its CAPE");
+            return format!("{surface}; it is the most unstable parcel; {reach}");
+        }
+        let so_far = if unstable.cape < SHOWN {
+            format!(" with {}", little(working, unstable))
+        } else {
+            String::new()
+        };
+        let reach = reach_clause(doubt, Parcel::MostUnstable, "its CAPE");
+        return format!("{surface}; most unstable starts at {start}{so_far}; {reach}");
+    }
+    // The parcel of largest theta-e has the least of it: what there is belongs to another one.
+    let unstable = little(working, unstable);
+    if reachable(Parcel::Surface) >= reachable(Parcel::Mixed) {
+        let reach = reach_clause(doubt, Parcel::Surface, "the surface CAPE");
+        return format!("{surface}; most unstable starts at {start} with {unstable}; {reach}");
+    }
+    let reach = reach_clause(doubt, Parcel::Mixed, "the mixed CAPE");
     format!(
-        "{surface}; most unstable starts at {}; {}",
-        pressure(start),
-        reach_clause(doubt, Parcel::MostUnstable)
+        "{surface}; mixed CAPE {}; most unstable starts at {start} with {unstable}; {reach}",
+        cape(numbers.mixed.as_ref())
     )
 }
 
-fn surface_clause(numbers: &Numbers) -> String {
+/// No parcel has CAPE, wherever in the interval the dew point lies.
+fn no_cape(working: &Profile, numbers: &Numbers) -> String {
+    let lifted: Vec<&Ascent> = Parcel::ALL
+        .into_iter()
+        .filter_map(|which| numbers.parcel(which))
+        .collect();
+    let seen = if lifted.iter().any(|ascent| ascent.at_least) {
+        where_it_ends(working)
+    } else {
+        String::new()
+    };
+    let said = if lifted.iter().all(|ascent| ascent.cape <= 0.0) {
+        "parcel has CAPE"
+    } else {
+        "parcel's CAPE reaches 1 J/kg"
+    };
+    if numbers.surface.is_none() {
+        format!("{NO_SURFACE}; no other {said}{seen}")
+    } else {
+        format!("no {said}{seen}")
+    }
+}
+
+/// " below 628 hPa, where the sounding ends".
+fn where_it_ends(working: &Profile) -> String {
+    working.top().map_or_else(String::new, |top| {
+        format!(" below {}, where the sounding ends", pressure(top))
+    })
+}
+
+/// CAPE that reads as zero in whole numbers.
+fn little(working: &Profile, ascent: &Ascent) -> String {
+    let said = if ascent.cape > 0.0 {
+        "CAPE below 1 J/kg"
+    } else {
+        "no CAPE"
+    };
+    match working.top().filter(|_| ascent.at_least) {
+        Some(top) => format!("{said} below {}", pressure(top)),
+        None => said.to_owned(),
+    }
+}
+
+fn surface_clause(working: &Profile, numbers: &Numbers) -> String {
     let Some(surface) = &numbers.surface else {
-        return "no surface parcel until a surface value is set".to_owned();
+        return NO_SURFACE.to_owned();
     };
     match surface.cin {
-        None => "surface without free convection".to_owned(),
-        Some(cin) if cin <= INHIBITED => {
+        None => match working.top().filter(|_| surface.at_least) {
+            Some(top) => format!("surface without free convection below {}", pressure(top)),
+            None => "surface without free convection".to_owned(),
+        },
+        Some(cin) if cin <= INHIBITED && surface.cape >= SHOWN => {
             format!("surface inhibited (CIN {})", energy(Some(cin), false))
         }
         Some(_) => format!("surface CAPE {}", cape(Some(surface))),
     }
 }
 
-fn reach_clause(doubt: &Doubt, which: Parcel) -> String {
+fn reach_clause(doubt: &Doubt, which: Parcel, whose: &str) -> String {
     match doubt.range(which).cape {
         None => "how far the surface doubt moves it is not known".to_owned(),
-        Some(extremes) if extremes.most - extremes.least < UNMOVED => {
-            "the surface doubt doesn't reach it".to_owned()
-        }
-        Some(extremes) => format!(
-            "the surface doubt moves its CAPE: {} J/kg",
-            range(&extremes)
-        ),
+        Some(extremes) if extremes.most - extremes.least < UNMOVED => match which {
+            Parcel::Surface => format!("the surface doubt moves {whose} by less than 1 J/kg"),
+            _ => "the surface doubt doesn't reach it".to_owned(),
+        },
+        Some(extremes) => format!("the surface doubt moves {whose}: {} J/kg", range(&extremes)),
     }
 }
 

@@ -1,9 +1,9 @@
 //! Numbers as people read them: one precision a quantity, a real minus sign, the unit always there.
 
-use crate::Extremes;
 use crate::sounding::{Note, Parcel, Place, Sounding};
 use crate::thermo::{Ascent, Pressure, Temperature};
 use crate::trust::{Change, Cost};
+use crate::{Extremes, ParcelRange};
 use jiff::{Timestamp, tz::TimeZone};
 
 /// The sentence that goes wherever the numbers go.
@@ -30,6 +30,11 @@ pub fn energy(value: Option<f64>, at_least: bool) -> String {
         Some(value) => format!("{} J/kg", number(value, 0)),
         None => "none".to_owned(),
     }
+}
+
+/// "1 level", "3 levels".
+pub fn counted(count: usize, one: &str, many: &str) -> String {
+    format!("{count} {}", if count == 1 { one } else { many })
 }
 
 /// A change with its sign: "+320 J/kg", "−40 J/kg", "±0 J/kg".
@@ -83,6 +88,18 @@ pub fn range(extremes: &Extremes) -> String {
     }
 }
 
+/// Range of CIN: "−30 to 0"; "−30 to 0, or none" where there is no free convection somewhere inside; "none" when that is
+/// so throughout.
+pub fn cin_range(of: &ParcelRange) -> String {
+    match &of.cin {
+        None => "none".to_owned(),
+        Some(extremes) if of.sometimes_no_free_convection => {
+            format!("{}, or none", range(extremes))
+        }
+        Some(extremes) => range(extremes),
+    }
+}
+
 /// "2031-06-14 12:00 UTC"; "time unknown" without one.
 pub fn time(time: Option<Timestamp>) -> String {
     time.map_or_else(
@@ -95,55 +112,87 @@ pub fn time(time: Option<Timestamp>) -> String {
     )
 }
 
-/// Valid time of a sounding; says so when month and year were assumed.
+/// Valid time of a sounding; says so when month and year, or the day, were assumed.
 pub fn valid_time(sounding: &Sounding) -> String {
     let text = time(sounding.times.valid());
     if sounding.times.assumed {
         format!("{text} (month and year assumed)")
+    } else if sounding.times.day_assumed {
+        format!("{text} (day assumed)")
     } else {
         text
     }
 }
 
-/// The change of a cost that counts most: "CAPE −850 J/kg (mixed)"; "cost unknown" without one.
+/// What a sounding lacks for day or night to be known, and what to do about it.
+pub fn daylight_lacks(sounding: &Sounding) -> String {
+    let station = &sounding.station;
+    // A table can say itself what its station and name don't.
+    let table = sounding.source.format == "columns";
+    let position = if station.position.is_some() {
+        None
+    } else if station.wmo.is_some() || station.wigos.is_some() || station.icao.is_some() {
+        Some("no position (add the station to stations.csv)")
+    } else if table {
+        Some("no position (add a line `# position: latitude, longitude, elevation`)")
+    } else {
+        Some("no position, and no station number to look it up by")
+    };
+    let time = sounding.times.valid().is_none().then_some(if table {
+        "no time (add a line `# time:` with date and time in UTC)"
+    } else {
+        "no time"
+    });
+    let lacks: Vec<&str> = [time, position].into_iter().flatten().collect();
+    lacks.join("; ")
+}
+
+/// The change of a cost that counts most: "CAPE −850 J/kg (mixed)"; "no change in CAPE" where all of it reads as zero;
+/// "cost unknown" without one.
 pub fn cost(cost: Option<&Cost>) -> String {
-    match cost.and_then(worst_change) {
-        Some((which, change)) => {
-            let mut text = format!(
-                "CAPE {} ({})",
-                energy_change(change.cape.unwrap_or_default()),
+    let Some((which, change)) = cost.and_then(worst_change) else {
+        return "cost unknown".to_owned();
+    };
+    let shows = |value: &f64| value.abs() >= 0.5;
+    let cin = change.cin.filter(shows).map(energy_change);
+    match (change.cape.filter(shows), cin) {
+        (Some(cape), None) => format!("CAPE {} ({})", energy_change(cape), parcel(which)),
+        (Some(cape), Some(cin)) => {
+            format!(
+                "CAPE {} ({}), CIN {cin}",
+                energy_change(cape),
                 parcel(which)
-            );
-            if let Some(cin) = change.cin.filter(|cin| cin.abs() >= 0.5) {
-                text.push_str(&format!(", CIN {}", energy_change(cin)));
-            }
-            text
+            )
         }
-        None => "cost unknown".to_owned(),
+        (None, None) => "no change in CAPE".to_owned(),
+        (None, Some(cin)) => format!("no change in CAPE; CIN {cin} ({})", parcel(which)),
     }
 }
 
-/// The parcel whose CAPE changes most, and by how much.
+/// The parcel whose CAPE changes most, and by how much; of changes that read alike, that with the largest change of CIN.
 pub fn worst_change(cost: &Cost) -> Option<(Parcel, Change)> {
-    let mut worst: Option<(Parcel, Change, f64)> = None;
+    let mut worst: Option<(Parcel, Change, (f64, f64))> = None;
     for which in Parcel::ALL {
         let change = cost.parcel(which);
-        if let Some(size) = change.cape.map(f64::abs)
-            && worst.is_none_or(|(.., largest)| size > largest)
-        {
+        let Some(cape) = change.cape else { continue };
+        let size = (
+            cape.abs().round(),
+            change.cin.unwrap_or_default().abs().round(),
+        );
+        if worst.is_none_or(|(.., largest)| size > largest) {
             worst = Some((which, change, size));
         }
     }
     worst.map(|(which, change, _)| (which, change))
 }
 
-/// "line 12", "level 3", "byte 100"; empty for the file as a whole.
+/// "line 12", "byte 100"; empty for the file as a whole, and for a level of the merged profile, whose number means nothing
+/// to people: such notes name the surface or the pressure.
 pub fn place(place: Place) -> String {
     match place {
-        Place::File => String::new(),
+        Place::File | Place::Level(_) => String::new(),
         Place::Line(line) => format!("line {line}"),
         Place::Byte(byte) => format!("byte {byte}"),
-        Place::Level(level) => format!("level {level}"),
     }
 }
 
@@ -184,6 +233,67 @@ mod tests {
     }
 
     #[test]
+    fn what_day_and_night_lack_is_named_with_the_remedy() {
+        let mut sounding = Sounding::default();
+        assert_eq!(
+            daylight_lacks(&sounding),
+            "no time; no position, and no station number to look it up by"
+        );
+        sounding.station.wmo = Some("99001".to_owned());
+        sounding.times.nominal = "2031-06-14T12:00:00Z".parse().ok();
+        assert_eq!(
+            daylight_lacks(&sounding),
+            "no position (add the station to stations.csv)"
+        );
+    }
+
+    #[test]
+    fn a_cost_names_what_changes() {
+        let change = |cape, cin| Change {
+            cape: Some(cape),
+            cin: Some(cin),
+        };
+        let cost = |surface, mixed| {
+            super::cost(Some(&Cost {
+                surface,
+                mixed,
+                most_unstable: change(0.0, 0.0),
+            }))
+        };
+        let none = change(-0.2, 0.1);
+        assert_eq!(cost(none, change(0.3, 0.0)), "no change in CAPE");
+        assert_eq!(
+            cost(none, change(0.0, 12.0)),
+            "no change in CAPE; CIN +12 J/kg (mixed)"
+        );
+        assert_eq!(
+            cost(change(850.0, 0.0), change(-850.4, -5.0)),
+            "CAPE \u{2212}850 J/kg (mixed), CIN \u{2212}5 J/kg"
+        );
+        assert_eq!(super::cost(None), "cost unknown");
+        assert_eq!(counted(1, "level", "levels"), "1 level");
+        assert_eq!(counted(0, "level", "levels"), "0 levels");
+    }
+
+    #[test]
+    fn a_time_says_what_of_it_was_assumed() {
+        let mut sounding = Sounding::default();
+        sounding.times.launch = "2031-06-14T23:30:00Z".parse().ok();
+        assert_eq!(valid_time(&sounding), "2031-06-14 23:30 UTC");
+        sounding.times.day_assumed = true;
+        assert_eq!(valid_time(&sounding), "2031-06-14 23:30 UTC (day assumed)");
+        sounding.times = crate::sounding::Times {
+            assumed: true,
+            day_assumed: false,
+            ..sounding.times
+        };
+        assert_eq!(
+            valid_time(&sounding),
+            "2031-06-14 23:30 UTC (month and year assumed)"
+        );
+    }
+
+    #[test]
     fn a_range_of_one_value_reads_as_one() {
         let at = Temperature::from_c(10.0);
         let mut extremes = Extremes {
@@ -197,5 +307,25 @@ mod tests {
         extremes.most = 250.0;
         extremes.at_least = true;
         assert_eq!(range(&extremes), "≥ 100 to ≥ 250");
+    }
+
+    #[test]
+    fn a_range_of_cin_says_where_there_is_none() {
+        let at = Temperature::from_c(10.0);
+        let mut of = ParcelRange {
+            cin: Some(Extremes {
+                least: -30.0,
+                least_at: at,
+                most: -0.2,
+                most_at: at,
+                at_least: false,
+            }),
+            ..ParcelRange::default()
+        };
+        assert_eq!(cin_range(&of), "\u{2212}30 to 0");
+        of.sometimes_no_free_convection = true;
+        assert_eq!(cin_range(&of), "\u{2212}30 to 0, or none");
+        of.cin = None;
+        assert_eq!(cin_range(&of), "none");
     }
 }

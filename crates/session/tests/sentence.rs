@@ -80,7 +80,49 @@ fn stable_air_has_no_parcel_with_cape() {
         (500.0, -5.0, -30.0),
         (100.0, -50.0, -80.0),
     ]);
-    assert!(said.ends_with("no parcel has CAPE"), "{said}");
+    assert_eq!(said, "no parcel has CAPE");
+}
+
+#[test]
+fn an_ascent_that_ends_low_knows_of_no_cape_below_its_end_only() {
+    let said = sentence(&[
+        (1000.0, 5.0, -5.0),
+        (900.0, 8.0, -10.0),
+        (628.0, -5.0, -30.0),
+    ]);
+    assert_eq!(
+        said,
+        "no parcel has CAPE below 628 hPa, where the sounding ends"
+    );
+}
+
+#[test]
+fn cape_of_the_surface_alone_is_not_denied() {
+    // Warm wet ground under a cold layer, and dry-topped air of larger theta-e above an inversion, from where nothing rises.
+    let levels = [
+        (1000.0, 10.0, 9.5),
+        (980.0, 7.0, 2.0),
+        (950.0, 4.5, 0.0),
+        (930.0, 9.0, -2.0),
+        (780.0, 10.0, 3.0),
+        (700.0, 8.0, -20.0),
+        (500.0, -6.0, -40.0),
+        (300.0, -30.0, -60.0),
+        (100.0, -50.0, -80.0),
+    ];
+    let mut desk = Desk::new();
+    desk.add("vale.csv", &columns(&levels));
+    let results = desk.session.current().unwrap().results();
+    let numbers = &results.numbers;
+    assert!(!numbers.most_unstable_is_surface);
+    assert_eq!(numbers.most_unstable.as_ref().unwrap().cape, 0.0);
+    let cape = numbers.surface.as_ref().unwrap().cape;
+    assert!(cape > 1.0, "{cape}");
+    let said = &results.which_parcel;
+    let begins = format!(
+        "surface CAPE {cape:.0} J/kg; most unstable starts at 780 hPa with no CAPE; the surface doubt moves the surface CAPE: "
+    );
+    assert!(said.starts_with(&begins), "{said}, not {begins}");
 }
 
 #[test]

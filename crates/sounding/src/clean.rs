@@ -1,7 +1,7 @@
 //! A received level with only the values that can be used.
 
 use crate::Level;
-use crate::telling::{Tally, at, hpa, place};
+use crate::telling::{Tally, at, celsius, hpa, place};
 use dewbound_thermo::{Temperature, saturation_vapour_pressure};
 
 /// Pressures (Pa) a balloon can meet; the highest on record at sea level is below 1,090 hPa.
@@ -32,17 +32,14 @@ pub(crate) fn cleaned(
         if range.contains(&value) {
             return Some(value);
         }
-        unusable.add(
-            place,
-            format!(
-                "{name} {} of received level {} counts as missing",
-                shown(value),
-                index + 1
-            ),
-        );
+        // A line says where it is; without one the order of receipt has to.
+        let of = match level.line {
+            Some(_) => String::new(),
+            None => format!(" of received level {}", index + 1),
+        };
+        unusable.add(place, format!("{name} {}{of}", shown(value)));
         None
     };
-    let celsius = |k: f64| format!("{:.1} °C", k - 273.15);
     let pressure = checked(level.pressure, &PRESSURES, "pressure", hpa);
     let height = checked(level.height, &HEIGHTS, "height", |z| format!("{z} m"));
     let temperature = checked(level.temperature, &TEMPERATURES, "temperature", celsius);
@@ -67,7 +64,7 @@ pub(crate) fn cleaned(
             saturated.add(
                 place,
                 format!(
-                    "dew point {} above temperature {} at {}: counted as saturated",
+                    "dew point {} above temperature {} at {}",
                     celsius(td),
                     celsius(t),
                     at(pressure)
@@ -78,7 +75,7 @@ pub(crate) fn cleaned(
             unusable.add(
                 place,
                 format!(
-                    "dew point {} far above temperature {} at {}: counts as missing",
+                    "dew point {} far above temperature {} at {}",
                     celsius(td),
                     celsius(t),
                     at(pressure)
@@ -93,7 +90,7 @@ pub(crate) fn cleaned(
         unusable.add(
             place,
             format!(
-                "dew point {} at {}: counts as missing, vapour would outweigh the air",
+                "dew point {} at {}, where vapour would outweigh the air",
                 celsius(td),
                 at(pressure)
             ),

@@ -286,15 +286,18 @@ mod tests {
             .map(|n| level(1008.0, 25.0 + 0.01 * f64::from(n), 20.0))
             .collect();
         rows.extend(flight_rows(0, false).into_iter().skip(1));
+        let count = rows.len();
         let (profile, notes) = received(rows);
         assert_eq!(profile.surface_air().unwrap().temperature.c(), 25.0);
         assert_eq!(profile.pressure[1], 100_760.0);
         assert_eq!(notes.len(), 1, "{notes:?}");
-        assert!(
-            notes[0]
-                .what
-                .contains("levels repeat a pressure with other values")
+        // One row a pressure is left of all that were received, in tenths of hPa.
+        let expect = format!(
+            "{} rows share a pressure with an earlier row (0.1 hPa steps); the first value of each is used",
+            count - profile.len()
         );
+        assert_eq!(notes[0].what, expect);
+        assert_eq!(notes[0].place, crate::Place::File);
     }
 
     #[test]

@@ -1,7 +1,7 @@
 //! Amendments of a layer.
 
 use crate::profile::SAME_PRESSURE;
-use crate::telling::hpa;
+use crate::telling::{count_of_levels, hpa};
 use crate::{BridgeHumidity, Note, Place, Profile};
 use dewbound_thermo::{
     Environment, Pressure, Temperature, dewpoint_from_mixing_ratio, dewpoint_from_relative_humidity,
@@ -109,9 +109,10 @@ pub(crate) fn bridge_layer(
         refuse(
             notes,
             format!(
-                "bridge from {} to {}: {capped} levels capped at saturation",
+                "bridge from {} to {}: {} capped at saturation",
                 hpa(bottom),
-                hpa(top)
+                hpa(top),
+                count_of_levels(capped)
             ),
             "the mixing ratio as received is more than the bridged air can hold",
         );
@@ -219,8 +220,8 @@ pub(crate) fn mix_moisture(
     if capped > 0 {
         refuse(
             notes,
-            format!("{what}: {capped} levels capped at saturation"),
-            "they can't hold the layer's mixing ratio",
+            format!("{what}: {} capped at saturation", count_of_levels(capped)),
+            "the air there can't hold the layer's mixing ratio",
         );
     }
 }
@@ -357,7 +358,7 @@ mod tests {
         assert!(
             working.notes[0]
                 .what
-                .contains("1 levels capped at saturation")
+                .contains("1 level capped at saturation")
         );
     }
 

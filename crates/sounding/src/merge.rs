@@ -3,7 +3,7 @@
 use crate::clean::{HEIGHTS, cleaned};
 use crate::flight::{Flight, flight};
 use crate::profile::SAME_PRESSURE;
-use crate::telling::{Tally, at, hpa, place};
+use crate::telling::{Tally, at, count_of_levels, hpa, place};
 use crate::winds::place_winds;
 use crate::{Level, LevelKind, Note, Place, Profile, Sampling, Sounding, Wind};
 
@@ -17,11 +17,13 @@ const FINE_ROWS: usize = 20;
 pub(crate) fn received(sounding: &Sounding) -> (Profile, Vec<Note>) {
     let mut notes = Vec::new();
     let mut unusable = Tally::new(
-        "values that can't be used count as missing",
+        "values that can't be used",
+        "counted as missing",
         "not a number, or outside what air can be",
     );
     let mut saturated = Tally::new(
-        "dew points slightly above temperature: counted as saturated",
+        "dew points slightly above temperature",
+        "counted as saturated",
         "up to 1 K is rounding or slight supersaturation",
     );
     let clean: Vec<Level> = sounding
@@ -60,11 +62,17 @@ pub(crate) fn received(sounding: &Sounding) -> (Profile, Vec<Note>) {
     }
 
     let mut conflicts = Tally::new(
-        "levels repeat a pressure with other values; the value received first is kept",
+        "levels repeat a pressure with other values",
+        "the value received first is kept",
         "one pressure, one row",
     );
+    let used = rows.len();
     let mut profile = merged(&clean, rows, sampling, &mut conflicts);
-    conflicts.tell(sampling, &mut notes);
+    match sampling {
+        Sampling::Coded => conflicts.tell(sampling, &mut notes),
+        Sampling::Fine if conflicts.is_empty() => {}
+        Sampling::Fine => note_shared_pressures(used - profile.len(), &clean, &mut notes),
+    }
 
     choose_surface(&mut profile, surface_level, &clean, &mut notes);
     if let (Some(row), Some(elevation)) = (profile.surface, sounding.station.elevation)
@@ -132,14 +140,37 @@ fn note_without_pressure(
     let Some(first) = left_out.first() else {
         return;
     };
-    let what = match left_out.len() {
-        1 => "1 level without pressure left out".to_string(),
-        n => format!("{n} levels without pressure left out"),
-    };
+    let what = format!(
+        "{} without pressure left out",
+        count_of_levels(left_out.len())
+    );
     notes.push(Note {
         place: place(first),
         what,
         why: "a level has its place in the profile by pressure".to_string(),
+    });
+}
+
+/// In fine data rows share a pressure as a matter of course, because it is rounded: one note, of the file as a whole.
+fn note_shared_pressures(count: usize, levels: &[Level], notes: &mut Vec<Note>) {
+    let rows = match count {
+        1 => "1 row shares".to_string(),
+        n => format!("{n} rows share"),
+    };
+    let is_multiple = |step: f64| {
+        let mut pressures = levels.iter().filter_map(|level| level.pressure);
+        pressures.all(|p| (p / step - (p / step).round()).abs() * step < 1e-3)
+    };
+    let step = [(100.0, "1"), (10.0, "0.1"), (1.0, "0.01")]
+        .into_iter()
+        .find(|(step, _)| is_multiple(*step))
+        .map_or_else(String::new, |(_, hpa)| format!(" ({hpa} hPa steps)"));
+    notes.push(Note {
+        place: Place::File,
+        what: format!(
+            "{rows} a pressure with an earlier row{step}; the first value of each is used"
+        ),
+        why: String::new(),
     });
 }
 
@@ -259,7 +290,7 @@ fn push_group(
             conflicts.add(
                 place(level),
                 format!(
-                    "{} repeated with other {}; the first received is kept",
+                    "{} repeated with other {}",
                     at(kept.pressure),
                     differing.join(", ")
                 ),
@@ -342,6 +373,8 @@ fn choose_surface(
                 });
                 profile.surface = Some(above);
             }
+            // Of winds alone nobody expects a parcel.
+            None if profile.temperature.iter().all(Option::is_none) => {}
             None => notes.push(Note {
                 place,
                 what: format!(
@@ -359,8 +392,8 @@ fn choose_surface(
         notes.push(Note {
             place: Place::Level(0),
             what: format!(
-                "{below} {} with temperature below the surface level at {}: not used",
-                if below == 1 { "level" } else { "levels" },
+                "{} with temperature below the surface level at {}: not used",
+                count_of_levels(below),
                 hpa(pressure)
             ),
             why: "the air a parcel rises through starts at the surface".to_string(),
@@ -405,7 +438,7 @@ mod tests {
         assert_eq!(note.place, Place::Line(9));
         assert_eq!(
             note.what,
-            "850 hPa repeated with other temperature; the first received is kept"
+            "850 hPa repeated with other temperature: the value received first is kept"
         );
     }
 
@@ -527,13 +560,13 @@ mod tests {
         assert_eq!(profile.len(), 12);
         let whats: Vec<&str> = notes.iter().map(|note| note.what.as_str()).collect();
         let expect = [
-            "temperature NaN °C of received level 3 counts as missing",
-            "dew point 626.9 °C of received level 4 counts as missing",
-            "wind direction 400° of received level 5 counts as missing",
-            "height inf m of received level 6 counts as missing",
-            "dew point -9.3 °C far above temperature -12.3 °C at 500 hPa: counts as missing",
-            "pressure -0.1 hPa of received level 12 counts as missing",
-            "dew point 20.0 °C at 40 hPa: counts as missing, vapour would outweigh the air",
+            "temperature NaN °C of received level 3: counted as missing",
+            "dew point 626.9 °C of received level 4: counted as missing",
+            "wind direction 400° of received level 5: counted as missing",
+            "height inf m of received level 6: counted as missing",
+            "dew point −9.3 °C far above temperature −12.3 °C at 500 hPa: counted as missing",
+            "pressure -0.1 hPa of received level 12: counted as missing",
+            "dew point 20.0 °C at 40 hPa, where vapour would outweigh the air: counted as missing",
             "2 levels without pressure left out",
         ];
         assert_eq!(whats, expect);

@@ -3,7 +3,7 @@
 use crate::clean::TEMPERATURES;
 use crate::mixed_layer::MIXED_LAYER_LEAST_DEPTH;
 use crate::profile::SAME_PRESSURE;
-use crate::telling::hpa;
+use crate::telling::{celsius, count_of_levels, hpa};
 use crate::{Daylight, Note, Place, Profile, Reach, ReachApplied};
 use dewbound_thermo::{
     Air, KAPPA, Pressure, REFERENCE_PRESSURE, Temperature, dewpoint_from_mixing_ratio,
@@ -66,7 +66,7 @@ pub(crate) fn edit_surface(
             return Some(value.k());
         }
         tell(
-            format!("surface {name} {:.1} °C not set", value.c()),
+            format!("surface {name} {} not set", celsius(value.k())),
             "no air is like that",
         );
         None
@@ -78,9 +78,9 @@ pub(crate) fn edit_surface(
     {
         tell(
             format!(
-                "surface dew point {:.1} °C lowered to the temperature, {:.1} °C",
-                wanted - dewbound_thermo::ZERO_CELSIUS,
-                t - dewbound_thermo::ZERO_CELSIUS
+                "surface dew point {} lowered to the temperature, {}",
+                celsius(wanted),
+                celsius(t)
             ),
             "dew point can't exceed temperature",
         );
@@ -165,9 +165,10 @@ pub(crate) fn edit_surface(
     if floored > 0 {
         tell(
             format!(
-                "{floored} levels would have lost more moisture than they hold: made dry instead"
+                "{} would have lost more moisture than there is: made dry instead",
+                count_of_levels(floored)
             ),
-            "the increment of the surface is larger than their mixing ratio",
+            "the increment of the surface is larger than the mixing ratio there",
         );
     }
     applied

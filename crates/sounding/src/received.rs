@@ -88,8 +88,10 @@ pub struct Times {
     pub launch: Option<Timestamp>,
     /// The synoptic hour it is filed under.
     pub nominal: Option<Timestamp>,
-    /// Month and year (or more) were not in the message but assumed.
+    /// Month and year were not in the message but assumed.
     pub assumed: bool,
+    /// The day of the launch was not certain from the message but assumed.
+    pub day_assumed: bool,
 }
 
 impl Times {

@@ -124,7 +124,7 @@ mod tests {
             times: Times {
                 launch: launch.map(|t| t.parse().unwrap()),
                 nominal: nominal.map(|t| t.parse().unwrap()),
-                assumed: false,
+                ..Times::default()
             },
             ..Sounding::default()
         })

@@ -78,7 +78,7 @@ pub(crate) fn sounding(
         times: Times {
             launch,
             nominal: comments.nominal,
-            assumed: false,
+            ..Times::default()
         },
         levels,
         humidity_reported: humidity_reported(&rows),

@@ -137,7 +137,7 @@ pub(crate) fn keep_one_course(
         take_out(
             rows,
             |elapsed| elapsed > burst,
-            "lie after the highest point, on the way down, and are not part of the ascent",
+            "after the highest point, on the way down: not part of the ascent",
             notes,
         );
     }
@@ -145,7 +145,7 @@ pub(crate) fn keep_one_course(
         take_out(
             rows,
             |elapsed| elapsed < 0.0,
-            "lie before the launch and are not part of the ascent",
+            "before the launch: not part of the ascent",
             notes,
         );
     }
@@ -184,7 +184,10 @@ fn take_out(rows: &mut Vec<Row>, out: impl Fn(f64) -> bool, why_not: &str, notes
     if let (Some(first), Some(last)) = (taken.iter().min(), taken.iter().max()) {
         notes.push(Note {
             place: Place::Line(*first),
-            what: format!("{} rows (lines {first} to {last}) {why_not}", taken.len()),
+            what: match taken.len() {
+                1 => format!("1 row {why_not}"),
+                rows => format!("{rows} rows (lines {first} to {last}) {why_not}"),
+            },
             why: String::new(),
         });
     }

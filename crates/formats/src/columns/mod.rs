@@ -53,8 +53,8 @@ fn header_of(line: &str) -> Option<TableHeader> {
     TableHeader::read(line).filter(TableHeader::is_enough)
 }
 
-/// The error for a table whose header is missing or not understood. `None` when the text is no table at all;
-/// with `only_meaningful`, also when none of its names means anything here.
+/// The error for a table whose header is missing or not understood. `None` when the text is no table at all, or prose
+/// with commas; with `only_meaningful`, also for numbers without a header.
 pub(crate) fn complaint(file: &str, text: &str, only_meaningful: bool) -> Option<ReadError> {
     let (line, header) = text::lines(text)
         .take(HEADER_WITHIN)
@@ -83,6 +83,9 @@ pub(crate) fn complaint(file: &str, text: &str, only_meaningful: bool) -> Option
             what: "a table of stations, not a sounding",
             hint: "its place is the office folder, as stations.csv",
         });
+    }
+    if !header.means_something() {
+        return None;
     }
     Some(ReadError::UnknownHeader {
         file: file.into(),

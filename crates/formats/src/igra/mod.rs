@@ -143,7 +143,8 @@ impl Record<'_> {
         {
             notes.add(
                 format!(
-                    "the header announces {announced} levels, {} follow",
+                    "the header announces {announced} level{}, {} follow",
+                    if announced == 1 { "" } else { "s" },
                     self.rows.len()
                 ),
                 "the record may be cut short",
@@ -365,6 +366,12 @@ mod tests {
         let parse = |time: Option<&str>| time.map(|time| time.parse().unwrap());
         assert_eq!(sounding.times.nominal, parse(nominal));
         assert_eq!(sounding.times.launch, parse(launch));
+        // Without the hour the day of the release is a guess; year and month never are.
+        let guessed = nominal.is_none() && launch.is_some();
+        assert_eq!(
+            (sounding.times.assumed, sounding.times.day_assumed),
+            (false, guessed)
+        );
         assert_eq!(sounding.notes.len(), notes, "{:?}", sounding.notes);
     }
 

@@ -66,7 +66,7 @@ pub(super) fn times(header: &Fields, notes: &mut Notes, tally: &mut Tally) -> Ti
     times.launch = match nominal {
         Some(nominal) => Some(nearest_day(release, nominal)),
         None => {
-            times.assumed = true;
+            times.day_assumed = true;
             notes.add(
                 format!(
                     "the hour is missing; the release at {hour:02}:{:02} is taken to be on {date}",

@@ -12,7 +12,7 @@ pub(crate) fn wmo_number(text: &str) -> Option<String> {
 
 /// A position, longitude brought to -180..=180; `None` off the globe.
 pub(crate) fn position(latitude: f64, longitude: f64) -> Option<Position> {
-    let longitude = if longitude > 180.0 {
+    let longitude = if longitude > 180.0 && longitude <= 360.0 {
         longitude - 360.0
     } else {
         longitude
@@ -38,6 +38,13 @@ pub(crate) fn distance_km(a: Position, b: Position) -> f64 {
 mod tests {
     use super::*;
     use approx::assert_relative_eq;
+
+    #[test]
+    fn longitudes_run_to_360_and_no_further() {
+        let longitude = |east| position(40.0, east).map(|place| place.longitude);
+        assert_eq!(longitude(350.0), Some(-10.0));
+        assert_eq!([longitude(361.0), longitude(500.0)], [None, None]);
+    }
 
     #[test]
     fn numbers_have_five_digits() {

@@ -85,6 +85,7 @@ pub(super) fn times(
             launch: launch.and_then(|launch| launch_near(date, when.hour, launch)),
             nominal: Some(nominal),
             assumed: true,
+            ..Times::default()
         },
         date,
     ))

@@ -203,6 +203,11 @@ impl<'a> Splitter<'a> {
     fn flush(&mut self) {
         let stray = std::mem::take(&mut self.stray);
         let Some(first) = stray.first() else { return };
+        // A lone semicolon or row of dots between bulletins says nothing that could be missed.
+        let mut characters = stray.iter().flat_map(|word| word.text.chars());
+        if !characters.any(char::is_alphanumeric) {
+            return;
+        }
         let of = self.heading.as_ref().map_or(String::new(), |heading| {
             format!(" of bulletin {}", heading.text)
         });
@@ -301,6 +306,16 @@ mod tests {
     }
 
     #[test]
+    fn punctuation_alone_is_not_told_of() {
+        let notes = |between: &str| {
+            messages(&format!("TTAA 1 2=\n{between}\nTTBB 4=\n"))
+                .1
+                .len()
+        };
+        assert_eq!([notes(";"), notes("-- ..."), notes("; lost")], [0, 0, 1]);
+    }
+
+    #[test]
     fn splits_at_ends_letters_and_control_characters() {
         let text = "0000018300\u{1}\r\r\n123\r\r\nUSXX01 ABCD 050000\r\r\nTTAA 1 2\r\r\n3= TTBB 4=\r\r\nTTCC 5\r\r\n\u{3}0000009900\u{1}\r\r\n00124\r\r\n\
                     USXX02 ABCD 050000 CCA\r\r\nTTDD 6==\r\r\n\u{3}";
@@ -327,7 +342,7 @@ mod tests {
 
     #[test]
     fn text_outside_is_named() {
-        let (found, notes) = messages("AAXX 05001\n00001 41598=\nTTAA 1=\n;\n");
+        let (found, notes) = messages("AAXX 05001\n00001 41598=\nTTAA 1=\nlost\n");
         assert_eq!(found.len(), 1);
         let places: Vec<_> = notes.iter().map(|note| note.place).collect();
         assert_eq!(places, [Place::Line(1), Place::Line(4)]);

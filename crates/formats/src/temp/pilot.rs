@@ -275,9 +275,10 @@ fn winds(
         context.note(
             head.line,
             format!(
-                "group {} announces {} winds and {found} follow; set aside: {}",
+                "group {} announces {} wind{} and {found} follow; set aside: {}",
                 quote(&[head]),
                 levels.len(),
+                if levels.len() == 1 { "" } else { "s" },
                 quote(groups)
             ),
             "it can't be told which wind belongs to which level",

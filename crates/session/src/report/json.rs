@@ -101,7 +101,9 @@ struct Start {
 #[derive(Serialize)]
 struct RangeOut {
     cape_jkg: Option<[Rounded; 2]>,
+    /// From the strongest cap to the weakest, where there is free convection.
     cin_jkg: Option<[Rounded; 2]>,
+    cin_absent_somewhere: bool,
 }
 
 #[derive(Serialize)]
@@ -214,6 +216,7 @@ impl ParcelOut {
             range: (range.cape.is_some() || range.cin.is_some()).then(|| RangeOut {
                 cape_jkg: range.cape.as_ref().map(ends),
                 cin_jkg: range.cin.as_ref().map(ends),
+                cin_absent_somewhere: range.sometimes_no_free_convection,
             }),
         }
     }
@@ -294,7 +297,7 @@ mod tests {
     #[test]
     fn numbers_are_rounded_and_what_is_no_number_is_null() {
         for (value, decimals, expected) in [
-            (1_850.348_6, 2, "1850.35"),
+            (1850.3486, 2, "1850.35"),
             (-0.001, 2, "0.0"),
             (f64::NAN, 2, "null"),
             (f64::INFINITY, 2, "null"),

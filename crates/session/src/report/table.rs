@@ -1,7 +1,7 @@
 //! One sounding for people.
 
 use super::columns::aligned;
-use crate::sounding::{Numbers, Parcel};
+use crate::sounding::{Numbers, Parcel, Profile};
 use crate::thermo::{Ascent, Pressure};
 use crate::trust::{Evidence, Finding, Grade};
 use crate::wording::{
@@ -12,10 +12,19 @@ use crate::{Analysed, Card, Extremes, ParcelRange, Results};
 /// The table of `weigh` for one sounding.
 pub fn table(analysed: &Analysed, results: &Results) -> String {
     let mut text = heading(analysed);
-    text.push_str(&condition(analysed, results));
-    text.push('\n');
-    text.push_str(&numbers(results));
-    text.push_str(&remarks(analysed, results));
+    if is_wind_only(analysed) {
+        text.push_str(&wind_only(analysed, results));
+    } else {
+        text.push_str(&condition(analysed, results));
+        if Parcel::ALL
+            .into_iter()
+            .any(|which| results.numbers.parcel(which).is_some())
+        {
+            text.push('\n');
+            text.push_str(&numbers(results));
+        }
+        text.push_str(&remarks(analysed, results));
+    }
     text.push_str(&findings(analysed, results));
     text.push_str(&notes(analysed));
     text.push_str(&format!("\n{CAUTION}.\n"));
@@ -50,11 +59,28 @@ fn heading(analysed: &Analysed) -> String {
     text
 }
 
+fn is_wind_only(analysed: &Analysed) -> bool {
+    let profile = &analysed.profile;
+    profile.temperature.iter().all(Option::is_none) && profile.wind.iter().any(Option::is_some)
+}
+
+fn wind_only(analysed: &Analysed, results: &Results) -> String {
+    let winds = analysed.profile.wind.iter().flatten().count();
+    let mut text = format!(
+        "wind only, {}: no temperature, so no parcels\n",
+        wording::counted(winds, "level", "levels")
+    );
+    for note in &results.working.notes {
+        text.push_str(&format!("{}\n", wording::note(note)));
+    }
+    text
+}
+
 /// What the profile holds and what has been set.
 fn condition(analysed: &Analysed, results: &Results) -> String {
     let profile = &analysed.profile;
     let dry = analysed.humidity_missing();
-    let mut text = format!("{} levels", analysed.usable_rows().len());
+    let mut text = wording::counted(analysed.usable_rows().len(), "level", "levels");
     if let Some(top) = profile.top() {
         text.push_str(&format!(" up to {}", pressure(top)));
     }
@@ -110,7 +136,7 @@ fn numbers(results: &Results) -> String {
             .cin
             .map_or_else(|| "none".to_owned(), |cin| number(cin, 0))
     });
-    add("  in range", &|_, range| ends(&range.cin));
+    add("  in range", &|_, range| wording::cin_range(range));
     add("starts at, hPa", &|ascent, _| {
         level(Some(ascent.start.pressure))
     });
@@ -124,7 +150,14 @@ fn numbers(results: &Results) -> String {
         level(Some(ascent.lcl.pressure))
     });
     add("free convection (LFC), hPa", &|ascent, _| level(ascent.lfc));
-    add("equilibrium level (EL), hPa", &|ascent, _| level(ascent.el));
+    let top = results.working.profile.top();
+    add("equilibrium level (EL), hPa", &|ascent, _| {
+        match (ascent.el, ascent.lfc, top) {
+            // Still buoyant where the sounding ends.
+            (None, Some(_), Some(top)) => format!("above {}", number(top.hpa(), 0)),
+            (el, ..) => level(el),
+        }
+    });
     add("theta-e, K", &|ascent, _| number(ascent.theta_e.k(), 1));
     aligned(&rows)
 }
@@ -143,12 +176,12 @@ fn remarks(analysed: &Analysed, results: &Results) -> String {
         lines.push(format!("no range: {}", results.doubt.problem));
     }
     lines.push(results.which_parcel.clone());
-    lines.extend(limits(&results.numbers));
+    lines.extend(limits(&results.working.profile, &results.numbers));
     lines.extend(results.working.notes.iter().map(wording::note));
     if analysed.daylight == crate::sounding::Daylight::Unknown {
         lines.push(format!(
-            "day or night not known ({}), so some rules stay at doubtful",
-            crate::sounding::missing_for_daylight(&analysed.sounding)
+            "day or night not known, so some rules stay at doubtful: {}",
+            wording::daylight_lacks(&analysed.sounding)
         ));
     }
     let mut text = String::from("\n");
@@ -159,14 +192,18 @@ fn remarks(analysed: &Analysed, results: &Results) -> String {
     text
 }
 
-fn limits(numbers: &Numbers) -> Vec<String> {
+fn limits(profile: &Profile, numbers: &Numbers) -> Vec<String> {
     let mut lines = Vec::new();
     if Parcel::ALL
         .into_iter()
         .filter_map(|which| numbers.parcel(which))
         .any(|ascent| ascent.at_least)
+        && let Some(top) = profile.top()
     {
-        lines.push("≥: a lower limit; the profile ends before the parcel does".to_owned());
+        lines.push(format!(
+            "≥: a lower limit: the sounding ends at {}, and what a parcel would do above isn't counted",
+            pressure(top)
+        ));
     }
     if let Some(start) = numbers.starts_at {
         lines.push(format!(
@@ -177,14 +214,14 @@ fn limits(numbers: &Numbers) -> Vec<String> {
     if let Some(humidity) = numbers.humidity {
         if humidity.interpolated > 0 {
             lines.push(format!(
-                "{} levels with interpolated dew point",
-                humidity.interpolated
+                "{} with interpolated dew point",
+                wording::counted(humidity.interpolated, "level", "levels")
             ));
         }
         if let Some(from) = humidity.dry_above {
             lines.push(format!(
-                "{} levels above {} counted as dry",
-                humidity.dry,
+                "{} above {} counted as dry",
+                wording::counted(humidity.dry, "level", "levels"),
                 pressure(from)
             ));
         }
@@ -193,7 +230,10 @@ fn limits(numbers: &Numbers) -> Vec<String> {
         let held: Vec<String> = Parcel::ALL
             .into_iter()
             .zip(held)
-            .map(|(which, cape)| format!("{} {}", parcel(which), wording::energy(*cape, false)))
+            .map(|(which, cape)| {
+                let at_least = numbers.parcel(which).is_some_and(|ascent| ascent.at_least);
+                format!("{} {}", parcel(which), wording::energy(*cape, at_least))
+            })
             .collect();
         lines.push(format!(
             "CAPE with relative humidity held above that: {}",

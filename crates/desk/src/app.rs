@@ -378,8 +378,10 @@ impl Desk {
             chart: self.seen.as_ref(),
         };
         let layout = &self.layout;
-        ui.painter()
-            .rect_filled(ui.ctx().content_rect(), 0.0, self.theme.desk);
+        // Software renderers pay for every pixel painted twice, so the desk shows only where no panel lies.
+        for gap in layout.gaps() {
+            ui.painter().rect_filled(gap, 0.0, self.theme.desk);
+        }
         self.panel(ui, layout.bar, "bar", |ui| menu::bar_ui(ui, &paint, asks));
         if let Some(rect) = layout.tray {
             self.panel(ui, rect, "tray", |ui| tray::tray_ui(ui, &paint, asks));

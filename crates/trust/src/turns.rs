@@ -172,20 +172,16 @@ fn episodes(steps: &[Step], waiting: f64, tolerance: f64) -> Vec<Turn> {
             lowest = Some((index, step.p));
             continue;
         };
-        match &mut open {
-            Some(open) => {
-                if steps.get(open.high).is_some_and(|high| step.p > high.p) {
-                    open.high = index;
-                }
+        if let Some(open) = &mut open {
+            if steps.get(open.high).is_some_and(|high| step.p > high.p) {
+                open.high = index;
             }
-            None if step.p > least + tolerance && least < waiting => {
-                open = Some(Open {
-                    low,
-                    first: index,
-                    high: index,
-                });
-            }
-            None => {}
+        } else if step.p > least + tolerance && least < waiting {
+            open = Some(Open {
+                low,
+                first: index,
+                high: index,
+            });
         }
     }
     episodes.extend(open.and_then(|open| closed(steps, &open, None)));

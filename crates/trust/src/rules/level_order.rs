@@ -449,9 +449,7 @@ mod tests {
             ascent.p[n + k] = p[n - k];
             ascent.p[n + 60 + k] = p[n - 60 + k];
         }
-        for k in n + 120..p.len() {
-            ascent.p[k] = p[k - 120];
-        }
+        ascent.p[n + 120..].copy_from_slice(&p[n..p.len() - 120]);
         ascent
     }
 

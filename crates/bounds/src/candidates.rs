@@ -2,7 +2,7 @@
 
 use dewbound_trust::sounding::thermo::{Pressure, Temperature};
 use dewbound_trust::sounding::{Daylight, Profile};
-use dewbound_trust::{MixedLayer, Thresholds};
+use dewbound_trust::{MixedLayer, RefutedSurface, Thresholds};
 
 /// Where a candidate comes from.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]
@@ -11,6 +11,8 @@ pub enum Origin {
     Reported,
     /// The mean mixing ratio of the mixed layer without the surface level and the contact layer, brought to surface pressure.
     MixedLayer,
+    /// Continued down to the surface from the first levels of the sonde; only where these refute the reported value.
+    FirstLevels,
 }
 
 /// A candidate, or the reason why there is none.
@@ -20,8 +22,10 @@ pub struct Candidate {
     pub origin: Origin,
     /// Surface dew point.
     pub dewpoint: Option<Temperature>,
-    /// How it was come by; without a dew point, why not. One line.
+    /// How it was come by; without a dew point, why not; set aside, for what reason. One line.
     pub why: String,
+    /// Not believed: it takes no part in the interval.
+    pub set_aside: bool,
 }
 
 /// The candidates, side by side.
@@ -31,21 +35,28 @@ pub struct Candidates {
     pub reported: Candidate,
     /// Implied by the mixed layer.
     pub mixed_layer: Candidate,
+    /// Continued from the first levels of the sonde, when these refute the reported one.
+    pub first_levels: Option<Candidate>,
     /// Surface temperature as received.
     pub surface_temperature: Option<Temperature>,
+    /// The surface temperature the sonde leads to, when it refutes the received one.
+    pub sonde_temperature: Option<Temperature>,
 }
 
 impl Candidates {
-    /// Both, in the order shown.
+    /// All of them, in the order shown.
     pub fn iter(&self) -> impl Iterator<Item = &Candidate> {
-        [&self.reported, &self.mixed_layer].into_iter()
+        [&self.reported, &self.mixed_layer]
+            .into_iter()
+            .chain(&self.first_levels)
     }
 }
 
 /// The candidates of a received profile. Amendments don't enter.
 ///
 /// The mixed layer is the one the findings judge ([`MixedLayer`]), so that the dew point implied here and the one
-/// offered as a repair are the same.
+/// offered as a repair are the same. Where the surface-mismatch rule calls the reported dew point erroneous, it is set
+/// aside and the value continued from the sonde takes part instead ([`RefutedSurface`]).
 pub fn candidates(received: &Profile, daylight: Daylight, thresholds: &Thresholds) -> Candidates {
     let at_surface = |column: &[Option<f64>]| {
         let row = received.surface?;
@@ -53,24 +64,45 @@ pub fn candidates(received: &Profile, daylight: Daylight, thresholds: &Threshold
     };
     let reported = at_surface(&received.dewpoint);
     let surface_temperature = at_surface(&received.temperature);
-    let reported_why = match (reported, received.surface_pressure()) {
+    let refuted = RefutedSurface::of(received, daylight, thresholds);
+    let mut reported_why = match (reported, received.surface_pressure()) {
         (Some(_), Some(pressure)) => format!("surface level, {:.0} hPa", pressure.hpa()),
         (None, Some(_)) => "the surface level has no dew point".to_string(),
         (_, None) => "no surface level".to_string(),
     };
+    if let Some(refuted) = refuted.dewpoint {
+        reported_why.push_str(&format!(
+            "; set aside: {:.1} K {} than the first levels of the sonde lead to",
+            refuted.difference.abs(),
+            if refuted.difference > 0.0 {
+                "moister"
+            } else {
+                "drier"
+            }
+        ));
+    }
     let (dewpoint, why) = implied(received, daylight, thresholds);
     Candidates {
         reported: Candidate {
             origin: Origin::Reported,
             dewpoint: reported,
             why: reported_why,
+            set_aside: refuted.dewpoint.is_some(),
         },
         mixed_layer: Candidate {
             origin: Origin::MixedLayer,
             dewpoint,
             why,
+            set_aside: false,
         },
+        first_levels: refuted.dewpoint.map(|refuted| Candidate {
+            origin: Origin::FirstLevels,
+            dewpoint: Some(refuted.expected),
+            why: "continued from the sonde's first levels".to_string(),
+            set_aside: false,
+        }),
         surface_temperature,
+        sonde_temperature: refuted.temperature.map(|refuted| refuted.expected),
     }
 }
 
@@ -187,5 +219,45 @@ mod tests {
             (found.reported.why.as_str(), found.mixed_layer.why.as_str()),
             ("no surface level", "no surface level")
         );
+    }
+
+    #[test]
+    fn a_refuted_value_is_set_aside_for_the_sondes_own() {
+        // Under 12 g/kg throughout (16.08 °C at 965 hPa, by hand above) the surface says 0 °C.
+        for step in [25.0, 1.0] {
+            let found = of(mixed(step, 0.0, |_| 0.012));
+            assert!(found.reported.set_aside, "{step}");
+            assert!(
+                found.reported.why.contains("set aside: 16.1 K drier"),
+                "{}",
+                found.reported.why
+            );
+            let continued = found.first_levels.as_ref().unwrap();
+            assert!((continued.dewpoint.unwrap().c() - 16.08).abs() < 0.05);
+            assert_eq!(found.sonde_temperature, None);
+            let interval =
+                crate::interval(&found, found.surface_temperature, crate::Pins::default()).unwrap();
+            assert!(
+                (interval.low.c() - 15.58).abs() < 0.1 && (interval.high.c() - 16.58).abs() < 0.1
+            );
+        }
+        let doubtful = of(mixed(1.0, 12.0, |_| 0.012));
+        assert!(!doubtful.reported.set_aside && doubtful.first_levels.is_none());
+    }
+
+    #[test]
+    fn a_refuted_temperature_leaves_no_interval_until_it_is_set() {
+        let mut levels = mixed(1.0, 0.0, |_| 0.012);
+        levels[0].temperature = Some(275.15);
+        let found = of(levels);
+        let expected = found.sonde_temperature.unwrap();
+        let none = crate::interval(&found, found.surface_temperature, crate::Pins::default());
+        let told = none.unwrap_err().to_string();
+        assert!(
+            told.contains("2.0 °C") && told.contains("set the surface temperature"),
+            "{told}"
+        );
+        let set = crate::interval(&found, Some(expected), crate::Pins::default()).unwrap();
+        assert!(set.low.c() > 15.0, "{set:?}");
     }
 }

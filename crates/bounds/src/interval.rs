@@ -49,6 +49,16 @@ pub enum NoInterval {
         /// Why the mixed layer implies none.
         mixed_layer: String,
     },
+    /// Every candidate lies above a surface temperature that the sonde refutes.
+    #[error(
+        "no credible interval: the sonde contradicts the surface temperature, {received_c:.1} °C ({expected_c:.1} °C expected), and every candidate lies above it. Take the repair or set the surface temperature, or pin both ends"
+    )]
+    TemperatureRefuted {
+        /// As received, °C.
+        received_c: f64,
+        /// As the sonde leads to, °C.
+        expected_c: f64,
+    },
     /// The ends are crossed by a pin.
     #[error(
         "the lower end, {low_c:.1} °C ({why_low}), lies above the upper end, {high_c:.1} °C ({why_high}): move a pin"
@@ -68,7 +78,7 @@ pub enum NoInterval {
     NotANumber,
 }
 
-/// The interval: from the lower to the higher of the candidates, each side widened by [`SENSOR_ALLOWANCE`], the upper end no
+/// The interval: from the lower to the higher of the candidates not set aside, each side widened by [`SENSOR_ALLOWANCE`], the upper end no
 /// higher than the surface `temperature` in force. A pinned end replaces the one computed.
 ///
 /// # Errors
@@ -89,10 +99,26 @@ pub fn interval(
     let known = || {
         candidates
             .iter()
+            .filter(|c| !c.set_aside)
             .filter_map(|c| Some((c.origin, c.dewpoint?)))
     };
     let lowest = known().min_by(|a, b| a.1.k().total_cmp(&b.1.k()));
     let highest = known().max_by(|a, b| a.1.k().total_cmp(&b.1.k()));
+    let pinned = pins.low.is_some() && pins.high.is_some();
+    if let (Some(expected), Some(received), Some((_, lowest)), false) = (
+        candidates.sonde_temperature,
+        candidates
+            .surface_temperature
+            .filter(|_| temperature == candidates.surface_temperature),
+        lowest,
+        pinned,
+    ) && lowest.k() > received.k()
+    {
+        return Err(NoInterval::TemperatureRefuted {
+            received_c: received.c(),
+            expected_c: expected.c(),
+        });
+    }
     let missing = || NoInterval::NoCandidate {
         reported: candidates.reported.why.clone(),
         mixed_layer: candidates.mixed_layer.why.clone(),
@@ -147,6 +173,7 @@ fn name(origin: Origin) -> &'static str {
     match origin {
         Origin::Reported => "as reported",
         Origin::MixedLayer => "implied by the mixed layer",
+        Origin::FirstLevels => "continued from the sonde's first levels",
     }
 }
 
@@ -164,11 +191,14 @@ mod tests {
             origin,
             dewpoint: dewpoint.map(c),
             why: why.to_string(),
+            set_aside: false,
         };
         Candidates {
             reported: candidate(Origin::Reported, reported, "no surface dew point"),
             mixed_layer: candidate(Origin::MixedLayer, implied, "no mixed layer"),
+            first_levels: None,
             surface_temperature: Some(c(30.0)),
+            sonde_temperature: None,
         }
     }
 

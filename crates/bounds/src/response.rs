@@ -50,6 +50,8 @@ pub struct Response {
     reported: Option<Temperature>,
     /// Dew point implied by the mixed layer.
     implied: Option<Temperature>,
+    /// Dew point continued from the first levels of the sonde.
+    continued: Option<Temperature>,
 }
 
 /// Steps the interval is divided into to begin with.
@@ -78,6 +80,7 @@ pub fn response(
 ) -> Response {
     let reported = candidates.reported.dewpoint;
     let implied = candidates.mixed_layer.dewpoint;
+    let continued = candidates.first_levels.as_ref().and_then(|c| c.dewpoint);
     let temperature = amendments
         .surface_temperature()
         .or(candidates.surface_temperature);
@@ -111,7 +114,7 @@ pub fn response(
     };
 
     let mut samples: Vec<Sample> =
-        starting_points(interval, [reported, implied], temperature, plan)
+        starting_points(interval, [reported, implied, continued], temperature, plan)
             .into_iter()
             .take(plan.most_samples.max(2))
             .map(sample)
@@ -137,13 +140,14 @@ pub fn response(
         as_received,
         reported,
         implied,
+        continued,
     }
 }
 
 /// Where sampling starts, ascending. What must not be missed comes first when there are too many.
 fn starting_points(
     interval: &Interval,
-    candidates: [Option<Temperature>; 2],
+    candidates: [Option<Temperature>; 3],
     temperature: Option<Temperature>,
     plan: Plan,
 ) -> Vec<f64> {
@@ -240,6 +244,7 @@ impl Response {
                 .as_ref()
                 .or_else(|| self.at(self.reported?)),
             Origin::MixedLayer => self.at(self.implied?),
+            Origin::FirstLevels => self.at(self.continued?),
         }
     }
 

@@ -189,6 +189,7 @@ pub(crate) fn candidate_word(kind: CandidateKind) -> &'static str {
     match kind {
         CandidateKind::Reported => "reported",
         CandidateKind::MixedLayer => "mixed layer",
+        CandidateKind::FirstLevels => "first levels",
         CandidateKind::PinnedLow | CandidateKind::PinnedHigh => "pinned",
     }
 }
@@ -216,7 +217,7 @@ fn surface_marks(
                     Some(CandidateMark {
                         value: candidate.dewpoint?,
                         label: candidate_word(candidate.kind).to_owned(),
-                        trusted: true,
+                        trusted: candidate.trusted,
                     })
                 })
                 .collect();

@@ -250,6 +250,7 @@ fn curves(
         let shape = match candidate.kind {
             CandidateKind::Reported => MarkerShape::Circle,
             CandidateKind::MixedLayer => MarkerShape::Diamond,
+            CandidateKind::FirstLevels => MarkerShape::Up,
             CandidateKind::PinnedLow | CandidateKind::PinnedHigh => MarkerShape::Square,
         };
         plot.points(

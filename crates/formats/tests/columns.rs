@@ -244,8 +244,10 @@ temperature_c,pressure_hpa
 fn elevation_comes_from_the_ground_row_but_not_under_a_dropsonde() {
     let rows = "pressure_hpa,temperature_c,height_m\n1000,20,52\n990,19,137\n";
     assert_eq!(one(rows).station.elevation, Some(52.0));
+    assert!(!one(rows).released_aloft);
     let dropped = one(&format!("# site: dropsonde over the sea\n{rows}"));
     assert_eq!(dropped.station.elevation, None);
+    assert!(dropped.released_aloft);
     assert_eq!(dropped.levels[0].height, Some(52.0));
     let doubted = one(&format!("# elevation_m: 600\n{rows}"));
     assert_eq!(doubted.station.elevation, Some(600.0));

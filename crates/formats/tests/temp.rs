@@ -326,6 +326,7 @@ XXBB 57188 99123 70456 04125 00011 27018 11987 25615 22795 14056
         })
     );
     assert_eq!(sounding.station.text.as_deref(), Some("drop 12.3N 45.6W"));
+    assert!(sounding.released_aloft);
     let expect = [
         row(Surface, [1011.0, NO, 27.0, 25.2, 90.0, 25.0]),
         row(Standard, [1000.0, 97.0, 26.4, 24.7, 90.0, 25.0]),

@@ -12,6 +12,8 @@ pub enum CandidateKind {
     Reported,
     /// Implied by the mixed layer.
     MixedLayer,
+    /// Continued from the first levels of the sonde, where these refute the reported value.
+    FirstLevels,
     /// Pinned by the user, drier end.
     PinnedLow,
     /// Pinned by the user, moister end.
@@ -29,6 +31,8 @@ pub struct Candidate {
     pub cape: [Option<f64>; 3],
     /// One line for people.
     pub note: String,
+    /// Takes part in the interval; set aside otherwise, and `note` says why.
+    pub trusted: bool,
 }
 
 /// The credible interval of the surface dew point.
@@ -326,10 +330,12 @@ fn candidates(
         kind: match candidate.origin {
             Origin::Reported => CandidateKind::Reported,
             Origin::MixedLayer => CandidateKind::MixedLayer,
+            Origin::FirstLevels => CandidateKind::FirstLevels,
         },
         dewpoint: candidate.dewpoint,
         cape: cape(response.and_then(|response| response.candidate(candidate.origin))),
         note: candidate.why.clone(),
+        trusted: !candidate.set_aside,
     });
     let pinned = [
         (CandidateKind::PinnedLow, IntervalEnd::Low),
@@ -342,6 +348,7 @@ fn candidates(
             dewpoint: Some(dewpoint),
             cape: cape(response.and_then(|response| response.at(dewpoint))),
             note: "pinned by you".to_owned(),
+            trusted: true,
         })
     });
     of_origin.chain(of_pins).collect()

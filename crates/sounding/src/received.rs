@@ -165,6 +165,8 @@ pub struct Sounding {
     pub temperature_step: f64,
     /// Whether later parts may still come.
     pub completeness: Completeness,
+    /// Measured on the way down by a sonde let go aloft (a dropsonde): nothing is known of the air above its first level.
+    pub released_aloft: bool,
     /// Heights were derived from pressure, temperature and humidity (hypsometric), not measured independently.
     /// `None`: the format doesn't say.
     pub heights_derived: Option<bool>,

@@ -58,6 +58,17 @@ pub fn daylight(sounding: &Sounding) -> Daylight {
     if high { Daylight::Day } else { Daylight::Night }
 }
 
+/// What is missing when day and night can't be told apart: "no time", "no position", or both.
+pub fn missing_for_daylight(sounding: &Sounding) -> &'static str {
+    let timed = sounding.times.launch.or(sounding.times.nominal).is_some();
+    match (timed, sounding.station.position.is_some()) {
+        (false, false) => "no time and no position",
+        (false, true) => "no time",
+        (true, false) => "no position",
+        (true, true) => "no usable position",
+    }
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;

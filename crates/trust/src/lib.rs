@@ -22,6 +22,7 @@ pub mod rules;
 mod synthetic;
 mod thresholds;
 mod toggle;
+mod turns;
 mod words;
 
 pub use column::*;
@@ -30,6 +31,7 @@ pub use finding::*;
 pub use mixed::MixedLayer;
 pub use rank::*;
 pub use rule::*;
+pub use rules::{Refuted, RefutedSurface};
 pub use thresholds::*;
 pub use toggle::{applied_repair, repair_source, with_repair, without_repair};
 

@@ -1,5 +1,6 @@
 //! The order in which findings are shown.
 
+use crate::rules::PASSES_APART;
 use crate::{Grade, Priced};
 use std::cmp::Ordering;
 
@@ -9,6 +10,8 @@ const WEIGHTY_JKG: f64 = 100.0;
 /// Where a finding stands before costs are compared, from the top.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
 enum Standing {
+    /// Two passes are mixed, at no small or an unknown cost: what else is seen rests on the order of the levels.
+    PassesMixed,
     /// Cost unknown, and either proven wrong or the result itself is only a lower limit.
     UnknownAndGrave,
     /// At least [`WEIGHTY_JKG`].
@@ -27,7 +30,7 @@ enum Standing {
 /// ones when erroneous or when the result is "at least", else after the last one of >= 100 J/kg).
 ///
 /// Findings for information only whose cost is unknown stand after the priced ones, wind-only findings last. Ties:
-/// larger CIN change, then the graver grade, then the lower layer.
+/// larger CIN change, then the graver grade, then the lower layer. Mixed passes that cost much stand above everything.
 pub fn rank(priced: &[Priced], at_least: bool) -> Vec<usize> {
     let mut order: Vec<usize> = (0..priced.len()).collect();
     order.sort_by(|&a, &b| match (priced.get(a), priced.get(b)) {
@@ -62,7 +65,12 @@ fn standing(state: &Priced, at_least: bool) -> Standing {
     if state.finding.wind_only {
         return Standing::Wind;
     }
-    match state.headline_cost().and_then(|cost| cost.cape_magnitude()) {
+    let cape = state.headline_cost().and_then(|cost| cost.cape_magnitude());
+    if state.finding.evidence(PASSES_APART).is_some() && cape.is_none_or(|cape| cape >= WEIGHTY_JKG)
+    {
+        return Standing::PassesMixed;
+    }
+    match cape {
         Some(cape) if cape >= WEIGHTY_JKG => Standing::Weighty,
         Some(_) => Standing::Light,
         None if grade == Grade::Erroneous => Standing::UnknownAndGrave,

@@ -1,8 +1,10 @@
 //! The list of rules; help, docs, thresholds and tests all derive from it.
 
-use crate::{Column, Finding, Thresholds, rules};
+use crate::turns::{Mixed, Turn, mixed_passes, turns};
+use crate::words::layer;
+use crate::{Column, Finding, Grade, Thresholds, rules};
 use dewbound_sounding::thermo::Pressure;
-use dewbound_sounding::{Daylight, Numbers, Profile, Sounding};
+use dewbound_sounding::{Daylight, Numbers, Profile, Sounding, missing_for_daylight};
 
 /// Everything a rule may look at. Read only.
 #[derive(Debug, Clone, Copy)]
@@ -26,19 +28,40 @@ pub struct View<'a> {
     pub context: Context<'a>,
     /// The levels judged.
     pub column: Column,
+    /// Where the flight turned back.
+    pub(crate) turns: Vec<Turn>,
+    /// Layers in which that has mixed two passes.
+    pub(crate) mixed: Vec<Mixed>,
 }
 
 impl<'a> View<'a> {
     /// Derives the column.
     pub fn of(context: &Context<'a>) -> Self {
+        let turns = turns(context);
         Self {
             context: *context,
             column: Column::of(context.profile, context.thresholds),
+            mixed: mixed_passes(context, &turns),
+            turns,
         }
+    }
+
+    /// A layer (Pa) lies in one in which passes are mixed, or so near that the averaging of fine data reaches into it:
+    /// what is seen there is made by the sorting, and the level-order rule names it.
+    pub(crate) fn passes_mixed(&self, bottom: f64, top: f64) -> bool {
+        let near = 50.0 * self.threshold("fine.average_hpa");
+        self.mixed
+            .iter()
+            .any(|mixed| bottom + near > mixed.top && mixed.bottom + near > top)
     }
 
     pub(crate) fn threshold(&self, name: &str) -> f64 {
         self.context.thresholds.get(name)
+    }
+
+    /// What is missing to tell day from night, for a sentence that says so.
+    pub(crate) fn missing_for_daylight(&self) -> &'static str {
+        missing_for_daylight(self.context.sounding)
     }
 
     /// Heights above mean sea level of the two ends of a layer, m, when something anchors them.
@@ -90,6 +113,9 @@ pub fn findings(context: &Context) -> Vec<Finding> {
     let view = View::of(context);
     let all = RULES.iter().flat_map(|rule| rule.look(&view)).collect();
     let mut kept = unique_keys(one_per_cause(all));
+    for finding in &mut kept {
+        cast_doubt(&view, finding);
+    }
     kept.sort_by(|a, b| {
         let bottom = |finding: &Finding| finding.bottom.map_or(f64::NEG_INFINITY, Pressure::pa);
         let top = |finding: &Finding| finding.top.map_or(f64::NEG_INFINITY, Pressure::pa);
@@ -98,6 +124,33 @@ pub fn findings(context: &Context) -> Vec<Finding> {
             .then(top(b).total_cmp(&top(a)))
     });
     kept
+}
+
+/// What reaches into a layer in which passes are mixed is not proven, whatever it is.
+fn cast_doubt(view: &View, finding: &mut Finding) {
+    let (Some(bottom), Some(top)) = (finding.bottom, finding.top) else {
+        return;
+    };
+    if finding.rule == rules::LevelOrder.id() {
+        return;
+    }
+    let overlapped = view
+        .mixed
+        .iter()
+        .find(|mixed| bottom.pa() > mixed.top && mixed.bottom > top.pa());
+    if let Some(mixed) = overlapped {
+        finding.grade = finding.grade.min(Grade::Doubtful);
+        if !finding.caveat.is_empty() {
+            finding.caveat.push(' ');
+        }
+        finding.caveat.push_str(&format!(
+            "It reaches into {}, where passes are mixed: see there first.",
+            layer(
+                Pressure::from_pa(mixed.bottom),
+                Pressure::from_pa(mixed.top)
+            )
+        ));
+    }
 }
 
 /// The rule in the first column names the cause of what the second one sees in the same layer.

@@ -82,6 +82,7 @@ pub(crate) fn sounding(
         },
         levels,
         humidity_reported: humidity_reported(&rows),
+        released_aloft: course == Course::Descent,
         source: Source {
             format: "columns",
             parts: BTreeSet::from([section.digest.clone().digest()]),

@@ -194,6 +194,7 @@ impl Ascent {
         self.missing_parts(&mut notes);
         self.set_aside(&mut notes);
         let completeness = self.completeness();
+        let released_aloft = self.reports.iter().any(Report::released_aloft);
         let station = self.station();
         let parts = self.reports.iter().map(|report| report.digest).collect();
         let surface = self
@@ -220,6 +221,7 @@ impl Ascent {
             humidity_reported: HumidityReported::DewPoint,
             temperature_step: TEMPERATURE_STEP,
             completeness,
+            released_aloft,
             heights_derived: Some(true),
             source: Source {
                 file: file.into(),

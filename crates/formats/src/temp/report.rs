@@ -125,9 +125,14 @@ impl Report {
         self.letters.pilot == other.letters.pilot && self.letters.part == other.letters.part
     }
 
+    /// A sonde dropped from an aircraft (FM 37).
+    pub fn released_aloft(&self) -> bool {
+        self.letters.platform == Platform::Drop
+    }
+
     /// Two drops at one place and hour are told apart by their launch.
     pub fn other_drop(&self, other: &Self) -> bool {
         let launches = self.launch.zip(other.launch);
-        self.letters.platform == Platform::Drop && launches.is_some_and(|(a, b)| a != b)
+        self.released_aloft() && launches.is_some_and(|(a, b)| a != b)
     }
 }

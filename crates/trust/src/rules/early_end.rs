@@ -39,7 +39,7 @@ impl Rule for EarlyEnd {
     fn about(&self) -> &'static str {
         "The highest temperature lies at a pressure above 100 hPa. Parts of a message not yet received are told apart \
          from an ascent that ended. Doubtful when the top is below the equilibrium level or no tropopause was reached; \
-         otherwise it only informs. Never erroneous: what was measured below stands."
+         otherwise, and for a sonde released aloft, it only informs. Never erroneous: what was measured below stands."
     }
 
     fn thresholds(&self) -> &'static [&'static str] {
@@ -78,22 +78,34 @@ struct Clues {
 impl EarlyEnd {
     fn finding(&self, view: &View, top: Pressure, last: usize) -> Finding {
         let column = &view.column;
+        let descending = view.context.sounding.released_aloft || descending(view);
         let clues = Clues {
-            saturation: saturation_near_top(view, last),
-            rates: ascent_rates(view),
+            saturation: saturation_near_top(view, last).filter(|_| !descending),
+            rates: ascent_rates(view).filter(|_| !descending),
             tropopause: tropopause(view),
-            descending: descending(view),
+            descending,
         };
         let temperature = Temperature::from_k(column.temperature[last]);
         let mut evidence = vec![
-            Evidence::new("top_hpa", "top of the ascent", top.hpa(), "hPa", 0),
+            Evidence::new(
+                "top_hpa",
+                if clues.descending {
+                    "first level after release"
+                } else {
+                    "top of the ascent"
+                },
+                top.hpa(),
+                "hPa",
+                0,
+            ),
             Evidence::new("top_c", "temperature there", temperature.c(), "\u{b0}C", 1),
         ];
         let awaited = view.context.sounding.completeness == Completeness::LaterPartsNotReceived;
         let mut summary = if clues.descending {
             format!(
-                "The sonde was released at {} hPa and fell",
-                number(top.hpa(), 0)
+                "A sonde released aloft starts at {} hPa ({})",
+                number(top.hpa(), 0),
+                celsius(temperature)
             )
         } else if awaited {
             format!(
@@ -116,6 +128,7 @@ impl EarlyEnd {
                 "hPa",
                 0,
             )),
+            None if clues.descending => {}
             None => summary.push_str("; no tropopause was reached"),
         }
         summary.push('.');
@@ -151,7 +164,11 @@ impl EarlyEnd {
         }
         Finding {
             rule: self.id(),
-            title: self.title(),
+            title: if clues.descending {
+                "Sonde released aloft"
+            } else {
+                self.title()
+            },
             grade: if (below_el || clues.tropopause.is_none()) && !clues.descending {
                 Grade::Doubtful
             } else {
@@ -162,13 +179,20 @@ impl EarlyEnd {
             heights: view.heights(top, top),
             summary,
             evidence,
-            guilty: guilty(awaited, saturated, slow, temperature, below_el),
-            innocent: if clues.descending {
-                "A dropsonde knows nothing of the air above the aircraft: this is no fault.".into()
+            guilty: if clues.descending {
+                let mut text =
+                    String::from("Nothing is wrong with it; it begins where it was let go.");
+                if below_el {
+                    text.push_str(" CAPE above its first level isn't counted.");
+                }
+                text
             } else {
-                "Balloons burst and signals fade in any weather, and a sonde dropped from an aircraft starts where the aircraft \
-             flies; everything measured below the top stands."
-                .into()
+                guilty(awaited, saturated, slow, temperature, below_el)
+            },
+            innocent: if clues.descending {
+                "A sonde dropped from an aircraft knows nothing of the air above it; everything measured below stands.".into()
+            } else {
+                "Balloons burst and signals fade in any weather; everything measured below the top stands.".into()
             },
             caveat: caveat(view, top, awaited, &clues),
             repairs: Vec::new(),
@@ -467,5 +491,22 @@ mod tests {
             found[0].evidence("ascent_rate_top_ms").unwrap()
                 < 0.6 * found[0].evidence("ascent_rate_ms").unwrap()
         );
+    }
+
+    #[test]
+    fn a_sonde_released_aloft_has_no_balloon_to_burst() {
+        let mut ascent = unstable().ascent();
+        ascent.end_at(2400.0);
+        for sampling in BOTH {
+            let mut sounding = ascent.sampled(sampling);
+            sounding.released_aloft = true;
+            let found = Scene::day(sounding).check(&EarlyEnd);
+            assert_eq!(found[0].grade, Grade::Informative);
+            let told = format!("{:?}", found[0]);
+            for word in ["alloon", "burst", "iced", "successful", "tropopause"] {
+                assert!(!told.contains(word), "{word}: {told}");
+            }
+            assert!(found[0].summary.contains("released aloft"), "{told}");
+        }
     }
 }

@@ -1,10 +1,11 @@
 //! Levels out of order, twice over, or with heights that run backwards.
 
 use super::repair;
+use crate::turns::{Mixed, Turn};
 use crate::words::{layer, number};
 use crate::{Evidence, Finding, Grade, Repair, Rule, View};
 use dewbound_sounding::thermo::Pressure;
-use dewbound_sounding::{Amendment, Level, LevelKind, Sampling};
+use dewbound_sounding::{Amendment, Level, Sampling};
 
 /// The received order doesn't make sense.
 pub struct LevelOrder;
@@ -23,7 +24,8 @@ impl Rule for LevelOrder {
     }
 
     fn about(&self) -> &'static str {
-        "Pressure rises against the order received, one pressure carries two different values, or height falls while \
+        "Pressure rises against the order received (erroneous where a fine flight passes a layer twice with different \
+         temperatures), one pressure carries two different values, or height falls while \
          pressure falls. The jitter before launch, rounding, and the order of parts in a coded message are allowed for."
     }
 
@@ -31,6 +33,7 @@ impl Rule for LevelOrder {
         &[
             "level-order.fine_reversal_hpa",
             "level-order.prelaunch_hpa",
+            "level-order.passes_k",
             "level-order.conflict_k",
             "level-order.conflict_dewpoint_k",
             "level-order.height_m",
@@ -39,30 +42,15 @@ impl Rule for LevelOrder {
 
     fn look(&self, view: &View) -> Vec<Finding> {
         let mut findings = Vec::new();
+        findings.extend(
+            view.mixed
+                .iter()
+                .map(|mixed| self.mixed_passes(view, mixed)),
+        );
         findings.extend(self.reversal(view));
         findings.extend(self.conflicts(view));
         findings.extend(self.heights(view));
         findings
-    }
-}
-
-/// An episode in which pressure rose against the order.
-struct Reversal {
-    /// Pressure from which it turned back and to which it rose, Pa.
-    from: f64,
-    to: f64,
-    line: Option<usize>,
-}
-
-/// Kinds of level that a coded message lists each in its own falling order.
-fn order_group(kind: LevelKind) -> Option<u8> {
-    match kind {
-        LevelKind::Standard => Some(1),
-        LevelKind::SignificantThermal => Some(2),
-        LevelKind::SignificantWind => Some(3),
-        LevelKind::Other => Some(4),
-        // One or a few a message, wherever its code puts them.
-        LevelKind::Surface | LevelKind::Tropopause | LevelKind::MaximumWind => None,
     }
 }
 
@@ -85,8 +73,56 @@ impl LevelOrder {
         }
     }
 
+    /// Two passes through one layer, interleaved by the sorting: what stands there is no profile.
+    fn mixed_passes(&self, view: &View, mixed: &Mixed) -> Finding {
+        let (bottom, top) = (
+            Pressure::from_pa(mixed.bottom),
+            Pressure::from_pa(mixed.top),
+        );
+        let lines = match (mixed.line, mixed.until) {
+            (Some(first), Some(last)) => format!(" (lines {first} to {last})"),
+            _ => String::new(),
+        };
+        let rise = bottom.hpa() - top.hpa();
+        Finding {
+            heights: view.heights(bottom, top),
+            summary: format!(
+                "Pressure turns back by {} hPa at {}{lines}; in {} passes are mixed whose temperatures differ by up to {} K at \
+                 one pressure.",
+                number(rise, 1),
+                repair::at(mixed.top),
+                layer(bottom, top),
+                number(mixed.apart, 1)
+            ),
+            evidence: vec![
+                Evidence::new("largest_rise_hpa", "pressure turns back by", rise, "hPa", 1),
+                Evidence::new(
+                    PASSES_APART,
+                    "temperature between passes differs by up to",
+                    mixed.apart,
+                    "K",
+                    1,
+                ),
+            ],
+            guilty: "Pressure (or the height it was derived from) was wrong for a while: the sonde went on rising, and values \
+                     of several heights stand sorted into one layer. Lapse rates, clouds and parcels in it are made by the \
+                     sorting."
+                .into(),
+            innocent: "The balloon really sank and rose again through air that had changed meanwhile (ice, a downdraft). Each \
+                       pass was then measured right, but the two don't make one profile."
+                .into(),
+            repairs: drop_mixed(view, mixed).into_iter().collect(),
+            ..self.blank(Grade::Erroneous, mixed.bottom, mixed.top)
+        }
+    }
+
     fn reversal(&self, view: &View) -> Option<Finding> {
-        let reversals = reversals(view);
+        let told = |turn: &&Turn| {
+            view.mixed
+                .iter()
+                .any(|mixed| mixed.bottom >= turn.to && mixed.top <= turn.from)
+        };
+        let reversals: Vec<&Turn> = view.turns.iter().filter(|turn| !told(turn)).collect();
         let worst = reversals
             .iter()
             .max_by(|a, b| (a.to - a.from).total_cmp(&(b.to - b.from)))?;
@@ -229,7 +265,10 @@ impl LevelOrder {
             let Some(z) = height else { continue };
             match highest {
                 Some((below, row_below)) if below - z > limit => {
-                    falls.push((row_below, row, below - z))
+                    let p = |row: usize| profile.pressure.get(row).copied().unwrap_or(f64::NAN);
+                    if !view.passes_mixed(p(row_below), p(row)) {
+                        falls.push((row_below, row, below - z));
+                    }
                 }
                 Some((below, _)) if below >= z => {}
                 _ => highest = Some((z, row)),
@@ -248,11 +287,10 @@ impl LevelOrder {
         let repairs = match (believed, pressure(last + 1)) {
             (Some(below), Some(above)) => vec![Repair {
                 id: "drop-levels",
-                what: format!(
-                    "Drop the levels between {} and {}",
-                    repair::at(below),
-                    repair::at(above)
-                ),
+                what: match (first..=last).count() {
+                    2 => format!("Drop the levels at {}", repair::both(bottom, top)),
+                    n => format!("Drop the {n} levels from {}", repair::from_to(bottom, top)),
+                },
                 amendments: vec![Amendment::DropLevels {
                     bottom_pa: below,
                     top_pa: above,
@@ -270,7 +308,7 @@ impl LevelOrder {
             ),
             evidence: vec![
                 Evidence::new("height_fall_m", "height falls by up to", worst, "m", 0),
-                Evidence::new("levels", "levels lower than one beneath them", falls.len() as f64, "", 0),
+                Evidence::new("levels", "levels reported lower than one beneath", falls.len() as f64, "", 0),
             ],
             guilty: "A height or a pressure was miscoded. A wrong height alone doesn't touch temperature, humidity or CAPE; a \
                      wrong pressure puts them at the wrong place."
@@ -284,101 +322,44 @@ impl LevelOrder {
     }
 }
 
-/// Episodes in which pressure rose against the received order by more than jitter and rounding.
-fn reversals(view: &View) -> Vec<Reversal> {
-    let sounding = view.context.sounding;
-    let fine = view.context.profile.sampling == Sampling::Fine;
-    // Fine data also hold the wait before launch and the way down after the burst, which the profile leaves out.
-    let flight = if fine {
-        flight(view)
-    } else {
-        0..sounding.levels.len()
-    };
-    let with_pressure = || {
-        let levels = sounding.levels.get(flight.clone()).unwrap_or_default();
-        levels.iter().filter_map(|level| {
-            Some((level, level.pressure.filter(|p| p.is_finite() && *p > 0.0)?))
-        })
-    };
-    let surface = view
-        .context
-        .profile
-        .surface_pressure()
-        .map_or(f64::INFINITY, Pressure::pa);
-    let waiting = surface - 100.0 * view.threshold("level-order.prelaunch_hpa");
-    // One level in a group of coded levels may be rounded to its neighbour's pressure, not beyond it.
-    let tolerance = if fine {
-        100.0 * view.threshold("level-order.fine_reversal_hpa")
-    } else {
-        0.0
-    };
-    let groups: &[Option<u8>] = if fine {
-        &[None]
-    } else {
-        &[Some(1), Some(2), Some(3), Some(4)]
-    };
-    let mut reversals = Vec::new();
-    for &group in groups {
-        let mut sequence: Vec<(f64, Option<usize>)> = with_pressure()
-            .filter(|(level, _)| group.is_none() || order_group(level.kind) == group)
-            .map(|(level, p)| (p, level.line))
-            .collect();
-        if falling_sonde(&sequence) {
-            sequence.reverse();
-        }
-        reversals.extend(episodes(&sequence, waiting, tolerance));
-    }
-    reversals
-}
+/// Evidence that two passes are mixed, by which the order of findings knows such a finding.
+pub(crate) const PASSES_APART: &str = "passes_apart_k";
 
-/// The received levels from the surface of the profile to its top, in whichever order they came.
-fn flight(view: &View) -> std::ops::Range<usize> {
-    let profile = view.context.profile;
-    let received = |row: usize| profile.received.get(row).copied().flatten();
-    let surface = received(profile.surface.unwrap_or(0));
-    let top = (0..profile.len()).rev().find_map(received);
-    match (surface, top) {
-        (Some(surface), Some(top)) => surface.min(top)..surface.max(top) + 1,
-        _ => 0..view.context.sounding.levels.len(),
-    }
-}
-
-/// Most steps go up in pressure: a sonde dropped from an aircraft.
-fn falling_sonde(sequence: &[(f64, Option<usize>)]) -> bool {
-    let up = sequence
-        .windows(2)
-        .filter(|pair| pair[1].0 > pair[0].0)
-        .count();
-    sequence.len() > 2 && 2 * up > sequence.len()
-}
-
-fn episodes(sequence: &[(f64, Option<usize>)], waiting: f64, tolerance: f64) -> Vec<Reversal> {
-    let mut episodes: Vec<Reversal> = Vec::new();
-    let mut lowest = f64::INFINITY;
-    let mut open = false;
-    for &(p, line) in sequence {
-        if p <= lowest {
-            lowest = p;
-            open = false;
-        } else if p > lowest + tolerance && lowest < waiting {
-            match episodes.last_mut() {
-                Some(last) if open => last.to = last.to.max(p),
-                _ => episodes.push(Reversal {
-                    from: lowest,
-                    to: p,
-                    line,
-                }),
-            }
-            open = true;
-        }
-    }
-    episodes
+/// The levels of the layer left out; without a level above it, everything from there on.
+fn drop_mixed(view: &View, mixed: &Mixed) -> Option<Repair> {
+    let pressure = &view.column.pressure;
+    let above = pressure.partition_point(|&p| p >= mixed.top);
+    let below = pressure
+        .partition_point(|&p| p > mixed.bottom)
+        .saturating_sub(1);
+    let bottom_pa = *pressure.get(below)?;
+    let Some(&top_pa) = pressure.get(above) else {
+        return Some(Repair {
+            id: "disregard-above",
+            what: format!("Disregard everything above {}", repair::at(bottom_pa)),
+            amendments: vec![Amendment::DisregardAbove {
+                pressure_pa: bottom_pa,
+            }],
+        });
+    };
+    Some(Repair {
+        id: "drop-levels",
+        what: format!(
+            "Drop the levels of {}, where passes are mixed, and bridge across",
+            layer(
+                Pressure::from_pa(mixed.bottom),
+                Pressure::from_pa(mixed.top)
+            )
+        ),
+        amendments: vec![Amendment::DropLevels { bottom_pa, top_pa }],
+    })
 }
 
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::synthetic::{Air0, Scene, levels};
+    use crate::synthetic::{Air0, Dice, Scene, levels};
+    use dewbound_sounding::LevelKind;
 
     #[test]
     fn clean_ascents_are_silent_and_so_are_the_parts_of_a_message() {
@@ -460,16 +441,77 @@ mod tests {
         assert!((found[0].evidence("height_fall_m").unwrap() - 995.0).abs() < 10.0);
     }
 
-    #[test]
-    fn a_balloon_that_sinks_for_a_while_is_one_finding() {
-        let mut ascent = Air0::default().ascent();
-        let p: Vec<f64> = ascent.p.clone();
+    /// From sample 600 on pressure runs back by 60 samples and forward again while the sonde rises on: about 30 hPa.
+    fn turned_back(mut ascent: crate::synthetic::Ascent) -> crate::synthetic::Ascent {
+        let p = ascent.p.clone();
         let n = 600;
         for k in 0..60 {
-            // Down by 60 samples and up again, written as the received order has it.
             ascent.p[n + k] = p[n - k];
+            ascent.p[n + 60 + k] = p[n - 60 + k];
+        }
+        for k in n + 120..p.len() {
+            ascent.p[k] = p[k - 120];
+        }
+        ascent
+    }
+
+    #[test]
+    fn two_passes_that_disagree_are_erroneous_and_stand_alone() {
+        let ascent = turned_back(Air0::default().ascent().noisy(&mut Dice::new(7), 0.1, 0.01));
+        let p = ascent.p.clone();
+        let scene = Scene::day(ascent.fine());
+        let found = scene.findings();
+        let finding = found
+            .iter()
+            .find(|finding| finding.rule == "level-order")
+            .unwrap();
+        assert_eq!(finding.grade, Grade::Erroneous);
+        assert!((finding.bottom.unwrap().pa() - p[660]).abs() < 60.0);
+        assert!((finding.top.unwrap().pa() - p[600]).abs() < 60.0);
+        // 120 samples of 5 m at 6 to 7 K/km: about 4 K between leaving and coming back.
+        let apart = finding.evidence(PASSES_APART).unwrap();
+        assert!((3.0..5.5).contains(&apart), "{apart}");
+        // One cause, one finding: nothing else speaks of that layer, and none of it is left after the repair.
+        assert_eq!(
+            found
+                .iter()
+                .filter(|other| overlaps(other, finding))
+                .count(),
+            1,
+            "{found:#?}"
+        );
+        let Amendment::DropLevels { bottom_pa, top_pa } = finding.repairs[0].amendments[0] else {
+            panic!("not a drop")
+        };
+        assert!(
+            bottom_pa > p[660] && top_pa < p[600] + 1.0,
+            "{bottom_pa} {top_pa}"
+        );
+    }
+
+    fn overlaps(a: &Finding, b: &Finding) -> bool {
+        a.bottom > b.top && a.top < b.bottom
+    }
+
+    #[test]
+    fn a_balloon_that_really_sinks_is_doubtful_only() {
+        let mut ascent = turned_back(Air0::default().ascent());
+        // The same air on the way down and up again.
+        let (t, rh) = (ascent.t.clone(), ascent.rh.clone());
+        let n = 600;
+        for k in 0..60 {
+            (ascent.t[n + k], ascent.rh[n + k]) = (t[n - k], rh[n - k]);
+            (ascent.t[n + 60 + k], ascent.rh[n + 60 + k]) = (t[n - 60 + k], rh[n - 60 + k]);
+        }
+        for k in n + 120..t.len() {
+            (ascent.t[k], ascent.rh[k]) = (t[k - 120], rh[k - 120]);
         }
         let found = Scene::day(ascent.fine()).check(&LevelOrder);
+        assert!(
+            found.iter().all(|finding| finding.grade == Grade::Doubtful
+                || !finding.summary.contains("passes are mixed")),
+            "{found:#?}"
+        );
         assert_eq!(
             found
                 .iter()
@@ -477,6 +519,30 @@ mod tests {
                 .count(),
             1,
             "{found:#?}"
+        );
+    }
+
+    #[test]
+    fn a_single_low_height_is_named_by_its_levels() {
+        let mut sounding = levels(&[
+            (1000.0, 25.0, 15.0),
+            (700.0, 5.0, -8.0),
+            (500.0, -12.0, -30.0),
+            (499.0, -12.2, -30.0),
+            (300.0, -40.0, -55.0),
+        ]);
+        for (level, z) in sounding
+            .levels
+            .iter_mut()
+            .zip([100.0, 3050.0, 5700.0, 5200.0, 9300.0])
+        {
+            level.height = Some(z);
+        }
+        let found = Scene::day(sounding).check(&LevelOrder);
+        assert_eq!(found.len(), 1, "{found:#?}");
+        assert_eq!(
+            found[0].repairs[0].what,
+            "Drop the levels at 500 and 499 hPa"
         );
     }
 }

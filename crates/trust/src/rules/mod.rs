@@ -8,13 +8,15 @@ mod repair;
 mod superadiabatic_aloft;
 mod superadiabatic_contact;
 mod surface_mismatch;
+mod unsettled;
 mod wet_thermometer;
 
 pub use early_end::EarlyEnd;
 pub use impossible_value::ImpossibleValue;
 pub use level_order::LevelOrder;
+pub(crate) use level_order::PASSES_APART;
 pub use moisture_slope::MoistureSlope;
 pub use superadiabatic_aloft::SuperadiabaticAloft;
 pub use superadiabatic_contact::SuperadiabaticContact;
-pub use surface_mismatch::SurfaceMismatch;
+pub use surface_mismatch::{Refuted, RefutedSurface, SurfaceMismatch};
 pub use wet_thermometer::WetThermometer;

@@ -1,9 +1,9 @@
 //! Moisture that changes with height where the air is well mixed.
 
-use super::repair;
+use super::{repair, surface_mismatch::dewpoint_refuted};
 use crate::mixed::{Line, MIXED_THRESHOLDS, MixedLayer};
 use crate::words::{layer, number};
-use crate::{Evidence, Finding, Grade, Rule, View};
+use crate::{Column, Evidence, Finding, Grade, Rule, Thresholds, View};
 use dewbound_sounding::Daylight;
 use dewbound_sounding::thermo::{
     Pressure, Temperature, dewpoint_from_mixing_ratio, dewpoint_from_vapour_pressure,
@@ -15,6 +15,9 @@ pub struct MoistureSlope;
 
 /// Share of the mixed layer that the fitted levels must span for the line to be carried on to its ends.
 const KNOWN_SHARE: f64 = 0.5;
+
+/// With fewer levels than this a line through them has no scatter to speak of, and its slope is that of two levels.
+const ENOUGH_TO_FIT: usize = 4;
 
 /// Where the change sits.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -46,6 +49,8 @@ pub(super) struct Seen {
     jump_k: f64,
     /// The same from the surface value to the top of the fit, K.
     total_k: f64,
+    /// Levels enough that the line says something.
+    fits: bool,
 }
 
 impl Rule for MoistureSlope {
@@ -84,6 +89,7 @@ impl Rule for MoistureSlope {
 
     fn look(&self, view: &View) -> Vec<Finding> {
         seen(view)
+            .filter(|seen| seen.shape == Shape::Even || !dewpoint_refuted(view))
             .map(|seen| self.finding(view, &seen))
             .into_iter()
             .collect()
@@ -122,7 +128,7 @@ pub(super) fn seen(view: &View) -> Option<Seen> {
     let uncertain = mixed
         .interior
         .iter()
-        .filter_map(|&level| humidity_uncertainty(view, level))
+        .filter_map(|&level| humidity_uncertainty(column, view.context.thresholds, level))
         .sum::<f64>()
         / mixed.interior.len() as f64;
     let total_k = dewpoint(surface_w) - dewpoint(fitted.1);
@@ -148,7 +154,6 @@ pub(super) fn seen(view: &View) -> Option<Seen> {
         (false, false) => Shape::Both,
     };
     Some(Seen {
-        mixed,
         shape,
         surface_w,
         at_surface,
@@ -157,14 +162,19 @@ pub(super) fn seen(view: &View) -> Option<Seen> {
         slope_k,
         jump_k,
         total_k,
+        fits: column.fine || mixed.interior.len() >= ENOUGH_TO_FIT,
+        mixed,
     })
 }
 
 /// What the uncertainty of relative humidity makes of the dew point at a level, K.
-fn humidity_uncertainty(view: &View, level: usize) -> Option<f64> {
-    let column = &view.column;
-    let dewpoint = Temperature::from_k(column.dewpoint[level]?);
-    let share = view.threshold("moisture-slope.rh_uncertainty_pct")
+pub(super) fn humidity_uncertainty(
+    column: &Column,
+    thresholds: &Thresholds,
+    level: usize,
+) -> Option<f64> {
+    let dewpoint = Temperature::from_k(column.dewpoint.get(level).copied().flatten()?);
+    let share = thresholds.get("moisture-slope.rh_uncertainty_pct")
         / 100.0
         / column.relative_humidity(level)?;
     let e = saturation_vapour_pressure(dewpoint).pa();
@@ -185,7 +195,8 @@ impl MoistureSlope {
         let direction = if change >= 0.0 { "falls" } else { "rises" };
         let span = layer(mixed.bottom, mixed.top);
         let head = match seen.shape {
-            Shape::Even => format!("Mixing ratio {direction} evenly"),
+            Shape::Even if seen.fits => format!("Mixing ratio {direction} evenly"),
+            Shape::Even => format!("Mixing ratio {direction} from level to level"),
             Shape::Both => format!("Mixing ratio {direction} from the surface to the top"),
             Shape::Jump => format!("Mixing ratio {direction} at the lowest levels"),
             Shape::Unresolved => {
@@ -200,7 +211,7 @@ impl MoistureSlope {
             top: Some(mixed.top),
             heights: view.heights(mixed.bottom, mixed.top),
             summary: format!(
-                "{head} by {} g/kg ({} K of dew point at one pressure) in the mixed layer {span}.",
+                "{head} by {} g/kg ({} K as dew point at surface pressure) in the mixed layer {span}.",
                 number(change.abs(), 1),
                 number(at_one_pressure.abs(), 1)
             ),
@@ -208,7 +219,7 @@ impl MoistureSlope {
             guilty: guilty(seen),
             innocent: innocent(seen),
             caveat: caveat(view, seen),
-            repairs: self.repairs(seen),
+            repairs: self.repairs(view, seen),
             wind_only: false,
         }
     }
@@ -216,21 +227,33 @@ impl MoistureSlope {
     fn evidence(&self, seen: &Seen) -> Vec<Evidence> {
         let grams = |w: f64| 1000.0 * w;
         let mixed = &seen.mixed;
-        let mut evidence = vec![
-            Evidence::new(
-                "slope_gkg",
-                "fitted mixing ratio, bottom minus top",
-                grams(seen.fitted.0 - seen.fitted.1),
-                "g/kg",
-                1,
-            ),
-            Evidence::new(
-                "slope_k",
-                "the same as dew point at surface pressure",
-                seen.slope_k,
-                "K",
-                1,
-            ),
+        let mut evidence = Vec::new();
+        if seen.fits {
+            evidence.extend([
+                Evidence::new(
+                    "slope_gkg",
+                    "fitted mixing ratio, bottom minus top",
+                    grams(seen.fitted.0 - seen.fitted.1),
+                    "g/kg",
+                    1,
+                ),
+                Evidence::new(
+                    "slope_k",
+                    "the fitted change as dew point at surface pressure",
+                    seen.slope_k,
+                    "K",
+                    1,
+                ),
+                Evidence::new(
+                    "scatter_gkg",
+                    "scatter about the fitted line",
+                    grams(seen.residual),
+                    "g/kg",
+                    2,
+                ),
+            ]);
+        }
+        evidence.extend([
             Evidence::new(
                 "jump_gkg",
                 "mixing ratio, surface minus mixed layer",
@@ -240,17 +263,10 @@ impl MoistureSlope {
             ),
             Evidence::new(
                 "jump_k",
-                "the same as dew point at surface pressure",
+                "surface minus mixed layer as dew point at surface pressure",
                 seen.jump_k,
                 "K",
                 1,
-            ),
-            Evidence::new(
-                "scatter_gkg",
-                "scatter about the fitted line",
-                grams(seen.residual),
-                "g/kg",
-                2,
             ),
             Evidence::new(
                 "depth_hpa",
@@ -268,12 +284,12 @@ impl MoistureSlope {
             ),
             Evidence::new(
                 "levels",
-                "levels in the fit",
+                "levels of the sonde judged in it",
                 mixed.interior.len() as f64,
                 "",
                 0,
             ),
-        ];
+        ]);
         if let Some(implied) = mixed.implied_dewpoint() {
             evidence.push(Evidence::new(
                 "implied_dewpoint_c",
@@ -286,11 +302,20 @@ impl MoistureSlope {
         evidence
     }
 
-    fn repairs(&self, seen: &Seen) -> Vec<crate::Repair> {
+    fn repairs(&self, view: &View, seen: &Seen) -> Vec<crate::Repair> {
         let mixed = &seen.mixed;
-        let believe_sonde = mixed.implied_dewpoint().map(|implied| {
-            repair::surface_dewpoint("believe-sonde", implied, "believing the sonde")
-        });
+        // One above the surface temperature would be cut off there: not offered.
+        let believe_sonde = mixed
+            .implied_dewpoint()
+            .filter(|implied| {
+                view.column
+                    .temperature
+                    .first()
+                    .is_none_or(|&t| implied.k() <= t)
+            })
+            .map(|implied| {
+                repair::surface_dewpoint("believe-sonde", implied, "believing the sonde")
+            });
         let believe_surface = repair::mixed_moisture(
             "believe-surface",
             mixed.bottom,
@@ -345,12 +370,20 @@ fn innocent(seen: &Seen) -> String {
 fn caveat(view: &View, seen: &Seen) -> String {
     let mut caveats = Vec::new();
     if view.context.daylight == Daylight::Unknown {
-        caveats.push(
-            "Day or night isn't known (no position or no launch time): without the sun on the ground nothing need mix moisture.",
-        );
+        caveats.push(format!(
+            "Day or night isn't known ({}): without the sun on the ground nothing need mix moisture.",
+            view.missing_for_daylight()
+        ));
     }
     if seen.shape == Shape::Unresolved {
-        caveats.push("One level only above the surface: an even slope can't be told from a jump.");
+        caveats.push(
+            "One level only above the surface: an even slope can't be told from a jump.".to_owned(),
+        );
+    } else if !seen.fits {
+        caveats.push(format!(
+            "Only {} levels: how evenly moisture changes can't be told.",
+            seen.mixed.interior.len()
+        ));
     }
     caveats.join(" ")
 }

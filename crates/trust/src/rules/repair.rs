@@ -71,6 +71,26 @@ pub(super) fn at(pa: f64) -> String {
     layer(Pressure::from_pa(pa), Pressure::from_pa(pa))
 }
 
+/// `652 and 651 hPa`, with tenths where whole numbers can't tell them apart.
+pub(super) fn both(bottom: f64, top: f64) -> String {
+    ends(bottom, top, "and")
+}
+
+/// `652 to 601 hPa`, with tenths where whole numbers can't tell the ends apart.
+pub(super) fn from_to(bottom: f64, top: f64) -> String {
+    ends(bottom, top, "to")
+}
+
+fn ends(bottom: f64, top: f64, between: &str) -> String {
+    let text = |pa: f64, decimals| number(pa / 100.0, decimals);
+    let decimals = usize::from(text(bottom, 0) == text(top, 0));
+    format!(
+        "{} {between} {} hPa",
+        text(bottom, decimals),
+        text(top, decimals)
+    )
+}
+
 /// Surface dew point set.
 pub(super) fn surface_dewpoint(id: &'static str, dewpoint: Temperature, because: &str) -> Repair {
     Repair {
@@ -100,6 +120,31 @@ pub(super) fn surface_temperature(
         amendments: vec![Amendment::SurfaceTemperature {
             temperature_k: temperature.k(),
         }],
+    }
+}
+
+/// Surface temperature and dew point set.
+pub(super) fn surface_air(
+    id: &'static str,
+    temperature: Temperature,
+    dewpoint: Temperature,
+    because: &str,
+) -> Repair {
+    Repair {
+        id,
+        what: format!(
+            "Set the surface temperature to {} and the dew point to {}, {because}",
+            celsius(temperature),
+            celsius(dewpoint)
+        ),
+        amendments: vec![
+            Amendment::SurfaceTemperature {
+                temperature_k: temperature.k(),
+            },
+            Amendment::SurfaceDewpoint {
+                dewpoint_k: dewpoint.k(),
+            },
+        ],
     }
 }
 

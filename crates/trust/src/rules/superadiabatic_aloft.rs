@@ -65,6 +65,7 @@ impl Rule for SuperadiabaticAloft {
         .into_iter()
         .map(|layer| sharpened(column, layer))
         .filter(|layer| layer.drop >= least)
+        .filter(|layer| !view.passes_mixed(column.pressure[layer.base], column.pressure[layer.top]))
         .collect();
         neighbours(view, &layers)
             .into_iter()
@@ -86,8 +87,14 @@ impl SuperadiabaticAloft {
         let (lapse, autoconvective) = autoconvective(view, group);
         let mut evidence = vec![
             Evidence::new("theta_drop_k", "theta falls by", worst, "K", 1),
-            Evidence::new("depth_hpa", "depth", bottom_p.hpa() - top_p.hpa(), "hPa", 0),
-            Evidence::new("depth_m", "depth", depth_m, "m", 0),
+            Evidence::new(
+                "depth_hpa",
+                "depth in pressure",
+                bottom_p.hpa() - top_p.hpa(),
+                "hPa",
+                0,
+            ),
+            Evidence::new("depth_m", "depth in height", depth_m, "m", 0),
         ];
         if let Some(lapse) = lapse {
             evidence.push(Evidence::new(

@@ -1,6 +1,6 @@
 //! The superadiabatic layer in contact with the ground.
 
-use super::{repair, superadiabatic_aloft};
+use super::{repair, superadiabatic_aloft, surface_mismatch::temperature_refuted};
 use crate::layers::{Falling, falling_layers};
 use crate::words::{layer, number};
 use crate::{Evidence, Finding, Grade, Rule, View};
@@ -57,6 +57,9 @@ impl Rule for SuperadiabaticContact {
         falling_layers(&column.smooth_theta, 0..end, least)
             .into_iter()
             .filter(|layer| column.pressure[layer.base] > surface - near)
+            .filter(|layer| {
+                !view.passes_mixed(column.pressure[layer.base], column.pressure[layer.top])
+            })
             .filter_map(|layer| self.finding(view, surface, layer))
             .collect()
     }
@@ -80,6 +83,10 @@ impl SuperadiabaticContact {
                 .find(|&level| theta[level] <= theta[base] - MOST_OF_THE_FALL * drop)
                 .unwrap_or(top);
         }
+        // One cause is one finding: a surface temperature proven wrong makes the layer.
+        if attached && temperature_refuted(view) {
+            return None;
+        }
         let depth = (surface - column.pressure[top]) / 100.0;
         let deep = depth > view.threshold("superadiabatic-contact.deep_hpa");
         let daylight = view.context.daylight;
@@ -98,7 +105,9 @@ impl SuperadiabaticContact {
             Pressure::from_pa(column.pressure[top]),
         );
         let why = match (attached, daylight, deep) {
-            (false, _, _) => "it doesn't reach down to the ground",
+            (false, _, _) => {
+                "stabler air beneath parts it from the ground, whose heating doesn't explain it"
+            }
             (true, Daylight::Night, _) => "at night the ground cools the air",
             (true, Daylight::Unknown, _) => {
                 "normal if the sun is heating the ground, not otherwise"
@@ -106,18 +115,26 @@ impl SuperadiabaticContact {
             (true, Daylight::Day, _) => "deep for a layer heated by the ground",
         };
         let repairs = if attached {
-            let warmed_by = theta[top] * (surface / REFERENCE_PRESSURE).powf(KAPPA);
-            vec![repair::surface_temperature(
-                "surface-temperature-from-sonde",
-                Temperature::from_k(warmed_by),
-                "mixed with the air above",
-            )]
+            let mixed =
+                Temperature::from_k(theta[top] * (surface / REFERENCE_PRESSURE).powf(KAPPA));
+            // A dew point above the new temperature would be cut off: it is set to the same, as saturated air.
+            let saturates = column.dewpoint.first().copied().flatten();
+            let because = "mixed with the air above";
+            vec![if saturates.is_some_and(|td| td > mixed.k()) {
+                repair::surface_air("surface-air-saturated", mixed, mixed, because)
+            } else {
+                repair::surface_temperature("surface-temperature-from-sonde", mixed, because)
+            }]
         } else {
             superadiabatic_aloft::repairs(view, base, top)
         };
         Some(Finding {
             rule: self.id(),
-            title: self.title(),
+            title: if attached {
+                self.title()
+            } else {
+                "Superadiabatic layer near the ground"
+            },
             grade: Grade::Doubtful,
             bottom: Some(bottom_p),
             top: Some(top_p),
@@ -129,28 +146,39 @@ impl SuperadiabaticContact {
             ),
             evidence: vec![
                 Evidence::new("theta_drop_k", "theta falls by", drop, "K", 1),
-                Evidence::new("depth_hpa", "depth above the ground", depth, "hPa", 0),
+                Evidence::new("depth_hpa", "its top above the ground in pressure", depth, "hPa", 0),
                 Evidence::new(
                     "depth_m",
-                    "depth above the ground",
+                    "its top above the ground in height",
                     column.thickness[top] - column.thickness[0],
                     "m",
                     0,
                 ),
             ],
-            guilty: "The surface temperature is too high (a badly ventilated or sunlit screen, a value from another place \
-                     or time), or the sonde still carried the warmth of the launch building. Surface parcels then start \
-                     too warm: too much CAPE, too little inhibition."
-                .into(),
-            innocent: "Cold air flowing over warm water or a warm town, or ground that was in full sun until shortly \
-                       before launch, keeps a superadiabatic layer going."
-                .into(),
-            caveat: match daylight {
-                Daylight::Unknown => {
-                    "Day or night isn't known (no position or no launch time), so an ordinary daytime layer can't be told apart."
-                        .into()
-                }
-                Daylight::Day | Daylight::Night => String::new(),
+            guilty: if attached {
+                "The surface temperature is too high (a badly ventilated or sunlit screen, a value from another place or \
+                 time), or the sonde still carried the warmth of the launch building. Surface parcels then start too \
+                 warm: too much CAPE, too little inhibition."
+            } else {
+                "The level at its foot is too warm (the sonde still carried the warmth of the launch building) or the one \
+                 at its top too cold, or one of them was miscoded."
+            }
+            .into(),
+            innocent: if attached {
+                "Cold air flowing over warm water or a warm town, or ground that was in full sun until shortly before \
+                 launch, keeps a superadiabatic layer going."
+            } else {
+                "A shallow colder current at the ground (sea breeze, drainage, outflow) has slid under air that was \
+                 heated before, or the balloon left the lee of a building or a hill."
+            }
+            .into(),
+            caveat: if attached && daylight == Daylight::Unknown {
+                format!(
+                    "Day or night isn't known ({}), so an ordinary daytime layer can't be told apart.",
+                    view.missing_for_daylight()
+                )
+            } else {
+                String::new()
             },
             repairs,
             wind_only: false,
@@ -213,6 +241,7 @@ mod tests {
         ];
         let found = Scene::day(levels(&rows)).check(&SuperadiabaticContact);
         assert_eq!(found.len(), 1, "{found:#?}");
-        assert!(found[0].summary.contains("doesn't reach down"));
+        assert!(found[0].summary.contains("parts it from the ground"));
+        assert!(!found[0].title.contains("at the ground"));
     }
 }

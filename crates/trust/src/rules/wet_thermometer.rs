@@ -73,7 +73,10 @@ impl Rule for WetThermometer {
         let mut findings = Vec::new();
         let mut done = 0;
         for falling in falling_layers(&column.smooth_theta, start..column.len(), least) {
-            if falling.base < done {
+            let pressure = |level: usize| column.pressure[level];
+            if falling.base < done
+                || view.passes_mixed(pressure(falling.base), pressure(falling.top))
+            {
                 continue;
             }
             if let Some(seen) = examine(view, falling) {
@@ -238,12 +241,18 @@ impl WetThermometer {
             Evidence::new("theta_drop_k", "theta falls by", seen.falling.drop, "K", 1),
             Evidence::new(
                 "depth_hpa",
-                "depth until recovered",
+                "depth in pressure until recovered",
                 bottom.hpa() - top.hpa(),
                 "hPa",
                 0,
             ),
-            Evidence::new("depth_m", "depth until recovered", depth_m, "m", 0),
+            Evidence::new(
+                "depth_m",
+                "depth in height until recovered",
+                depth_m,
+                "m",
+                0,
+            ),
             Evidence::new("recovered_at_hpa", "recovered at", top.hpa(), "hPa", 0),
             Evidence::new(
                 "rh_in_cloud_pct",

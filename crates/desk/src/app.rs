@@ -6,6 +6,7 @@ use crate::chart_frame::{Caches, ChartFrame};
 use crate::config::config;
 use crate::files::{Files, Picked, dropped, typed_paths};
 use crate::layout::{Layout, Side};
+use crate::preferences::{self, Preferences};
 use crate::theme::Theme;
 use crate::view::{DialogBox, Gesture, Previewed, View};
 use crate::{
@@ -16,6 +17,7 @@ use dewbound_session::chart::{SpeedUnit, TemperatureUnit};
 use dewbound_session::{Action, Command, Item, Session, SurfaceQuantity};
 use eframe::egui::{self, Context, Rect, Ui, UiBuilder};
 use jiff::Timestamp;
+use std::path::PathBuf;
 use std::sync::Arc;
 use std::sync::atomic::{AtomicBool, Ordering};
 use std::time::{Duration, Instant};
@@ -42,6 +44,9 @@ pub struct Desk {
     pub(crate) session: Session,
     pub(crate) view: View,
     theme: Theme,
+    /// As last kept, and where.
+    chosen: Preferences,
+    kept: PathBuf,
     files: Files,
     caches: Caches,
     asks: Asks,
@@ -88,19 +93,25 @@ impl Desk {
         clock: fn() -> Timestamp,
     ) -> Self {
         fonts::install(ctx);
-        let theme = Theme::of(args.theme);
+        let kept = preferences::file(session.config());
+        let mut chosen = Preferences::read(&kept);
+        chosen.theme = args.theme.unwrap_or(chosen.theme);
+        chosen.zoom = args.zoom.unwrap_or(chosen.zoom);
+        let theme = Theme::of(chosen.theme);
         theme.install(ctx);
         ctx.options_mut(|options| options.zoom_with_keyboard = false);
         // Setting a zoom, even the present one, makes the next frame start anew.
-        if args.zoom != ctx.zoom_factor() {
-            ctx.set_zoom_factor(args.zoom);
+        if chosen.zoom != ctx.zoom_factor() {
+            ctx.set_zoom_factor(chosen.zoom);
         }
         let waker = ctx.clone();
         session.set_waker(Arc::new(move || waker.request_repaint()));
         Self {
             session,
-            view: View::new(args.theme, args.zoom, args.debug_overlay),
+            view: View::new(&chosen, args.debug_overlay),
             theme,
+            chosen,
+            kept,
             files: Files::default(),
             caches: Caches::default(),
             asks: Asks::default(),
@@ -169,6 +180,11 @@ impl Desk {
                 &mut self.caches,
             )
         });
+        let chosen = Preferences::from(&self.view);
+        if chosen != self.chosen {
+            self.chosen = chosen;
+            chosen.keep(self.kept.clone());
+        }
         let after = self
             .session
             .current()
@@ -177,6 +193,13 @@ impl Desk {
             self.view.timing.computed(begun.elapsed());
         }
         self.view.reveal = before.map(|(item, _)| item) != after.map(|(item, _)| item);
+        if self.view.reveal {
+            let name = self.session.current().map_or_else(
+                || "Dewbound".to_owned(),
+                |item| format!("{} · Dewbound", title::identity(item)),
+            );
+            ctx.send_viewport_cmd(egui::ViewportCommand::Title(name));
+        }
     }
 
     /// Files and worker results.
@@ -231,7 +254,7 @@ impl Desk {
             Ask::Command(command) => self.apply(command),
             Ask::Action(action) => self.act(ctx, action),
             Ask::Tab(tab) => self.view.tab = tab,
-            Ask::Parcel(parcel) => self.view.parcel = parcel,
+            Ask::Parcel(parcel) => self.view.parcel = Some(parcel),
             Ask::Units(units) => self.view.units = units,
             Ask::Card(item, card) => self.view.card = card.map(|card| (item, card)),
             Ask::Dialog(dialog) => self.view.dialog = dialog,
@@ -355,8 +378,10 @@ impl Desk {
             chart: self.seen.as_ref(),
         };
         let layout = &self.layout;
-        ui.painter()
-            .rect_filled(ui.ctx().content_rect(), 0.0, self.theme.desk);
+        // Software renderers pay for every pixel painted twice, so the desk shows only where no panel lies.
+        for gap in layout.gaps() {
+            ui.painter().rect_filled(gap, 0.0, self.theme.desk);
+        }
         self.panel(ui, layout.bar, "bar", |ui| menu::bar_ui(ui, &paint, asks));
         if let Some(rect) = layout.tray {
             self.panel(ui, rect, "tray", |ui| tray::tray_ui(ui, &paint, asks));

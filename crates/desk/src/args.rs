@@ -42,12 +42,12 @@ pub struct Args {
     /// Date that day-and-hour groups of bulletins are nearest to, looking back.
     #[arg(long, value_name = "DATE")]
     pub as_of: Option<Date>,
-    /// Colours.
-    #[arg(long, value_enum, default_value_t)]
-    pub theme: ThemeName,
-    /// Size of everything, 1 = as the system has it.
-    #[arg(long, value_name = "X", default_value_t = 1.0, value_parser = zoom)]
-    pub zoom: f32,
+    /// Colours; as left last time when not given.
+    #[arg(long, value_enum)]
+    pub theme: Option<ThemeName>,
+    /// Size of everything, 1 = as the system has it; as left last time when not given.
+    #[arg(long, value_name = "X", value_parser = zoom)]
+    pub zoom: Option<f32>,
     /// Drawing library.
     #[arg(long, value_enum, default_value_t)]
     pub graphics: Graphics,
@@ -110,8 +110,8 @@ mod tests {
         assert_eq!(args.ledger, Some("l".into()));
         assert_eq!(args.office, Some("o".into()));
         assert_eq!(args.as_of, Some(jiff::civil::date(2024, 5, 20)));
-        assert_eq!(args.theme, ThemeName::Dark);
-        assert_eq!(args.zoom, 1.5);
+        assert_eq!(args.theme, Some(ThemeName::Dark));
+        assert_eq!(args.zoom, Some(1.5));
         assert_eq!(args.graphics, Graphics::Glow);
         assert!(args.debug_overlay);
     }

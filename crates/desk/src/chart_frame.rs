@@ -254,7 +254,8 @@ pub(crate) fn prepare(
         .unwrap_or_else(|| chart::View::fit(item.received()));
     let geometry = Geometry::new(frame, window);
     let background = caches.background(&geometry);
-    let band = caches.band(item, view.parcel);
+    let parcel = view.parcel(item);
+    let band = caches.band(item, parcel);
     let heights = caches.heights(item);
     let pointer = ctx
         .read_response(chart_id())
@@ -284,16 +285,13 @@ pub(crate) fn prepare(
     let picture = Picture {
         received: Some(item.received()),
         preview: preview.map(|preview| &preview.working.profile),
-        parcel: results
-            .numbers
-            .parcel(view.parcel)
-            .map(|ascent| ParcelDrawing {
-                ascent,
-                method: Method::default(),
-                environment: None,
-                interval: band,
-                name: parcel_name(view.parcel),
-            }),
+        parcel: results.numbers.parcel(parcel).map(|ascent| ParcelDrawing {
+            ascent,
+            method: Method::default(),
+            environment: None,
+            interval: band,
+            name: parcel_name(parcel),
+        }),
         brackets: &brackets,
         surface: marks.as_ref(),
         heights: Some(heights),

@@ -25,7 +25,7 @@ fn paint_item(painter: &Painter, item: &Item, theme: &Theme) {
             ink,
             stroke,
         } => {
-            let points: Vec<Pos2> = points.iter().copied().map(to_pos).collect();
+            let points = thinned(points, painter.pixels_per_point());
             line(painter, points, theme.chart_ink(*ink), *stroke);
         }
         Item::Segments { lines, ink, stroke } => {
@@ -114,6 +114,33 @@ fn paint_item(painter: &Painter, item: &Item, theme: &Theme) {
     }
 }
 
+/// Points nearer to the one before than this many pixels can't be told from it.
+const SAME_PLACE: f32 = 0.8;
+
+/// A line without the points that nobody could see: a sounding of one-second data has several in a pixel, and software
+/// renderers pay for each.
+fn thinned(points: &[Point], pixels_per_point: f32) -> Vec<Pos2> {
+    let least = SAME_PLACE / pixels_per_point.max(0.1);
+    let mut kept: Vec<Pos2> = Vec::with_capacity(points.len());
+    let last = points.len().saturating_sub(1);
+    for (index, point) in points.iter().enumerate() {
+        let point = to_pos(*point);
+        let near = kept
+            .last()
+            .is_some_and(|before| before.distance_sq(point) < least * least);
+        if !near {
+            kept.push(point);
+        } else if index == last {
+            // The end stays where it is.
+            if kept.len() > 1 {
+                kept.pop();
+            }
+            kept.push(point);
+        }
+    }
+    kept
+}
+
 /// A rectangle of the display list on the screen.
 pub(crate) fn to_rect(rect: dewbound_session::chart::Rect) -> Rect {
     Rect::from_min_max(
@@ -163,6 +190,29 @@ fn band(rows: &[(f64, f64, f64)], colour: Color32) -> Mesh {
 #[cfg(test)]
 mod tests {
     use super::*;
+
+    #[test]
+    fn thinning_keeps_the_ends_and_stays_within_a_pixel() {
+        let points: Vec<Point> = (0..1000)
+            .map(|i| {
+                let y = f64::from(i) * 0.37;
+                Point::new(100.0 + 3.0 * (y * 0.7).sin(), y)
+            })
+            .collect();
+        let kept = thinned(&points, 1.0);
+        assert!(kept.len() < 800, "{}", kept.len());
+        assert_eq!(kept.first().copied(), points.first().copied().map(to_pos));
+        assert_eq!(kept.last().copied(), points.last().copied().map(to_pos));
+        for point in &points {
+            let point = to_pos(*point);
+            let nearest = kept
+                .iter()
+                .map(|k| k.distance(point))
+                .fold(f32::MAX, f32::min);
+            assert!(nearest <= SAME_PLACE, "{point:?} is {nearest} away");
+        }
+        assert_eq!(thinned(&[], 1.0), []);
+    }
 
     #[test]
     fn a_band_is_two_triangles_a_row() {

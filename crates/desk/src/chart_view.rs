@@ -132,10 +132,11 @@ fn brackets_ui(ui: &Ui, paint: &Paint, item: &Item, frame: &ChartFrame, asks: &m
 
 /// The hatched areas for those who can't see them.
 fn areas_ui(ui: &Ui, paint: &Paint, item: &Item, frame: &ChartFrame) {
-    let Some(ascent) = item.results().numbers.parcel(paint.view.parcel) else {
+    let parcel = paint.view.parcel(item);
+    let Some(ascent) = item.results().numbers.parcel(parcel) else {
         return;
     };
-    let name = parcel_name(paint.view.parcel);
+    let name = parcel_name(parcel);
     let plot = to_rect(frame.geometry.plot());
     let areas = [
         (

@@ -142,6 +142,27 @@ impl Layout {
         }
     }
 
+    /// The strips between the panels: all that shows of the desk behind them.
+    pub fn gaps(&self) -> Vec<Rect> {
+        let (top, bottom) = (self.bar.bottom(), self.verdict.top());
+        let strip = |left: f32| Rect::from_min_max(pos2(left, top), pos2(left + GAP, bottom));
+        let mut gaps: Vec<Rect> = self
+            .tray
+            .map(|tray| strip(tray.right()))
+            .into_iter()
+            .collect();
+        gaps.push(strip(self.chart.right()));
+        let above = match self.side {
+            Side::Stacked { findings, .. } => findings,
+            Side::Tabbed { cape, .. } => cape,
+        };
+        gaps.push(Rect::from_min_size(
+            above.left_bottom(),
+            vec2(above.width(), GAP),
+        ));
+        gaps
+    }
+
     #[cfg(test)]
     fn named(&self) -> Vec<(&'static str, Rect)> {
         let mut all = vec![
@@ -198,6 +219,20 @@ mod tests {
                     assert!(!shared.is_positive(), "{size:?}: {name} and {other_name}");
                 }
             }
+        }
+    }
+
+    #[test]
+    fn panels_and_gaps_cover_the_window_once() {
+        for size in sizes() {
+            let (window, layout) = layout(size);
+            let area: f32 = layout
+                .named()
+                .into_iter()
+                .map(|(_, rect)| rect.area())
+                .chain(layout.gaps().into_iter().map(|gap| gap.area()))
+                .sum();
+            assert!((area - window.area()).abs() < 2.0, "{size:?}: {area}");
         }
     }
 

@@ -29,6 +29,7 @@ mod layout;
 mod marks;
 mod menu;
 mod numbers;
+mod preferences;
 mod quantity;
 mod response;
 mod startup;

@@ -109,7 +109,7 @@ fn parcels_ui(ui: &mut Ui, paint: &Paint, item: &Item, asks: &mut Asks) {
     ui.spacing_mut().button_padding = vec2(3.0, 2.0);
     ui.spacing_mut().interact_size.y = 20.0;
     for (parcel, rect) in Parcel::ALL.into_iter().zip(cells) {
-        let chosen = paint.view.parcel == parcel;
+        let chosen = paint.view.parcel(item) == parcel;
         let response = ui.place(
             rect.shrink2(vec2(0.0, 1.0)),
             Button::new(RichText::new(parcel_heading(parcel)).size(11.5))

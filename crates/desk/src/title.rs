@@ -89,7 +89,7 @@ fn station(item: &Item) -> String {
 }
 
 /// "Hollin Ridge 03999".
-fn identity(item: &Item) -> String {
+pub(crate) fn identity(item: &Item) -> String {
     let station = &item.sounding().station;
     let mut text = station.label().to_owned();
     for id in [&station.wmo, &station.icao].into_iter().flatten() {

@@ -1,10 +1,11 @@
 //! What the window remembers that is no part of any document.
 
 use crate::args::ThemeName;
+use crate::preferences::Preferences;
 use crate::timing::Timing;
 use dewbound_session::chart::{Units, View as ChartView};
 use dewbound_session::sounding::Parcel;
-use dewbound_session::{ItemId, Preview, RepairId, Revision, SurfaceQuantity};
+use dewbound_session::{Item, ItemId, Preview, RepairId, Revision, SurfaceQuantity};
 use eframe::egui;
 use std::collections::HashMap;
 
@@ -89,8 +90,8 @@ pub(crate) struct View {
     pub units: Units,
     /// Which tab.
     pub tab: Tab,
-    /// Whose path is drawn.
-    pub parcel: Parcel,
+    /// Whose path is drawn; `None`: the one that matters for the sounding as received.
+    pub parcel: Option<Parcel>,
     /// Part of the diagram looked at, where it isn't the fitting one.
     pub charts: HashMap<ItemId, ChartView>,
     /// The open card.
@@ -117,13 +118,13 @@ pub(crate) struct View {
 
 impl View {
     /// At the start.
-    pub fn new(theme: ThemeName, zoom: f32, show_timing: bool) -> Self {
+    pub fn new(preferences: &Preferences, show_timing: bool) -> Self {
         Self {
-            theme,
-            zoom,
-            units: Units::default(),
+            theme: preferences.theme,
+            zoom: preferences.zoom,
+            units: preferences.units,
             tab: Tab::default(),
-            parcel: Parcel::Surface,
+            parcel: None,
             charts: HashMap::new(),
             card: None,
             previewed: None,
@@ -136,6 +137,28 @@ impl View {
             timing: Timing::default(),
             show_timing,
         }
+    }
+
+    /// Whose path is drawn: the chosen one, else the surface parcel, unless as received it has no CAPE and another one has. The
+    /// received numbers decide, so that the choice doesn't jump while something is dragged.
+    pub fn parcel(&self, item: &Item) -> Parcel {
+        if let Some(chosen) = self.parcel {
+            return chosen;
+        }
+        let cape = |parcel| {
+            item.received_numbers()
+                .parcel(parcel)
+                .map_or(0.0, |ascent| ascent.cape)
+        };
+        if cape(Parcel::Surface) > 0.0 {
+            return Parcel::Surface;
+        }
+        // Of equals the first: max_by would take the last.
+        Parcel::ALL
+            .into_iter()
+            .rev()
+            .max_by(|&a, &b| cape(a).total_cmp(&cape(b)))
+            .unwrap_or(Parcel::Surface)
     }
 
     /// The open card of a sounding.

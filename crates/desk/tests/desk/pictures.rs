@@ -36,7 +36,7 @@ fn picture(name: &str, theme: ThemeName, act: impl FnOnce(&mut Window)) {
     }
     let folder = tempfile::tempdir().unwrap();
     let mut args = plain();
-    args.theme = theme;
+    args.theme = Some(theme);
     let mut window = desk(
         builder(vec2(1120.0, 660.0))
             .with_render_cursor(false)

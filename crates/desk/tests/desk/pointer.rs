@@ -108,6 +108,27 @@ fn every_frame_of_a_drag_shows_its_own_value() {
 }
 
 #[test]
+fn the_handle_can_be_taken_well_beside_its_ring() {
+    let (_folder, mut window) = usual();
+    let rect = window.get_by_label("Surface dew point").rect();
+    assert!(rect.width() >= 28.0 && rect.height() >= 28.0, "{rect:?}");
+    let before = dewpoint(&window);
+    let beside = rect.center() + vec2(-8.0, 11.0);
+    window.hover_at(beside);
+    window.step();
+    button(&window, beside, true);
+    window.step();
+    window.hover_at(beside - vec2(20.0, 0.0));
+    window.step();
+    let ring = window.get_by_label("Surface dew point").rect().center();
+    assert!(dewpoint(&window) < before);
+    assert!(
+        (ring.x - (rect.center().x - 20.0)).abs() < 2.5,
+        "it moves as far as the pointer"
+    );
+}
+
+#[test]
 fn escape_during_a_drag_restores() {
     let (_folder, mut window) = usual();
     let start = handle(&window);

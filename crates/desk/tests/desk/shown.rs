@@ -122,3 +122,30 @@ fn the_boxes_open_and_close() {
         assert!(!has_text(&window, inside), "{entry} stays open");
     }
 }
+
+#[test]
+fn the_parcel_that_matters_is_drawn() {
+    let (_folder, mut window) = at(SIZE);
+    let all = window.state().session().items().len();
+    let mut elevated = 0;
+    for _ in 0..all {
+        window.key_press(eframe::egui::Key::PageDown);
+        window.run();
+        let numbers = item(&window).received_numbers();
+        let cape = |parcel| numbers.parcel(parcel).map_or(0.0, |ascent| ascent.cape);
+        use dewbound_session::sounding::Parcel;
+        let drawn = if cape(Parcel::Surface) > 0.0 {
+            "surface parcel"
+        } else if cape(Parcel::MostUnstable) > cape(Parcel::Mixed) {
+            elevated += 1;
+            "most unstable parcel"
+        } else {
+            continue;
+        };
+        assert!(
+            has_text(&window, &format!("CAPE area of the {drawn}")),
+            "{drawn}"
+        );
+    }
+    assert!(elevated > 0, "the tray has a story of elevated instability");
+}

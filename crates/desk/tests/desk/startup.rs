@@ -180,6 +180,35 @@ mod without_a_window {
     }
 
     #[test]
+    fn where_opengl_fails_it_starts_again_with_wgpu() {
+        let name = "where_opengl_fails_it_starts_again_with_wgpu";
+        let Some(server) = Server::start(&["-extension", "GLX"]) else {
+            skipped(name, "Xvfb is not installed");
+            return;
+        };
+        let home = tempfile::tempdir().unwrap();
+        let output = program(home.path())
+            .arg("--close-after-first-frame")
+            .env("DISPLAY", &server.name)
+            // OpenGL has no drivers; Vulkan has those of the machine.
+            .env("WGPU_BACKEND", "vulkan")
+            .env("__EGL_VENDOR_LIBRARY_FILENAMES", "/nonexistent")
+            .env("__GLX_VENDOR_LIBRARY_NAME", "nonexistent")
+            .env("LIBGL_DRIVERS_PATH", "/nonexistent")
+            .output()
+            .unwrap();
+        let err = String::from_utf8_lossy(&output.stderr);
+        let out = String::from_utf8_lossy(&output.stdout);
+        assert!(output.status.success(), "{err}");
+        if out.contains("No usable graphics") {
+            skipped(name, "no Vulkan driver is installed");
+            return;
+        }
+        assert!(err.contains("Drawn with wgpu"), "{err}");
+        assert!(err.matches("Starting once more").count() <= 1, "{err}");
+    }
+
+    #[test]
     fn a_window_comes_up() {
         let Some(server) = Server::start(&["+extension", "GLX"]) else {
             skipped("a_window_comes_up", "Xvfb is not installed");

@@ -49,7 +49,7 @@ pub fn usual() -> (tempfile::TempDir, Window) {
 
 pub fn plain() -> Args {
     Args {
-        zoom: 1.0,
+        zoom: Some(1.0),
         ..Args::default()
     }
 }

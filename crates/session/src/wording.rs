@@ -1,6 +1,6 @@
 //! Numbers as people read them: one precision a quantity, a real minus sign, the unit always there.
 
-use crate::sounding::{Note, Parcel, Place, Sounding};
+use crate::sounding::{Note, Parcel, Place, Sounding, missing_for_daylight};
 use crate::thermo::{Ascent, Pressure, Temperature};
 use crate::trust::{Change, Cost};
 use crate::{Extremes, ParcelRange};
@@ -127,24 +127,26 @@ pub fn valid_time(sounding: &Sounding) -> String {
 /// What a sounding lacks for day or night to be known, and what to do about it.
 pub fn daylight_lacks(sounding: &Sounding) -> String {
     let station = &sounding.station;
+    let known = station.wmo.is_some() || station.wigos.is_some() || station.icao.is_some();
     // A table can say itself what its station and name don't.
     let table = sounding.source.format == "columns";
-    let position = if station.position.is_some() {
-        None
-    } else if station.wmo.is_some() || station.wigos.is_some() || station.icao.is_some() {
-        Some("no position (add the station to stations.csv)")
-    } else if table {
-        Some("no position (add a line `# position: latitude, longitude, elevation`)")
+    let mut remedies = Vec::new();
+    if sounding.times.valid().is_none() && table {
+        remedies.push("add a line `# time:` with date and time in UTC");
+    }
+    if station.position.is_none() {
+        if known {
+            remedies.push("add the station to stations.csv");
+        } else if table {
+            remedies.push("add a line `# position: latitude, longitude, elevation`");
+        }
+    }
+    let missing = missing_for_daylight(sounding);
+    if remedies.is_empty() {
+        missing.to_owned()
     } else {
-        Some("no position, and no station number to look it up by")
-    };
-    let time = sounding.times.valid().is_none().then_some(if table {
-        "no time (add a line `# time:` with date and time in UTC)"
-    } else {
-        "no time"
-    });
-    let lacks: Vec<&str> = [time, position].into_iter().flatten().collect();
-    lacks.join("; ")
+        format!("{missing} ({})", remedies.join("; "))
+    }
 }
 
 /// The change of a cost that counts most: "CAPE −850 J/kg (mixed)"; "no change in CAPE" where all of it reads as zero;
@@ -235,10 +237,7 @@ mod tests {
     #[test]
     fn what_day_and_night_lack_is_named_with_the_remedy() {
         let mut sounding = Sounding::default();
-        assert_eq!(
-            daylight_lacks(&sounding),
-            "no time; no position, and no station number to look it up by"
-        );
+        assert_eq!(daylight_lacks(&sounding), "no time and no position");
         sounding.station.wmo = Some("99001".to_owned());
         sounding.times.nominal = "2031-06-14T12:00:00Z".parse().ok();
         assert_eq!(

@@ -173,7 +173,9 @@ fn remarks(analysed: &Analysed, results: &Results) -> String {
             interval.why
         ));
     } else if !results.doubt.problem.is_empty() {
-        lines.push(format!("no range: {}", results.doubt.problem));
+        let why = results.doubt.problem.as_str();
+        let why = why.strip_prefix("no credible interval: ").unwrap_or(why);
+        lines.push(format!("no range: {why}"));
     }
     lines.push(results.which_parcel.clone());
     lines.extend(limits(&results.working.profile, &results.numbers));

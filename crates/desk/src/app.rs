@@ -14,7 +14,7 @@ use crate::{
     numbers, response, status, title, tray, verdict,
 };
 use dewbound_session::chart::{SpeedUnit, TemperatureUnit};
-use dewbound_session::{Action, Command, Item, Session, SurfaceQuantity};
+use dewbound_session::{Action, Command, Item, Session, SurfaceQuantity, wording};
 use eframe::egui::{self, Context, Rect, Ui, UiBuilder};
 use jiff::Timestamp;
 use std::path::PathBuf;
@@ -303,9 +303,13 @@ impl Desk {
             Action::ToggleTiming => self.view.show_timing = !self.view.show_timing,
             Action::ShowKeys => self.view.dialog = Some(DialogBox::Keys),
             Action::ShowCaution => self.view.dialog = Some(DialogBox::About),
-            Action::Decide if self.session.initials().is_none() => {
-                self.view.dialog = Some(DialogBox::Initials(String::new()));
-            }
+            Action::Decide => match self.session.can(action) {
+                Err(why) if why == wording::INITIALS_FIRST => {
+                    self.view.dialog = Some(DialogBox::Initials(String::new()));
+                }
+                // The session says why not, where it is not to be decided.
+                _ => self.apply(Command::Decide),
+            },
             other => {
                 if let Some(command) = self.session.command_of(other) {
                     self.apply(command);

@@ -8,7 +8,7 @@ use crate::tray;
 use crate::units;
 use crate::view::DialogBox;
 use dewbound_session::chart::{SpeedUnit, TemperatureUnit};
-use dewbound_session::{ACTIONS, Action, Menu, MessageId, Weight};
+use dewbound_session::{ACTIONS, Action, Menu, MessageId, Weight, wording};
 use eframe::egui::{
     Align, Button, Label, Layout, MenuBar, Response, RichText, Ui, UiBuilder, vec2,
 };
@@ -77,21 +77,12 @@ fn units_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
     }
 }
 
-/// Whether something that the window itself does can be done, else the session's word.
+/// Whether an action can be done now, or why not.
 pub(crate) fn possible(paint: &Paint, action: Action) -> Result<(), String> {
-    match action {
-        // Initials are asked for when they are missing.
-        Action::Decide if paint.session.initials().is_none() => match paint.item() {
-            Some(item) if item.document().verdict.is_none() => {
-                Err("Choose a verdict first.".to_owned())
-            }
-            Some(_) => Ok(()),
-            None => Err("No sounding chosen.".to_owned()),
-        },
-        Action::CopyLine | Action::CopyNumbers if paint.item().is_none() => {
-            Err("No sounding chosen.".to_owned())
-        }
-        _ => paint.session.can(action),
+    match paint.session.can(action) {
+        // They are asked for.
+        Err(why) if why == wording::INITIALS_FIRST => Ok(()),
+        answer => answer,
     }
 }
 

@@ -45,7 +45,7 @@ impl Session {
             _ => Ok(()),
         }?;
         if self.initials().is_none() {
-            return Err("give your initials first".to_owned());
+            return Err(crate::wording::INITIALS_FIRST.to_owned());
         }
         if matches!(item.standing, Standing::Decided(_)) {
             return Err("this is decided already; change something to decide anew".to_owned());

@@ -10,6 +10,9 @@ use jiff::{Timestamp, tz::TimeZone};
 pub const CAUTION: &str =
     "Supports an authorised forecaster; official warnings and local procedures rule";
 
+/// Why nothing can be decided when only the initials are wanting: the window then asks for them.
+pub const INITIALS_FIRST: &str = "give your initials first";
+
 /// The mark of demonstration soundings.
 pub const INVENTED: &str = "INVENTED DATA";
 

@@ -145,6 +145,18 @@ fn a_verdict_is_chosen_signed_and_kept() {
 }
 
 #[test]
+fn nobody_is_asked_to_sign_what_cannot_be_decided() {
+    let (_folder, mut window) = usual();
+    window.key_press_modifiers(Modifiers::COMMAND, Key::Enter);
+    window.run();
+    assert!(!has_text(&window, "Who decides?"));
+    assert!(
+        has_text(&window, "choose a verdict first"),
+        "the desk says why not"
+    );
+}
+
+#[test]
 fn the_line_is_copied() {
     let (_folder, mut window) = usual();
     // One event, one frame: what a frame puts on the clipboard is gone with the next.

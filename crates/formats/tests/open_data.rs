@@ -4,43 +4,28 @@
 
 #![allow(clippy::unwrap_used, clippy::expect_used)]
 
+mod real_files;
 mod support;
 
 use approx::assert_relative_eq;
 use dewbound_formats::{Loaded, ReadOptions, read_path};
 use dewbound_sounding::{HumidityReported, LevelKind, Note, Profile, Sounding};
-use std::io::Write;
 use std::path::{Path, PathBuf};
-
-/// Checks below, for the count of what is skipped.
-const CHECKS: [fn(&Path); 7] = [
-    every_table_loads,
-    every_station_file_loads,
-    fine_tables,
-    whole_flights,
-    drop_and_heights_above_ground,
-    station_files,
-    damaged_files,
-];
 
 #[test]
 fn real_files() {
-    let Some(folder) = std::env::var_os("DEWBOUND_OPEN_DATA").map(PathBuf::from) else {
-        assert!(
-            std::env::var_os("DEWBOUND_REQUIRE_ALL").is_none_or(|value| value != "1"),
-            "DEWBOUND_REQUIRE_ALL=1, but DEWBOUND_OPEN_DATA names no folder"
-        );
-        // Past the test harness, which hides what passing tests print.
-        let _ = writeln!(
-            std::io::stderr(),
-            "skipped: {} checks of the readers on real files (set DEWBOUND_OPEN_DATA to their folder)",
-            CHECKS.len()
-        );
-        return;
-    };
-    for check in CHECKS {
-        check(&folder);
-    }
+    real_files::run(
+        "the readers on real files",
+        &[
+            every_table_loads,
+            every_station_file_loads,
+            fine_tables,
+            whole_flights,
+            drop_and_heights_above_ground,
+            station_files,
+            damaged_files,
+        ],
+    );
 }
 
 fn files(folder: &Path) -> Vec<PathBuf> {

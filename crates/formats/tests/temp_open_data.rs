@@ -4,6 +4,7 @@
 
 #![allow(clippy::unwrap_used, clippy::expect_used)]
 
+mod real_files;
 mod temp_common;
 
 use dewbound_formats::Loaded;
@@ -12,45 +13,28 @@ use dewbound_sounding::{
     LevelKind::{self, *},
     Position, Sounding,
 };
-use std::io::Write;
 use std::path::{Path, PathBuf};
 use temp_common::{Hand, assert_sound, bare, body, compare, hand, poorer, read, said};
 
 const NO: f64 = f64::NAN;
 const KNOT: f64 = 1852.0 / 3600.0;
 
-/// Checks below, for the count of what is skipped.
-const CHECKS: [fn(&Path); 9] = [
-    every_file_loads,
-    plains_ascent,
-    tropical_highland_ascent,
-    winter_ascent,
-    first_of_seven,
-    repeated_stratosphere,
-    drop,
-    part_a_only,
-    afternoon_specials,
-];
-
 #[test]
 fn real_bulletins() {
-    let Some(folder) = std::env::var_os("DEWBOUND_OPEN_DATA").map(PathBuf::from) else {
-        assert!(
-            std::env::var_os("DEWBOUND_REQUIRE_ALL").is_none_or(|value| value != "1"),
-            "DEWBOUND_REQUIRE_ALL=1, but DEWBOUND_OPEN_DATA names no folder"
-        );
-        // Past the test harness, which hides what passing tests print.
-        let _ = writeln!(
-            std::io::stderr(),
-            "skipped: {} checks of the TEMP reader on real bulletins (set DEWBOUND_OPEN_DATA to their folder)",
-            CHECKS.len()
-        );
-        return;
-    };
-    let folder = folder.join("temp");
-    for check in CHECKS {
-        check(&folder);
-    }
+    real_files::run(
+        "the TEMP reader on real bulletins",
+        &[
+            every_file_loads,
+            plains_ascent,
+            tropical_highland_ascent,
+            winter_ascent,
+            first_of_seven,
+            repeated_stratosphere,
+            drop,
+            part_a_only,
+            afternoon_specials,
+        ],
+    );
 }
 
 fn text(path: &Path) -> String {
@@ -67,7 +51,8 @@ fn load(folder: &Path, start: &str) -> Loaded {
 }
 
 fn files(folder: &Path) -> Vec<PathBuf> {
-    let mut files: Vec<_> = std::fs::read_dir(folder)
+    let folder = folder.join("temp");
+    let mut files: Vec<_> = std::fs::read_dir(&folder)
         .unwrap_or_else(|error| panic!("{}: {error}", folder.display()))
         .map(|entry| entry.unwrap().path())
         .collect();

@@ -9,7 +9,7 @@ use crate::theme::bold;
 use crate::units;
 use crate::view::Tab;
 use dewbound_session::chart::Units;
-use dewbound_session::sounding::{Amendment, BridgeHumidity, Note, Parcel, Place};
+use dewbound_session::sounding::{Amendment, BridgeHumidity, Parcel};
 use dewbound_session::thermo::{Pressure, Temperature};
 use dewbound_session::trust::{Change, Cost, Finding};
 use dewbound_session::{Card, Command, Item, RepairId, wording};
@@ -386,7 +386,7 @@ fn amendments_ui(ui: &mut Ui, paint: &Paint, item: &Item, asks: &mut Asks) {
         });
     }
     for note in notes {
-        ui.label(RichText::new(note_text(note)).small());
+        ui.label(RichText::new(wording::note(note)).small());
     }
 }
 
@@ -439,25 +439,9 @@ fn notes_ui(ui: &mut Ui, item: &Item) {
     ui.add_space(4.0);
     ui.collapsing(format!("Notes on the message ({})", notes.len()), |ui| {
         for note in notes {
-            ui.label(RichText::new(note_text(note)).small());
+            ui.label(RichText::new(wording::note(note)).small());
         }
     });
-}
-
-/// A note with its place.
-pub(crate) fn note_text(note: &Note) -> String {
-    let place = match note.place {
-        Place::File => String::new(),
-        Place::Line(line) => format!("line {line}: "),
-        Place::Byte(byte) => format!("byte {byte}: "),
-        Place::Level(level) => format!("level {}: ", level + 1),
-    };
-    let why = if note.why.is_empty() {
-        String::new()
-    } else {
-        format!(" ({})", note.why)
-    };
-    format!("{place}{}{why}", note.what)
 }
 
 #[cfg(test)]

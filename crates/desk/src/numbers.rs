@@ -235,13 +235,14 @@ fn cell_ui(ui: &mut Ui, paint: &Paint, item: &Item, quantity: &Quantity, parcel:
     if decisive {
         let range = quantity
             .range
-            .and_then(|range| range(item.results().doubt.range(parcel)));
+            .map(|range| range(item.results().doubt.range(parcel)));
         match &range {
-            Some(range) => {
-                ui.add(Label::new(RichText::new(range_text(range)).size(11.5)).truncate())
+            Some((Some(range), or_none)) => {
+                let text = RichText::new(range_text(range, *or_none)).size(11.5);
+                ui.add(Label::new(text).truncate())
                     .on_hover_text(where_text(range, item, units));
             }
-            None => {
+            _ => {
                 ui.label(RichText::new("no range").small().weak());
             }
         }
@@ -411,8 +412,11 @@ pub(crate) fn as_text(item: &Item, units: Units) -> String {
             let received = cell(quantity, item.received_numbers(), parcel, units);
             let range = quantity
                 .range
-                .and_then(|range| range(item.results().doubt.range(parcel)))
-                .map_or_else(|| "–".to_owned(), |range| range_text(&range));
+                .map(|range| range(item.results().doubt.range(parcel)));
+            let range = match range {
+                Some((Some(range), or_none)) => range_text(&range, or_none),
+                _ => "–".to_owned(),
+            };
             let _ = write!(text, "\t{}\t{}\t{range}", working.text(), received.text());
         }
         text.push('\n');

@@ -40,8 +40,8 @@ pub(crate) struct Quantity {
     pub source: &'static str,
     /// Its value for an ascent.
     pub value: fn(&Ascent, Units) -> Cell,
-    /// Its range over the interval, where it has one.
-    pub range: Option<fn(&ParcelRange) -> Option<Extremes>>,
+    /// Its range over the interval, where it has one, and whether it is absent somewhere in it.
+    pub range: Option<fn(&ParcelRange) -> (Option<Extremes>, bool)>,
 }
 
 const NO_FREE_CONVECTION: &str = "No free convection: nowhere above its condensation level is the parcel lighter than its surroundings.";
@@ -77,7 +77,7 @@ pub(crate) const QUANTITIES: &[Quantity] = &[
             let sign = if ascent.at_least { "≥ " } else { "" };
             Cell::Value(format!("{sign}{}", number(ascent.cape, 0)))
         },
-        range: Some(|range| range.cape),
+        range: Some(|range| (range.cape, false)),
     },
     Quantity {
         name: "CIN",
@@ -92,7 +92,7 @@ pub(crate) const QUANTITIES: &[Quantity] = &[
                 |cin| Cell::Value(number(cin, 0)),
             )
         },
-        range: Some(|range| range.cin),
+        range: Some(|range| (range.cin, range.sometimes_no_free_convection)),
     },
     Quantity {
         name: "LCL",
@@ -212,15 +212,17 @@ pub(crate) fn cell(quantity: &Quantity, numbers: &Numbers, parcel: Parcel, units
     }
 }
 
-/// "1480 to 3120", the same value once.
-pub(crate) fn range_text(range: &Extremes) -> String {
+/// "1480 to 3120", the same value once; "−52 to 0, or none" where the quantity is absent somewhere in the interval.
+pub(crate) fn range_text(range: &Extremes, or_none: bool) -> String {
     let (least, most) = (number(range.least, 0), number(range.most, 0));
     let sign = if range.at_least { "≥ " } else { "" };
-    if least == most {
-        format!("{sign}{least}")
+    let to = if least == most {
+        String::new()
     } else {
-        format!("{sign}{least} to {most}")
-    }
+        format!(" to {most}")
+    };
+    let or_none = if or_none { ", or none" } else { "" };
+    format!("{sign}{least}{to}{or_none}")
 }
 
 #[cfg(test)]
@@ -240,13 +242,19 @@ mod tests {
 
     #[test]
     fn ranges() {
-        assert_eq!(range_text(&extremes(1480.2, 3119.7, false)), "1480 to 3120");
-        assert_eq!(range_text(&extremes(0.0, 0.4, false)), "0");
         assert_eq!(
-            range_text(&extremes(-250.0, -12.0, false)),
-            "\u{2212}250 to \u{2212}12"
+            range_text(&extremes(1480.2, 3119.7, false), false),
+            "1480 to 3120"
         );
-        assert_eq!(range_text(&extremes(800.0, 900.0, true)), "≥ 800 to 900");
+        assert_eq!(range_text(&extremes(0.0, 0.4, false), false), "0");
+        assert_eq!(
+            range_text(&extremes(-250.0, -12.0, false), true),
+            "\u{2212}250 to \u{2212}12, or none"
+        );
+        assert_eq!(
+            range_text(&extremes(800.0, 900.0, true), false),
+            "≥ 800 to 900"
+        );
     }
 
     #[test]

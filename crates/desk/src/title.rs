@@ -115,7 +115,11 @@ fn short_times(item: &Item, now: Timestamp) -> String {
         (Some(time), None) | (None, Some(time)) => format(time, "%H:%M UTC %-d %b %Y"),
         (None, None) => String::new(),
     };
-    let assumed = if times.assumed { "~" } else { "" };
+    let assumed = if wording::assumed(times).is_some() {
+        "~"
+    } else {
+        ""
+    };
     let age = age(times.launch.or(times.nominal), now);
     if said.is_empty() {
         age
@@ -152,11 +156,8 @@ fn times(item: &Item, now: Timestamp) -> String {
         (None, Some(nominal)) => format!("for {} {}", hour(nominal), day(nominal)),
         (None, None) => String::new(),
     };
-    let assumed = if times.assumed {
-        " (month and year assumed)"
-    } else {
-        ""
-    };
+    let assumed =
+        wording::assumed(times).map_or_else(String::new, |assumed| format!(" ({assumed})"));
     let age = age(times.launch.or(times.nominal), now);
     if said.is_empty() {
         age

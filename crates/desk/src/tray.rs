@@ -78,7 +78,7 @@ pub(crate) fn rows_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks, drop_down: bo
     });
 }
 
-/// "00 UTC 21 May", minutes where there are any; a tilde where month and year are assumed.
+/// "00 UTC 21 May", minutes where there are any; a tilde where part of the date is assumed.
 pub(crate) fn time_text(row: &TrayRow) -> String {
     match row.valid {
         Some(valid) => {
@@ -228,7 +228,7 @@ fn row_ui(ui: &mut Ui, paint: &Paint, row: &TrayRow, high: f32, drop_down: bool,
         ui.label(bold(&row.station));
         ui.label(format!("{}, {}", time_text(row), row.age(paint.now)));
         if row.time_assumed {
-            ui.label("Month and year are not in the message; the nearest past match was taken.");
+            ui.label("Part of the date is not in the message and was assumed; see the notes.");
         }
         ui.label(findings_text(row));
         if let Some((parcel, cost)) = row.worst_cost {

@@ -96,7 +96,7 @@ fn row(item: &Item) -> TrayRow {
         item: item.id(),
         station: sounding.station.label().to_owned(),
         valid: sounding.times.valid(),
-        time_assumed: sounding.times.assumed,
+        time_assumed: sounding.times.assumed || sounding.times.day_assumed,
         findings: graded.clone().count(),
         erroneous: item
             .findings()

@@ -1,6 +1,6 @@
 //! Numbers as people read them: one precision a quantity, a real minus sign, the unit always there.
 
-use crate::sounding::{Note, Parcel, Place, Sounding, missing_for_daylight};
+use crate::sounding::{Note, Parcel, Place, Sounding, Times, missing_for_daylight};
 use crate::thermo::{Ascent, Pressure, Temperature};
 use crate::trust::{Change, Cost};
 use crate::{Extremes, ParcelRange};
@@ -115,15 +115,23 @@ pub fn time(time: Option<Timestamp>) -> String {
     )
 }
 
-/// Valid time of a sounding; says so when month and year, or the day, were assumed.
+/// What of the time was not in the message: "month and year assumed", "day assumed"; `None` when all of it was.
+pub fn assumed(times: &Times) -> Option<&'static str> {
+    if times.assumed {
+        Some("month and year assumed")
+    } else if times.day_assumed {
+        Some("day assumed")
+    } else {
+        None
+    }
+}
+
+/// Valid time of a sounding; says so when part of it was assumed.
 pub fn valid_time(sounding: &Sounding) -> String {
     let text = time(sounding.times.valid());
-    if sounding.times.assumed {
-        format!("{text} (month and year assumed)")
-    } else if sounding.times.day_assumed {
-        format!("{text} (day assumed)")
-    } else {
-        text
+    match assumed(&sounding.times) {
+        Some(assumed) => format!("{text} ({assumed})"),
+        None => text,
     }
 }
 

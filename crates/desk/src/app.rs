@@ -150,6 +150,7 @@ impl Desk {
             .session
             .current()
             .map(|item| (item.id(), item.revision()));
+        let row = self.current_row();
         self.now = (self.clock)();
         self.take_in(ctx);
         for ask in std::mem::take(&mut self.asks.list) {
@@ -192,14 +193,24 @@ impl Desk {
         if before != after {
             self.view.timing.computed(begun.elapsed());
         }
-        self.view.reveal = before.map(|(item, _)| item) != after.map(|(item, _)| item);
-        if self.view.reveal {
+        let another = before.map(|(item, _)| item) != after.map(|(item, _)| item);
+        self.view.reveal = another || row != self.current_row();
+        if another {
             let name = self.session.current().map_or_else(
                 || "Dewbound".to_owned(),
                 |item| format!("{} · Dewbound", title::identity(item)),
             );
             ctx.send_viewport_cmd(egui::ViewportCommand::Title(name));
         }
+    }
+
+    /// Where the current sounding stands in the tray.
+    fn current_row(&self) -> Option<usize> {
+        let current = self.session.current()?.id();
+        self.session
+            .tray()
+            .iter()
+            .position(|row| row.item == current)
     }
 
     /// Files and worker results.

@@ -204,7 +204,7 @@ mod without_a_window {
             skipped(name, "no Vulkan driver is installed");
             return;
         }
-        assert!(err.contains("Drawn with wgpu"), "{err}");
+        assert!(err.contains("Drawn with wgpu"), "{out}\n{err}");
         assert!(err.matches("Starting once more").count() <= 1, "{err}");
     }
 
@@ -221,12 +221,13 @@ mod without_a_window {
             .output()
             .unwrap();
         let err = String::from_utf8_lossy(&output.stderr);
+        let out = String::from_utf8_lossy(&output.stdout);
         assert!(output.status.success(), "{err}");
-        if String::from_utf8_lossy(&output.stdout).contains("No usable graphics") {
+        if out.contains("No usable graphics") {
             skipped("a_window_comes_up", "no software renderer is installed");
             return;
         }
-        assert!(err.contains("Drawn with "), "{err}");
+        assert!(err.contains("Drawn with "), "{out}\n{err}");
     }
 
     fn without_graphics(command: &mut Command) -> &mut Command {
@@ -253,7 +254,8 @@ impl Server {
             .find(|file| file.is_file())?;
         // The server picks a free number and writes it when it is ready.
         let mut child = Command::new(xvfb)
-            .args(["-displayfd", "1", "-screen", "0", "1280x800x24"])
+            // Without a desktop the last window to close would make the server begin anew, deaf for a moment.
+            .args(["-noreset", "-displayfd", "1", "-screen", "0", "1280x800x24"])
             .args(extra)
             .stdin(Stdio::null())
             .stdout(Stdio::piped())

@@ -26,6 +26,9 @@ impl Cell {
     }
 }
 
+/// Range over the interval, where there is one, and whether the quantity is absent somewhere in it.
+type RangeOf = fn(&ParcelRange) -> (Option<Extremes>, bool);
+
 /// One row.
 pub(crate) struct Quantity {
     /// Name.
@@ -40,8 +43,8 @@ pub(crate) struct Quantity {
     pub source: &'static str,
     /// Its value for an ascent.
     pub value: fn(&Ascent, Units) -> Cell,
-    /// Its range over the interval, where it has one, and whether it is absent somewhere in it.
-    pub range: Option<fn(&ParcelRange) -> (Option<Extremes>, bool)>,
+    /// Its range over the interval; `None` for rows shown without one.
+    pub range: Option<RangeOf>,
 }
 
 const NO_FREE_CONVECTION: &str = "No free convection: nowhere above its condensation level is the parcel lighter than its surroundings.";

@@ -88,6 +88,32 @@ impl Context {
         }
     }
 
+    /// Gives a level its air and wind, each where it is certain among `values`, the groups after the level group.
+    pub fn settle(
+        &mut self,
+        level: &mut Level,
+        pressure: Option<f64>,
+        values: &[Word],
+        (air, wind): (Option<Word>, Option<Word>),
+        name: &str,
+    ) {
+        let unit = self.unit;
+        let air_cost = |text: &str| air_cost(text, pressure);
+        let wind_cost = |text: &str| wind_cost(text, unit);
+        let certain = self.certain(
+            values,
+            name,
+            air.is_some().then_some(&air_cost),
+            wind.is_some().then_some(&wind_cost),
+        );
+        if let Some(air) = air.filter(|_| certain.air) {
+            self.air(level, air, name);
+        }
+        if let Some(wind) = wind.filter(|_| certain.wind) {
+            self.wind(level, wind, name);
+        }
+    }
+
     /// With a group too many, says which values are certain all the same: those that every possible reading agrees on.
     /// `values` are the groups after the level group; the costs are `None` for a value that isn't expected.
     pub fn certain(&mut self, values: &[Word], name: &str, air: Cost, wind: Cost) -> Certain {

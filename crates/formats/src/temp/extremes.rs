@@ -165,21 +165,14 @@ fn level(
             "its wind group is missing",
         );
     }
-    let (pressure, unit) = (level.pressure, context.unit);
-    let air_cost = |text: &str| air_cost(text, pressure);
-    let wind_cost = |text: &str| wind_cost(text, unit);
     let values = words.get(piece.at + 1..piece.at + piece.span);
-    let certain = context.certain(
+    let pressure = level.pressure;
+    context.settle(
+        &mut level,
+        pressure,
         values.unwrap_or(&[]),
+        (air, wind),
         &name,
-        air.is_some().then_some(&air_cost),
-        wind.is_some().then_some(&wind_cost),
     );
-    if let Some(air) = air.filter(|_| certain.air) {
-        context.air(&mut level, air, &name);
-    }
-    if let Some(wind) = wind.filter(|_| certain.wind) {
-        context.wind(&mut level, wind, &name);
-    }
     context.levels.push(level);
 }

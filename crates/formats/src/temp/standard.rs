@@ -367,20 +367,13 @@ fn level(
         (Some(_), _) => {}
     }
     let values = scheme.words.get(piece.at + 1..piece.at + piece.span);
-    let air_cost = |text: &str| air_cost(text, slot.pascals());
-    let wind_cost = |text: &str| wind_cost(text, scheme.unit);
-    let certain = context.certain(
+    context.settle(
+        &mut level,
+        slot.pascals(),
         values.unwrap_or(&[]),
+        (air, wind),
         &name,
-        air.is_some().then_some(&air_cost),
-        wind.is_some().then_some(&wind_cost),
     );
-    if let Some(air) = air.filter(|_| certain.air) {
-        context.air(&mut level, air, &name);
-    }
-    if let Some(wind) = wind.filter(|_| certain.wind) {
-        context.wind(&mut level, wind, &name);
-    }
     level
 }
 

@@ -219,7 +219,7 @@ fn cell_ui(ui: &mut Ui, paint: &Paint, item: &Item, quantity: &Quantity, parcel:
                 ui.spacing_mut().item_spacing.x = 5.0;
                 let value = ui.label(text);
                 if let Some(was) = &was {
-                    was_ui(ui, paint, was);
+                    remark_ui(ui, paint, &format!("was {was}"));
                 } else if quantity.name == "Start p"
                     && parcel == Parcel::MostUnstable
                     && item.results().numbers.most_unstable_is_surface
@@ -238,31 +238,35 @@ fn cell_ui(ui: &mut Ui, paint: &Paint, item: &Item, quantity: &Quantity, parcel:
             .map(|range| range(item.results().doubt.range(parcel)));
         match &range {
             Some((Some(range), or_none)) => {
-                let text = RichText::new(range_text(range, *or_none)).size(11.5);
-                ui.add(Label::new(text).truncate())
-                    .on_hover_text(where_text(range, item, units));
+                let text = range_text(range, *or_none);
+                let hover = format!("{text}\n{}", where_text(range, item, units));
+                let text = RichText::new(range_text(range, false)).size(11.5);
+                ui.add(Label::new(text).truncate()).on_hover_text(hover);
             }
             _ => {
                 ui.label(RichText::new("no range").small().weak());
             }
         }
-        if let Some(was) = was {
-            was_ui(ui, paint, &was);
+        let or_none = matches!(range, Some((Some(_), true)));
+        let remarks: Vec<String> = [
+            or_none.then(|| "or none".to_owned()),
+            was.map(|was| format!("was {was}")),
+        ]
+        .into_iter()
+        .flatten()
+        .collect();
+        if !remarks.is_empty() {
+            remark_ui(ui, paint, &remarks.join(" · "));
         }
     }
 }
 
-/// The value received, where the working one differs.
-fn was_ui(ui: &mut Ui, paint: &Paint, was: &str) {
-    ui.add(
-        Label::new(
-            RichText::new(format!("was {was}"))
-                .size(10.5)
-                .color(paint.theme.quiet),
-        )
-        .truncate(),
-    )
-    .on_hover_text("As received");
+/// What stands small beneath a range: that the number is absent somewhere in it, and the value received where the
+/// working one differs.
+fn remark_ui(ui: &mut Ui, paint: &Paint, remark: &str) {
+    let text = RichText::new(remark).size(10.5).color(paint.theme.quiet);
+    ui.add(Label::new(text).truncate())
+        .on_hover_text("\"was\": as received; \"or none\": absent somewhere in the interval");
 }
 
 fn where_text(range: &Extremes, item: &Item, units: Units) -> String {

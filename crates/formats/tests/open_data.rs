@@ -58,19 +58,7 @@ fn check_sane(sounding: &Sounding) {
     assert!(!sounding.levels.is_empty());
     assert_eq!(sounding.source.parts.len(), 1);
     for level in &sounding.levels {
-        let wind = level.wind;
-        for value in [
-            level.pressure,
-            level.height,
-            level.temperature,
-            level.dewpoint,
-            level.relative_humidity,
-            level.elapsed,
-            wind.map(|wind| wind.direction),
-            wind.map(|wind| wind.speed),
-        ] {
-            assert!(value.is_none_or(f64::is_finite), "{level:?}");
-        }
+        support::check_finite(level);
         let within = |value: Option<f64>, least: f64, most: f64| {
             value.is_none_or(|value| (least..=most).contains(&value))
         };

@@ -1,6 +1,7 @@
 //! Damage done at random, and what must hold of whatever is read afterwards.
 
 use dewbound_formats::{Loaded, ReadOptions, StationTable, read};
+use dewbound_sounding::Level;
 
 /// A small generator of its own (xorshift64*, Vigna 2016), so that a seed means the same bytes for ever.
 pub struct Random(pub u64);
@@ -94,20 +95,25 @@ pub fn check(loaded: &Loaded) {
         }
         assert!(sounding.station.elevation.is_none_or(f64::is_finite));
         for level in &sounding.levels {
-            let wind = level.wind;
-            for value in [
-                level.pressure,
-                level.height,
-                level.temperature,
-                level.dewpoint,
-                level.relative_humidity,
-                level.elapsed,
-                wind.map(|wind| wind.direction),
-                wind.map(|wind| wind.speed),
-            ] {
-                assert!(value.is_none_or(f64::is_finite), "{level:?}");
-            }
+            check_finite(level);
         }
+    }
+}
+
+/// Panics on a number that is none.
+pub fn check_finite(level: &Level) {
+    let wind = level.wind;
+    for value in [
+        level.pressure,
+        level.height,
+        level.temperature,
+        level.dewpoint,
+        level.relative_humidity,
+        level.elapsed,
+        wind.map(|wind| wind.direction),
+        wind.map(|wind| wind.speed),
+    ] {
+        assert!(value.is_none_or(f64::is_finite), "{level:?}");
     }
 }
 

@@ -52,7 +52,7 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
             received: Some(&received),
             parcel: numbers.surface.as_ref().map(|ascent| ParcelDrawing {
                 ascent,
-                method: Method::PseudoAdiabat,
+                method: Method::default(),
                 environment: Some(&environment),
                 interval: Some([shifted(-2.0), shifted(2.0)]),
                 name: "surface parcel",

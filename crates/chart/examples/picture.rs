@@ -80,7 +80,7 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
             preview: Some(&preview).filter(|_| width > 1200.0),
             parcel: numbers.surface.as_ref().map(|ascent| ParcelDrawing {
                 ascent,
-                method: Method::PseudoAdiabat,
+                method: Method::default(),
                 environment: Some(&environment),
                 interval: Some(ends.map(|dewpoint| Air {
                     dewpoint,

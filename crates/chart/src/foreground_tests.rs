@@ -62,7 +62,7 @@ fn with_everything<R>(
         preview: Some(&preview),
         parcel: numbers.surface.as_ref().map(|ascent| ParcelDrawing {
             ascent,
-            method: Method::PseudoAdiabat,
+            method: Method::default(),
             environment: None,
             interval: Some(ends.map(|dewpoint| Air { dewpoint, ..start })),
             name: "surface parcel",
@@ -331,7 +331,7 @@ fn the_hatched_areas_are_the_numbers() {
     let ascent = numbers.surface.as_ref().unwrap();
     let drawing = ParcelDrawing {
         ascent,
-        method: Method::PseudoAdiabat,
+        method: Method::default(),
         environment: Some(&environment),
         interval: None,
         name: "surface parcel",

@@ -1,7 +1,8 @@
 //! Everything that follows from a sounding as received, before anybody has touched it.
 
 use crate::bounds::{Candidates, candidates};
-use crate::sounding::{Daylight, Note, Numbers, Profile, Sounding, daylight};
+use crate::sounding::{Daylight, Further, Note, Numbers, Profile, Sounding, daylight};
+use crate::thermo::Motion;
 use crate::trust::{Context, Finding, Thresholds, findings};
 use std::sync::Arc;
 
@@ -14,6 +15,8 @@ pub struct Analysed {
     pub profile: Arc<Profile>,
     /// Numbers of the received profile.
     pub numbers: Numbers,
+    /// Further numbers of the received profile, with the estimated storm motion.
+    pub further: Further,
     /// What the rules see on it.
     pub findings: Vec<Finding>,
     /// Whether the sun has been heating the ground.
@@ -29,6 +32,7 @@ impl Analysed {
     pub fn of(sounding: Sounding, thresholds: &Thresholds) -> Self {
         let (profile, merging) = Profile::received(&sounding);
         let numbers = Numbers::of(&profile);
+        let further = Further::of(&profile, &profile, &numbers, estimated_motion(&sounding));
         let daylight = daylight(&sounding);
         let findings = findings(&Context {
             sounding: &sounding,
@@ -44,11 +48,17 @@ impl Analysed {
             sounding: Arc::new(sounding),
             profile: Arc::new(profile),
             numbers,
+            further,
             findings,
             daylight,
             candidates,
             notes,
         }
+    }
+
+    /// The motion helicity is measured against unless the user sets one.
+    pub fn estimated_motion(&self) -> Motion {
+        estimated_motion(&self.sounding)
     }
 
     /// Rows of the profile the numbers are made of; when nothing can be lifted, those with a temperature.
@@ -69,5 +79,13 @@ impl Analysed {
             .into_iter()
             .filter(|&row| !matches!(self.profile.dewpoint.get(row), Some(Some(_))))
             .count()
+    }
+}
+
+/// South of the equator storms deviate to the left; elsewhere, and where the position is unknown, to the right.
+fn estimated_motion(sounding: &Sounding) -> Motion {
+    match sounding.station.position {
+        Some(position) if position.latitude < 0.0 => Motion::Left,
+        _ => Motion::Right,
     }
 }

@@ -89,6 +89,13 @@ impl Session {
                 document.picked_level_pa = level.map(Pressure::pa);
                 Ok(())
             }),
+            Command::SetStormMotion(motion) => {
+                let motion = motion.filter(|motion| motion.u.is_finite() && motion.v.is_finite());
+                self.edit(|_, document| {
+                    document.storm_motion_ms = motion.map(|motion| [motion.u, motion.v]);
+                    Ok(())
+                })
+            }
 
             Command::Undo => self.travel(|item| {
                 // In the middle of a drag, the step to take back is the drag.

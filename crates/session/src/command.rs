@@ -2,7 +2,7 @@
 
 use crate::ledger::Verdict;
 use crate::sounding::{Amendment, Position, Reach};
-use crate::thermo::{Pressure, Temperature};
+use crate::thermo::{Pressure, Temperature, Vector};
 use crate::{IntervalEnd, ItemId, MessageId};
 
 /// Which surface value; also names the two handles.
@@ -80,6 +80,8 @@ pub enum Command {
     Unpin(IntervalEnd),
     /// Lift a parcel from this level too; `None`: no longer.
     PickLevel(Option<Pressure>),
+    /// Measure helicity against this storm motion; `None`: against the estimated one. Not finite: refused.
+    SetStormMotion(Option<Vector>),
 
     /// One step back.
     Undo,

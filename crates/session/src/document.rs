@@ -3,7 +3,7 @@
 use crate::SurfaceQuantity;
 use crate::ledger::Verdict;
 use crate::sounding::Amendments;
-use crate::thermo::{Pressure, Temperature};
+use crate::thermo::{Pressure, Temperature, Vector};
 use serde::{Deserialize, Serialize};
 
 /// Which end of the credible interval.
@@ -46,6 +46,9 @@ pub struct Document {
     /// A level the user picked to lift a parcel from, Pa.
     #[serde(default)]
     pub picked_level_pa: Option<f64>,
+    /// A storm motion the user set: towards east and towards north, m/s.
+    #[serde(default)]
+    pub storm_motion_ms: Option<[f64; 2]>,
     /// Verdict being drafted.
     #[serde(default)]
     pub verdict: Option<Verdict>,
@@ -65,6 +68,7 @@ impl Document {
         self.amendments == other.amendments
             && self.pins == other.pins
             && self.picked_level_pa == other.picked_level_pa
+            && self.storm_motion_ms == other.storm_motion_ms
     }
 
     /// The surface value these amendments set, when they do.
@@ -73,6 +77,11 @@ impl Document {
             SurfaceQuantity::Dewpoint => self.amendments.surface_dewpoint(),
             SurfaceQuantity::Temperature => self.amendments.surface_temperature(),
         }
+    }
+
+    /// The storm motion the user set.
+    pub fn storm_motion(&self) -> Option<Vector> {
+        self.storm_motion_ms.map(|[u, v]| Vector { u, v })
     }
 
     /// The picked level.

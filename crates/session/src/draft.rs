@@ -98,6 +98,7 @@ mod tests {
         let document = Document {
             // A value with no short decimal form must survive bit for bit.
             picked_level_pa: Some(90_000.1 + 0.2),
+            storm_motion_ms: Some([7.5, -0.1]),
             reasons: "too moist \"at the ground\"\n".to_owned(),
             ..Document::default()
         };

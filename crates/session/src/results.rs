@@ -2,8 +2,8 @@
 
 use crate::doubt::DoubtKey;
 use crate::pricing::Pricing;
-use crate::sounding::{Numbers, Profile, Working};
-use crate::thermo::{Ascent, Method, Pressure, lift};
+use crate::sounding::{Further, Numbers, Profile, Working};
+use crate::thermo::{Ascent, Method, Motion, Pressure, lift};
 use crate::trust::{Cost, Priced};
 use crate::{Analysed, Document, Doubt, sentence};
 use std::sync::Arc;
@@ -57,6 +57,8 @@ pub struct Results {
     pub working: Working,
     /// Numbers of the working profile.
     pub numbers: Numbers,
+    /// Further numbers of the working profile.
+    pub further: Further,
     /// The parcel of the level the user picked.
     pub picked: Option<Ascent>,
     /// One card a finding, same index as [`crate::Item::findings`].
@@ -141,6 +143,10 @@ impl Results {
         let amendments = &document.amendments;
         let working = amendments.apply(&analysed.profile, analysed.daylight);
         let numbers = Numbers::of(&working.profile);
+        let motion = document
+            .storm_motion()
+            .map_or_else(|| analysed.estimated_motion(), Motion::Set);
+        let further = Further::of(&analysed.profile, &working.profile, &numbers, motion);
         let picked = document
             .picked_level()
             .and_then(|level| picked_ascent(&working.profile, level));
@@ -175,6 +181,7 @@ impl Results {
             revision,
             working,
             numbers,
+            further,
             picked,
             cards,
             order: ranked.clone(),

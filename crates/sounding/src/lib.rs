@@ -43,6 +43,7 @@ mod amend;
 mod apply;
 mod clean;
 mod flight;
+mod further;
 mod height;
 mod layers;
 mod merge;
@@ -56,9 +57,11 @@ mod sun;
 mod telling;
 #[cfg(test)]
 mod testing;
+mod wind_profile;
 mod winds;
 
 pub use amend::*;
+pub use further::*;
 pub use mixed_layer::*;
 pub use numbers::*;
 pub use profile::*;

@@ -88,7 +88,7 @@ fn starts(environment: &Environment) -> [Air; 3] {
 
 fn lift_all(environment: &Environment, starts: &[Air]) {
     for start in starts {
-        black_box(lift(environment, *start, Method::PseudoAdiabat));
+        black_box(lift(environment, *start, Method::default()));
     }
 }
 
@@ -200,7 +200,7 @@ fn measure(levels: usize) {
                     dewpoint,
                     ..fixed[0]
                 },
-                Method::PseudoAdiabat,
+                Method::default(),
             ));
         }
     };
@@ -222,14 +222,14 @@ fn measure(levels: usize) {
     );
     let exactly = || {
         for start in &fixed {
-            black_box(lift_exactly(&environment, *start, Method::PseudoAdiabat));
+            black_box(lift_exactly(&environment, *start, Method::default()));
         }
     };
     row("lift_exactly, per parcel", median_ns(exactly), 3.0);
 
     for (name, start) in ["surface", "mixed", "most unstable"].iter().zip(fixed) {
-        let fast = lift(&environment, start, Method::PseudoAdiabat).expect("an ascent");
-        let exact = lift_exactly(&environment, start, Method::PseudoAdiabat).expect("an ascent");
+        let fast = lift(&environment, start, Method::default()).expect("an ascent");
+        let exact = lift_exactly(&environment, start, Method::default()).expect("an ascent");
         println!(
             "{levels:>7}  {name}: CAPE {:.3} J/kg, exactly {:.3}; buoyant layers: {}",
             fast.cape,

@@ -1,5 +1,6 @@
 //! The air a parcel rises through.
 
+mod heights;
 mod refill;
 
 use crate::column::{Column, Levels, theta_and_moisture};

@@ -7,7 +7,7 @@ use crate::path::Parcel;
 use crate::pseudoadiabat::{first_guess, solve};
 use crate::saturation::virtual_temperature;
 use crate::scan::Run;
-use crate::{Air, Ascent, Environment, Method};
+use crate::{Air, Ascent, Environment, Method, Process};
 
 /// Widest step of the integration in ln p.
 const WIDEST: f64 = 0.01;
@@ -27,8 +27,8 @@ pub fn lift_exactly(environment: &Environment, start: Air, method: Method) -> Op
     let from = parcel.z_start.max(z_bottom);
     let lcl = parcel.z_lcl.max(from);
     let dry = |z: f64| virtual_temperature(parcel.dry_temperature(z), parcel.w);
-    let saturated = |z: f64| match method {
-        Method::PseudoAdiabat => {
+    let saturated = |z: f64| match method.process {
+        Process::ThetaE | Process::Direct(_) | Process::Reversible(_) => {
             let p = (-z).exp();
             let (t, state) = solve(
                 parcel.ln_theta_e,

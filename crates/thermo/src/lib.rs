@@ -22,7 +22,7 @@
 //!     &[303.0, 291.0, 283.0, 263.0, 233.0, 218.0, 213.0],
 //!     &[Some(294.0), Some(287.0), Some(268.0), Some(243.0), Some(218.0), None, None],
 //! )?;
-//! let ascent = lift(&environment, environment.bottom(), Method::PseudoAdiabat).expect("starts inside");
+//! let ascent = lift(&environment, environment.bottom(), Method::default()).expect("starts inside");
 //! assert!(ascent.cape > 1000.0 && !ascent.at_least);
 //! assert!(ascent.lfc < Some(ascent.lcl.pressure) && ascent.el < ascent.lfc);
 //! // Two levels have no dew point: counted as dry, and said.
@@ -37,7 +37,9 @@ mod constants;
 mod elementary;
 mod environment;
 mod exact;
+mod layers;
 mod lift;
+mod method;
 mod numeric;
 mod parcels;
 mod path;
@@ -46,12 +48,15 @@ mod saturation;
 mod scan;
 mod thickness;
 mod units;
+mod winds;
 
 pub use air::*;
 pub use constants::*;
 pub use environment::*;
 pub use exact::lift_exactly;
+pub use layers::*;
 pub use lift::*;
+pub use method::*;
 pub use parcels::*;
 pub use pseudoadiabat::temperature_on_pseudoadiabat;
 pub use saturation::{
@@ -60,3 +65,4 @@ pub use saturation::{
 };
 pub use thickness::*;
 pub use units::*;
+pub use winds::*;

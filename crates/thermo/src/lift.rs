@@ -1,20 +1,11 @@
 //! Parcels and what becomes of them: CAPE, CIN, LCL, LFC, EL.
 
 use crate::environment::coordinate;
-use crate::path::Parcel;
+use crate::path::{Cubic, Parcel};
 use crate::pseudoadiabat::{first_guess, solve};
 use crate::saturation::{e_water, mixing_ratio, virtual_temperature};
 use crate::scan::{Run, runs};
-use crate::{Air, Environment, GAS_CONSTANT_DRY, Lcl, Pressure, Temperature};
-
-/// How a saturated parcel cools.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
-#[non_exhaustive]
-pub enum Method {
-    /// The pseudo-adiabat of constant eq. 39 theta-e; condensate falls out.
-    #[default]
-    PseudoAdiabat,
-}
+use crate::{Air, Environment, GAS_CONSTANT_DRY, Lcl, Method, Pressure, Process, Temperature};
 
 /// A layer above the LCL in which the parcel is warmer (virtually) than its surroundings.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -76,29 +67,76 @@ const NEGLIGIBLE: f64 = 1e-4;
 ///
 /// `None` when the start lies above the top of the environment or is not finite.
 pub fn lift(environment: &Environment, start: Air, method: Method) -> Option<Ascent> {
-    let parcel = Parcel::new(start)?;
-    if parcel.start.pressure < environment.top() {
-        return None;
+    Lifted::of(environment, start, method).map(|lifted| lifted.ascent)
+}
+
+/// An ascent with the parcel's path still at hand: for parts of its areas, and for the parcel at a level.
+#[derive(Debug, Clone)]
+pub struct Lifted<'e> {
+    /// The numbers of the whole ascent.
+    pub ascent: Ascent,
+    environment: &'e Environment,
+    method: Method,
+    /// Virtual temperature above the LCL; `None` when that lies above the top.
+    saturated: Option<Cubic>,
+}
+
+impl<'e> Lifted<'e> {
+    /// Lifts a parcel, as [`lift`] does.
+    pub fn of(environment: &'e Environment, start: Air, method: Method) -> Option<Self> {
+        let parcel = Parcel::new(start)?;
+        if parcel.start.pressure < environment.top() {
+            return None;
+        }
+        let (z_bottom, z_top) = environment.z_range();
+        let z_from = parcel.z_start.max(z_bottom);
+        let z_lcl = parcel.z_lcl.max(z_from);
+        let (column, levels) = (environment.column(), environment.levels());
+        let below = runs(&parcel.dry(z_top), column, levels, z_from, z_lcl.min(z_top));
+        let saturated = (z_lcl < z_top).then(|| parcel.saturated(method, z_top));
+        let above = saturated
+            .as_ref()
+            .map_or_else(Vec::new, |path| runs(path, column, levels, z_lcl, z_top));
+        Some(Self {
+            ascent: assemble(environment, &parcel, &below, above),
+            environment,
+            method,
+            saturated,
+        })
     }
-    let (z_bottom, z_top) = environment.z_range();
-    let z_from = parcel.z_start.max(z_bottom);
-    let z_lcl = parcel.z_lcl.max(z_from);
-    let (column, levels) = (environment.column(), environment.levels());
 
-    let below = runs(&parcel.dry(z_top), column, levels, z_from, z_lcl.min(z_top));
-    let above = if z_lcl < z_top {
-        merged(runs(
-            &parcel.saturated(method, z_top),
-            column,
-            levels,
-            z_lcl,
-            z_top,
-        ))
-    } else {
-        Vec::new()
-    };
+    /// The parcel at a pressure, by exact solution; `None` below its start.
+    pub fn parcel_at(&self, pressure: Pressure) -> Option<ParcelState> {
+        parcel_path(self.ascent.start, self.method, &[pressure])
+            .first()
+            .copied()
+    }
 
-    Some(assemble(environment, &parcel, &below, above))
+    /// The part of CAPE between two pressures (`lower` > `upper`), J/kg: positive area above the LCL. Zero where there is
+    /// none, and where the layer is empty.
+    pub fn cape_between(&self, lower: Pressure, upper: Pressure) -> f64 {
+        let Some(path) = &self.saturated else {
+            return 0.0;
+        };
+        let column = self.environment.column();
+        let levels = self.environment.levels();
+        let integral = |pressure: Pressure| {
+            let z = coordinate(pressure.pa());
+            path.integral(z) - column.integral_in(&levels, column.step_at(z), z)
+        };
+        let parts = self.ascent.buoyant.iter().map(|layer| {
+            let bottom = Pressure::from_pa(layer.bottom.pa().min(lower.pa()));
+            let top = Pressure::from_pa(layer.top.pa().max(upper.pa()));
+            if bottom == layer.bottom && top == layer.top {
+                layer.area
+            } else if bottom > top {
+                (GAS_CONSTANT_DRY * (integral(top) - integral(bottom))).max(0.0)
+            } else {
+                0.0
+            }
+        });
+        parts.sum::<f64>() + 0.0
+    }
 }
 
 /// The numbers of an ascent from its runs below and above the LCL.
@@ -221,8 +259,8 @@ pub fn parcel_path(start: Air, method: Method, pressures: &[Pressure]) -> Vec<Pa
         let (t, w) = if z < parcel.z_lcl {
             (parcel.dry_temperature(z), parcel.w)
         } else {
-            match method {
-                Method::PseudoAdiabat => {
+            match method.process {
+                Process::ThetaE | Process::Direct(_) | Process::Reversible(_) => {
                     let t = solve(parcel.ln_theta_e, p, first_guess(theta_e, p), 1e-9).0;
                     (t, mixing_ratio(p, e_water(t).min(0.5 * p)))
                 }

@@ -6,7 +6,7 @@
 use crate::environment::coordinate;
 use crate::pseudoadiabat::refine;
 use crate::saturation::{e_water, mixing_ratio, virtual_temperature};
-use crate::{Air, EPSILON, Method, Temperature, air};
+use crate::{Air, EPSILON, Method, Process, Temperature, air};
 
 /// Spacing of the nodes in z.
 pub(crate) const SPACING: f64 = 0.1;
@@ -162,8 +162,10 @@ impl Parcel {
 
     /// Virtual temperature of the saturated ascent from the LCL to at least `z_end`.
     pub fn saturated(&self, method: Method, z_end: f64) -> Cubic {
-        match method {
-            Method::PseudoAdiabat => self.pseudoadiabat(z_end),
+        match method.process {
+            Process::ThetaE | Process::Direct(_) | Process::Reversible(_) => {
+                self.pseudoadiabat(z_end)
+            }
         }
     }
 
@@ -218,10 +220,7 @@ mod tests {
         };
         let parcel = Parcel::new(start).unwrap();
         let end = coordinate(1000.0);
-        let (dry, saturated) = (
-            parcel.dry(end),
-            parcel.saturated(Method::PseudoAdiabat, end),
-        );
+        let (dry, saturated) = (parcel.dry(end), parcel.saturated(Method::default(), end));
         let points = 20_000;
         let step = (end - parcel.z_start) / f64::from(points);
         let (mut worst, mut area) = (0.0_f64, 0.0);
@@ -262,7 +261,7 @@ mod tests {
             dewpoint: Temperature::from_c(18.0),
         })
         .unwrap();
-        let table = parcel.saturated(Method::PseudoAdiabat, coordinate(10_000.0));
+        let table = parcel.saturated(Method::default(), coordinate(10_000.0));
         let (from, to) = (parcel.z_lcl + 0.03, parcel.z_lcl + 1.47);
         let slices = 10_000;
         let h = (to - from) / f64::from(slices);

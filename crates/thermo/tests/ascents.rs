@@ -25,7 +25,7 @@ fn air(p: f64, t: f64, td: f64) -> Air {
 }
 
 fn lifted(environment: &Environment, start: Air) -> Ascent {
-    lift(environment, start, Method::PseudoAdiabat).unwrap()
+    lift(environment, start, Method::default()).unwrap()
 }
 
 /// A warm and moist day with a cap at 850..800 hPa.
@@ -52,7 +52,7 @@ fn a_capped_profile_has_everything() {
     );
     // At LFC and EL the virtual temperatures meet.
     for pressure in [lfc, el] {
-        let parcel = parcel_path(ascent.start, Method::PseudoAdiabat, &[pressure])[0];
+        let parcel = parcel_path(ascent.start, Method::default(), &[pressure])[0];
         let (_, surroundings) = environment.virtual_at(pressure).unwrap();
         assert!(
             (parcel.virtual_temperature.k() - surroundings).abs() < 1e-3,
@@ -76,7 +76,7 @@ fn areas_are_what_a_plain_sum_says() {
     let pressures: Vec<Pressure> = (0..slices)
         .map(|i| Pressure::from_pa((bottom - (f64::from(i) + 0.5) * h).exp()))
         .collect();
-    for state in parcel_path(ascent.start, Method::PseudoAdiabat, &pressures) {
+    for state in parcel_path(ascent.start, Method::default(), &pressures) {
         let (_, surroundings) = environment.virtual_at(state.pressure).unwrap();
         let area = GAS_CONSTANT_DRY * (state.virtual_temperature.k() - surroundings) * h;
         if area > 0.0 && state.pressure < ascent.lcl.pressure {
@@ -251,7 +251,7 @@ fn a_start_may_lie_between_levels_and_levels_below_it_do_not_count() {
 fn starts_outside_the_profile() {
     let environment = environment(&CAPPED);
     assert_eq!(
-        lift(&environment, air(99.0, -60.0, -90.0), Method::PseudoAdiabat),
+        lift(&environment, air(99.0, -60.0, -90.0), Method::default()),
         None
     );
     // From the top level itself there is nowhere to go.
@@ -282,13 +282,11 @@ fn numbers_that_are_none_are_refused() {
             },
         ] {
             assert_eq!(
-                lift(&environment, start, Method::PseudoAdiabat),
+                lift(&environment, start, Method::default()),
                 None,
                 "{start:?}"
             );
-            assert!(
-                parcel_path(start, Method::PseudoAdiabat, &[Pressure::from_hpa(500.0)]).is_empty()
-            );
+            assert!(parcel_path(start, Method::default(), &[Pressure::from_hpa(500.0)]).is_empty());
         }
         assert!(environment.at(Pressure::from_pa(bad)).is_none());
         assert!(
@@ -303,18 +301,18 @@ fn numbers_that_are_none_are_refused() {
         pressure: Pressure::from_pa(1e-310),
         ..environment.bottom()
     };
-    assert_eq!(lift(&environment, start, Method::PseudoAdiabat), None);
+    assert_eq!(lift(&environment, start, Method::default()), None);
     assert!(
         parcel_path(
             environment.bottom(),
-            Method::PseudoAdiabat,
+            Method::default(),
             &[Pressure::from_pa(1e-310)]
         )
         .is_empty()
     );
     // Vapour fills more than half of the pressure: not air.
     assert_eq!(
-        lift(&environment, air(1000.0, 90.0, 90.0), Method::PseudoAdiabat),
+        lift(&environment, air(1000.0, 90.0, 90.0), Method::default()),
         None
     );
 }
@@ -492,7 +490,7 @@ fn the_most_unstable_level_is_the_one_of_largest_theta_e() {
 fn a_lens_inside_one_segment_is_found() {
     let start = air(1000.0, 27.0, 20.0);
     let state = |p: f64| {
-        parcel_path(start, Method::PseudoAdiabat, &[Pressure::from_hpa(p)])[0]
+        parcel_path(start, Method::default(), &[Pressure::from_hpa(p)])[0]
             .virtual_temperature
             .c()
     };
@@ -507,7 +505,7 @@ fn a_lens_inside_one_segment_is_found() {
     ]);
     let (fast, exact) = (
         lifted(&environment, start),
-        lift_exactly(&environment, start, Method::PseudoAdiabat).unwrap(),
+        lift_exactly(&environment, start, Method::default()).unwrap(),
     );
     assert_eq!(fast.buoyant.len(), 1, "{fast:?}");
     assert!(fast.lfc.unwrap().hpa() < 700.0 && fast.el.unwrap().hpa() > 500.0);
@@ -526,7 +524,7 @@ fn a_neutral_profile_has_no_cape() {
     let pressures: Vec<Pressure> = (0..=180)
         .map(|i| Pressure::from_hpa(1000.0 - 5.0 * f64::from(i)))
         .collect();
-    let path = parcel_path(start, Method::PseudoAdiabat, &pressures);
+    let path = parcel_path(start, Method::default(), &pressures);
     let column: Vec<f64> = path.iter().map(|state| state.temperature.k()).collect();
     let p: Vec<f64> = pressures.iter().map(|p| p.pa()).collect();
     let td: Vec<Option<f64>> = column.iter().map(|t| Some(*t)).collect();
@@ -540,7 +538,7 @@ fn a_neutral_profile_has_no_cape() {
 fn the_path_for_drawing_keeps_the_order_asked_for() {
     let start = air(950.0, 25.0, 18.0);
     let asked = [300.0, 960.0, 500.0, 950.0, 900.0].map(Pressure::from_hpa);
-    let path = parcel_path(start, Method::PseudoAdiabat, &asked);
+    let path = parcel_path(start, Method::default(), &asked);
     let got: Vec<f64> = path.iter().map(|state| state.pressure.hpa()).collect();
     assert_eq!(got, [300.0, 500.0, 950.0, 900.0]);
     assert_eq!(path[2].temperature, start.temperature);

@@ -54,9 +54,7 @@ fn environment(levels: &[Level], surface_dewpoint: Temperature) -> Environment {
 }
 
 fn cape(environment: &Environment, start: Air) -> f64 {
-    lift(environment, start, Method::PseudoAdiabat)
-        .unwrap()
-        .cape
+    lift(environment, start, Method::default()).unwrap().cape
 }
 
 /// Change of the surface parcel's CAPE from `low` degF of dew point to 10 degF more.

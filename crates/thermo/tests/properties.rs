@@ -123,7 +123,7 @@ fn with_levels_inserted(columns: &Columns, shares: &[f64]) -> Columns {
 }
 
 fn surface(environment: &Environment) -> Ascent {
-    lift(environment, environment.bottom(), Method::PseudoAdiabat).unwrap()
+    lift(environment, environment.bottom(), Method::default()).unwrap()
 }
 
 /// Agreement to `relative` of the larger number or of 1.
@@ -198,7 +198,7 @@ proptest! {
     fn finite_profiles_give_finite_numbers(columns in columns(1..60)) {
         let environment = columns.environment();
         for start in all_starts(&environment) {
-            check_sane(&environment, &lift(&environment, start, Method::PseudoAdiabat).unwrap());
+            check_sane(&environment, &lift(&environment, start, Method::default()).unwrap());
         }
         let held = environment.with_humidity_held();
         prop_assert_eq!(held.humidity().dry, 0);
@@ -210,9 +210,9 @@ proptest! {
     fn any_start_gives_an_ascent_or_none(columns in columns(1..30), p in prop_oneof![1.0..1e3_f64, 1e3..1200e2_f64], t in 60.0..400.0_f64, td in 30.0..400.0_f64) {
         let environment = columns.environment();
         let start = Air { pressure: Pressure::from_pa(p), temperature: Temperature::from_k(t), dewpoint: Temperature::from_k(td) };
-        if let Some(ascent) = lift(&environment, start, Method::PseudoAdiabat) {
+        if let Some(ascent) = lift(&environment, start, Method::default()) {
             check_sane(&environment, &ascent);
-            for state in parcel_path(start, Method::PseudoAdiabat, &columns.p.iter().map(|p| Pressure::from_pa(*p)).collect::<Vec<_>>()) {
+            for state in parcel_path(start, Method::default(), &columns.p.iter().map(|p| Pressure::from_pa(*p)).collect::<Vec<_>>()) {
                 prop_assert!(state.temperature.k().is_finite() && state.virtual_temperature.k() >= state.temperature.k());
             }
         }
@@ -223,7 +223,7 @@ proptest! {
     fn interpolated_levels_change_nothing(columns in unstable(), shares in prop::collection::vec(0.0..1.0_f64, 1..80)) {
         let (coarse, fine) = (columns.environment(), with_levels_inserted(&columns, &shares).environment());
         for (a, b) in all_starts(&coarse).into_iter().zip(all_starts(&fine)).take(2) {
-            let (a, b) = (lift(&coarse, a, Method::PseudoAdiabat).unwrap(), lift(&fine, b, Method::PseudoAdiabat).unwrap());
+            let (a, b) = (lift(&coarse, a, Method::default()).unwrap(), lift(&fine, b, Method::default()).unwrap());
             prop_assert!(close(a.cape, b.cape, 1e-6), "CAPE {} and {}", a.cape, b.cape);
             prop_assert_eq!(a.lfc.is_some(), b.lfc.is_some());
             if a.cape > 1e-3 {
@@ -263,9 +263,9 @@ proptest! {
         let moist = bottom.temperature.k() - 0.5 * drier;
         let start = |td: f64| Air { dewpoint: Temperature::from_k(td), ..bottom };
         let (low, high) = (start(moist - step), start(moist));
-        let cape = |start| lift(&environment, start, Method::PseudoAdiabat).unwrap().cape;
+        let cape = |start| lift(&environment, start, Method::default()).unwrap().cape;
         prop_assert!(cape(high) >= cape(low) - 0.02, "{} then {}", cape(low), cape(high));
-        let exactly = |start| lift_exactly(&environment, start, Method::PseudoAdiabat).unwrap().cape;
+        let exactly = |start| lift_exactly(&environment, start, Method::default()).unwrap().cape;
         prop_assert!(exactly(high) >= exactly(low) - 1e-3, "{} then {}", exactly(low), exactly(high));
     }
 
@@ -274,8 +274,8 @@ proptest! {
     fn the_fast_path_agrees_with_the_exact_one(columns in unstable()) {
         let environment = columns.environment();
         for start in all_starts(&environment) {
-            let fast = lift(&environment, start, Method::PseudoAdiabat).unwrap();
-            let exact = lift_exactly(&environment, start, Method::PseudoAdiabat).unwrap();
+            let fast = lift(&environment, start, Method::default()).unwrap();
+            let exact = lift_exactly(&environment, start, Method::default()).unwrap();
             prop_assert!((fast.cape - exact.cape).abs() <= 1e-4 * exact.cape.max(100.0), "{} and {}", fast.cape, exact.cape);
             if exact.buoyant.len() == 1 && exact.cape > 1.0 {
                 let (a, b) = (fast.cin.unwrap(), exact.cin.unwrap());

@@ -165,8 +165,8 @@ fn ascents_of_the_weisman_klemp_profile() {
             let dewpoints: Vec<Option<f64>> = column(3).into_iter().map(Some).collect();
             let environment = Environment::new(&column(1), &column(2), &dewpoints).unwrap();
             for ascent in [
-                lift(&environment, environment.bottom(), Method::PseudoAdiabat).unwrap(),
-                lift_exactly(&environment, environment.bottom(), Method::PseudoAdiabat).unwrap(),
+                lift(&environment, environment.bottom(), Method::default()).unwrap(),
+                lift_exactly(&environment, environment.bottom(), Method::default()).unwrap(),
             ] {
                 areas.add(ascent.cape / cape - 1.0);
                 if every == 1 {

@@ -6,9 +6,9 @@ use crate::saturation::{E0, exponent_and_slope};
 use crate::{EPSILON, Environment, KAPPA, REFERENCE_PRESSURE};
 
 /// Widest piece in ln p.
-const WIDEST: f64 = 0.05;
-/// Widest piece in the logarithm of the vapour pressure: a cubic is then within 1e-4 K of theta-e.
-const WIDEST_VAPOUR: f64 = 0.15;
+const WIDEST: f64 = 0.1;
+/// Error of a piece's mean that is allowed, as a share of theta-e.
+const PIECE_ERROR: f64 = 1e-8;
 
 /// Eq. 39 theta-e (K) and its slope with pressure (K/Pa) of the interpolated air at z = -ln p.
 #[inline]
@@ -64,6 +64,8 @@ pub(super) struct Running<'e> {
     next: usize,
     pieces: usize,
     piece: Option<Piece>,
+    /// theta-e and its slope at the head of the last piece.
+    head: (f64, f64),
     /// Integral up to the foot of the piece.
     before: f64,
 }
@@ -76,6 +78,7 @@ impl<'e> Running<'e> {
             next: 0,
             pieces: 0,
             piece: None,
+            head: (0.0, 0.0),
             before: 0.0,
         }
     }
@@ -118,9 +121,15 @@ impl<'e> Running<'e> {
         let (za, zb) = (levels.z[i], levels.z[i + 1]);
         if self.pieces == 0 {
             let exponent = |z: f64| exponent_and_slope(td.0 + td.1 * (z - za)).0;
-            let change = (exponent(zb) - exponent(za)).abs();
+            let (foot, head) = (exponent(za), exponent(zb));
+            // theta-e is like exp(l) where l = (latent heat over cp T) w is like exp(x), x = ln(e/p). The
+            // mean of its cubic over a step of x is off by 1/720 of its fourth derivative, l (1 + 7 l + ...), times step^4.
+            let w = EPSILON * E0 * exp(foot.max(head) + zb).min(0.5);
+            let l = 11.0 * w;
+            let bend = l * (1.0 + l * (7.0 + l * (6.0 + l)));
+            let widest = (720.0 * PIECE_ERROR / bend).sqrt().sqrt();
             self.pieces = ((zb - za) / WIDEST)
-                .max(change / WIDEST_VAPOUR)
+                .max(((head - foot).abs() + (zb - za)) / widest)
                 .ceil()
                 .clamp(1.0, 200.0) as usize;
             self.next = 0;
@@ -137,9 +146,14 @@ impl<'e> Running<'e> {
             }
         };
         let (foot, head) = (end(self.next), end(self.next + 1));
+        let (v0, s0) = if self.next == 0 {
+            theta_e_and_slope(&segment, td, foot.0, foot.1)
+        } else {
+            self.head
+        };
+        self.head = theta_e_and_slope(&segment, td, head.0, head.1);
+        let (v1, s1) = self.head;
         self.next += 1;
-        let (v0, s0) = theta_e_and_slope(&segment, td, foot.0, foot.1);
-        let (v1, s1) = theta_e_and_slope(&segment, td, head.0, head.1);
         let h = head.1 - foot.1;
         let (m0, m1, rise) = (s0 * h, s1 * h, v1 - v0);
         Some(Piece {

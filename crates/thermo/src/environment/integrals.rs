@@ -1,7 +1,6 @@
 //! Integrals of moisture over pressure, along the interpolated profile.
 
 use super::{Environment, coordinate};
-use crate::column::Segment;
 use crate::elementary::exp;
 use crate::numeric::{gauss4, hermite_integral};
 use crate::saturation::{E0, exponent_and_slope};
@@ -10,60 +9,90 @@ use crate::{EPSILON, GAS_CONSTANT_DRY, GRAVITY, Pressure};
 /// Change of ln of the integrand that one Gauss rule takes: its error is then below 1e-11.
 const GAUSS_CHANGE: f64 = 0.7;
 
-/// A quantity of the air in a segment: its value times p, that product's slope dz, and its change of logarithm.
-trait Moist {
+/// A quantity of moist air at one point, with what its slope needs.
+trait Moist: Copy {
     /// Largest error of a step of the end-corrected trapezium, in units of the quantity; wider steps take the Gauss rule.
     const STEP_ERROR: f64;
-    /// Value times p, and d(value p)/dz, at z.
-    fn at(segment: &Segment, td: (f64, f64), z: f64, p: f64) -> (f64, f64);
-    /// How far the terms of its logarithm move between two heights, in size.
-    fn change(segment: &Segment, td: (f64, f64), a: f64, b: f64) -> f64;
+    /// At a pressure (Pa) with this temperature and dew point (K).
+    fn at(p: f64, t: f64, td: f64) -> Self;
+    fn value(&self) -> f64;
+    /// d value / dz where T and Td have these slopes.
+    fn slope(&self, t_slope: f64, td_slope: f64) -> f64;
+    /// How far the terms of its logarithm that are not ln p move to another point, in size.
+    fn change(&self, other: &Self) -> f64;
 }
 
-/// Mixing ratio.
-struct MixingRatio;
+#[derive(Clone, Copy)]
+struct MixingRatio {
+    exponent: f64,
+    per_kelvin: f64,
+    w: f64,
+}
 
-/// Relative humidity over water.
-struct RelativeHumidity;
+/// Over water.
+#[derive(Clone, Copy)]
+struct RelativeHumidity {
+    dew: (f64, f64),
+    dry: (f64, f64),
+    value: f64,
+}
 
 impl Moist for MixingRatio {
-    const STEP_ERROR: f64 = 1e-11;
+    const STEP_ERROR: f64 = 3e-10;
 
     #[inline(always)]
-    fn at(segment: &Segment, (td, td_slope): (f64, f64), z: f64, p: f64) -> (f64, f64) {
-        let (exponent, per_kelvin) = exponent_and_slope(td + td_slope * (z - segment.z));
+    fn at(p: f64, _t: f64, td: f64) -> Self {
+        let (exponent, per_kelvin) = exponent_and_slope(td);
         let e = (E0 * exp(exponent)).min(0.5 * p);
-        let w = EPSILON * e / (p - e);
-        let slope = w * (1.0 + w / EPSILON) * (per_kelvin * td_slope + 1.0);
-        (w * p, p * (slope - w))
+        Self {
+            exponent,
+            per_kelvin,
+            w: EPSILON * e / (p - e),
+        }
     }
 
-    #[inline]
-    fn change(segment: &Segment, (td, td_slope): (f64, f64), a: f64, b: f64) -> f64 {
-        let exponent = |z: f64| exponent_and_slope(td + td_slope * (z - segment.z)).0;
-        (exponent(b) - exponent(a)).abs() + (b - a)
+    #[inline(always)]
+    fn value(&self) -> f64 {
+        self.w
+    }
+
+    #[inline(always)]
+    fn slope(&self, _t_slope: f64, td_slope: f64) -> f64 {
+        self.w * (1.0 + self.w * (1.0 / EPSILON)) * (self.per_kelvin * td_slope + 1.0)
+    }
+
+    #[inline(always)]
+    fn change(&self, other: &Self) -> f64 {
+        (other.exponent - self.exponent).abs()
     }
 }
 
 impl Moist for RelativeHumidity {
-    const STEP_ERROR: f64 = 1e-9;
+    const STEP_ERROR: f64 = 3e-9;
 
     #[inline(always)]
-    fn at(segment: &Segment, (td, td_slope): (f64, f64), z: f64, p: f64) -> (f64, f64) {
-        let t = segment.temperature(z);
-        let (dew, per_dew) = exponent_and_slope((td + td_slope * (z - segment.z)).min(t));
-        let (dry, per_dry) = exponent_and_slope(t);
-        let value = p * exp(dew - dry);
-        (
-            value,
-            value * (per_dew * td_slope - per_dry * segment.t_slope - 1.0),
-        )
+    fn at(_p: f64, t: f64, td: f64) -> Self {
+        let (dew, dry) = (exponent_and_slope(td.min(t)), exponent_and_slope(t));
+        Self {
+            dew,
+            dry,
+            value: exp(dew.0 - dry.0),
+        }
     }
 
-    #[inline]
-    fn change(segment: &Segment, td: (f64, f64), a: f64, b: f64) -> f64 {
-        let exponent = |z: f64| exponent_and_slope(segment.temperature(z)).0;
-        (exponent(b) - exponent(a)).abs() + MixingRatio::change(segment, td, a, b)
+    #[inline(always)]
+    fn value(&self) -> f64 {
+        self.value
+    }
+
+    #[inline(always)]
+    fn slope(&self, t_slope: f64, td_slope: f64) -> f64 {
+        self.value * (self.dew.1 * td_slope - self.dry.1 * t_slope)
+    }
+
+    #[inline(always)]
+    fn change(&self, other: &Self) -> f64 {
+        (other.dew.0 - self.dew.0).abs() + (other.dry.0 - self.dry.0).abs()
     }
 }
 
@@ -115,34 +144,52 @@ impl Environment {
         let levels = self.levels();
         let first = self.z.partition_point(|&z| z <= bottom).saturating_sub(1);
         let mut sum = 0.0;
+        // The head of a segment is the foot of the next.
+        let mut shared: Option<(f64, M)> = None;
         for i in first..self.humid - 1 {
             let (a, b) = (self.z[i].max(bottom), self.z[i + 1].min(top));
             if b <= a {
                 break;
             }
             let segment = levels.segment(i);
-            let Some(td) = segment.td else { break };
-            let pressure = |z: f64, level: usize| {
-                if z == self.z[level] {
-                    self.p[level]
-                } else {
-                    exp(-z)
-                }
+            let Some((td, td_slope)) = segment.td else {
+                break;
             };
-            let change = M::change(&segment, td, a, b);
-            let foot = M::at(&segment, td, a, pressure(a, i));
-            let head = M::at(&segment, td, b, pressure(b, i + 1));
-            let largest = foot.0.max(head.0);
+            let point =
+                |z: f64, p: f64| M::at(p, segment.temperature(z), td + td_slope * (z - segment.z));
+            let (pa, foot) = shared.unwrap_or_else(|| {
+                let p = exp(-a);
+                (p, point(a, p))
+            });
+            let pb = if b == self.z[i + 1] {
+                self.p[i + 1]
+            } else {
+                exp(-b)
+            };
+            let head = point(b, pb);
+            shared = Some((pb, head));
+            let change = foot.change(&head) + (b - a);
             let square = change * change;
-            sum += if largest * square * square <= 720.0 * M::STEP_ERROR * self.p[i] {
-                hermite_integral(b - a, foot, head)
+            let largest = foot.value().max(head.value());
+            sum += if largest * square * square <= 720.0 * M::STEP_ERROR {
+                let end = |p: f64, point: &M| {
+                    let value = point.value();
+                    (
+                        p * value,
+                        p * (point.slope(segment.t_slope, td_slope) - value),
+                    )
+                };
+                hermite_integral(b - a, end(pa, &foot), end(pb, &head))
             } else {
                 let pieces = (change / GAUSS_CHANGE).ceil().clamp(1.0, 200.0);
                 let h = (b - a) / pieces;
                 (0..pieces as usize)
                     .map(|k| {
                         let a = a + k as f64 * h;
-                        gauss4(a, a + h, |z| M::at(&segment, td, z, exp(-z)).0)
+                        gauss4(a, a + h, |z| {
+                            let p = exp(-z);
+                            p * point(z, p).value()
+                        })
                     })
                     .sum()
             };

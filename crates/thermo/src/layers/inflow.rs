@@ -1,6 +1,7 @@
 //! The effective inflow layer.
 
 use super::LevelAt;
+use super::judge::Judge;
 use crate::{Air, Environment, Method, Pressure, lift};
 
 /// Least CAPE of air that feeds a storm, J/kg.
@@ -8,7 +9,7 @@ pub(super) const LEAST_CAPE: f64 = 100.0;
 /// Most negative CIN of air that feeds a storm, J/kg.
 pub(super) const LEAST_CIN: f64 = -250.0;
 /// Spacing of the starts, Pa.
-pub(super) const SPACING: f64 = 500.0;
+const SPACING: f64 = 500.0;
 /// Rounding of a pressure, Pa.
 const ROUNDING: f64 = 1e-6;
 
@@ -34,31 +35,38 @@ pub struct InflowLayer {
     pub top: LevelAt,
 }
 
-/// Whether a start qualifies, by lifting it.
-pub(super) fn qualifies(environment: &Environment, start: Air) -> bool {
-    lift(environment, start, Method::default()).is_some_and(|ascent| {
-        ascent.cape >= LEAST_CAPE && ascent.cin.is_some_and(|cin| cin >= LEAST_CIN)
-    })
+/// Whether a start qualifies, by lifting it; and whether it certainly fails on CAPE.
+pub(super) fn qualifies_lifted(environment: &Environment, start: Air) -> (bool, bool) {
+    /// More than the error of an ascent's CAPE, J/kg.
+    const CERTAIN: f64 = 0.1;
+    let Some(ascent) = lift(environment, start, Method::default()) else {
+        return (false, false);
+    };
+    let enough = ascent.cape >= LEAST_CAPE;
+    (
+        enough && ascent.cin.is_some_and(|cin| cin >= LEAST_CIN),
+        ascent.cape < LEAST_CAPE - CERTAIN,
+    )
 }
 
 pub(super) fn inflow_layer(environment: &Environment) -> Option<InflowLayer> {
-    let mut judge = |start: Air| qualifies(environment, start);
-    let start = |k: usize| {
-        let p = environment.bottom().pressure.pa() - k as f64 * SPACING;
-        environment.at(Pressure::from_pa(p))
-    };
+    let mut judge = Judge::new(environment);
     let mut first = 0;
     loop {
-        if judge(start(first)?) {
+        let p = environment.bottom().pressure.pa() - first as f64 * SPACING;
+        if judge.is_over(p) {
+            return None;
+        }
+        if judge.qualifies(environment.at(Pressure::from_pa(p))?) {
             break;
         }
         first += 1;
     }
-    edges(environment, first, &mut judge)
+    edges(environment, first, &mut |start| judge.qualifies(start))
 }
 
 /// The layer that begins with the `first` of the 5 hPa starts, the lowest that qualifies.
-pub(super) fn edges(
+fn edges(
     environment: &Environment,
     first: usize,
     judge: &mut impl FnMut(Air) -> bool,

@@ -8,11 +8,14 @@ mod freezing;
 mod growth_zone;
 mod humidity;
 mod inflow;
+mod judge;
 mod lapse;
 mod mixed_layer;
 mod of_parcel;
 mod of_profile;
 mod theta_e;
+#[cfg(test)]
+mod timing;
 mod walk;
 
 pub use convective::*;

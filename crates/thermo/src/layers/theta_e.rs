@@ -10,40 +10,67 @@ const WIDEST: f64 = 0.1;
 /// Error of a piece's mean that is allowed, as a share of theta-e.
 const PIECE_ERROR: f64 = 1e-8;
 
-/// Eq. 39 theta-e (K) and its slope with pressure (K/Pa) of the interpolated air at z = -ln p.
-#[inline]
-pub(super) fn theta_e_and_slope(segment: &Segment, td: (f64, f64), z: f64, p: f64) -> (f64, f64) {
-    let (t, t_slope) = (segment.temperature(z), segment.t_slope);
-    let (td, td_slope) = ((td.0 + td.1 * (z - segment.z)).min(t), td.1);
-    let (exponent, per_kelvin) = exponent_and_slope(td);
-    let e = (E0 * exp(exponent)).min(0.5 * p);
-    let e_slope = e * per_kelvin * td_slope;
-    let per_dry = 1.0 / (p - e);
-    let w = EPSILON * e * per_dry;
-    let w_slope = w * (1.0 + w / EPSILON) * (per_kelvin * td_slope + 1.0);
-    let per_t = t_slope / t;
-    // Eq. 15, and its pole.
-    let (dry_term, t_lcl, t_lcl_slope) = if td <= 56.0 {
-        (ln(t / td), td, td_slope)
-    } else {
-        let over = 1.0 / (td - 56.0);
-        let log = ln(t / td);
-        let per = 1.0 / (over + log * (1.0 / 800.0));
-        let slope = per * per * (td_slope * over * over - (per_t - td_slope / td) * (1.0 / 800.0));
-        let t_lcl = per + 56.0;
-        (ln(t / t_lcl), t_lcl, slope)
-    };
-    let per_lcl = 1.0 / t_lcl;
-    let latent = 3036.0 * per_lcl - 1.78;
-    let value = t * exp(KAPPA * ln(REFERENCE_PRESSURE * per_dry)
-        + 0.28 * w * dry_term
-        + latent * w * (1.0 + 0.448 * w));
-    let log_slope = per_t
-        + KAPPA * (p + e_slope) * per_dry
-        + 0.28 * (w_slope * dry_term + w * (per_t - t_lcl_slope * per_lcl))
-        - 3036.0 * per_lcl * per_lcl * t_lcl_slope * w * (1.0 + 0.448 * w)
-        + latent * w_slope * (1.0 + 0.896 * w);
-    (value, -value * log_slope / p)
+/// Eq. 39 theta-e of one point of air, and how its logarithm changes: d ln theta-e = `per_t` dT + `per_td` dTd + `per_z` dz.
+#[derive(Debug, Clone, Copy, Default)]
+struct Point {
+    p: f64,
+    theta_e: f64,
+    per_t: f64,
+    per_td: f64,
+    per_z: f64,
+    /// Exponent of eq. 10 at the dew point.
+    exponent: f64,
+    w: f64,
+}
+
+impl Point {
+    #[inline]
+    fn new(p: f64, t: f64, td: f64) -> Self {
+        let td = td.min(t);
+        let (exponent, per_kelvin) = exponent_and_slope(td);
+        let e = (E0 * exp(exponent)).min(0.5 * p);
+        let per_dry = 1.0 / (p - e);
+        let w = EPSILON * e * per_dry;
+        let w_scale = w * p * per_dry;
+        let per_t = 1.0 / t;
+        // Eq. 15 and its derivatives, and its pole.
+        let (t_lcl, lcl_per_t, lcl_per_td, rise) = if td <= 56.0 {
+            (td, 0.0, 1.0, ln(t / td))
+        } else {
+            let (over, per_td) = (1.0 / (td - 56.0), 1.0 / td);
+            let above = 1.0 / (over + ln(t * per_td) * (1.0 / 800.0));
+            let square = above * above;
+            let t_lcl = above + 56.0;
+            (
+                t_lcl,
+                -square * per_t * (1.0 / 800.0),
+                square * (over * over + per_td * (1.0 / 800.0)),
+                ln(t / t_lcl),
+            )
+        };
+        let per_lcl = 1.0 / t_lcl;
+        let latent = 3036.0 * per_lcl - 1.78;
+        let amount = w * (1.0 + 0.448 * w);
+        let by_lcl = -per_lcl * (0.28 * w + 3036.0 * per_lcl * amount);
+        let by_w = 0.28 * rise + latent * (1.0 + 0.896 * w);
+        Self {
+            p,
+            theta_e: t * exp(KAPPA * ln(REFERENCE_PRESSURE * per_dry)
+                + 0.28 * w * rise
+                + latent * amount),
+            per_t: per_t * (1.0 + 0.28 * w) + by_lcl * lcl_per_t,
+            per_td: per_kelvin * (KAPPA * e * per_dry + by_w * w_scale) + by_lcl * lcl_per_td,
+            per_z: KAPPA * p * per_dry + by_w * w_scale,
+            exponent,
+            w,
+        }
+    }
+
+    /// d theta-e / dp (K/Pa) where T and Td have these slopes with z.
+    #[inline]
+    fn slope(&self, t_slope: f64, td_slope: f64) -> f64 {
+        -self.theta_e / self.p * (self.per_t * t_slope + self.per_td * td_slope + self.per_z)
+    }
 }
 
 /// One piece: theta-e as a cubic of pressure.
@@ -59,26 +86,31 @@ struct Piece {
 /// Integral of theta-e over p from the lowest level, for falling pressures.
 pub(super) struct Running<'e> {
     environment: &'e Environment,
+    /// The level at the foot of the segment worked on, and the air at its head.
     level: usize,
-    /// Pieces of the segment above `level` not yet passed: the next one's number, and how many.
+    segment: Option<(Segment, Point)>,
+    /// Pieces of that segment: how many are passed or under way, and how many there are.
     next: usize,
     pieces: usize,
     piece: Option<Piece>,
-    /// theta-e and its slope at the head of the last piece.
-    head: (f64, f64),
+    /// The air at the head of the last piece.
+    head: Point,
     /// Integral up to the foot of the piece.
     before: f64,
 }
 
 impl<'e> Running<'e> {
     pub fn new(environment: &'e Environment) -> Self {
+        let bottom = environment.bottom();
+        let [t, td] = [bottom.temperature, bottom.dewpoint].map(|value| value.k());
         Self {
             environment,
             level: 0,
+            segment: None,
             next: 0,
             pieces: 0,
             piece: None,
-            head: (0.0, 0.0),
+            head: Point::new(bottom.pressure.pa(), t, td),
             before: 0.0,
         }
     }
@@ -87,80 +119,89 @@ impl<'e> Running<'e> {
     /// where the humidity is not known.
     pub fn down_to(&mut self, p: f64) -> Option<f64> {
         loop {
-            let piece = match self.piece {
-                Some(piece) if p >= piece.head => piece,
-                Some(piece) => {
-                    self.before += integral(&piece, 1.0);
-                    self.piece = Some(self.advance()?);
-                    continue;
+            match self.piece {
+                Some(piece) if p >= piece.head => {
+                    let share = ((piece.foot - p) / (piece.foot - piece.head)).clamp(0.0, 1.0);
+                    return Some(self.before + integral(&piece, share));
                 }
-                None => {
-                    self.piece = Some(self.advance()?);
-                    continue;
-                }
-            };
-            let share = ((piece.foot - p) / (piece.foot - piece.head)).clamp(0.0, 1.0);
-            return Some(self.before + integral(&piece, share));
+                Some(piece) => self.before += integral(&piece, 1.0),
+                None => {}
+            }
+            self.piece = Some(self.advance()?);
         }
     }
 
     /// The next piece up.
     fn advance(&mut self) -> Option<Piece> {
-        let levels = self.environment.levels();
-        let pressures = self.environment.pressure();
-        if self.pieces > 0 && self.next == self.pieces {
-            self.level += 1;
-            self.pieces = 0;
-        }
-        let i = self.level;
-        if i + 1 >= self.environment.humid_levels() {
-            return None;
-        }
-        let segment = levels.segment(i);
-        let td = segment.td?;
-        let (za, zb) = (levels.z[i], levels.z[i + 1]);
-        if self.pieces == 0 {
-            let exponent = |z: f64| exponent_and_slope(td.0 + td.1 * (z - za)).0;
-            let (foot, head) = (exponent(za), exponent(zb));
-            // theta-e is like exp(l) where l = (latent heat over cp T) w is like exp(x), x = ln(e/p). The
-            // mean of its cubic over a step of x is off by 1/720 of its fourth derivative, l (1 + 7 l + ...), times step^4.
-            let w = EPSILON * E0 * exp(foot.max(head) + zb).min(0.5);
-            let l = 11.0 * w;
-            let bend = l * (1.0 + l * (7.0 + l * (6.0 + l)));
-            let widest = (720.0 * PIECE_ERROR / bend).sqrt().sqrt();
-            self.pieces = ((zb - za) / WIDEST)
-                .max(((head - foot).abs() + (zb - za)) / widest)
-                .ceil()
-                .clamp(1.0, 200.0) as usize;
-            self.next = 0;
-        }
-        let step = (zb - za) / self.pieces as f64;
-        let end = |k: usize| {
-            if k == 0 {
-                (za, pressures[i])
-            } else if k == self.pieces {
-                (zb, pressures[i + 1])
-            } else {
-                let z = za + k as f64 * step;
-                (z, exp(-z))
+        let (segment, head) = match self.segment {
+            Some(segment) if self.next < self.pieces => segment,
+            last => {
+                if last.is_some() {
+                    self.level += 1;
+                }
+                let segment = self.enter()?;
+                self.segment = Some(segment);
+                segment
             }
         };
-        let (foot, head) = (end(self.next), end(self.next + 1));
-        let (v0, s0) = if self.next == 0 {
-            theta_e_and_slope(&segment, td, foot.0, foot.1)
-        } else {
-            self.head
-        };
-        self.head = theta_e_and_slope(&segment, td, head.0, head.1);
-        let (v1, s1) = self.head;
+        let (td, td_slope) = segment.td?;
         self.next += 1;
-        let h = head.1 - foot.1;
-        let (m0, m1, rise) = (s0 * h, s1 * h, v1 - v0);
+        let foot = self.head;
+        let head = if self.next == self.pieces {
+            head
+        } else {
+            let end = self.environment.levels().z.get(self.level + 1)?;
+            let z = segment.z + (end - segment.z) * self.next as f64 / self.pieces as f64;
+            Point::new(
+                exp(-z),
+                segment.temperature(z),
+                td + td_slope * (z - segment.z),
+            )
+        };
+        self.head = head;
+        let h = head.p - foot.p;
+        let [m0, m1] = [foot, head].map(|point| h * point.slope(segment.t_slope, td_slope));
+        let rise = head.theta_e - foot.theta_e;
         Some(Piece {
-            foot: foot.1,
-            head: head.1,
-            c: [v0, m0, 3.0 * rise - 2.0 * m0 - m1, m0 + m1 - 2.0 * rise],
+            foot: foot.p,
+            head: head.p,
+            c: [
+                foot.theta_e,
+                m0,
+                3.0 * rise - 2.0 * m0 - m1,
+                m0 + m1 - 2.0 * rise,
+            ],
         })
+    }
+
+    /// The segment above the level, with the air at its head; how many pieces it needs.
+    fn enter(&mut self) -> Option<(Segment, Point)> {
+        let levels = self.environment.levels();
+        let above = self.level + 1;
+        if above >= self.environment.humid_levels() {
+            return None;
+        }
+        let segment = levels.segment(self.level);
+        let p = *self.environment.pressure().get(above)?;
+        let head = Point::new(p, levels.t[above], levels.td[above]?);
+        let depth = levels.z[above] - segment.z;
+        let change = (head.exponent - self.head.exponent).abs() + depth;
+        // theta-e is like exp(l) where l = (latent heat over cp T) w is like exp(x), x = ln(e/p). The mean of its cubic over
+        // a step of x is off by 1/720 of its fourth derivative, l (1 + 7 l + ...), times step^4.
+        let l = 11.0 * head.w.max(self.head.w);
+        let bend = l * (1.0 + l * (7.0 + l * (6.0 + l)));
+        let square = change * change;
+        self.pieces = if depth <= WIDEST && bend * square * square <= 720.0 * PIECE_ERROR {
+            1
+        } else {
+            let widest = (720.0 * PIECE_ERROR / bend).sqrt().sqrt();
+            (depth / WIDEST)
+                .max(change / widest)
+                .ceil()
+                .clamp(1.0, 200.0) as usize
+        };
+        self.next = 0;
+        Some((segment, head))
     }
 }
 
@@ -199,10 +240,12 @@ mod tests {
             for share in [0.1, 0.5, 0.9] {
                 let z = levels.z[i] + share * (levels.z[i + 1] - levels.z[i]);
                 let p = (-z).exp();
-                let (value, slope) = theta_e_and_slope(&segment, segment.td.unwrap(), z, p);
+                let (td, td_slope) = segment.td.unwrap();
+                let point = Point::new(p, segment.temperature(z), td + td_slope * (z - segment.z));
                 let exact = |p: f64| environment.at(Pressure::from_pa(p)).unwrap().theta_e().k();
-                assert!((value - exact(p)).abs() < 1e-9, "{i} {share}");
+                assert!((point.theta_e - exact(p)).abs() < 1e-9, "{i} {share}");
                 let difference = (exact(p + 1.0) - exact(p - 1.0)) / 2.0;
+                let slope = point.slope(segment.t_slope, td_slope);
                 assert!(
                     (slope / difference - 1.0).abs() < 1e-5,
                     "{slope} {difference}"

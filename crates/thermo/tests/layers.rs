@@ -102,7 +102,7 @@ fn a_summer_day_agrees_with_outside_computations() {
     assert_near("lifted index", found.lifted_index.unwrap(), -9.2586, 0.03);
     let convective = found.convective.unwrap();
     assert_near("CCL", convective.level.pressure.pa(), 80_284.483_5, 0.01);
-    assert_near("CCL height", convective.level.height, 1559.109_6, 1e-3);
+    assert_near("CCL height", convective.level.height, 1_559.109_6, 1e-3);
     assert_near(
         "convective temperature",
         convective.temperature.k(),

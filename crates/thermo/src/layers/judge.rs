@@ -19,45 +19,19 @@
 //! - **The top.** Virtual temperature of a parcel falls on its way, and is below that of its dew point from the LCL on. Where
 //!   that is below everything the environment has further up, nothing that starts there is ever buoyant.
 
-use super::inflow::{LEAST_CAPE, LEAST_CIN, SPACING, qualifies_lifted};
+use super::bounds::{Areas, MARGIN, Sums, Verdict};
+use super::grid::{Grid, end};
+use super::inflow::{LEAST_CIN, SPACING, qualifies_lifted};
 use crate::air::{moist_exponent, quick_ln_theta_e};
 use crate::elementary::{exp, ln};
 use crate::pseudoadiabat::{first_guess, latent_term, refine};
 use crate::saturation::{E0, dln_e_water, exponent, mixing_ratio, virtual_temperature};
 use crate::{Air, EPSILON, Environment, GAS_CONSTANT_DRY, KAPPA, REFERENCE_PRESSURE};
 
-/// Widest cell in ln p, for profiles of few levels and for those of more than [`FINE`] nodes, where finer cells cost next to
-/// nothing and an ascent much.
-const CELL: [f64; 2] = [0.08, 0.04];
-const FINE: usize = 1_000;
 /// Spacing of the lattice in ln theta-e.
 const LATTICE: f64 = 0.05;
-/// Largest departure (K) of a parcel's virtual temperature from its chord over a cell, over the square of the cell's width:
-/// found at most 3.5 for theta-e up to [`HOTTEST`].
-const BULGE: f64 = 5.0;
 /// ln of the largest theta-e (420 K) that is judged by bounds.
 const HOTTEST: f64 = 6.04;
-/// Largest departure (K) of the environment from the chord between two nodes of its column.
-const NODE_BULGE: f64 = crate::column::MOISTURE_BULGE;
-/// Bounds this close (J/kg) to a limit don't decide: errors of the cubics and of [`lift`](crate::lift()).
-const MARGIN: f64 = 2.0;
-
-/// The environment on the grid.
-#[derive(Debug, Default)]
-struct Grid {
-    bottom: f64,
-    width: f64,
-    /// Largest departure of a parcel from its chord, K.
-    bulge: f64,
-    /// Virtual temperature at the nodes, K: one more than cells.
-    node: Vec<f64>,
-    /// Of each cell, the integral of virtual temperature over z less what the four-point rule makes of the nodes.
-    bend: Vec<f64>,
-    /// Largest departure from the chord.
-    departure: Vec<f64>,
-    /// Least virtual temperature from the foot up.
-    least_above: Vec<f64>,
-}
 
 /// Saturated virtual temperature (K) of one theta-e at the nodes, from the bottom up to where nothing of up to the next
 /// theta-e of the lattice is buoyant, and its derivative with ln theta-e times the lattice's spacing.
@@ -84,15 +58,6 @@ pub(super) struct Judge<'e> {
     /// How many starts had to be lifted.
     #[cfg(test)]
     pub lifted: usize,
-}
-
-/// A verdict from bounds.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
-enum Verdict {
-    Qualifies,
-    FailsOnCape,
-    FailsOnCin,
-    Open,
 }
 
 /// What is needed of a start.
@@ -128,104 +93,6 @@ impl Start {
                 + KAPPA * ln(REFERENCE_PRESSURE / (p - e))
                 + 0.28 * w * rise
                 + latent_term(t_lcl, w),
-        }
-    }
-}
-
-/// Positive and negative area (both >= 0) of a straight line between two values over a width.
-#[inline]
-fn chord_areas(a: f64, b: f64, width: f64) -> (f64, f64) {
-    if a >= 0.0 && b >= 0.0 {
-        (0.5 * width * (a + b), 0.0)
-    } else if a <= 0.0 && b <= 0.0 {
-        (0.0, -0.5 * width * (a + b))
-    } else {
-        let per = 0.5 * width / (a - b).abs();
-        let (up, down) = (a.max(b), a.min(b));
-        (per * up * up, per * down * down)
-    }
-}
-
-/// Bounds of the positive and negative area under a chord that may be off by `departure`.
-#[derive(Debug, Clone, Copy, Default)]
-struct Areas {
-    positive: (f64, f64),
-    negative: (f64, f64),
-}
-
-impl Areas {
-    #[inline]
-    fn of_chord(a: f64, b: f64, width: f64, departure: f64) -> Self {
-        let (positive_high, negative_low) = chord_areas(a + departure, b + departure, width);
-        let (positive_low, negative_high) = chord_areas(a - departure, b - departure, width);
-        Self {
-            positive: (positive_low, positive_high),
-            negative: (negative_low, negative_high),
-        }
-    }
-}
-
-/// Sums on the way up.
-#[derive(Debug, Default)]
-struct Sums {
-    positive: (f64, f64),
-    negative: (f64, f64),
-    /// Least negative area up to the last cell that is certainly negative.
-    negative_sure: f64,
-    /// Area of the run of certainly positive cells now open, 0 when none is, and bounds of the negative area beneath it.
-    run: f64,
-    beneath: (f64, f64),
-    /// The run of most area, and the same of it.
-    largest: f64,
-    beneath_largest: (f64, f64),
-}
-
-impl Sums {
-    #[inline]
-    fn add_positive(&mut self, area: f64) {
-        if self.run == 0.0 {
-            self.beneath = (self.negative_sure, self.negative.1);
-        }
-        self.run += area;
-        self.positive.0 += area;
-        self.positive.1 += area;
-        if self.run > self.largest {
-            (self.largest, self.beneath_largest) = (self.run, self.beneath);
-        }
-    }
-
-    #[inline]
-    fn add_negative(&mut self, area: f64) {
-        self.run = 0.0;
-        self.negative.0 += area;
-        self.negative.1 += area;
-        self.negative_sure = self.negative.0;
-    }
-
-    #[inline]
-    fn add_uncertain(&mut self, areas: Areas) {
-        self.run = 0.0;
-        self.positive.0 += areas.positive.0;
-        self.positive.1 += areas.positive.1;
-        self.negative.0 += areas.negative.0;
-        self.negative.1 += areas.negative.1;
-    }
-
-    fn verdict(&self) -> Verdict {
-        let [low, high] = [self.positive.0, self.positive.1].map(|area| GAS_CONSTANT_DRY * area);
-        if high < LEAST_CAPE - MARGIN {
-            return Verdict::FailsOnCape;
-        }
-        let (run, beneath) = (GAS_CONSTANT_DRY * self.largest, self.beneath_largest);
-        if low < LEAST_CAPE + MARGIN || 2.0 * run < high + MARGIN {
-            return Verdict::Open;
-        }
-        if GAS_CONSTANT_DRY * beneath.1 < -LEAST_CIN - MARGIN {
-            Verdict::Qualifies
-        } else if GAS_CONSTANT_DRY * beneath.0 > -LEAST_CIN + MARGIN {
-            Verdict::FailsOnCin
-        } else {
-            Verdict::Open
         }
     }
 }
@@ -359,11 +226,7 @@ impl<'e> Judge<'e> {
         if GAS_CONSTANT_DRY * sums.negative.0 > -LEAST_CIN + MARGIN {
             return Verdict::FailsOnCin;
         }
-        sums = Sums {
-            negative: sums.negative,
-            negative_sure: sums.negative.0,
-            ..Sums::default()
-        };
+        let mut sums = sums.above_lcl();
         self.add_saturated(start, &mut sums);
         sums.verdict()
     }
@@ -513,145 +376,10 @@ impl<'e> Judge<'e> {
     }
 }
 
-impl Grid {
-    fn new(environment: &Environment) -> Self {
-        let (bottom, top) = environment.z_range();
-        let column = environment.column();
-        let widest = CELL[usize::from(column.z.len() > FINE)];
-        let count = ((top - bottom) / widest).ceil().clamp(3.0, 1_000.0);
-        let width = (top - bottom) / count;
-        let count = count as usize;
-        let (z, tv, integral) = (&column.z, &column.tv, &column.tv_integral);
-        let last = z.len() - 1;
-        // Value and integral at a height in the step above node `i`, linear there.
-        let at = |i: usize, height: f64| {
-            let j = (i + 1).min(last);
-            let step = z[j] - z[i];
-            if step <= 0.0 {
-                return (tv[i], integral[i]);
-            }
-            let share = ((height - z[i]) / step).clamp(0.0, 1.0);
-            let value = tv[i] + share * (tv[j] - tv[i]);
-            // What the column has over the chord, in proportion: exact at nodes.
-            let over = integral[j] - integral[i] - 0.5 * step * (tv[i] + tv[j]);
-            let part = share * (step * 0.5 * (tv[i] + value) + over);
-            (value, integral[i] + part)
-        };
-        let mut grid = Self {
-            bottom,
-            width,
-            bulge: BULGE * width * width,
-            node: Vec::with_capacity(count + 1),
-            bend: Vec::with_capacity(count),
-            departure: Vec::with_capacity(count),
-            least_above: Vec::with_capacity(count),
-        };
-        // Column's node at or below the foot.
-        let mut node = 0;
-        let (mut foot, mut before) = at(0, bottom);
-        grid.node.push(foot);
-        for k in 0..count {
-            let (za, zb) = (bottom + k as f64 * width, bottom + (k + 1) as f64 * width);
-            let first = node;
-            while node < last && z[node + 1] <= zb {
-                node += 1;
-            }
-            let (head, after) = if k + 1 == count {
-                (tv[last], integral[last])
-            } else {
-                at(node, zb)
-            };
-            let slope = (head - foot) / width;
-            let (mut departure, mut least) = (0.0_f64, foot.min(head));
-            for (z, tv) in z[first..=node].iter().zip(&tv[first..=node]) {
-                if *z >= za {
-                    departure = departure.max((tv - foot - slope * (z - za)).abs());
-                    least = least.min(*tv);
-                }
-            }
-            grid.node.push(head);
-            grid.bend.push(after - before);
-            grid.departure.push(departure + NODE_BULGE);
-            grid.least_above.push(least);
-            (foot, before) = (head, after);
-        }
-        let mut least = f64::INFINITY;
-        for above in grid.least_above.iter_mut().rev() {
-            least = least.min(*above);
-            // Between nodes it may be a little less.
-            *above = least - NODE_BULGE;
-        }
-        for k in 0..count {
-            let before = if k == 0 {
-                grid.before()
-            } else {
-                grid.node[k - 1]
-            };
-            let after = grid.beyond(k + 2);
-            grid.bend[k] -=
-                width / 24.0 * (13.0 * (grid.node[k] + grid.node[k + 1]) - before - after);
-        }
-        grid
-    }
-
-    /// Virtual temperature at a node, or one past the last: there on the parabola through the last three.
-    fn beyond(&self, node: usize) -> f64 {
-        match (self.node.get(node), &self.node[..]) {
-            (Some(value), _) => *value,
-            (None, [.., a, b, c]) => 3.0 * (c - b) + a,
-            (None, _) => 0.0,
-        }
-    }
-
-    /// One before the first.
-    fn before(&self) -> f64 {
-        match &self.node[..] {
-            [a, b, c, ..] => 3.0 * (a - b) + c,
-            _ => 0.0,
-        }
-    }
-
-    /// The cell that holds z.
-    fn cell_at(&self, z: f64) -> usize {
-        (((z - self.bottom) / self.width) as usize).min(self.bend.len() - 1)
-    }
-
-    fn foot(&self, cell: usize) -> f64 {
-        self.bottom + cell as f64 * self.width
-    }
-
-    /// Values at foot and head, and the departure from the chord between them.
-    fn cell(&self, cell: usize) -> Option<((f64, f64), f64)> {
-        let departure = *self.departure.get(cell)?;
-        Some((
-            (*self.node.get(cell)?, *self.node.get(cell + 1)?),
-            departure,
-        ))
-    }
-}
-
-/// z above which no start is ever buoyant.
-fn end(environment: &Environment, grid: &Grid) -> f64 {
-    let (levels, p) = (environment.levels(), environment.pressure());
-    let humid = environment.humid_levels();
-    let mut end = levels.z[humid - 1];
-    for i in (0..humid - 1).rev() {
-        let least = grid.least_above[grid.cell_at(levels.z[i])];
-        let td = levels.td[i]
-            .unwrap_or(0.0)
-            .max(levels.td[i + 1].unwrap_or(0.0));
-        // Vapour that little adds less than 1 % to temperature.
-        let little = (td < 240.0 && p[i + 1] > 5_000.0) || (td < 220.0 && p[i + 1] > 500.0);
-        if !(little && td * 1.01 < least) {
-            break;
-        }
-        end = levels.z[i];
-    }
-    end
-}
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::layers::inflow::LEAST_CAPE;
     use crate::{Method, Pressure, Temperature, lift, temperature_on_pseudoadiabat};
 
     /// Levels of a warm day with a cap; the dew point of the lowest 150 hPa is the one in question.

@@ -6,7 +6,7 @@
 use crate::environment::coordinate;
 use crate::pseudoadiabat::refine;
 use crate::saturation::{e_water, mixing_ratio, virtual_temperature};
-use crate::{Air, EPSILON, Method, Process, Temperature, air};
+use crate::{Air, EPSILON, Method, Process, Temperature, adiabats, air};
 
 /// Spacing of the nodes in z.
 pub(crate) const SPACING: f64 = 0.1;
@@ -22,19 +22,20 @@ pub(crate) struct Cubic {
 }
 
 impl Cubic {
-    /// From nodes (value, slope) at `start`, `start + SPACING`, ... Fewer than two nodes give zero everywhere.
-    fn new(start: f64, nodes: &[(f64, f64)]) -> Self {
+    /// From the values and slopes of nodes at `start`, `start + SPACING`, ... Fewer than two nodes give zero everywhere.
+    pub fn new(start: f64, values: &[f64], slopes: &[f64]) -> Self {
         let mut integral = 0.0;
-        let pieces = nodes
-            .windows(2)
-            .filter_map(|pair| {
-                let [(v0, s0), (v1, s1)] = *pair else {
+        let ends = values.windows(2).zip(slopes.windows(2));
+        let pieces = ends
+            .filter_map(|(values, slopes)| {
+                let (&[v0, v1], &[s0, s1]) = (values, slopes) else {
                     return None;
                 };
                 let (m0, m1, rise) = (s0 * SPACING, s1 * SPACING, v1 - v0);
                 let c = [v0, m0, 3.0 * rise - 2.0 * m0 - m1, m0 + m1 - 2.0 * rise];
                 let piece = (c, integral);
-                integral += SPACING * (c[0] + c[1] / 2.0 + c[2] / 3.0 + c[3] / 4.0);
+                integral +=
+                    SPACING * (c[0] + c[1] * (1.0 / 2.0) + c[2] * (1.0 / 3.0) + c[3] * (1.0 / 4.0));
                 Some(piece)
             })
             .collect();
@@ -49,6 +50,22 @@ impl Cubic {
         (self.pieces.get(k).unwrap_or(NONE), share - k as f64)
     }
 
+    /// The polynomial that serves at z, the z its step starts from, and the z up to which it serves.
+    #[inline]
+    pub fn piece_at(&self, z: f64) -> Piece {
+        let share = (z - self.start) * (1.0 / SPACING);
+        let k = (share as usize).min(self.pieces.len().saturating_sub(1));
+        Piece {
+            coefficients: self.pieces.get(k).map_or([0.0; 4], |piece| piece.0),
+            foot: self.start + k as f64 * SPACING,
+            head: if k + 1 < self.pieces.len() {
+                self.start + (k + 1) as f64 * SPACING
+            } else {
+                f64::INFINITY
+            },
+        }
+    }
+
     /// Value at z.
     #[inline]
     pub fn value(&self, z: f64) -> f64 {
@@ -56,28 +73,34 @@ impl Cubic {
         c[0] + s * (c[1] + s * (c[2] + s * c[3]))
     }
 
-    /// The polynomial that serves at z, the z its step starts from, and the z up to which it serves.
-    pub fn piece_at(&self, z: f64) -> ([f64; 4], f64, f64) {
-        let k = (((z - self.start) * (1.0 / SPACING)) as usize)
-            .min(self.pieces.len().saturating_sub(1));
-        let foot = self.start + k as f64 * SPACING;
-        let head = if k + 1 < self.pieces.len() {
-            self.start + (k + 1) as f64 * SPACING
-        } else {
-            f64::INFINITY
-        };
-        (
-            self.pieces.get(k).map_or([0.0; 4], |piece| piece.0),
-            foot,
-            head,
-        )
-    }
-
     /// Integral from the first node to z.
     #[inline]
     pub fn integral(&self, z: f64) -> f64 {
         let ((c, before), s) = self.locate(z);
-        before + SPACING * s * (c[0] + s * (c[1] / 2.0 + s * (c[2] / 3.0 + s * c[3] / 4.0)))
+        before
+            + SPACING
+                * s
+                * (c[0]
+                    + s * (c[1] * (1.0 / 2.0) + s * (c[2] * (1.0 / 3.0) + s * c[3] * (1.0 / 4.0))))
+    }
+}
+
+/// One polynomial of a [`Cubic`].
+#[derive(Debug, Clone, Copy)]
+pub(crate) struct Piece {
+    coefficients: [f64; 4],
+    foot: f64,
+    /// Up to here it serves.
+    pub head: f64,
+}
+
+impl Piece {
+    /// Value at z.
+    #[inline(always)]
+    pub fn value(&self, z: f64) -> f64 {
+        let c = &self.coefficients;
+        let s = (z - self.foot) * (1.0 / SPACING);
+        (c[0] + s * c[1]) + s * s * (c[2] + s * c[3])
     }
 }
 
@@ -151,13 +174,18 @@ impl Parcel {
         let end = z_end.min(self.z_lcl);
         let count = steps(self.z_start, end);
         let per_kelvin = virtual_temperature(1.0, self.w);
-        let nodes: Vec<_> = (0..=count)
-            .map(|k| {
-                let tv = per_kelvin * self.dry_temperature(self.z_start + k as f64 * SPACING);
-                (tv, -self.exponent * tv)
+        // An exponential's nodes follow from one another; over so few steps rounding stays rounding.
+        let fall = (-self.exponent * SPACING).exp();
+        let mut tv = per_kelvin * self.start.temperature.k();
+        let values: Vec<f64> = (0..=count)
+            .map(|_| {
+                let here = tv;
+                tv *= fall;
+                here
             })
             .collect();
-        Cubic::new(self.z_start, &nodes)
+        let slopes: Vec<f64> = values.iter().map(|tv| -self.exponent * tv).collect();
+        Cubic::new(self.z_start, &values, &slopes)
     }
 
     /// Virtual temperature of the saturated ascent from the LCL to at least `z_end`.
@@ -169,9 +197,16 @@ impl Parcel {
         }
     }
 
+    /// From the common table, or else from nodes of its own.
     fn pseudoadiabat(&self, z_end: f64) -> Cubic {
+        adiabats::path(self.ln_theta_e, self.z_lcl, z_end)
+            .unwrap_or_else(|| self.own_pseudoadiabat(z_end))
+    }
+
+    fn own_pseudoadiabat(&self, z_end: f64) -> Cubic {
         let count = steps(self.z_lcl, z_end);
-        let mut nodes = Vec::with_capacity(count + 1);
+        let mut values = Vec::with_capacity(count + 1);
+        let mut tv_slopes = Vec::with_capacity(count + 1);
         let mut guess = self.lcl.temperature.k();
         // Slopes at the node and at the two below it.
         let mut slopes = [0.0; 3];
@@ -185,7 +220,8 @@ impl Parcel {
             let share = 1.0 / (1.0 + w);
             let slope = per_kelvin * state.slope
                 + t * (1.0 / EPSILON - 1.0) * share * share * state.w_slope;
-            nodes.push((per_kelvin * t, slope));
+            values.push(per_kelvin * t);
+            tv_slopes.push(slope);
             slopes = match k {
                 0 => [state.slope; 3],
                 1 => [state.slope, slopes[0], 2.0 * slopes[0] - state.slope],
@@ -194,7 +230,7 @@ impl Parcel {
             // Three-step Adams-Bashforth lands within a mK or so, so that one Newton step finishes.
             guess = t + SPACING / 12.0 * (23.0 * slopes[0] - 16.0 * slopes[1] + 5.0 * slopes[2]);
         }
-        Cubic::new(self.z_lcl, &nodes)
+        Cubic::new(self.z_lcl, &values, &tv_slopes)
     }
 }
 

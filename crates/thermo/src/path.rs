@@ -1,7 +1,7 @@
 //! A rising parcel's virtual temperature as a smooth function of z = -ln p.
 //!
-//! Nodes are solved exactly with their analytic slopes; a cubic Hermite polynomial runs between them. A new method
-//! of ascent supplies its own nodes and nothing else changes.
+//! Nodes come from a table that all parcels share ([`adiabats`]) or are solved for, with their analytic slopes; a cubic
+//! Hermite polynomial runs between them. A new process supplies its own nodes and nothing else changes.
 
 use crate::environment::coordinate;
 use crate::pseudoadiabat::refine;
@@ -25,20 +25,24 @@ impl Cubic {
     /// From the values and slopes of nodes at `start`, `start + SPACING`, ... Fewer than two nodes give zero everywhere.
     pub fn new(start: f64, values: &[f64], slopes: &[f64]) -> Self {
         let mut integral = 0.0;
-        let ends = values.windows(2).zip(slopes.windows(2));
-        let pieces = ends
-            .filter_map(|(values, slopes)| {
-                let (&[v0, v1], &[s0, s1]) = (values, slopes) else {
-                    return None;
-                };
-                let (m0, m1, rise) = (s0 * SPACING, s1 * SPACING, v1 - v0);
-                let c = [v0, m0, 3.0 * rise - 2.0 * m0 - m1, m0 + m1 - 2.0 * rise];
-                let piece = (c, integral);
-                integral +=
-                    SPACING * (c[0] + c[1] * (1.0 / 2.0) + c[2] * (1.0 / 3.0) + c[3] * (1.0 / 4.0));
-                Some(piece)
-            })
-            .collect();
+        let mut pieces = Vec::with_capacity(values.len());
+        let (mut below, mut below_slope) = (
+            values.first().copied().unwrap_or(0.0),
+            slopes.first().copied().unwrap_or(0.0) * SPACING,
+        );
+        for (&value, &slope) in values.iter().zip(slopes).skip(1) {
+            let (rise, slope) = (value - below, slope * SPACING);
+            let c = [
+                below,
+                below_slope,
+                3.0 * rise - 2.0 * below_slope - slope,
+                below_slope + slope - 2.0 * rise,
+            ];
+            pieces.push((c, integral));
+            integral +=
+                SPACING * (c[0] + c[1] * (1.0 / 2.0) + c[2] * (1.0 / 3.0) + c[3] * (1.0 / 4.0));
+            (below, below_slope) = (value, slope);
+        }
         Self { start, pieces }
     }
 

@@ -3,6 +3,7 @@
 use super::{Environment, EnvironmentError, HumidityKnown, coordinate};
 use crate::Pressure;
 use crate::column::{Column, Levels};
+use crate::elementary::at_most;
 use crate::saturation::{self, NO_VAPOUR};
 
 /// Usable pressures, Pa.
@@ -187,16 +188,23 @@ impl Environment {
     /// Whether the dew points of the lowest `changed` levels are seen at a glance to be usable as they are: within reason, not above
     /// the temperature, and not so moist that it must be looked at more closely. No early end, no division.
     fn plainly_usable(&self, changed: usize) -> bool {
-        let (td, t, z) = (&self.td[..changed], &self.t[..changed], &self.z[..changed]);
-        let levels = td.iter().zip(t).zip(z);
-        levels.fold(true, |all, ((td, t), z)| {
-            // A missing one is as good as any other.
-            let value = td.unwrap_or(NO_VAPOUR);
-            // 38 Pa at 240 K, 611 Pa at 273 K, 17,200 Pa at 330 K: below half of 100, 1,300 and 40,000 Pa.
-            let mild = if value < 273.0 { -7.2 } else { -10.6 };
-            let highest = if value < 240.0 { -4.61 } else { mild };
-            all & (value >= NO_VAPOUR) & (value <= *t) & (value < 330.0) & (*z < highest)
-        })
+        // 17,200 Pa of vapour at 330 K, 611 Pa at 273 K, 38 Pa at 240 K: below half of 40,000, 1,300 and 100 Pa.
+        let below = |z: f64| self.z[..changed].partition_point(|&level| level < z);
+        let ends = [below(-10.6), below(-7.2), below(-4.61)];
+        let mut begin = 0;
+        let usable = ends
+            .into_iter()
+            .zip([330.0, 273.0, 240.0])
+            .all(|(end, limit)| {
+                let levels = self.td[begin..end].iter().zip(&self.t[begin..end]);
+                begin = end;
+                levels.fold(true, |all, (td, t)| {
+                    // A missing one is as good as any other.
+                    let value = td.unwrap_or(NO_VAPOUR);
+                    all & (value >= NO_VAPOUR) & (value <= at_most(*t, limit))
+                })
+            });
+        usable && begin == changed
     }
 
     /// Fills missing dew points among the lowest `bound` levels (the last of which is known, or the column's top), and

@@ -21,8 +21,9 @@ pub struct BuoyantLayer {
 /// A parcel lifted through an environment.
 ///
 /// - Below the LCL the parcel keeps its mixing ratio w and its potential temperature with the exponent 0.2854 (1 - 0.28 w);
-///   above it, it follows the [`Method`], with the virtual temperature of its saturation mixing ratio. Eq. 15 and eq. 39
-///   don't quite meet at the LCL: virtual temperature steps by less than 0.05 K there.
+///   above it, it follows the [`Method`], with the virtual temperature of its saturation mixing ratio. Eq. 15 doesn't quite
+///   meet saturation at the LCL: virtual temperature steps by less than 0.05 K there, by more where ice forms at once
+///   ([`Condensate::WaterAndIce`](crate::Condensate::WaterAndIce)).
 /// - Area = -Rd times the integral of (virtual temperature of the parcel minus that of the environment) over ln p;
 ///   virtual temperature on both sides as recommended by Doswell & Rasmussen (1994, WAF 9, 625-629).
 /// - CAPE is the sum of all positive area above the LCL. The EL is the top of the highest buoyant layer.

@@ -63,8 +63,8 @@ const NEGLIGIBLE: f64 = 1e-4;
 /// areas are counted from the bottom up. A dew point above the temperature counts as saturation.
 ///
 /// The parcel's path is tabulated: exact solutions every 0.1 in ln p with analytic slopes, a cubic between them, within
-/// 0.2 mK; a lapse rate is integrated from node to node. CAPE and CIN are within 0.01 % of [`lift_exactly`](crate::lift_exactly) and don't depend on how many levels
-/// the interpolated profile is cut into (1e-6).
+/// 0.2 mK; a lapse rate is integrated from node to node. CAPE and CIN are within 0.01 % of
+/// [`lift_exactly`](crate::lift_exactly) and don't depend on how many levels the interpolated profile is cut into (1e-6).
 ///
 /// `None` when the start lies above the top of the environment or is not finite.
 pub fn lift(environment: &Environment, start: Air, method: Method) -> Option<Ascent> {

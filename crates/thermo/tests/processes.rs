@@ -170,31 +170,6 @@ fn the_reversible_ascent_conserves_entropy() {
     whole.judge(0.5);
 }
 
-/// The LCL is that of eq. 15; what an integrated ascent starts with there is saturated by eq. 10. How far they miss each
-/// other is stated in the docs.
-#[test]
-fn the_step_at_the_lcl_is_small_for_integrated_ascents() {
-    let mut step = Residuals::new("step of virtual temperature at the LCL", "K");
-    for p in [70_000.0, 85_000.0, 100_000.0] {
-        for t in (-30..=45).step_by(3).map(f64::from) {
-            for depression in [0.5, 2.0, 5.0, 10.0, 20.0, 40.0] {
-                let start = Air {
-                    dewpoint: Temperature::from_c(t - depression),
-                    ..saturated(p, ZERO_CELSIUS + t)
-                };
-                let lcl = start.lcl();
-                let w = start.mixing_ratio();
-                let below = lcl.temperature.k() * (1.0 + w / EPSILON) / (1.0 + w);
-                for process in [DIRECT, REVERSIBLE] {
-                    let above = path(start, process, &[lcl.pressure.pa() * (1.0 - 1e-12)])[0];
-                    step.add(above.virtual_temperature.k() - below);
-                }
-            }
-        }
-    }
-    step.judge(0.05);
-}
-
 /// A warm, moist profile: rows of pressure hPa, temperature degC, dew point degC.
 fn warm_day() -> Environment {
     let levels = [

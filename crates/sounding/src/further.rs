@@ -12,7 +12,8 @@ use std::sync::Arc;
 /// Numbers beyond the three parcels'.
 ///
 /// Heights are above the lowest level of the environment, which is the surface unless that lacks temperature or humidity; the
-/// wind's heights are above the same level.
+/// wind's heights are above the same level. Those of layers and parcels are hypsometric, those of the winds as received: they
+/// may differ by some metres, see [`EffectiveLayer`].
 #[derive(Debug, Clone, PartialEq, Default)]
 pub struct Further {
     /// Of each parcel, in the order of [`Parcel::ALL`]; `None` where there is no parcel.
@@ -170,7 +171,7 @@ impl OtherAscents {
 mod tests {
     use super::*;
     use crate::testing::{afternoon, any_amendments, any_fine_levels, any_level, config, received};
-    use crate::{Amendment, Amendments, Daylight, Entry, Level, Wind};
+    use crate::{Amendment, Amendments, BridgeHumidity, Daylight, Entry, Level, Wind};
     use dewbound_thermo::{InflowLayer, LevelAt, Pressure};
     use proptest::prelude::*;
 
@@ -220,6 +221,22 @@ mod tests {
             (
                 Amendment::SurfaceTemperature {
                     temperature_k: 305.0,
+                },
+                true,
+            ),
+            (
+                Amendment::BridgeLayer {
+                    bottom_pa: 82_000.0,
+                    top_pa: 50_000.0,
+                    humidity: BridgeHumidity::MixingRatio,
+                },
+                true,
+            ),
+            (
+                Amendment::MixMoisture {
+                    bottom_pa: 96_000.0,
+                    top_pa: 85_000.0,
+                    mixing_ratio: None,
                 },
                 true,
             ),

@@ -49,7 +49,8 @@ pub struct CompositeInputs {
     pub difference_effective: Option<f64>,
 }
 
-/// The composite indices. Absent where an input is, or isn't finite.
+/// The composite indices. Absent where an input is, or isn't finite. Without free convection there is no CIN, and as a rule no
+/// effective layer: the indices that need them are absent then, not 0.
 ///
 /// All definitions are from memory: the publications have not been opened for this project. CAPE and helicity have no
 /// limit in any of them. Helicity keeps its sign: for storms that deviate to the left it is as a rule negative, and so is the

@@ -18,8 +18,8 @@ pub enum Motion {
 
 /// What the effective layer's wind numbers need of the rest of the profile. Heights are above the ground, m.
 ///
-/// They come from the hypsometric equation, the heights of the winds as a rule from the report: the two may differ by some ten metres
-/// in the middle troposphere.
+/// They come from the hypsometric equation, the heights of the winds as a rule from the report: at 5 km the two differ by a few
+/// metres in fine data, by up to 20 m where a report holds few levels.
 #[derive(Debug, Clone, Copy, PartialEq, Default)]
 pub struct EffectiveLayer {
     /// The effective inflow layer.

@@ -31,12 +31,17 @@
 //! ```
 #![cfg_attr(test, allow(clippy::unwrap_used, clippy::expect_used))]
 
+mod adiabats;
 mod air;
+mod bare;
 mod column;
+mod condensate;
 mod constants;
 mod elementary;
 mod environment;
 mod exact;
+mod lapse;
+mod lapse_path;
 mod layers;
 mod lift;
 mod method;
@@ -48,6 +53,7 @@ mod saturation;
 mod scan;
 mod thickness;
 mod units;
+mod wet_bulb;
 mod winds;
 
 pub use air::*;
@@ -65,4 +71,5 @@ pub use saturation::{
 };
 pub use thickness::*;
 pub use units::*;
+pub use wet_bulb::*;
 pub use winds::*;

@@ -4,7 +4,7 @@
 //! Hermite polynomial runs between them. A new process supplies its own nodes and nothing else changes.
 
 use crate::environment::coordinate;
-use crate::pseudoadiabat::refine;
+use crate::pseudoadiabat::{first_guess, refine};
 use crate::saturation::{e_water, mixing_ratio, virtual_temperature};
 use crate::{Air, Buoyancy, EPSILON, Method, Temperature, adiabats, air, lapse_path};
 
@@ -241,51 +241,52 @@ impl Parcel {
     /// What counts of the saturated ascent from the LCL to at least `z_end`.
     pub fn saturated(&self, method: Method, z_end: f64) -> Cubic {
         lapse_path::path(self, method, steps(self.z_lcl, z_end))
-            .unwrap_or_else(|| self.pseudoadiabat(method.buoyancy, z_end))
+            .unwrap_or_else(|| pseudoadiabat(self.ln_theta_e, method.buoyancy, self.z_lcl, z_end))
     }
+}
 
-    /// From the common table, or else from nodes of its own.
-    fn pseudoadiabat(&self, buoyancy: Buoyancy, z_end: f64) -> Cubic {
-        let shared = match buoyancy {
-            Buoyancy::Virtual => adiabats::path(self.ln_theta_e, self.z_lcl, z_end),
-            Buoyancy::Temperature => None,
+/// The pseudo-adiabat of a theta-e from `z_from` (or a little below) to at least `z_end`: from the common table, or else from
+/// nodes solved for here.
+pub(crate) fn pseudoadiabat(ln_theta_e: f64, buoyancy: Buoyancy, z_from: f64, z_end: f64) -> Cubic {
+    let shared = match buoyancy {
+        Buoyancy::Virtual => adiabats::path(ln_theta_e, z_from, z_end),
+        Buoyancy::Temperature => None,
+    };
+    shared.unwrap_or_else(|| solved_pseudoadiabat(ln_theta_e, buoyancy, z_from, z_end))
+}
+
+fn solved_pseudoadiabat(ln_theta_e: f64, buoyancy: Buoyancy, z_from: f64, z_end: f64) -> Cubic {
+    let count = steps(z_from, z_end);
+    let mut values = Vec::with_capacity(count + 1);
+    let mut node_slopes = Vec::with_capacity(count + 1);
+    let mut p = (-z_from).exp();
+    let mut guess = first_guess(ln_theta_e.exp(), p);
+    // Slopes at the node and at the two below it.
+    let mut slopes = [0.0; 3];
+    let thinner = (-SPACING).exp();
+    for k in 0..=count {
+        let (t, state) = refine(ln_theta_e, p, guess, STEP);
+        p *= thinner;
+        let w = state.w;
+        let per_kelvin = virtual_temperature(1.0, w);
+        let share = 1.0 / (1.0 + w);
+        let slope =
+            per_kelvin * state.slope + t * (1.0 / EPSILON - 1.0) * share * share * state.w_slope;
+        let (value, slope) = match buoyancy {
+            Buoyancy::Virtual => (per_kelvin * t, slope),
+            Buoyancy::Temperature => (t, state.slope),
         };
-        shared.unwrap_or_else(|| self.own_pseudoadiabat(buoyancy, z_end))
+        values.push(value);
+        node_slopes.push(slope);
+        slopes = match k {
+            0 => [state.slope; 3],
+            1 => [state.slope, slopes[0], 2.0 * slopes[0] - state.slope],
+            _ => [state.slope, slopes[0], slopes[1]],
+        };
+        // Three-step Adams-Bashforth lands within a mK or so, so that one Newton step finishes.
+        guess = t + SPACING / 12.0 * (23.0 * slopes[0] - 16.0 * slopes[1] + 5.0 * slopes[2]);
     }
-
-    fn own_pseudoadiabat(&self, buoyancy: Buoyancy, z_end: f64) -> Cubic {
-        let count = steps(self.z_lcl, z_end);
-        let mut values = Vec::with_capacity(count + 1);
-        let mut node_slopes = Vec::with_capacity(count + 1);
-        let mut guess = self.lcl.temperature.k();
-        // Slopes at the node and at the two below it.
-        let mut slopes = [0.0; 3];
-        let thinner = (-SPACING).exp();
-        let mut p = self.lcl.pressure.pa();
-        for k in 0..=count {
-            let (t, state) = refine(self.ln_theta_e, p, guess, STEP);
-            p *= thinner;
-            let w = state.w;
-            let per_kelvin = virtual_temperature(1.0, w);
-            let share = 1.0 / (1.0 + w);
-            let slope = per_kelvin * state.slope
-                + t * (1.0 / EPSILON - 1.0) * share * share * state.w_slope;
-            let (value, slope) = match buoyancy {
-                Buoyancy::Virtual => (per_kelvin * t, slope),
-                Buoyancy::Temperature => (t, state.slope),
-            };
-            values.push(value);
-            node_slopes.push(slope);
-            slopes = match k {
-                0 => [state.slope; 3],
-                1 => [state.slope, slopes[0], 2.0 * slopes[0] - state.slope],
-                _ => [state.slope, slopes[0], slopes[1]],
-            };
-            // Three-step Adams-Bashforth lands within a mK or so, so that one Newton step finishes.
-            guess = t + SPACING / 12.0 * (23.0 * slopes[0] - 16.0 * slopes[1] + 5.0 * slopes[2]);
-        }
-        Cubic::new(self.z_lcl, &values, &node_slopes)
-    }
+    Cubic::new(z_from, &values, &node_slopes)
 }
 
 /// Steps of the table from `start` to at least `end`.
@@ -297,7 +298,7 @@ fn steps(start: f64, end: f64) -> usize {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::pseudoadiabat::{first_guess, solve};
+    use crate::pseudoadiabat::solve;
     use crate::{GAS_CONSTANT_DRY, Pressure};
 
     /// Worst departure (K) of the table from exact virtual temperatures up to 10 hPa, and the departure of the whole

@@ -1,6 +1,6 @@
 //! Where winds and motions lie on the hodograph.
 
-use super::{WINDS_TOP, between};
+use super::{WINDS_TOP, between, drawn_motions};
 use crate::{Point, Rect};
 use dewbound_sounding::thermo::{Vector, WindNumbers, WindProfile};
 
@@ -23,19 +23,29 @@ const WIDEST: f64 = 500.0;
 const AIR: f64 = 1.16;
 
 impl HodographView {
-    /// Everything drawn: the winds up to [`WINDS_TOP`], no wind, the estimated motions and the one set.
+    /// Everything drawn: the winds up to [`WINDS_TOP`], no wind, the estimated motions; and the one set, when it lies outside all
+    /// that, so that moving it about inside changes nothing.
     pub fn fit(profile: &WindProfile, numbers: &WindNumbers, set: Option<Vector>) -> Self {
-        let motions = numbers.motion.into_iter().chain(numbers.motion_effective);
-        let motions = motions.flat_map(|m| [m.right, m.left, m.mean]);
-        let winds = between(profile, 0.0, WINDS_TOP);
-        let all = winds
+        let motions = drawn_motions(numbers).map(|m| [m.right, m.left, m.mean]);
+        let mut all: Vec<Vector> = between(profile, 0.0, WINDS_TOP)
             .into_iter()
             .map(|(_, wind)| wind)
-            .chain(motions)
-            .chain(set)
-            .filter(|v| v.u.is_finite() && v.v.is_finite());
+            .chain(motions.into_iter().flatten())
+            .collect();
+        let fitted = Self::round(&all);
+        match set {
+            Some(set) if !fitted.holds(set) => {
+                all.push(set);
+                Self::round(&all)
+            }
+            _ => fitted,
+        }
+    }
+
+    /// Round these and no wind.
+    fn round(all: &[Vector]) -> Self {
         let (mut low, mut high) = (Vector::default(), Vector::default());
-        for v in all {
+        for v in all.iter().filter(|v| v.u.is_finite() && v.v.is_finite()) {
             low.u = low.u.min(v.u);
             low.v = low.v.min(v.v);
             high.u = high.u.max(v.u);
@@ -46,6 +56,11 @@ impl HodographView {
             width: (AIR * (high.u - low.u)).clamp(LEAST_SPAN, WIDEST),
             height: (AIR * (high.v - low.v)).clamp(LEAST_SPAN, WIDEST),
         }
+    }
+
+    fn holds(&self, wind: Vector) -> bool {
+        let from = wind - self.centre;
+        from.u.abs() <= 0.5 * self.width && from.v.abs() <= 0.5 * self.height
     }
 }
 

@@ -6,9 +6,19 @@ use dewbound_sounding::thermo::{Vector, WindProfile};
 /// Lowest and highest height drawn, m; `None` when the profile has nothing between the ground and [`WINDS_TOP`].
 pub fn drawn_heights(profile: &WindProfile) -> Option<[f64; 2]> {
     let levels = profile.levels();
-    let bottom = levels.first()?.height.max(0.0);
+    let bottom = bottom_of(profile, 0.0)?;
     let top = levels.last()?.height.min(WINDS_TOP);
     (bottom < top).then_some([bottom, top])
+}
+
+/// The lowest height from `from` up at which the profile knows the wind: a lowest wind a little above the ground may serve there.
+fn bottom_of(profile: &WindProfile, from: f64) -> Option<f64> {
+    let lowest = profile.levels().first()?.height;
+    Some(if profile.at(from).is_some() {
+        from
+    } else {
+        lowest.max(from)
+    })
 }
 
 /// Height and wind at every level drawn, and at both ends.
@@ -19,10 +29,10 @@ pub(crate) fn samples(profile: &WindProfile) -> Vec<(f64, Vector)> {
 /// The same between two heights; empty when the profile doesn't reach into them.
 pub(crate) fn between(profile: &WindProfile, from: f64, to: f64) -> Vec<(f64, Vector)> {
     let levels = profile.levels();
-    let (Some(first), Some(last)) = (levels.first(), levels.last()) else {
+    let (Some(bottom), Some(last)) = (bottom_of(profile, from), levels.last()) else {
         return Vec::new();
     };
-    let (bottom, top) = (first.height.max(from), last.height.min(to));
+    let top = last.height.min(to);
     if bottom >= top {
         return Vec::new();
     }

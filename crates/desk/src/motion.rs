@@ -376,6 +376,11 @@ pub(crate) fn drag_to(ctx: &Context, desk: &mut Desk, position: Pos2, grab_ms: V
     let Some(plane) = desk.winds_seen.as_ref().map(|seen| seen.plane) else {
         return;
     };
+    // Undone or left in the middle: nothing until the button is up.
+    if !desk.session.current().is_some_and(Item::in_gesture) {
+        desk.view.gesture = Some(Gesture::GivenUp);
+        return;
+    }
     let position = to_rect(plane.plot()).clamp(position);
     let motion = plane.at(to_point(position)) + grab_ms;
     desk.apply(Command::SetStormMotion(Some(motion)));

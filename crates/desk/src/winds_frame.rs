@@ -28,8 +28,6 @@ pub(crate) struct WindsFrame {
     pub item: ItemId,
     /// Where everything is.
     pub places: Places,
-    /// Scales of the strips.
-    pub strips: WindStrips,
     /// The strips.
     pub strips_scene: Scene,
     /// Where winds lie on the hodograph.
@@ -146,7 +144,6 @@ pub(crate) fn prepare(
     Some(WindsFrame {
         item: item.id(),
         places,
-        strips,
         strips_scene: chart::wind_strips(&strips, &picture),
         plane,
         hodograph: chart::hodograph(&plane, &picture),

@@ -11,7 +11,7 @@ use eframe::egui::{
 
 const ROW: f32 = 17.0;
 /// Width of the names, and of the values.
-const NAMES: f32 = 138.0;
+const NAMES: f32 = 130.0;
 const VALUES: f32 = 92.0;
 
 /// The list in its rectangle.
@@ -23,10 +23,14 @@ pub(crate) fn list_ui(ui: &mut Ui, paint: &Paint, item: &Item, rect: Rect, asks:
         ui.spacing_mut().item_spacing.y = 0.0;
         ui.horizontal(|ui| {
             ui.set_height(22.0);
-            ui.label(bold("Wind").size(14.0));
             ui.with_layout(Layout::right_to_left(Align::Center), |ui| {
                 small_action_button(ui, paint, Action::CopyWinds, asks);
-                small_action_button(ui, paint, Action::ResetMotion, asks);
+                if item.document().storm_motion().is_some() {
+                    small_action_button(ui, paint, Action::ResetMotion, asks);
+                }
+                ui.with_layout(Layout::left_to_right(Align::Center), |ui| {
+                    ui.add(Label::new(bold("Wind").size(14.0)).truncate());
+                });
             });
         });
         ScrollArea::vertical()
@@ -43,10 +47,8 @@ pub(crate) fn list_ui(ui: &mut Ui, paint: &Paint, item: &Item, rect: Rect, asks:
 fn line_ui(ui: &mut Ui, paint: &Paint, line: &WindLine) {
     let (row, _) = ui.allocate_exact_size(vec2(ui.available_width(), ROW), Sense::hover());
     let about = format!("{}\n{}", line.text(), line.about);
-    // In a narrow list names and values shrink alike.
-    let squeeze = (row.width() / 330.0).min(1.0);
-    let names = row.left() + NAMES * squeeze;
-    let values = names + VALUES * squeeze;
+    let names = row.left() + NAMES;
+    let values = names + VALUES;
     let part =
         |from: f32, to: f32| Rect::from_min_max(pos2(from, row.top()), pos2(to, row.bottom()));
     let mut text = |rect: Rect, text: RichText| {
@@ -64,15 +66,15 @@ fn line_ui(ui: &mut Ui, paint: &Paint, line: &WindLine) {
         part(row.left(), names - 4.0),
         RichText::new(line.name).size(12.0),
     );
-    let value = match &line.value {
-        Some(value) => bold(value.as_str()).size(12.5),
-        None => RichText::new("none").size(12.0).color(paint.theme.quiet),
+    let quiet = |text: &str| RichText::new(text).size(11.5).color(paint.theme.quiet);
+    let Some(value) = &line.value else {
+        let why = format!("none: {}", line.note);
+        text(part(names, row.right()), quiet(&why));
+        return;
     };
-    text(part(names, values - 4.0), value);
-    text(
-        part(values, row.right()),
-        RichText::new(line.note.as_str())
-            .size(11.5)
-            .color(paint.theme.quiet),
-    );
+    text(part(names, values - 4.0), bold(value.as_str()).size(12.5));
+    // Where only a few letters would fit, the note is left to the hover text.
+    if row.right() - values > 50.0 {
+        text(part(values, row.right()), quiet(&line.note));
+    }
 }

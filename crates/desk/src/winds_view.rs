@@ -122,7 +122,7 @@ fn plane_ui(ui: &Ui, paint: &Paint, item: &Item, frame: &WindsFrame, asks: &mut 
 }
 
 /// A node without a widget: for those who can't see what is painted there.
-fn node(ui: &Ui, id: impl std::hash::Hash, centre: Pos2, label: &str) {
+fn node(ui: &Ui, id: impl std::hash::Hash + std::fmt::Debug, centre: Pos2, label: &str) {
     let rect = Rect::from_center_size(centre, vec2(8.0, 8.0));
     let response = ui.interact(rect, Id::unique(("winds", id)), Sense::empty());
     response.widget_info(|| WidgetInfo::labeled(Role::Label, true, label));

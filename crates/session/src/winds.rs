@@ -54,7 +54,7 @@ pub fn no_winds(item: &Item) -> Option<String> {
     }
 }
 
-/// The motion helicity is measured against, in words: "right 254° 26 kt", "set by you 270° 20 kt".
+/// The motion helicity is measured against, in words: "right 254° 26 kt", "your own 270° 20 kt".
 pub fn motion_in_use(
     numbers: &WindNumbers,
     set: Option<Vector>,
@@ -62,7 +62,7 @@ pub fn motion_in_use(
 ) -> Option<String> {
     let used = numbers.motion_used?;
     let word = match (set, numbers.motion) {
-        (Some(_), _) => "set by you",
+        (Some(_), _) => "your own",
         (None, Some(motion)) if motion.left == used && motion.right != used => "left",
         _ => "right",
     };
@@ -173,7 +173,7 @@ impl Lines<'_> {
             .motion_used
             .map(|motion| wind_text(motion, self.unit));
         let note = match (self.set, &value) {
-            (Some(_), _) => "set by you; Home on the ring: the estimate".to_owned(),
+            (Some(_), _) => "set by you".to_owned(),
             (None, Some(_)) => {
                 let named = motion_in_use(self.numbers, None, self.unit).unwrap_or_default();
                 let side = named.split(' ').next().unwrap_or_default();
@@ -237,7 +237,7 @@ impl Lines<'_> {
     fn critical_angle(&self) -> WindLine {
         let value = self.numbers.critical_angle;
         let note = match (value, self.numbers.motion_used) {
-            (Some(_), _) => "near 90°: streamwise inflow".to_owned(),
+            (Some(_), _) => "90° would be streamwise".to_owned(),
             (None, None) => self.no_motion(),
             (None, Some(_)) => self.out_of_reach(0.0, 500.0),
         };

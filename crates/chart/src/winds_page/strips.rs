@@ -38,7 +38,12 @@ fn scales(canvas: &mut Canvas, strips: &WindStrips, picture: &WindsPicture) {
             ..label
         },
     );
-    titled(canvas, &direction, head, &["direction from", "from"]);
+    titled(
+        canvas,
+        &direction,
+        head,
+        &["direction from", "wind from", "from"],
+    );
     titled(canvas, &speed, head, &[&format!("speed, {unit}"), unit]);
     for km in 0..=(view.top / 1000.0).round() as u32 {
         let height = 1000.0 * f64::from(km);

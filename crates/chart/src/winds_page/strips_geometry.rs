@@ -74,11 +74,11 @@ pub struct WindStrips {
 
 /// Room left for the height scale, right, above for titles, below for the scales.
 const LEFT: f64 = 26.0;
-const RIGHT: f64 = 12.0;
+const RIGHT: f64 = 14.0;
 const HEAD: f64 = 19.0;
 const FOOT: f64 = 19.0;
 /// Between the strips.
-const GAP: f64 = 14.0;
+const GAP: f64 = 18.0;
 
 impl WindStrips {
     /// In a frame.

@@ -5,7 +5,7 @@
 use dewbound_chart::{
     Bracket, BracketGrade, CandidateMark, Geometry, HeightScale, HodographGeometry, HodographView,
     Palette, ParcelDrawing, Picture, Point, Rect, StripsView, SurfaceMark, SurfaceMarks, View,
-    WindStrips, WindsPicture, background, foreground, hodograph, svg, wind_strips,
+    WINDS_TOP, WindStrips, WindsPicture, background, foreground, hodograph, svg, wind_strips,
 };
 use dewbound_sounding::{
     Amendments, Daylight, Numbers, Reach,
@@ -154,11 +154,11 @@ fn winds(directory: &str) -> Result<(), Box<dyn std::error::Error>> {
         };
         let strips = WindStrips::new(
             Rect::new(0.0, 0.0, left, height),
-            StripsView::fit(&profile, picture.units.speed),
+            StripsView::fit(&profile, picture.units.speed, WINDS_TOP),
         );
         let plane = HodographGeometry::new(
             Rect::new(left, 0.0, right, height),
-            HodographView::fit(&profile, &numbers, None),
+            HodographView::fit(&profile, &numbers, None, WINDS_TOP),
         );
         let scenes = [
             &wind_strips(&strips, &picture),

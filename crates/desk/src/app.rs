@@ -322,6 +322,9 @@ impl Desk {
             }
             Action::ShowChart => self.turn_to(ctx, Page::Chart),
             Action::ShowWinds => self.turn_to(ctx, Page::Winds),
+            Action::WindsToTwelve => self.winds_up_to(12_000.0),
+            Action::WindsToSix => self.winds_up_to(6_000.0),
+            Action::WindsToThree => self.winds_up_to(3_000.0),
             Action::ZoomIn => self.zoom(ctx, self.view.zoom + 0.1),
             Action::ZoomOut => self.zoom(ctx, self.view.zoom - 0.1),
             Action::ZoomReset => self.zoom(ctx, 1.0),
@@ -359,6 +362,12 @@ impl Desk {
             Page::Winds => winds_frame::strips_id(),
         };
         ctx.memory_mut(|memory| memory.request_focus(id));
+    }
+
+    /// Draws the winds up to a height; papers moved by hand fit it again.
+    fn winds_up_to(&mut self, top: f64) {
+        self.view.winds_top = top;
+        self.view.hodographs.clear();
     }
 
     fn zoom(&mut self, ctx: &Context, zoom: f32) {

@@ -120,6 +120,9 @@ fn entry_ui(ui: &mut Ui, paint: &Paint, action: Action, asks: &mut Asks) -> bool
     let chosen = match action {
         Action::ToggleTheme => paint.view.theme == crate::ThemeName::Dark,
         Action::ToggleTiming => paint.view.show_timing,
+        Action::WindsToTwelve => paint.view.winds_top == 12_000.0,
+        Action::WindsToSix => paint.view.winds_top == 6_000.0,
+        Action::WindsToThree => paint.view.winds_top == 3_000.0,
         Action::ShowChart => paint.view.page == Page::Chart,
         Action::ShowWinds => paint.view.page == Page::Winds,
         _ => false,
@@ -128,7 +131,8 @@ fn entry_ui(ui: &mut Ui, paint: &Paint, action: Action, asks: &mut Asks) -> bool
     asked(response, paint, action, asks)
 }
 
-fn asked(response: Response, paint: &Paint, action: Action, asks: &mut Asks) -> bool {
+/// What every button of an action does: says what it is for, and asks for it.
+pub(crate) fn asked(response: Response, paint: &Paint, action: Action, asks: &mut Asks) -> bool {
     let declaration = action.declaration();
     asks.describe(&response, || declaration.tooltip.to_owned());
     let clicked = response.clicked();

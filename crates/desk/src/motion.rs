@@ -6,7 +6,7 @@ use crate::chart_paint::to_rect;
 use crate::view::{Gesture, Page};
 use crate::winds_frame::{plane_id, strips_id};
 use dewbound_session::chart::{
-    HodographGeometry, HodographView, SpeedUnit, drawn_heights, per_metre_per_second, speed_sign,
+    HodographGeometry, HodographView, SpeedUnit, heights_up_to, per_metre_per_second, speed_sign,
     wind_text,
 };
 use dewbound_session::thermo::Vector;
@@ -250,11 +250,10 @@ fn requests(ctx: &Context, desk: &mut Desk) {
 /// Reads the wind up and down the profile.
 fn strips_keys(ctx: &Context, desk: &mut Desk) {
     keep_arrows(ctx, strips_id(), false, false);
-    let Some([bottom, top]) = desk
-        .session
-        .current()
-        .and_then(|item| drawn_heights(item.results().further.wind_profile.as_deref()?))
-    else {
+    let Some([bottom, top]) = desk.session.current().and_then(|item| {
+        let profile = item.results().further.wind_profile.as_deref()?;
+        heights_up_to(profile, desk.view.winds_top)
+    }) else {
         return;
     };
     let mut height = desk.view.height;

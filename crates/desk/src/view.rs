@@ -3,7 +3,7 @@
 use crate::args::ThemeName;
 use crate::preferences::Preferences;
 use crate::timing::Timing;
-use dewbound_session::chart::{HodographView, Units, View as ChartView};
+use dewbound_session::chart::{HodographView, Units, View as ChartView, WINDS_TOP};
 use dewbound_session::sounding::Parcel;
 use dewbound_session::thermo::Vector;
 use dewbound_session::{Item, ItemId, Preview, RepairId, Revision, SurfaceQuantity};
@@ -116,6 +116,8 @@ pub(crate) struct View {
     pub charts: HashMap<ItemId, ChartView>,
     /// Part of the hodograph looked at, where it isn't the fitting one.
     pub hodographs: HashMap<ItemId, HodographView>,
+    /// The winds are drawn up to here, m.
+    pub winds_top: f64,
     /// Height at which the winds are read, from the keyboard, m.
     pub height: Option<f64>,
     /// The storm motion being typed.
@@ -154,6 +156,7 @@ impl View {
             parcel: None,
             charts: HashMap::new(),
             hodographs: HashMap::new(),
+            winds_top: WINDS_TOP,
             height: None,
             motion_typed: None,
             card: None,

@@ -5,7 +5,7 @@ use crate::motion::motion_id;
 use crate::view::{Gesture, View};
 use dewbound_session::chart::{
     self, Hodograph, HodographGeometry, HodographView, Scene, StripsView, WindStrips, WindsPicture,
-    drawn_heights,
+    heights_up_to,
 };
 use dewbound_session::thermo::WindProfile;
 use dewbound_session::{Item, ItemId, wording};
@@ -96,24 +96,23 @@ pub(crate) fn prepare(
 ) -> Option<WindsFrame> {
     let further = &item.results().further;
     let profile = further.wind_profile.as_deref()?;
-    let heights = drawn_heights(profile)?;
+    let heights = heights_up_to(profile, view.winds_top)?;
     let places = Places::of(page);
     let set = item.document().storm_motion();
     let before = before.filter(|before| before.item == item.id());
     let dragged = matches!(view.gesture, Some(Gesture::Motion { .. }));
     // The paper stands still while the motion is dragged over it.
-    let window = match (dragged, before) {
-        (true, Some(before)) => before.plane.view(),
-        _ => view
-            .hodographs
-            .get(&item.id())
-            .copied()
-            .unwrap_or_else(|| HodographView::fit(profile, &further.winds, set)),
-    };
+    let window =
+        match (dragged, before) {
+            (true, Some(before)) => before.plane.view(),
+            _ => view.hodographs.get(&item.id()).copied().unwrap_or_else(|| {
+                HodographView::fit(profile, &further.winds, set, view.winds_top)
+            }),
+        };
     let plane = HodographGeometry::new(to_chart(places.plane), window);
     let strips = WindStrips::new(
         to_chart(places.strips),
-        StripsView::fit(profile, view.units.speed),
+        StripsView::fit(profile, view.units.speed, view.winds_top),
     );
     let pointer = |id: Id| {
         ctx.read_response(id)

@@ -2,14 +2,16 @@
 
 use crate::app::Paint;
 use crate::ask::Asks;
-use crate::menu::small_action_button;
+use crate::menu::{asked, small_action_button};
 use crate::theme::bold;
 use dewbound_session::{Action, Item, WindLine, wind_lines};
 use eframe::egui::{
-    Align, Label, Layout, Rect, RichText, ScrollArea, Sense, Ui, UiBuilder, pos2, vec2,
+    Align, Button, Label, Layout, Rect, RichText, ScrollArea, Sense, Ui, UiBuilder, pos2, vec2,
 };
 
 const ROW: f32 = 17.0;
+/// A list at least this wide has room for the buttons that choose how high the winds are drawn.
+const FOR_TOPS: f32 = 420.0;
 /// Width of the names, and of the values.
 const NAMES: f32 = 130.0;
 const VALUES: f32 = 92.0;
@@ -30,6 +32,9 @@ pub(crate) fn list_ui(ui: &mut Ui, paint: &Paint, item: &Item, rect: Rect, asks:
                 }
                 ui.with_layout(Layout::left_to_right(Align::Center), |ui| {
                     ui.add(Label::new(bold("Wind").size(14.0)).truncate());
+                    if rect.width() >= FOR_TOPS {
+                        tops_ui(ui, paint, asks);
+                    }
                 });
             });
         });
@@ -42,6 +47,20 @@ pub(crate) fn list_ui(ui: &mut Ui, paint: &Paint, item: &Item, rect: Rect, asks:
                 }
             });
     });
+}
+
+/// How high the winds are drawn; in a narrow list the View menu alone has it.
+fn tops_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
+    ui.spacing_mut().item_spacing.x = 2.0;
+    for (action, text, top) in [
+        (Action::WindsToThree, "3 km", 3_000.0),
+        (Action::WindsToSix, "6 km", 6_000.0),
+        (Action::WindsToTwelve, "12 km", 12_000.0),
+    ] {
+        let chosen = paint.view.winds_top == top;
+        let response = ui.add(Button::new(text).small().selected(chosen));
+        asked(response, paint, action, asks);
+    }
 }
 
 fn line_ui(ui: &mut Ui, paint: &Paint, line: &WindLine) {

@@ -100,6 +100,9 @@ impl Session {
             | Action::CopyWinds
             | Action::ShowChart
             | Action::ShowWinds
+            | Action::WindsToTwelve
+            | Action::WindsToSix
+            | Action::WindsToThree
             | Action::ZoomIn
             | Action::ZoomOut
             | Action::ZoomReset

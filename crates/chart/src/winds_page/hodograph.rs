@@ -88,9 +88,9 @@ pub fn hodograph(geometry: &HodographGeometry, picture: &WindsPicture) -> Hodogr
     let plot = geometry.plot();
     let step = ring_step(geometry, picture);
     rings(&mut canvas, geometry, picture, step);
-    relative_areas(&mut canvas, geometry, picture);
+    let hatched = relative_areas(&mut canvas, geometry, picture);
     let curve = curve(&mut canvas, geometry, picture);
-    let mut labels = Labels::new(&curve, plot);
+    let mut labels = Labels::new(&curve, plot, &hatched);
     let ticks = ticks(&mut canvas, geometry, picture);
     let marks = marks(&mut canvas, geometry, picture);
     let handle = handle(&mut canvas, geometry, picture);
@@ -186,10 +186,15 @@ pub(crate) fn rings_in_sight(geometry: &HodographGeometry, radius: f64) -> u32 {
 }
 
 /// Helicity as an area: what the wind as the storm feels it sweeps over from the ground to 1 km and from there to 3 km. Where it
-/// turns to the right going up, and counts positive, the lines are unbroken; where to the left, dotted.
-fn relative_areas(canvas: &mut Canvas, geometry: &HodographGeometry, picture: &WindsPicture) {
+/// turns to the right going up, and counts positive, the lines are unbroken; where to the left, dotted. Gives back the outline of both.
+fn relative_areas(
+    canvas: &mut Canvas,
+    geometry: &HodographGeometry,
+    picture: &WindsPicture,
+) -> Vec<Point> {
+    let mut whole = Vec::new();
     if picture.set.or(picture.numbers.motion_used).is_none() {
-        return;
+        return whole;
     }
     let motion = geometry.point(picture.handle());
     let plot = geometry.plot();
@@ -203,6 +208,7 @@ fn relative_areas(canvas: &mut Canvas, geometry: &HodographGeometry, picture: &W
             continue;
         }
         let mut outline: Vec<Point> = winds.iter().map(|&(_, w)| geometry.point(w)).collect();
+        whole.extend_from_slice(&outline);
         outline.push(motion);
         let turned = hatch_turned(&outline, slope, spacing, &plot);
         let ink = Ink::HelicityHatch;
@@ -216,6 +222,8 @@ fn relative_areas(canvas: &mut Canvas, geometry: &HodographGeometry, picture: &W
             .collect::<Vec<_>>();
         canvas.segments(&sides, &plot, ink, Stroke::solid(1.1));
     }
+    whole.push(motion);
+    whole
 }
 
 /// Paints the curve; gives back its points, thinned.

@@ -1,6 +1,6 @@
 //! Where winds and motions lie on the hodograph.
 
-use super::{WINDS_TOP, between, drawn_motions};
+use super::{WINDS_TOP, between, drawn_motions, heights_up_to};
 use crate::{Point, Rect};
 use dewbound_sounding::thermo::{Vector, WindNumbers, WindProfile};
 
@@ -23,11 +23,17 @@ const WIDEST: f64 = 500.0;
 const AIR: f64 = 1.16;
 
 impl HodographView {
-    /// Everything drawn: the winds up to [`WINDS_TOP`], no wind, the estimated motions; and the one set, when it lies outside all
+    /// The winds from the ground up to a height (m, at most [`WINDS_TOP`]), no wind, the estimated motions; and the one set, when it lies outside all
     /// that, so that moving it about inside changes nothing.
-    pub fn fit(profile: &WindProfile, numbers: &WindNumbers, set: Option<Vector>) -> Self {
+    pub fn fit(
+        profile: &WindProfile,
+        numbers: &WindNumbers,
+        set: Option<Vector>,
+        top: f64,
+    ) -> Self {
         let motions = drawn_motions(numbers).map(|m| [m.right, m.left, m.mean]);
-        let mut all: Vec<Vector> = between(profile, 0.0, WINDS_TOP)
+        let highest = heights_up_to(profile, top).map_or(WINDS_TOP, |[_, highest]| highest);
+        let mut all: Vec<Vector> = between(profile, 0.0, highest)
             .into_iter()
             .map(|(_, wind)| wind)
             .chain(motions.into_iter().flatten())

@@ -12,11 +12,28 @@ use std::f64::consts::TAU;
 pub(crate) struct Labels<'a> {
     curve: &'a [Point],
     plot: Rect,
+    /// Outline of what is hatched: labels without a place of their own stay outside.
+    hatched: &'a [Point],
 }
 
 impl<'a> Labels<'a> {
-    pub fn new(curve: &'a [Point], plot: Rect) -> Self {
-        Self { curve, plot }
+    pub fn new(curve: &'a [Point], plot: Rect, hatched: &'a [Point]) -> Self {
+        Self {
+            curve,
+            plot,
+            hatched,
+        }
+    }
+
+    /// Whether the middle of this space lies on hatching.
+    fn is_hatched(&self, extent: &Rect) -> bool {
+        let middle = extent.centre();
+        let next = self.hatched.iter().skip(1).chain(self.hatched.first());
+        let crossings = self.hatched.iter().zip(next).filter(|(a, b)| {
+            let above = (a.y < middle.y) != (b.y < middle.y);
+            above && a.x + (middle.y - a.y) / (b.y - a.y) * (b.x - a.x) > middle.x
+        });
+        crossings.count() % 2 == 1
     }
 
     /// Whether the curve leaves this space free.
@@ -84,8 +101,10 @@ pub(crate) fn label_rings(
         let r = radius * f64::from(ring);
         let at = Point::new(origin.x + r * angle.cos(), origin.y + r * angle.sin());
         let extent = lettering.extent(at, &text(ring));
-        let free =
-            geometry.plot().holds(&extent) && canvas.is_free(&extent) && labels.is_clear(&extent);
+        let free = geometry.plot().holds(&extent)
+            && canvas.is_free(&extent)
+            && !labels.is_hatched(&extent)
+            && labels.is_clear(&extent);
         free.then_some(at)
     };
     let score = |angle: f64| {

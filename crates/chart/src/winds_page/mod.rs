@@ -18,8 +18,8 @@ pub use hodograph_geometry::*;
 pub use strips::*;
 pub use strips_geometry::*;
 
-pub use samples::drawn_heights;
 pub(crate) use samples::{between, kilometres, samples, tick_heights};
+pub use samples::{drawn_heights, heights_up_to};
 
 use crate::{SpeedUnit, Units, wording};
 use dewbound_sounding::thermo::{Vector, WindNumbers, WindProfile};

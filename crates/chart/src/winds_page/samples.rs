@@ -11,6 +11,13 @@ pub fn drawn_heights(profile: &WindProfile) -> Option<[f64; 2]> {
     (bottom < top).then_some([bottom, top])
 }
 
+/// The same up to a height, m. Winds that begin above it are shown all the same.
+pub fn heights_up_to(profile: &WindProfile, top: f64) -> Option<[f64; 2]> {
+    let [bottom, highest] = drawn_heights(profile)?;
+    let within = highest.min(top);
+    Some([bottom, if bottom < within { within } else { highest }])
+}
+
 /// The lowest height from `from` up at which the profile knows the wind: a lowest wind a little above the ground may serve there.
 fn bottom_of(profile: &WindProfile, from: f64) -> Option<f64> {
     let lowest = profile.levels().first()?.height;

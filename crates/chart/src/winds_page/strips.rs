@@ -159,7 +159,10 @@ fn curves(canvas: &mut Canvas, strips: &WindStrips, picture: &WindsPicture) {
     // Where few levels report, each shows: between them the line is only a guess.
     let levels = samples(picture.profile);
     if levels.len() <= MOST_DOTS {
-        for (height, wind) in levels {
+        let in_sight = levels
+            .into_iter()
+            .filter(|(height, _)| *height <= strips.view().top);
+        for (height, wind) in in_sight {
             canvas.circle(
                 strips.speed_point(height, wind.speed()),
                 2.8,

@@ -1,6 +1,6 @@
 //! Where direction and speed lie against height.
 
-use super::{per_metre_per_second, samples};
+use super::{WINDS_TOP, between, heights_up_to, per_metre_per_second};
 use crate::{Point, Rect, SpeedUnit};
 use dewbound_sounding::thermo::{Vector, WindProfile};
 
@@ -18,9 +18,10 @@ pub struct StripsView {
 }
 
 impl StripsView {
-    /// For a profile, with a scale that is round in the displayed unit.
-    pub fn fit(profile: &WindProfile, unit: SpeedUnit) -> Self {
-        let winds = samples(profile);
+    /// For a profile up to a height (m, at most [`WINDS_TOP`]), with a scale that is round in the displayed unit.
+    pub fn fit(profile: &WindProfile, unit: SpeedUnit, top: f64) -> Self {
+        let highest = heights_up_to(profile, top).map_or(WINDS_TOP, |[_, highest]| highest);
+        let winds = between(profile, 0.0, highest);
         let top = winds.last().map_or(1000.0, |&(height, _)| height);
         let factor = per_metre_per_second(unit);
         let most = winds

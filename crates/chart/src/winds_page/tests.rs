@@ -5,7 +5,8 @@ use crate::{Item, Point, Rect, SpeedUnit, text_box};
 use dewbound_sounding::thermo::{StormMotion, WindLevel};
 use proptest::prelude::*;
 
-fn profile(winds: &[(f64, f64, f64)]) -> WindProfile {
+/// Height, direction, speed.
+fn winds_at(winds: &[(f64, f64, f64)]) -> WindProfile {
     WindProfile::new(winds.iter().map(|&(height, direction, speed)| WindLevel {
         height,
         pressure: None,
@@ -16,7 +17,7 @@ fn profile(winds: &[(f64, f64, f64)]) -> WindProfile {
 
 /// Veering and strengthening.
 fn veering() -> WindProfile {
-    profile(&[
+    winds_at(&[
         (0.0, 150.0, 6.0),
         (480.0, 165.0, 11.0),
         (1100.0, 190.0, 15.0),
@@ -87,9 +88,9 @@ proptest! {
         frame in frames(), levels in winds(), u in -80.0..80.0f64, v in -80.0..80.0f64,
         height in 0.0..12_000.0f64, direction in 0.5..359.5f64, knots in any::<bool>(),
     ) {
-        let profile = profile(&levels);
+        let profile = winds_at(&levels);
         let wind = Vector { u, v };
-        let geometry = HodographGeometry::new(frame, HodographView::fit(&profile, &numbers(), Some(wind)));
+        let geometry = HodographGeometry::new(frame, HodographView::fit(&profile, &numbers(), Some(wind), WINDS_TOP));
         let back = geometry.at(geometry.point(wind));
         prop_assert!((back - wind).speed() < 1e-9);
         // As far to the east as to the north.
@@ -101,7 +102,7 @@ proptest! {
         prop_assert!(geometry.plot().contains(geometry.point(Vector::default())));
 
         let unit = if knots { SpeedUnit::Knots } else { SpeedUnit::MetresPerSecond };
-        let strips = WindStrips::new(frame, StripsView::fit(&profile, unit));
+        let strips = WindStrips::new(frame, StripsView::fit(&profile, unit, WINDS_TOP));
         prop_assert!((strips.height_at(strips.y(height)) - height).abs() < 1e-6);
         let at = strips.speed_point(height, wind.speed());
         prop_assert!((strips.speed_at(at.x) - wind.speed()).abs() < 1e-6);
@@ -115,8 +116,9 @@ proptest! {
     fn nothing_leaves_the_frame(
         frame in frames(), levels in winds(), u in -80.0..80.0f64, v in -80.0..80.0f64, set in any::<bool>(),
         cursor in proptest::option::of(-100.0..13_000.0f64), factor in 0.3..6.0f64,
+        top in prop_oneof![Just(3_000.0), Just(6_000.0), Just(WINDS_TOP)],
     ) {
-        let profile = profile(&levels);
+        let profile = winds_at(&levels);
         let numbers = numbers();
         let picture = WindsPicture {
             set: set.then_some(Vector { u, v }),
@@ -125,9 +127,9 @@ proptest! {
             stamp: Some("INVENTED DATA"),
             ..WindsPicture::new(&profile, &numbers)
         };
-        let fit = HodographGeometry::new(frame, HodographView::fit(&profile, &numbers, picture.set));
+        let fit = HodographGeometry::new(frame, HodographView::fit(&profile, &numbers, picture.set, top));
         let zoomed = HodographGeometry::new(frame, fit.zoomed(fit.plot().centre(), factor));
-        let strips = WindStrips::new(frame, StripsView::fit(&profile, SpeedUnit::Knots));
+        let strips = WindStrips::new(frame, StripsView::fit(&profile, SpeedUnit::Knots, top));
         for scene in [
             hodograph(&fit, &picture).scene,
             hodograph(&zoomed, &picture).scene,
@@ -145,9 +147,9 @@ proptest! {
     /// Every tick lies on the curve, at the wind of its height, also between levels.
     #[test]
     fn ticks_lie_on_the_curve(frame in frames(), levels in winds()) {
-        let profile = profile(&levels);
+        let profile = winds_at(&levels);
         let numbers = numbers();
-        let geometry = HodographGeometry::new(frame, HodographView::fit(&profile, &numbers, None));
+        let geometry = HodographGeometry::new(frame, HodographView::fit(&profile, &numbers, None, WINDS_TOP));
         let drawn = hodograph(&geometry, &WindsPicture::new(&profile, &numbers));
         let curve: Vec<[Point; 2]> = drawn.scene.items.iter().flat_map(|item| match item {
             Item::Polyline { points, ink: crate::Ink::Wind, stroke } if stroke.width != 1.6 =>
@@ -172,10 +174,10 @@ proptest! {
     /// No two labels of the hodograph lie on each other.
     #[test]
     fn labels_keep_apart(levels in winds(), width in 240.0..900.0f64) {
-        let profile = profile(&levels);
+        let profile = winds_at(&levels);
         let numbers = numbers();
         let frame = Rect::new(0.0, 0.0, width, width);
-        let geometry = HodographGeometry::new(frame, HodographView::fit(&profile, &numbers, None));
+        let geometry = HodographGeometry::new(frame, HodographView::fit(&profile, &numbers, None, WINDS_TOP));
         let drawn = hodograph(&geometry, &WindsPicture::new(&profile, &numbers));
         let boxes: Vec<(Rect, &str)> = drawn.scene.items.iter().filter_map(|item| match item {
             Item::Text { at, anchor, text, size, .. } => Some((text_box(*at, *anchor, text, *size), text.as_str())),
@@ -196,7 +198,7 @@ fn drawn(unit: SpeedUnit, picture: impl Fn(WindsPicture) -> WindsPicture) -> Hod
     let given = picture(given);
     let geometry = HodographGeometry::new(
         Rect::new(0.0, 0.0, 500.0, 460.0),
-        HodographView::fit(&profile, &numbers, given.set),
+        HodographView::fit(&profile, &numbers, given.set, WINDS_TOP),
     );
     hodograph(&geometry, &given)
 }
@@ -284,15 +286,15 @@ fn winds_in_words() {
 #[test]
 fn the_strip_of_directions_is_cut_where_the_wind_does_not_blow_from() {
     // North-westerly to north-easterly winds: not cut at north.
-    let northerly = profile(&[
+    let northerly = winds_at(&[
         (0.0, 330.0, 8.0),
         (2000.0, 355.0, 9.0),
         (5000.0, 30.0, 12.0),
     ]);
-    let view = StripsView::fit(&northerly, SpeedUnit::Knots);
+    let view = StripsView::fit(&northerly, SpeedUnit::Knots, WINDS_TOP);
     assert_eq!(view.first_direction, 180.0);
     assert_eq!(
-        StripsView::fit(&veering(), SpeedUnit::Knots).first_direction,
+        StripsView::fit(&veering(), SpeedUnit::Knots, WINDS_TOP).first_direction,
         0.0
     );
 }
@@ -300,15 +302,60 @@ fn the_strip_of_directions_is_cut_where_the_wind_does_not_blow_from() {
 #[test]
 fn a_profile_without_anything_below_the_top_is_not_drawn() {
     assert_eq!(
-        drawn_heights(&profile(&[
+        drawn_heights(&winds_at(&[
             (13_000.0, 250.0, 30.0),
             (14_000.0, 250.0, 30.0)
         ])),
         None
     );
     assert_eq!(
-        drawn_heights(&profile(&[(-300.0, 250.0, 3.0), (-10.0, 250.0, 4.0)])),
+        drawn_heights(&winds_at(&[(-300.0, 250.0, 3.0), (-10.0, 250.0, 4.0)])),
         None
     );
     assert_eq!(drawn_heights(&veering()), Some([0.0, WINDS_TOP]));
+}
+
+#[test]
+fn the_lowest_kilometres_alone_are_drawn_larger() {
+    let (profile, numbers) = (veering(), numbers());
+    let frame = Rect::new(0.0, 0.0, 600.0, 500.0);
+    let scale = |top| {
+        let view = HodographView::fit(&profile, &numbers, None, top);
+        HodographGeometry::new(frame, view).scale()
+    };
+    assert!(scale(3_000.0) > scale(6_000.0) && scale(6_000.0) > scale(WINDS_TOP));
+    let strips = StripsView::fit(&profile, SpeedUnit::Knots, 3_000.0);
+    assert_eq!(strips.top, 3_000.0);
+    // Winds that begin above are shown all the same.
+    let aloft = winds_at(&[(4_000.0, 250.0, 30.0), (9_000.0, 260.0, 40.0)]);
+    assert_eq!(heights_up_to(&aloft, 3_000.0), Some([4_000.0, 9_000.0]));
+    assert_eq!(heights_up_to(&veering(), 3_000.0), Some([0.0, 3_000.0]));
+}
+
+/// One-second data.
+#[test]
+fn six_thousand_levels_are_drawn() {
+    let levels: Vec<(f64, f64, f64)> = (0..6_000)
+        .map(|i| {
+            let z = 5.0 * f64::from(i);
+            let wobble = (f64::from(i) * 0.9).sin();
+            (
+                z,
+                180.0 + z / 300.0 + 4.0 * wobble,
+                8.0 + z / 600.0 + wobble,
+            )
+        })
+        .collect();
+    let (profile, numbers) = (winds_at(&levels), numbers());
+    let frame = Rect::new(0.0, 0.0, 600.0, 500.0);
+    let picture = WindsPicture::new(&profile, &numbers);
+    let view = HodographView::fit(&profile, &numbers, None, WINDS_TOP);
+    let drawn = hodograph(&HodographGeometry::new(frame, view), &picture);
+    let strips = WindStrips::new(
+        frame,
+        StripsView::fit(&profile, SpeedUnit::Knots, WINDS_TOP),
+    );
+    let scene = wind_strips(&strips, &picture);
+    assert_eq!(drawn.ticks.len(), 14);
+    assert!(drawn.scene.lies_within(frame) && scene.lies_within(frame));
 }

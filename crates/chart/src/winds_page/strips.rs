@@ -70,6 +70,10 @@ fn scales(canvas: &mut Canvas, strips: &WindStrips, picture: &WindsPicture) {
         // The two edges are one direction.
         let x = direction.left + direction.width() * f64::from(quarter) / 4.0;
         upright(canvas, &direction, x);
+        // Letters stand apart, or every other one goes.
+        if direction.width() < 56.0 && quarter % 2 == 1 {
+            continue;
+        }
         let letter = ["N", "E", "S", "W"]
             .get((degrees / 90.0).round() as usize % 4)
             .copied()
@@ -78,13 +82,15 @@ fn scales(canvas: &mut Canvas, strips: &WindStrips, picture: &WindsPicture) {
     }
     let factor = per_metre_per_second(picture.units.speed);
     let count = (view.fastest / view.speed_step).round() as u32;
+    let apart = speed.width() / f64::from(count.max(1));
+    let stride = (26.0 / apart.max(1.0)).ceil() as u32;
     for line in 0..=count {
         let value = f64::from(line) * view.speed_step;
         let x = strips.speed_point(0.0, value).x;
         upright(canvas, &speed, x);
         let text = wording::fixed(value * factor, 0);
         let at = Point::new(x, foot);
-        if line == 0 || canvas.is_free(&label.extent(at, &text).grown(2.0)) {
+        if line % stride == 0 && canvas.is_free(&label.extent(at, &text).grown(2.0)) {
             canvas.text(at, &text, label);
         }
     }

@@ -220,6 +220,32 @@ fn everything_on_the_page_has_a_node() {
 }
 
 #[test]
+fn the_lowest_kilometres_are_drawn_larger_and_paper_moved_by_hand_returns() {
+    let (_folder, mut window) = usual();
+    open_page(&mut window);
+    let gap = |window: &Window| {
+        let place = |km: &str| {
+            let label = format!("Wind at {km} km: ");
+            let mut nodes = window.query_all_by_label_contains(&label);
+            nodes.next().map(|node| node.rect().center())
+        };
+        (place("1.0").unwrap() - place("3.0").unwrap()).length()
+    };
+    let all = gap(&window);
+    window.get_by_label("3 km").click();
+    window.run();
+    let lowest = gap(&window);
+    assert!(lowest > 1.3 * all, "{lowest} after {all}");
+    tab_to(&mut window, "Hodograph of ");
+    window.key_press(Key::Plus);
+    window.run();
+    assert!(gap(&window) > 1.1 * lowest);
+    window.key_press(Key::Num0);
+    window.run();
+    assert!((gap(&window) - lowest).abs() < 0.5);
+}
+
+#[test]
 fn without_wind_one_sentence() {
     let folder = tempfile::tempdir().unwrap();
     let mut session = Session::new(dewbound_session::Config::within(folder.path()));

@@ -3,12 +3,16 @@
 //! `cargo run -p dewbound-chart --example picture -- DIRECTORY`
 
 use dewbound_chart::{
-    Bracket, BracketGrade, CandidateMark, Geometry, HeightScale, Palette, ParcelDrawing, Picture,
-    Point, Rect, SurfaceMark, SurfaceMarks, View, background, foreground, svg,
+    Bracket, BracketGrade, CandidateMark, Geometry, HeightScale, HodographGeometry, HodographView,
+    Palette, ParcelDrawing, Picture, Point, Rect, StripsView, SurfaceMark, SurfaceMarks, View,
+    WINDS_TOP, WindStrips, WindsPicture, background, foreground, hodograph, svg, wind_strips,
 };
 use dewbound_sounding::{
     Amendments, Daylight, Numbers, Reach,
-    thermo::{Air, Method, Pressure, Temperature},
+    thermo::{
+        Air, Method, Pressure, StormMotion, Temperature, Vector, WindLevel, WindNumbers,
+        WindProfile,
+    },
 };
 
 #[path = "../testing/invented.rs"]
@@ -101,6 +105,68 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
         ];
         for (name, palette) in [("light", Palette::Light), ("dark", Palette::Dark)] {
             let path = format!("{directory}/{width}x{height}-{name}.svg");
+            std::fs::write(path, svg(frame, &scenes, palette))?;
+        }
+    }
+    winds(&directory)?;
+    Ok(())
+}
+
+/// The page of the winds, both drawings in one file.
+fn winds(directory: &str) -> Result<(), Box<dyn std::error::Error>> {
+    let levels = [
+        (0.0, 150.0, 6.0),
+        (300.0, 160.0, 11.0),
+        (700.0, 180.0, 14.0),
+        (1_200.0, 200.0, 15.0),
+        (2_000.0, 215.0, 17.0),
+        (3_200.0, 228.0, 20.0),
+        (5_000.0, 238.0, 26.0),
+        (7_000.0, 246.0, 33.0),
+        (9_500.0, 252.0, 40.0),
+        (12_500.0, 255.0, 46.0),
+    ];
+    let profile = WindProfile::new(levels.map(|(height, direction, speed)| WindLevel {
+        height,
+        pressure: None,
+        wind: Vector::from_wind(direction, speed),
+    }))
+    .ok_or("two levels make a profile")?;
+    let motion = StormMotion {
+        right: Vector::from_wind(254.0, 13.5),
+        left: Vector::from_wind(211.0, 21.0),
+        mean: Vector::from_wind(228.0, 18.0),
+    };
+    let numbers = WindNumbers {
+        motion: Some(motion),
+        motion_used: Some(motion.right),
+        ..WindNumbers::default()
+    };
+    for (left, right, height) in [
+        (140.0, 290.0, 260.0),
+        (230.0, 420.0, 420.0),
+        (320.0, 700.0, 640.0),
+    ] {
+        let picture = WindsPicture {
+            stamp: Some("INVENTED DATA"),
+            cursor: (right > 500.0).then_some(4_300.0),
+            ..WindsPicture::new(&profile, &numbers)
+        };
+        let strips = WindStrips::new(
+            Rect::new(0.0, 0.0, left, height),
+            StripsView::fit(&profile, picture.units.speed, WINDS_TOP),
+        );
+        let plane = HodographGeometry::new(
+            Rect::new(left, 0.0, right, height),
+            HodographView::fit(&profile, &numbers, None, WINDS_TOP),
+        );
+        let scenes = [
+            &wind_strips(&strips, &picture),
+            &hodograph(&plane, &picture).scene,
+        ];
+        let frame = Rect::new(0.0, 0.0, left + right, height);
+        for (name, palette) in [("light", Palette::Light), ("dark", Palette::Dark)] {
+            let path = format!("{directory}/winds-{}-{name}.svg", left + right);
             std::fs::write(path, svg(frame, &scenes, palette))?;
         }
     }

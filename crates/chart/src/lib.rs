@@ -5,6 +5,8 @@
 //! dragged. Both are a [`Scene`]: a list of primitives already clipped, dashed and hatched by rule, so that the desk,
 //! SVG, PDF and PNG draw the same picture. A scene names what a thing *is* ([`Ink`]); a [`Palette`] says its colour.
 //!
+//! The page of the winds ([`hodograph`], [`wind_strips`]) is two more scenes, with geometries of their own.
+//!
 //! Deliberately absent: windows, pointers, fonts, findings, and any number that is not already in the profile or the ascent.
 //!
 //! ```
@@ -38,6 +40,7 @@ mod scene;
 mod surface;
 mod svg;
 mod winds;
+mod winds_page;
 mod wording;
 
 pub use background::*;
@@ -50,3 +53,4 @@ pub use palette::*;
 pub use readout::*;
 pub use scene::*;
 pub use svg::*;
+pub use winds_page::*;

@@ -56,9 +56,9 @@ const fn light(ink: Ink) -> Colour {
     match ink {
         Ink::Paper | Ink::OnMark => rgb(0xfbf7ee),
         Ink::Edge | Ink::Label | Ink::Wind | Ink::LevelMark => rgb(0x2b2a27),
-        Ink::QuietLabel | Ink::HeightScale | Ink::Cursor => rgb(0x5d5a53),
+        Ink::QuietLabel | Ink::HeightScale | Ink::Cursor | Ink::HelicityHatch => rgb(0x5d5a53),
         Ink::Isotherm => rgb(0x968a7c),
-        Ink::Isobar => rgb(0x908b82),
+        Ink::Isobar | Ink::WindRing => rgb(0x908b82),
         Ink::FreezingIsotherm => rgb(0x4d6f8f),
         Ink::DryAdiabat => rgb(0xb0834f),
         Ink::MoistAdiabat => rgb(0x6e9380),
@@ -99,9 +99,9 @@ const fn dark(ink: Ink) -> Colour {
     match ink {
         Ink::Paper | Ink::OnMark => rgb(0x15181c),
         Ink::Edge | Ink::Label | Ink::Wind | Ink::LevelMark => rgb(0xe8e4da),
-        Ink::QuietLabel | Ink::HeightScale | Ink::Cursor => rgb(0xaba89f),
+        Ink::QuietLabel | Ink::HeightScale | Ink::Cursor | Ink::HelicityHatch => rgb(0xaba89f),
         Ink::Isotherm => rgb(0x6d675e),
-        Ink::Isobar => rgb(0x6c6a66),
+        Ink::Isobar | Ink::WindRing => rgb(0x6c6a66),
         Ink::FreezingIsotherm => rgb(0x84a9cc),
         Ink::DryAdiabat => rgb(0x7f6542),
         Ink::MoistAdiabat => rgb(0x4f7767),
@@ -174,10 +174,12 @@ mod tests {
     }
 
     /// Inks never used for text.
-    const LINES: [Ink; 14] = [
+    const LINES: [Ink; 16] = [
         Ink::ReceivedTemperature,
         Ink::ReceivedDewpoint,
         Ink::Edge,
+        Ink::WindRing,
+        Ink::HelicityHatch,
         Ink::Isotherm,
         Ink::FreezingIsotherm,
         Ink::Isobar,

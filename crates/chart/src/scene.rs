@@ -197,6 +197,10 @@ pub enum Ink {
     LevelMark,
     /// Wind.
     Wind,
+    /// Rings and lines that wind is read against.
+    WindRing,
+    /// Hatching of storm-relative helicity.
+    HelicityHatch,
     /// A finding's bracket.
     Bracket(BracketGrade),
     /// The number inside a filled mark ([`Ink::Bracket`] or [`Ink::Handle`] behind it).
@@ -273,7 +277,7 @@ pub fn text_box(at: Point, anchor: Anchor, text: &str, size: f64) -> Rect {
 
 impl Ink {
     /// Every ink, so that palettes and painters can be checked against all of them.
-    pub const ALL: [Self; 44] = [
+    pub const ALL: [Self; 46] = [
         Self::Paper,
         Self::Edge,
         Self::Isotherm,
@@ -301,6 +305,8 @@ impl Ink {
         Self::CinHatch,
         Self::LevelMark,
         Self::Wind,
+        Self::WindRing,
+        Self::HelicityHatch,
         Self::Bracket(BracketGrade::Informative),
         Self::Bracket(BracketGrade::Doubtful),
         Self::Bracket(BracketGrade::Erroneous),
@@ -324,7 +330,12 @@ impl Ink {
 impl Scene {
     /// Whether every number is finite and everything lies inside the frame (half a point of slack).
     pub fn is_sound(&self, geometry: &Geometry) -> bool {
-        let frame = geometry.frame().grown(0.5);
+        self.lies_within(geometry.frame())
+    }
+
+    /// The same for any frame.
+    pub fn lies_within(&self, frame: Rect) -> bool {
+        let frame = frame.grown(0.5);
         self.items.iter().all(|item| match item {
             Item::Polyline { points, .. } => {
                 points.len() >= 2 && points.iter().all(|&p| frame.contains(p))

@@ -8,10 +8,11 @@ use crate::files::{Files, Picked, dropped, typed_paths};
 use crate::layout::{Layout, Side};
 use crate::preferences::{self, Preferences};
 use crate::theme::Theme;
-use crate::view::{DialogBox, Gesture, Previewed, View};
+use crate::view::{DialogBox, Gesture, Page, Previewed, View};
+use crate::winds_frame::WindsFrame;
 use crate::{
     chart_frame, chart_keys, chart_view, dialogs, findings, fonts, handle, input, keys, menu,
-    numbers, response, status, title, tray, verdict,
+    motion, numbers, response, status, title, tray, verdict, winds_frame, winds_view,
 };
 use dewbound_session::chart::{SpeedUnit, TemperatureUnit};
 use dewbound_session::{Action, Command, Item, Session, SurfaceQuantity, wording};
@@ -30,6 +31,7 @@ pub(crate) struct Paint<'a> {
     pub now: Timestamp,
     pub layout: &'a Layout,
     pub chart: Option<&'a ChartFrame>,
+    pub winds: Option<&'a WindsFrame>,
 }
 
 impl Paint<'_> {
@@ -52,6 +54,7 @@ pub struct Desk {
     asks: Asks,
     /// Geometry of the frame last painted; pointer and keys are read against it.
     pub(crate) seen: Option<ChartFrame>,
+    pub(crate) winds_seen: Option<WindsFrame>,
     pub(crate) response_seen: Option<response::Seen>,
     layout: Layout,
     now: Timestamp,
@@ -116,6 +119,7 @@ impl Desk {
             caches: Caches::default(),
             asks: Asks::default(),
             seen: None,
+            winds_seen: None,
             response_seen: None,
             layout: Layout::of(ctx.content_rect()),
             now: clock(),
@@ -161,6 +165,7 @@ impl Desk {
         }
         handle::keys(ctx, self);
         chart_keys::keys(ctx, self);
+        motion::keys(ctx, self);
         input::pointer(ctx, self);
         self.focus_for_hint(ctx);
         let held = ctx.input(|input| input.pointer.any_down() || !input.keys_down.is_empty())
@@ -171,7 +176,13 @@ impl Desk {
         self.session.hold_order(held);
         self.preview(ctx);
         self.layout = Layout::of(ctx.content_rect());
-        self.seen = self.session.current().map(|item| {
+        let page = self.view.page;
+        let shown = |wanted| self.session.current().filter(|_| page == wanted);
+        self.winds_seen = shown(Page::Winds).and_then(|item| {
+            let before = self.winds_seen.as_ref();
+            winds_frame::prepare(ctx, item, &self.view, self.layout.page(), before)
+        });
+        self.seen = shown(Page::Chart).map(|item| {
             chart_frame::prepare(
                 ctx,
                 item,
@@ -303,6 +314,17 @@ impl Desk {
                     ctx.copy_text(numbers::as_text(item, self.view.units));
                 }
             }
+            Action::CopyWinds => {
+                if let Some(item) = self.session.current() {
+                    let unit = self.view.units.speed;
+                    ctx.copy_text(dewbound_session::winds_as_text(item, unit));
+                }
+            }
+            Action::ShowChart => self.turn_to(ctx, Page::Chart),
+            Action::ShowWinds => self.turn_to(ctx, Page::Winds),
+            Action::WindsToTwelve => self.winds_up_to(12_000.0),
+            Action::WindsToSix => self.winds_up_to(6_000.0),
+            Action::WindsToThree => self.winds_up_to(3_000.0),
             Action::ZoomIn => self.zoom(ctx, self.view.zoom + 0.1),
             Action::ZoomOut => self.zoom(ctx, self.view.zoom - 0.1),
             Action::ZoomReset => self.zoom(ctx, 1.0),
@@ -327,6 +349,25 @@ impl Desk {
                 }
             }
         }
+    }
+
+    /// Shows a page; what is read on it gets the keyboard.
+    fn turn_to(&mut self, ctx: &Context, page: Page) {
+        if self.view.page == page || self.dragging() {
+            return;
+        }
+        self.view.page = page;
+        let id = match page {
+            Page::Chart => chart_frame::chart_id(),
+            Page::Winds => winds_frame::strips_id(),
+        };
+        ctx.memory_mut(|memory| memory.request_focus(id));
+    }
+
+    /// Draws the winds up to a height; papers moved by hand fit it again.
+    fn winds_up_to(&mut self, top: f64) {
+        self.view.winds_top = top;
+        self.view.hodographs.clear();
     }
 
     fn zoom(&mut self, ctx: &Context, zoom: f32) {
@@ -364,7 +405,7 @@ impl Desk {
     pub(crate) fn dragging(&self) -> bool {
         matches!(
             self.view.gesture,
-            Some(Gesture::Handle { .. } | Gesture::Response { .. })
+            Some(Gesture::Handle { .. } | Gesture::Response { .. } | Gesture::Motion { .. })
         )
     }
 
@@ -391,6 +432,7 @@ impl Desk {
             now: self.now,
             layout: &self.layout,
             chart: self.seen.as_ref(),
+            winds: self.winds_seen.as_ref(),
         };
         let layout = &self.layout;
         // Software renderers pay for every pixel painted twice, so the desk shows only where no panel lies.
@@ -404,17 +446,15 @@ impl Desk {
         self.panel(ui, layout.title, "title", |ui| {
             title::title_ui(ui, &paint, asks)
         });
-        self.panel(ui, layout.chart, "chart", |ui| {
-            chart_view::chart_ui(ui, &paint, asks);
-        });
-        self.panel(ui, layout.sentence, "sentence", |ui| {
-            response::sentence_ui(ui, &paint, asks);
-        });
-        let seen = layout.response.and_then(|rect| {
-            self.panel(ui, rect, "response", |ui| {
-                response::response_ui(ui, &paint, asks)
-            })
-        });
+        let seen = match self.view.page {
+            Page::Chart => self.chart_page(ui, &paint, asks),
+            Page::Winds => {
+                self.panel(ui, layout.page(), "winds", |ui| {
+                    winds_view::winds_ui(ui, &paint, asks);
+                });
+                None
+            }
+        };
         match layout.side {
             Side::Stacked { findings, numbers } => {
                 self.panel(ui, findings, "findings", |ui| {
@@ -446,6 +486,22 @@ impl Desk {
         dialogs::drop_ui(ui, &paint);
         status::timing_ui(ui, &paint);
         seen
+    }
+
+    /// The chart and the response under it.
+    fn chart_page(&self, ui: &mut Ui, paint: &Paint, asks: &mut Asks) -> Option<response::Seen> {
+        let layout = &self.layout;
+        self.panel(ui, layout.chart, "chart", |ui| {
+            chart_view::chart_ui(ui, paint, asks);
+        });
+        self.panel(ui, layout.sentence, "sentence", |ui| {
+            response::sentence_ui(ui, paint, asks);
+        });
+        layout.response.and_then(|rect| {
+            self.panel(ui, rect, "response", |ui| {
+                response::response_ui(ui, paint, asks)
+            })
+        })
     }
 
     /// A panel in its rectangle; what it can't show is cut off there and nowhere else.

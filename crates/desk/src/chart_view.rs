@@ -269,7 +269,7 @@ fn hint_ui(ui: &mut Ui, paint: &Paint, frame: &ChartFrame) {
 }
 
 /// What stands where the chart would be while there is nothing to show.
-fn empty_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
+pub(crate) fn empty_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
     ui.vertical_centered(|ui| {
         ui.add_space(ui.available_height() * 0.35);
         if paint.session.reading() > 0 {

@@ -2,7 +2,7 @@
 
 use crate::app::Paint;
 use crate::ask::{Ask, Asks};
-use crate::keys::{CHART_KEYS, HANDLE_KEYS};
+use crate::keys::{CHART_KEYS, HANDLE_KEYS, WINDS_KEYS};
 use crate::marks::{mark_space, weight_mark};
 use crate::menu::dismiss_ui;
 use crate::theme::bold;
@@ -74,6 +74,7 @@ fn keys_ui(ui: &mut Ui, asks: &mut Asks) {
             owned(HANDLE_KEYS),
         );
         group(ui, "On the chart", owned(CHART_KEYS));
+        group(ui, "On the page of the winds", owned(WINDS_KEYS));
         group(
             ui,
             "Anywhere",

@@ -3,8 +3,10 @@
 use crate::app::Desk;
 use crate::chart_frame::{chart_id, to_point};
 use crate::handle::{handle_id, quantity_of};
+use crate::motion;
 use crate::response::response_id;
 use crate::view::Gesture;
+use crate::winds_frame::plane_id;
 use dewbound_session::{Command, SurfaceQuantity};
 use eframe::egui::{Context, Pos2};
 
@@ -32,12 +34,15 @@ pub(crate) fn pointer(ctx: &Context, desk: &mut Desk) {
     }
     if !down && let Some(gesture) = desk.view.gesture.take() {
         match gesture {
-            Gesture::Handle { .. } | Gesture::Response { .. } => desk.apply(Command::EndGesture),
-            Gesture::Pan | Gesture::GivenUp => {}
+            Gesture::Handle { .. } | Gesture::Response { .. } | Gesture::Motion { .. } => {
+                desk.apply(Command::EndGesture);
+            }
+            Gesture::Pan | Gesture::PanWinds | Gesture::GivenUp => {}
         }
     }
     scroll(ctx, desk);
     pick(ctx, desk);
+    motion::wheel_and_double_click(ctx, desk);
 }
 
 /// A double click lifts a parcel from that level too.
@@ -68,7 +73,9 @@ fn take_hold(ctx: &Context, desk: &mut Desk, position: Pos2) {
     let Some(item) = desk.session.current() else {
         return;
     };
-    if hit(ctx, chart_id())
+    if hit(ctx, plane_id()) {
+        motion::take_hold(ctx, desk, position);
+    } else if hit(ctx, chart_id())
         && let Some(seen) = &desk.seen
     {
         match seen.touch.handle_at(to_point(position)) {
@@ -143,6 +150,8 @@ fn move_to(ctx: &Context, desk: &mut Desk, position: Pos2) {
                 desk.view.charts.insert(seen.item, view);
             }
         }
+        Some(Gesture::Motion { grab_ms }) => motion::drag_to(ctx, desk, position, grab_ms),
+        Some(Gesture::PanWinds) => motion::pan(ctx, desk),
         Some(Gesture::GivenUp) | None => {}
     }
 }

@@ -93,6 +93,31 @@ pub(crate) const CHART_KEYS: &[(&str, &str)] = &[
     ("Tab", "To the next thing; Shift+Tab back"),
 ];
 
+/// The same for the page of the winds.
+pub(crate) const WINDS_KEYS: &[(&str, &str)] = &[
+    (
+        "← → ↑ ↓",
+        "On the ring: move the storm motion by 0.1 of the displayed unit (Shift 0.5, Ctrl 1.0)",
+    ),
+    (
+        "240/35",
+        "On the ring: direction and speed as typed; Enter sets them",
+    ),
+    ("Home, Esc", "On the ring: back to the estimate"),
+    (
+        "↑ ↓",
+        "On the strips: read the wind 100 m higher or lower (Shift 500 m, Ctrl 1 km)",
+    ),
+    (
+        "← → ↑ ↓, + −, 0",
+        "On the hodograph: move the paper, closer and farther, all of it again",
+    ),
+    (
+        "Double click",
+        "On the hodograph: the storm motion goes there",
+    ),
+];
+
 #[cfg(test)]
 mod tests {
     use super::*;

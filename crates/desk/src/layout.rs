@@ -142,6 +142,13 @@ impl Layout {
         }
     }
 
+    /// The whole of the centre below the title, for a page that takes it all.
+    pub fn page(&self) -> Rect {
+        self.chart
+            .union(self.sentence)
+            .union(self.response.unwrap_or(self.sentence))
+    }
+
     /// The strips between the panels: all that shows of the desk behind them.
     pub fn gaps(&self) -> Vec<Rect> {
         let (top, bottom) = (self.bar.bottom(), self.verdict.top());

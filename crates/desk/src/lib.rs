@@ -28,6 +28,7 @@ mod keys;
 mod layout;
 mod marks;
 mod menu;
+mod motion;
 mod numbers;
 mod preferences;
 mod quantity;
@@ -42,6 +43,9 @@ mod tray;
 mod units;
 mod verdict;
 mod view;
+mod winds_frame;
+mod winds_list;
+mod winds_view;
 
 pub use app::Desk;
 pub use args::{Args, Graphics, ThemeName};
@@ -61,7 +65,8 @@ pub fn interface_strings() -> Vec<String> {
             .map(str::to_owned),
         );
     }
-    for (keys, what) in keys::HANDLE_KEYS.iter().chain(keys::CHART_KEYS) {
+    let keys = keys::HANDLE_KEYS.iter().chain(keys::CHART_KEYS);
+    for (keys, what) in keys.chain(keys::WINDS_KEYS) {
         strings.extend([(*keys).to_owned(), (*what).to_owned()]);
     }
     strings

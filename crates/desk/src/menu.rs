@@ -6,7 +6,7 @@ use crate::marks::{mark_space, weight_mark};
 use crate::theme::bold;
 use crate::tray;
 use crate::units;
-use crate::view::DialogBox;
+use crate::view::{DialogBox, Page};
 use dewbound_session::chart::{SpeedUnit, TemperatureUnit};
 use dewbound_session::{ACTIONS, Action, Menu, MessageId, Weight, wording};
 use eframe::egui::{
@@ -21,6 +21,12 @@ const MENUS: [(Menu, &str); 5] = [
     (Menu::Help, "Help"),
 ];
 
+/// Pages of the centre.
+const PAGES: [(Action, Page); 2] = [
+    (Action::ShowChart, Page::Chart),
+    (Action::ShowWinds, Page::Winds),
+];
+
 /// The bar.
 pub(crate) fn bar_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
     let rect = ui.max_rect().shrink2(vec2(6.0, 1.0));
@@ -29,6 +35,7 @@ pub(crate) fn bar_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
             for (menu, name) in MENUS {
                 ui.menu_button(name, |ui| menu_ui(ui, paint, menu, asks));
             }
+            pages_ui(ui, paint, asks);
             if paint.layout.tray.is_none() {
                 let label = format!("Tray: {}", tray::waiting(paint));
                 ui.menu_button(label, |ui| {
@@ -42,6 +49,23 @@ pub(crate) fn bar_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
             });
         });
     });
+}
+
+/// Which page the centre shows.
+fn pages_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
+    ui.separator();
+    for (action, page) in PAGES {
+        let chosen = paint.view.page == page;
+        let text = action.declaration().label;
+        let text = if chosen {
+            bold(text)
+        } else {
+            RichText::new(text)
+        };
+        let response = ui.add(Button::selectable(chosen, text));
+        asked(response, paint, action, asks);
+    }
+    ui.separator();
 }
 
 fn menu_ui(ui: &mut Ui, paint: &Paint, menu: Menu, asks: &mut Asks) {
@@ -96,13 +120,19 @@ fn entry_ui(ui: &mut Ui, paint: &Paint, action: Action, asks: &mut Asks) -> bool
     let chosen = match action {
         Action::ToggleTheme => paint.view.theme == crate::ThemeName::Dark,
         Action::ToggleTiming => paint.view.show_timing,
+        Action::WindsToTwelve => paint.view.winds_top == 12_000.0,
+        Action::WindsToSix => paint.view.winds_top == 6_000.0,
+        Action::WindsToThree => paint.view.winds_top == 3_000.0,
+        Action::ShowChart => paint.view.page == Page::Chart,
+        Action::ShowWinds => paint.view.page == Page::Winds,
         _ => false,
     };
     let response = ui.add_enabled(can.is_ok(), button.selected(chosen));
     asked(response, paint, action, asks)
 }
 
-fn asked(response: Response, paint: &Paint, action: Action, asks: &mut Asks) -> bool {
+/// What every button of an action does: says what it is for, and asks for it.
+pub(crate) fn asked(response: Response, paint: &Paint, action: Action, asks: &mut Asks) -> bool {
     let declaration = action.declaration();
     asks.describe(&response, || declaration.tooltip.to_owned());
     let clicked = response.clicked();

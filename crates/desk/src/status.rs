@@ -3,6 +3,7 @@
 use crate::app::Paint;
 use crate::ask::Asks;
 use crate::handle;
+use crate::motion;
 use crate::theme::bold;
 use crate::view::Gesture;
 use dewbound_session::SurfaceQuantity;
@@ -29,6 +30,11 @@ pub(crate) fn status_ui(ui: &mut Ui, paint: &Paint, asks: &Asks) {
 }
 
 fn said(paint: &Paint, asks: &Asks) -> String {
+    if matches!(paint.view.gesture, Some(Gesture::Motion { .. }))
+        && let Some(item) = paint.item()
+    {
+        return format!("{} · Esc restores", motion::line(paint, item));
+    }
     let dragged = match paint.view.gesture {
         Some(Gesture::Handle { quantity, .. }) => Some(quantity),
         Some(Gesture::Response { .. }) => Some(SurfaceQuantity::Dewpoint),

@@ -3,8 +3,9 @@
 use crate::args::ThemeName;
 use crate::preferences::Preferences;
 use crate::timing::Timing;
-use dewbound_session::chart::{Units, View as ChartView};
+use dewbound_session::chart::{HodographView, Units, View as ChartView, WINDS_TOP};
 use dewbound_session::sounding::Parcel;
+use dewbound_session::thermo::Vector;
 use dewbound_session::{Item, ItemId, Preview, RepairId, Revision, SurfaceQuantity};
 use eframe::egui;
 use std::collections::HashMap;
@@ -17,6 +18,16 @@ pub(crate) enum Tab {
     Findings,
     /// Numbers.
     Numbers,
+}
+
+/// What the centre of the window shows.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
+pub(crate) enum Page {
+    /// The skew-T chart and the response.
+    #[default]
+    Chart,
+    /// Wind against height and the hodograph.
+    Winds,
 }
 
 /// A box over the window.
@@ -51,8 +62,15 @@ pub(crate) enum Gesture {
         /// K.
         grab_k: f64,
     },
+    /// Dragging the storm motion; `grab_ms` is the motion less what is under the pointer when it was taken.
+    Motion {
+        /// m/s, towards east and north.
+        grab_ms: Vector,
+    },
     /// Dragging the paper.
     Pan,
+    /// Dragging the hodograph's paper.
+    PanWinds,
     /// Given up with Esc; nothing until the button is up.
     GivenUp,
 }
@@ -88,12 +106,22 @@ pub(crate) struct View {
     pub zoom: f32,
     /// Units shown.
     pub units: Units,
+    /// What the centre shows.
+    pub page: Page,
     /// Which tab.
     pub tab: Tab,
     /// Whose path is drawn; `None`: the one that matters for the sounding as received.
     pub parcel: Option<Parcel>,
     /// Part of the diagram looked at, where it isn't the fitting one.
     pub charts: HashMap<ItemId, ChartView>,
+    /// Part of the hodograph looked at, where it isn't the fitting one.
+    pub hodographs: HashMap<ItemId, HodographView>,
+    /// The winds are drawn up to here, m.
+    pub winds_top: f64,
+    /// Height at which the winds are read, from the keyboard, m.
+    pub height: Option<f64>,
+    /// The storm motion being typed.
+    pub motion_typed: Option<String>,
     /// The open card.
     pub card: Option<(ItemId, usize)>,
     /// The repair being looked at.
@@ -123,9 +151,14 @@ impl View {
             theme: preferences.theme,
             zoom: preferences.zoom,
             units: preferences.units,
+            page: Page::default(),
             tab: Tab::default(),
             parcel: None,
             charts: HashMap::new(),
+            hodographs: HashMap::new(),
+            winds_top: WINDS_TOP,
+            height: None,
+            motion_typed: None,
             card: None,
             previewed: None,
             typing: None,

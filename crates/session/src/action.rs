@@ -139,9 +139,11 @@ actions! {
     Edit session Redo "Redo" "Make the undone change again." ctrl_shift("Z");
     Edit session ResetDewpoint "Received dew point" "Put the surface dew point back to the received value." None;
     Edit session ResetTemperature "Received temperature" "Put the surface temperature back to the received value." None;
+    Edit session ResetMotion "Estimated motion" "Put the storm motion back to the estimate." None;
     Edit session ClearAmendments "Remove all amendments" "Go back to the sounding as received. Can be undone." None;
     Edit window CopyLine "Copy line" "Copy station, time, verdict, CAPE range, reason and caution as one line." ctrl_shift("C");
     Edit window CopyNumbers "Copy numbers" "Copy the table of numbers as text." None;
+    Edit window CopyWinds "Copy winds" "Copy the wind numbers as text." None;
     Sounding session SelectNext "Next sounding" "Open the next sounding of the tray." plain("Page down");
     Sounding session SelectPrevious "Previous sounding" "Open the sounding above in the tray." plain("Page up");
     Sounding session ReachDefault "Reach: default" "Mixed by day with a mixed layer, otherwise level." None;
@@ -158,6 +160,11 @@ actions! {
     Sounding session Contaminated "Contaminated" "The sounding is not to be believed at all." None;
     Sounding session NoVerdict "No verdict" "Take the drafted verdict back." None;
     Sounding session Decide "Decide" "Keep this verdict in the ledger, with reasons and initials." ctrl("Enter");
+    View window ShowChart "Chart" "Show the chart and the response." ctrl("1");
+    View window ShowWinds "Winds" "Show wind against height, the hodograph and the storm motion." ctrl("2");
+    View window WindsToTwelve "Winds up to 12 km" "Draw the winds from the ground to 12 km." None;
+    View window WindsToSix "Winds up to 6 km" "Draw the winds of the lowest 6 km, larger." None;
+    View window WindsToThree "Winds up to 3 km" "Draw the winds of the lowest 3 km, larger still." None;
     View window ZoomIn "Larger" "Make everything larger." ctrl("+");
     View window ZoomOut "Smaller" "Make everything smaller." ctrl("-");
     View window ZoomReset "Normal size" "Show everything at its normal size." ctrl("0");

@@ -3,7 +3,7 @@
 use crate::history::Joining;
 use crate::results::Effort;
 use crate::sounding::{Amendments, Entry};
-use crate::thermo::{Pressure, Temperature};
+use crate::thermo::{Pressure, Temperature, Vector};
 use crate::trust::{with_repair, without_repair};
 use crate::wording::celsius;
 use crate::{
@@ -13,6 +13,9 @@ use crate::{
 
 /// What a surface value may be, K: beyond every value ever measured at the ground, so beyond it is a slip of the hand.
 const USABLE: std::ops::RangeInclusive<f64> = 173.15..=338.15;
+
+/// Faster than any storm has moved, m/s: beyond it is a slip of the hand.
+const FASTEST_MOTION: f64 = 100.0;
 
 /// Why a change was refused, and what to do instead.
 type Refusal = (String, &'static str);
@@ -90,10 +93,15 @@ impl Session {
                 Ok(())
             }),
             Command::SetStormMotion(motion) => {
-                let motion = motion.filter(|motion| motion.u.is_finite() && motion.v.is_finite());
-                self.edit(|_, document| {
-                    document.storm_motion_ms = motion.map(|motion| [motion.u, motion.v]);
-                    Ok(())
+                self.edit(|_, document| set_motion(document, motion))
+            }
+            Command::NudgeStormMotion { by, repeat } => {
+                self.edit_joining(Some(Joining::Motion), repeat, |item, document| {
+                    let now = document
+                        .storm_motion()
+                        .or(item.results().further.winds.motion_used)
+                        .unwrap_or_default();
+                    set_motion(document, Some(now + by))
                 })
             }
 
@@ -299,6 +307,19 @@ impl Session {
         }
         self.items.retain(|item| item.id != id);
     }
+}
+
+/// Sets the storm motion, or lets it go.
+fn set_motion(document: &mut Document, motion: Option<Vector>) -> Result<(), Refusal> {
+    // NaN is below no limit.
+    if !motion.is_none_or(|motion| motion.speed() <= FASTEST_MOTION) {
+        return Err((
+            "no storm moves like this".to_owned(),
+            "Give a motion of at most 100 m/s",
+        ));
+    }
+    document.storm_motion_ms = motion.map(|motion| [motion.u, motion.v]);
+    Ok(())
 }
 
 fn no_value(quantity: SurfaceQuantity) -> Refusal {

@@ -82,6 +82,13 @@ pub enum Command {
     PickLevel(Option<Pressure>),
     /// Measure helicity against this storm motion; `None`: against the estimated one. Not finite: refused.
     SetStormMotion(Option<Vector>),
+    /// Move the storm motion by so much (m/s): from the one set, else from the estimated one, else from none.
+    NudgeStormMotion {
+        /// By how much.
+        by: Vector,
+        /// A repetition of a key held down: joins the undo step before it.
+        repeat: bool,
+    },
 
     /// One step back.
     Undo,

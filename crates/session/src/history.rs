@@ -7,6 +7,8 @@ use crate::{Document, SurfaceQuantity};
 pub(crate) enum Joining {
     /// A key held down on a handle.
     Nudge(SurfaceQuantity),
+    /// A key held down on the storm motion.
+    Motion,
     /// Typing reasons.
     Reasons,
 }

@@ -53,6 +53,7 @@ mod session;
 mod standing;
 mod tray;
 mod wake;
+mod winds;
 pub mod wording;
 
 pub use action::*;
@@ -71,6 +72,7 @@ pub use results::*;
 pub use session::*;
 pub use standing::*;
 pub use tray::*;
+pub use winds::*;
 
 pub use dewbound_bounds as bounds;
 pub use dewbound_chart as chart;

@@ -10,7 +10,12 @@ impl Session {
     /// Whether an action can be done now; `Err` says why not, for the tooltip.
     pub fn can(&self, action: Action) -> Result<(), String> {
         let declaration = action.declaration();
-        if declaration.window && !matches!(action, Action::CopyLine | Action::CopyNumbers) {
+        if declaration.window
+            && !matches!(
+                action,
+                Action::CopyLine | Action::CopyNumbers | Action::CopyWinds
+            )
+        {
             return Ok(());
         }
         let item = self.current().ok_or("no sounding is open")?;
@@ -32,6 +37,10 @@ impl Session {
             Action::ResetTemperature => need(
                 document.surface(SurfaceQuantity::Temperature).is_some(),
                 "it is the received temperature",
+            ),
+            Action::ResetMotion => need(
+                document.storm_motion().is_some(),
+                "it is the estimated motion",
             ),
             Action::ClearAmendments => need(
                 !document.amendments.entries.is_empty(),
@@ -62,6 +71,7 @@ impl Session {
             Action::Redo => Command::Redo,
             Action::ResetDewpoint => Command::ResetSurface(SurfaceQuantity::Dewpoint),
             Action::ResetTemperature => Command::ResetSurface(SurfaceQuantity::Temperature),
+            Action::ResetMotion => Command::SetStormMotion(None),
             Action::ClearAmendments => Command::ClearAmendments,
             Action::SelectNext => Command::SelectNext,
             Action::SelectPrevious => Command::SelectPrevious,
@@ -87,6 +97,12 @@ impl Session {
             | Action::Quit
             | Action::CopyLine
             | Action::CopyNumbers
+            | Action::CopyWinds
+            | Action::ShowChart
+            | Action::ShowWinds
+            | Action::WindsToTwelve
+            | Action::WindsToSix
+            | Action::WindsToThree
             | Action::ZoomIn
             | Action::ZoomOut
             | Action::ZoomReset

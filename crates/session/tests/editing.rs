@@ -5,7 +5,7 @@ mod common;
 
 use common::{Desk, moist_surface};
 use dewbound_session::ledger::Verdict;
-use dewbound_session::sounding::thermo::{Pressure, Temperature};
+use dewbound_session::sounding::thermo::{Pressure, Temperature, Vector};
 use dewbound_session::sounding::{Amendment, Numbers, Parcel, Reach};
 use dewbound_session::{
     Action, Command, Document, IntervalEnd, Item, RepairId, Session, SurfaceQuantity,
@@ -375,6 +375,7 @@ fn every_action_of_the_session_has_a_command_when_it_can_be_done() {
     session.apply(Command::ChooseVerdict(Some(Verdict::AcceptedAsAmended)));
     session.apply(Command::SetReasons("screen wet".to_owned()));
     session.apply(Command::SetReach(None));
+    session.apply(Command::SetStormMotion(Some(Vector { u: 10.0, v: 2.0 })));
     session.apply(Command::PickLevel(Some(Pressure::from_hpa(850.0))));
     session.apply(Command::Undo);
     for declaration in dewbound_session::ACTIONS {

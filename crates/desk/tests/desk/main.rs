@@ -10,3 +10,4 @@ mod pointer;
 mod shown;
 mod startup;
 mod support;
+mod winds;

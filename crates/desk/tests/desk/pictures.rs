@@ -69,3 +69,17 @@ fn a_finding_opened() {
             .click();
     });
 }
+
+fn winds(window: &mut Window) {
+    window.key_press_modifiers(eframe::egui::Modifiers::COMMAND, eframe::egui::Key::Num2);
+}
+
+#[test]
+fn winds_light() {
+    picture("winds-light", ThemeName::Light, winds);
+}
+
+#[test]
+fn winds_dark() {
+    picture("winds-dark", ThemeName::Dark, winds);
+}

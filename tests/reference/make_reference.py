@@ -9,12 +9,15 @@ what the tests hold the Rust code to) and where it comes from.
 """
 
 import math
+import sys
 from importlib.metadata import version
 from pathlib import Path
 
 import numpy as np
 from CoolProp.CoolProp import PropsSI
+from CoolProp.HumidAirProp import HAProps_Aux
 from earthkit.meteo.thermo import array as earthkit
+from iapws import IAPWS95
 from iapws._iapws import _Sublimation_Pressure, _Supercooled
 from scipy.integrate import quad, solve_ivp
 from scipy.optimize import brentq
@@ -35,11 +38,12 @@ def write(name, about, provenance, tolerance, columns, rows):
             out.write(f"# {line}\n")
         out.write(f"# tolerance: {tolerance}\n")
         packages = ", ".join(f"{p} {version(p)}" for p in provenance)
-        out.write(f"# made by make_reference.py on {DATE} with {packages}\n")
+        out.write(f"# made by {Path(sys.argv[0]).name} on {DATE} with {packages}\n")
         out.write(",".join(columns) + "\n")
         for row in rows:
-            assert len(row) == len(columns) and all(math.isfinite(v) for v in row), (name, row)
-            out.write(",".join(f"{v:.12g}" for v in row) + "\n")
+            # None: absent, an empty cell.
+            assert len(row) == len(columns) and all(v is None or math.isfinite(v) for v in row), (name, row)
+            out.write(",".join("" if v is None else f"{v:.12g}" for v in row) + "\n")
     print(f"{name}.csv: {len(rows)} rows")
 
 
@@ -87,25 +91,47 @@ def murphy_koop(t):
 
 def saturation():
     below = [c / 2 for c in range(-1, -71, -1)]
-    above = [0.01] + [c / 2 for c in range(1, 71)]
+    above = [c / 2 for c in range(1, 71)]
     rows = list(zip(below, supercooled_pressures(below)))
     worst = max(abs(e / murphy_koop(ZERO + c) - 1) for c, e in rows)
     # At -35 degC the two differ by the latent heat of supercooled water, which was revised in between.
     assert worst < 4e-3, worst
     print(f"   supercooled: within {worst:.1e} of Murphy & Koop")
-    rows += [(c, PropsSI("P", "T", ZERO + c, "Q", 1, "Water")) for c in above]
+    rows += [(c, IAPWS95(T=ZERO + c, x=1).P * 1e6) for c in above]
     write(
         "iapws_water",
         [
             "Saturation vapour pressure over water, pure phase.",
-            "0.01 degC and above: IAPWS-95. Below: Clausius-Clapeyron from the triple point with the enthalpy of supercooled",
+            "Above 0 degC: IAPWS-95. Below: Clausius-Clapeyron from the triple point with the enthalpy of supercooled",
             f"water, IAPWS G12-15; within {worst:.0e} of Murphy & Koop (2005).",
             "units: temperature degC, vapour pressure Pa",
         ],
-        ["CoolProp", "iapws", "scipy"],
+        ["iapws", "scipy"],
         "0.003 relative (stated by Bolton 1980 for -35..35 degC)",
         ["temperature_c", "vapour_pressure_pa"],
         sorted(rows),
+    )
+    write(
+        "coolprop_water",
+        [
+            "Saturation vapour pressure over water, pure phase: CoolProp's equation of state of water.",
+            "units: temperature degC, vapour pressure Pa",
+        ],
+        ["CoolProp"],
+        "0.003 relative (stated by Bolton 1980 for -35..35 degC)",
+        ["temperature_c", "vapour_pressure_pa"],
+        [(c, PropsSI("P", "T", ZERO + c, "Q", 1, "Water")) for c in [0.01] + [k / 4 for k in range(1, 141)]],
+    )
+    write(
+        "coolprop_ice",
+        [
+            "Sublimation pressure of ice, pure phase: CoolProp's humid air (below 0 degC its saturation is over ice).",
+            "units: temperature degC, vapour pressure Pa",
+        ],
+        ["CoolProp"],
+        "0.01 relative (Sonntag on the formula over ice in WMO-No. 8, -65..0 degC; from memory)",
+        ["temperature_c", "vapour_pressure_pa"],
+        [(c / 2, HAProps_Aux("p_ws", ZERO + c / 2, 101325, 0)[0]) for c in range(-130, 0)],
     )
     write(
         "iapws_ice",
@@ -233,35 +259,71 @@ def table_pseudoadiabat():
     )
 
 
+def lapse_rate_slope(x, y):
+    """dT/d ln p of saturated air whose condensate falls out: the AMS Glossary's pseudo-adiabatic lapse rate."""
+    cpd, cpv = 1005.7, 1870.0
+    t, p = y[0], math.exp(x)
+    w = w_of(e_sat(t), p)
+    lv = 2.501e6 - 2370.0 * (t - ZERO)
+    gamma = G * (1 + w) * (1 + lv * w / (RD * t)) / (cpd + w * cpv + lv * lv * w * (EPS + w) / (RD * t * t))
+    return [gamma * RD * tv_of(t, w) / G]
+
+
+def integrated(t, p_from, pressures):
+    """Temperatures at pressures (in the order of the way) on the pseudo-adiabat through t at p_from."""
+    out = solve_ivp(
+        lapse_rate_slope, (math.log(p_from), math.log(pressures[-1])), [t],
+        t_eval=[math.log(p) for p in pressures], method="DOP853", rtol=1e-10, atol=1e-10,
+    )
+    return out.y[0]
+
+
 def table_lapse_rate():
     """The pseudo-adiabatic lapse rate integrated directly: the same physics without eq. 39."""
-    cpd, cpv = 1005.7, 1870.0
-
-    def slope(x, y):
-        t, p = y[0], math.exp(x)
-        w = w_of(e_sat(t), p)
-        lv = 2.501e6 - 2370.0 * (t - ZERO)
-        gamma = G * (1 + w) * (1 + lv * w / (RD * t)) / (cpd + w * cpv + lv * lv * w * (EPS + w) / (RD * t * t))
-        return [gamma * RD * tv_of(t, w) / G]
-
     rows = []
-    for start in range(-10, 31, 5):
-        pressures = [p * 100.0 for p in range(950, 199, -50)]
-        out = solve_ivp(
-            slope, (math.log(1e5), math.log(200e2)), [ZERO + start], t_eval=[math.log(p) for p in pressures],
-            rtol=1e-10, atol=1e-10,
-        )
-        rows += [(ZERO + start, p, t) for p, t in zip(pressures, out.y[0])]
+    for start in range(-30, 36, 5):
+        for p_start in (1050, 1000, 850, 700, 600):
+            t0, p0 = ZERO + start, p_start * 100.0
+            theta_w = t0 if p_start == 1000 else integrated(t0, p0, [1e5])[0]
+            pressures = [p * 100.0 for p in range(1000, 99, -50) if p < p_start]
+            rows += [(p0, t0, theta_w, p, t) for p, t in zip(pressures, integrated(t0, p0, pressures))]
     write(
         "scipy_lapse_rate",
         [
             "Pseudo-adiabatic lapse rate (as in the AMS Glossary of Meteorology, from memory; cpd 1005.7, cpv 1870 J/(kg K),",
-            "L = 2.501e6 - 2370 t J/kg) integrated from saturated air at 1000 hPa. Independent of eq. 39.",
-            "units: start temperature K, pressure Pa, temperature K",
+            "L = 2.501e6 - 2370 t J/kg) integrated upward from saturated air by DOP853 at rtol 1e-10. Independent of eq. 39.",
+            "theta-w: temperature on the same pseudo-adiabat at 1000 hPa, integrated likewise.",
+            "units: pressures Pa, temperatures K",
         ],
         ["scipy"],
-        "0.2 K (error of eq. 39 against exact integration: Davies-Jones 2008)",
-        ["start_temperature_k", "pressure_pa", "temperature_k"],
+        "0.2 K for theta-w of -20..40 degC (error of eq. 39 against exact integration: Davies-Jones 2008)",
+        ["start_pressure_pa", "start_temperature_k", "theta_w_k", "pressure_pa", "temperature_k"],
+        rows,
+    )
+
+
+def table_lcl():
+    """The condensation level from its definition: constant w and theta, saturated by eq. 10."""
+    rows = []
+    for t in range(-35, 36, 5):
+        for depression in (0.5, 1, 2, 4, 7, 11, 16, 22, 30):
+            tk = ZERO + t
+            td = tk - depression
+            p = 1e5
+            w = w_of(e_sat(td), p)
+            kappa = KAPPA * (1 - 0.28 * w)
+            excess = lambda tl: math.log(e_sat(tl) / e_sat(td)) - math.log(tl / tk) / kappa
+            rows.append((p, tk, td, brentq(excess, td - 30, td, xtol=1e-11)))
+    write(
+        "scipy_lcl",
+        [
+            "LCL temperature from its definition: unsaturated air of constant mixing ratio and theta (exponent 0.2854 (1 -",
+            "0.28 w)) cools until it is saturated by eq. 10 of Bolton (1980): Brent's root. Independent of eq. 15.",
+            "units: pressure Pa, temperatures K",
+        ],
+        ["scipy"],
+        "0.1 K (stated by Bolton 1980 for eq. 15, -35..35 degC; from memory)",
+        ["pressure_pa", "temperature_k", "dewpoint_k", "lcl_temperature_k"],
         rows,
     )
 
@@ -431,5 +493,6 @@ if __name__ == "__main__":
     table_earthkit()
     table_pseudoadiabat()
     table_lapse_rate()
+    table_lcl()
     table_weisman_klemp()
     table_standard_atmosphere()

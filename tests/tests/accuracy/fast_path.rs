@@ -59,7 +59,7 @@ pub fn temperatures(report: &mut Report) {
                 .map(|i| pa(foot * (50e2_f64 / foot).powf((f64::from(i) + 0.5) / 400.0)))
                 .collect();
             for state in parcel_path(start, Method::default(), &points) {
-                let fast = ascent.tabulated_virtual_temperature(state.pressure);
+                let fast = ascent.tabulated_temperature(state.pressure);
                 let error = fast.map_or(f64::NAN, |tv| tv.k() - state.virtual_temperature.k());
                 dense.add(1e3 * error, 1e3 * BUOYANCY);
             }
@@ -77,7 +77,7 @@ pub fn temperatures(report: &mut Report) {
         let c = t - 273.15;
         let e = 611.2 * (17.67 * c / (c + 243.5)).exp();
         let expected = t / (1.0 - (1.0 - 287.05 / 461.52) * e / p);
-        let fast = ascent.tabulated_virtual_temperature(pa(p));
+        let fast = ascent.tabulated_temperature(pa(p));
         let error = fast.map_or(f64::NAN, |tv| tv.k() - expected);
         scipy.add(1e3 * error, 1e3 * BUOYANCY);
     }

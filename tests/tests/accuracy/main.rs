@@ -12,6 +12,7 @@ mod crossings;
 mod fast_path;
 mod formulas;
 mod heights;
+mod processes;
 mod profiles;
 
 use dewbound_tests::residuals::Report;
@@ -26,6 +27,9 @@ const CHECKS: &[Check] = &[
     ("condensation", formulas::condensation),
     ("theta_e", formulas::theta_e),
     ("pseudoadiabats", adiabats::pseudoadiabats),
+    ("processes", processes::integrated),
+    ("theta_e_drift", processes::theta_e_along),
+    ("entropy", processes::entropy),
     ("fast_path", fast_path::temperatures),
     ("ascents_by_scipy", ascents::by_scipy),
     ("weisman_klemp", ascents::weisman_klemp),

@@ -61,7 +61,7 @@ pub fn integrated(report: &mut Report) {
     let mut published = Residuals::new(
         "direct, water: the AMS Glossary's lapse rate, SciPy",
         "K",
-        "0.5 % of warming, 0.03 K",
+        "0.5 % of heating + 0.03 K",
     );
     for [p0, t0, p, t] in Table::read("scipy_lapse_rate").rows([
         "start_pressure_pa",

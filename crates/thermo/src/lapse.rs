@@ -270,7 +270,8 @@ fn node(lapse: &Lapse, branch: Branch, z: f64, t: f64) -> Node {
 /// Temperature and total water at the start: air saturated over water, the LCL being what it is.
 ///
 /// Below 0 °C that is more vapour than there can be over the mixture of water and ice. The excess condenses at once, at
-/// constant pressure and enthalpy: `(cpd + r_v cpv) (T - T_L) = (r_v - r_v,mix(T)) (L_v + (1 - f) L_f)`, up to 0.7 K.
+/// constant pressure and enthalpy: `(cpd + r_v cpv) (T - T_L) = (r_v - r_v,mix(T)) (L_v + (1 - f) L_f)`,
+/// up to 0.9 K (300 hPa, -20 °C).
 fn start(condensate: Condensate, t_lcl: f64, p: f64) -> (f64, f64) {
     let lapse = Lapse {
         condensate,

@@ -96,9 +96,16 @@ impl<'e> Lifted<'e> {
         let dry = parcel.dry(method.buoyancy, z_top);
         let below = runs(&dry, column, levels, z_from, z_lcl.min(z_top));
         let saturated = (z_lcl < z_top).then(|| parcel.saturated(method, z_top));
-        let above = saturated
-            .as_ref()
-            .map_or_else(Vec::new, |path| runs(path, column, levels, z_lcl, z_top));
+        let mut above = Vec::new();
+        if let Some(path) = &saturated {
+            // A scan may take it that the path is smooth.
+            let kinks = path.kinks().filter(|z| z_lcl < *z && *z < z_top);
+            let mut foot = z_lcl;
+            for head in kinks.chain([z_top]) {
+                above.extend(runs(path, column, levels, foot, head));
+                foot = head;
+            }
+        }
         Some(Self {
             ascent: assemble(environment, &parcel, &below, above),
             surroundings,

@@ -69,6 +69,11 @@ impl Cubic {
             .rfind(|split| split.k == k && split.z <= z)
     }
 
+    /// Where the slope jumps, rising.
+    pub fn kinks(&self) -> impl Iterator<Item = f64> + '_ {
+        self.splits.iter().map(|split| split.z)
+    }
+
     #[inline]
     fn locate(&self, z: f64) -> (&([f64; 4], f64), f64) {
         const NONE: &([f64; 4], f64) = &([0.0; 4], 0.0);

@@ -34,7 +34,7 @@ pub fn by_scipy(report: &mut Report) {
     report.section(
         "Ascents of twelve invented profiles, integrated by SciPy (quad between roots of brentq)",
         &[
-            "Exact path: Simpson's rule on steps of 0.01 in ln p, whose error is below 1e-6 of the area; areas under 1e-4 J/kg don't count.",
+            "Exact path: Gauss's rule on steps of at most 0.01 in ln p, whose error is far below 1e-6 of the area; areas under 1e-4 J/kg are rounding.",
             "Fast path: 0.1 % or 0.5 J/kg, 20 Pa (as beneath).",
         ],
     );

@@ -42,7 +42,18 @@ impl Comparison {
         }
     }
 
-    pub fn add(&mut self, environment: &Environment, ours: &Ascent, exact: &Ascent) {
+    pub fn add(
+        &mut self,
+        environment: &Environment,
+        method: Method,
+        ours: &Ascent,
+        exact: &Ascent,
+    ) {
+        let place = Place {
+            environment,
+            method,
+            start: exact.start,
+        };
         self.count += 1;
         let bound = |value: f64| (0.001 * value.abs()).max(SMALL);
         self.cape.add(ours.cape - exact.cape, bound(exact.cape));
@@ -55,7 +66,7 @@ impl Comparison {
                     self.cin.add(a - b, bound(b));
                 }
                 if let (Some(a), Some(b)) = (ours.lfc, exact.lfc) {
-                    self.level(environment, exact, a, b);
+                    self.level(&place, a, b);
                 }
             }
             (None, None) => {}
@@ -68,7 +79,7 @@ impl Comparison {
         }
         match (ours.buoyant.last(), exact.buoyant.last()) {
             (Some(a), Some(b)) if overlap(a, b) => match (ours.el, exact.el) {
-                (Some(a), Some(b)) => self.level(environment, exact, a, b),
+                (Some(a), Some(b)) => self.level(&place, a, b),
                 (None, None) => {}
                 _ => self.steep.add(f64::NAN, SHIFT),
             },
@@ -84,21 +95,8 @@ impl Comparison {
         self.open += usize::from(open);
     }
 
-    fn level(
-        &mut self,
-        environment: &Environment,
-        exact: &Ascent,
-        ours: Pressure,
-        level: Pressure,
-    ) {
-        let buoyancy = |p: f64| {
-            let state = parcel_path(exact.start, Method::default(), &[pa(p)]);
-            let around = environment.virtual_at(pa(p));
-            match (state.first(), around) {
-                (Some(state), Some((_, around))) => state.virtual_temperature.k() - around,
-                _ => f64::NAN,
-            }
-        };
+    fn level(&mut self, place: &Place, ours: Pressure, level: Pressure) {
+        let buoyancy = |p: f64| place.buoyancy(p);
         // Either side by a tenth of a per cent: most of a hectopascal.
         let step = 1e-3;
         let here = buoyancy(level.pa() * (1.0 - 1e-9));
@@ -121,6 +119,25 @@ impl Comparison {
             "{} of {} ascents take LFC or EL from different layers, chosen by less than {SMALL} J/kg.",
             self.open, self.count
         )]);
+    }
+}
+
+/// Where a parcel rises, and how.
+struct Place<'a> {
+    environment: &'a Environment,
+    method: Method,
+    start: Air,
+}
+
+impl Place<'_> {
+    /// Buoyancy of the exact parcel, K.
+    fn buoyancy(&self, p: f64) -> f64 {
+        let states = parcel_path(self.start, self.method, &[pa(p)]);
+        let around = self.environment.virtual_at(pa(p));
+        match (states.first(), around) {
+            (Some(state), Some((_, around))) => state.virtual_temperature.k() - around,
+            _ => f64::NAN,
+        }
     }
 }
 

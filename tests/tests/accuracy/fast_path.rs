@@ -3,8 +3,6 @@
 use crate::crossings::{BUOYANCY, Comparison};
 use crate::profiles::{profile, starts};
 use crate::{k, pa};
-use dewbound_tests::desk::soundings_of;
-use dewbound_tests::open_data;
 use dewbound_tests::reference::Table;
 use dewbound_tests::residuals::{Report, Residuals};
 use dewbound_thermo::*;
@@ -17,8 +15,27 @@ fn anywhere() -> Environment {
     Environment::new(&[108_001.0, 4_999.0], &[250.0, 250.0], &[Some(200.0), None]).unwrap()
 }
 
-fn lifted(environment: &Environment, start: Air) -> Lifted<'_> {
-    Lifted::of(environment, start, Method::default()).unwrap()
+/// Every process but the default.
+const OTHERS: [Process; 4] = [
+    Process::Direct(Condensate::Water),
+    Process::Direct(Condensate::WaterAndIce),
+    Process::Reversible(Condensate::Water),
+    Process::Reversible(Condensate::WaterAndIce),
+];
+
+/// Differences (mK) of the table from the exact path at `count` pressures between the LCL and 50 hPa.
+fn add_departures(residuals: &mut Residuals, start: Air, method: Method, count: u32) {
+    let environment = anywhere();
+    let ascent = Lifted::of(&environment, start, method).unwrap();
+    let foot = ascent.ascent.lcl.pressure.pa();
+    let points: Vec<Pressure> = (0..count)
+        .map(|i| pa(foot * (50e2_f64 / foot).powf((f64::from(i) + 0.5) / f64::from(count))))
+        .collect();
+    for state in parcel_path(start, method, &points) {
+        let fast = ascent.tabulated_temperature(state.pressure);
+        let error = fast.map_or(f64::NAN, |tv| tv.k() - state.virtual_temperature.k());
+        residuals.add(1e3 * error, 1e3 * BUOYANCY);
+    }
 }
 
 /// Saturated air of this theta-e.
@@ -36,7 +53,6 @@ pub fn temperatures(report: &mut Report) {
         "Fast path: tabulated virtual temperature",
         &["Theta-e 240..420 K, 1080..50 hPa, saturated at six pressures or drier by 2..25 K; our bound is 2 mK."],
     );
-    let environment = anywhere();
     let mut dense = Residuals::new("fast path, exact solution at 400 pressures", "mK", "2");
     for theta_e in (240..=420).step_by(2).map(f64::from) {
         let moist = [108e3, 101_325.0, 95e3, 85e3, 70e3, 50e3].map(|p| saturated(theta_e, p));
@@ -53,27 +69,34 @@ pub fn temperatures(report: &mut Report) {
             if start.theta_e().k() < 240.0 {
                 continue;
             }
-            let ascent = lifted(&environment, start);
-            let foot = ascent.ascent.lcl.pressure.pa();
-            let points: Vec<Pressure> = (0..400)
-                .map(|i| pa(foot * (50e2_f64 / foot).powf((f64::from(i) + 0.5) / 400.0)))
-                .collect();
-            for state in parcel_path(start, Method::default(), &points) {
-                let fast = ascent.tabulated_temperature(state.pressure);
-                let error = fast.map_or(f64::NAN, |tv| tv.k() - state.virtual_temperature.k());
-                dense.add(1e3 * error, 1e3 * BUOYANCY);
-            }
+            add_departures(&mut dense, start, Method::default(), 400);
         }
     }
     report.judge(&dense);
+    let mut others = Residuals::new(
+        "fast path, direct and reversible: fine integration",
+        "mK",
+        "2",
+    );
+    for process in OTHERS {
+        for theta_e in (240..=420).step_by(10).map(f64::from) {
+            for p in [108e3, 95e3, 70e3, 50e3] {
+                let start = saturated(theta_e, p);
+                add_departures(&mut others, start, Method::of(process), 100);
+            }
+        }
+    }
+    report.judge(&others);
 
+    let environment = anywhere();
     let mut scipy = Residuals::new("fast path, root by SciPy", "mK", "2");
     let table = Table::read("scipy_pseudoadiabat");
     for [theta_e, p, t] in table.rows(["theta_e_k", "pressure_pa", "temperature_k"]) {
         if p < 50e2 {
             continue;
         }
-        let ascent = lifted(&environment, saturated(theta_e, 108e3));
+        let start = saturated(theta_e, 108e3);
+        let ascent = Lifted::of(&environment, start, Method::default()).unwrap();
         let c = t - 273.15;
         let e = 611.2 * (17.67 * c / (c + 243.5)).exp();
         let expected = t / (1.0 - (1.0 - 287.05 / 461.52) * e / p);
@@ -84,11 +107,12 @@ pub fn temperatures(report: &mut Report) {
     report.judge(&scipy);
 }
 
-fn compare(comparison: &mut Comparison, environment: &Environment) {
+/// Three parcels by the fast path and by the exact one.
+pub fn compare(comparison: &mut Comparison, environment: &Environment, method: Method) {
     for start in starts(environment) {
-        let ours = lift(environment, start, Method::default()).unwrap();
-        let exact = lift_exactly(environment, start, Method::default()).unwrap();
-        comparison.add(environment, &ours, &exact);
+        let ours = lift(environment, start, method).unwrap();
+        let exact = lift_exactly(environment, start, method).unwrap();
+        comparison.add(environment, method, &ours, &exact);
     }
 }
 
@@ -105,7 +129,7 @@ pub fn synthetic_ascents(report: &mut Report) {
     let mut cape: Vec<f64> = Vec::new();
     for number in 0..PROFILES {
         let environment = profile(number).environment();
-        compare(&mut comparison, &environment);
+        compare(&mut comparison, &environment, Method::default());
         let ascent = lift(&environment, environment.bottom(), Method::default()).unwrap();
         cape.push(ascent.cape);
     }
@@ -118,39 +142,14 @@ pub fn synthetic_ascents(report: &mut Report) {
     );
     comparison.judge(report);
     report.remark(&[&text]);
-}
 
-pub fn real_ascents(report: &mut Report) {
-    report.section(
-        "Fast path: real soundings, three parcels each, against the exact path",
-        &[],
-    );
-    let Some(folder) = open_data::folder("accuracy on real soundings") else {
-        let text = format!(
-            "NOT RUN: {} names no folder of real observations.",
-            open_data::FOLDER
+    let mut comparison = Comparison::new("direct, reversible:", "exact path");
+    for (number, process) in (0..PROFILES).zip(OTHERS.into_iter().cycle()) {
+        compare(
+            &mut comparison,
+            &profile(number).environment(),
+            Method::of(process),
         );
-        report.remark(&[&text]);
-        return;
-    };
-    let mut comparison = Comparison::new("real:", "exact path");
-    let (mut usable, mut unusable) = (0, 0);
-    for path in open_data::files(&folder).unwrap() {
-        let name = path.file_name().unwrap().to_string_lossy().into_owned();
-        let soundings =
-            soundings_of(&path).unwrap_or_else(|failure| panic!("{}", failure.line(&name)));
-        for analysed in soundings {
-            match analysed.profile.environment() {
-                Ok(environment) => {
-                    usable += 1;
-                    compare(&mut comparison, &environment);
-                }
-                Err(_) => unusable += 1,
-            }
-        }
     }
     comparison.judge(report);
-    let text =
-        format!("{usable} soundings; {unusable} more hold no ascent (winds only, or no humidity).");
-    report.remark(&[&text]);
 }

@@ -14,8 +14,10 @@ mod formulas;
 mod heights;
 mod processes;
 mod profiles;
+mod real;
 
 use dewbound_tests::residuals::Report;
+use dewbound_thermo::{Pressure, Temperature};
 use std::panic::{AssertUnwindSafe, catch_unwind};
 use std::process::ExitCode;
 
@@ -35,7 +37,7 @@ const CHECKS: &[Check] = &[
     ("weisman_klemp", ascents::weisman_klemp),
     ("independent", ascents::independent),
     ("synthetic", fast_path::synthetic_ascents),
-    ("real", fast_path::real_ascents),
+    ("real", real::ascents),
     ("heights", heights::standard_atmosphere),
 ];
 
@@ -75,12 +77,10 @@ fn main() -> ExitCode {
     }
 }
 
-/// Kelvin.
-fn k(kelvin: f64) -> dewbound_session::sounding::thermo::Temperature {
-    dewbound_session::sounding::thermo::Temperature::from_k(kelvin)
+fn k(kelvin: f64) -> Temperature {
+    Temperature::from_k(kelvin)
 }
 
-/// Pascal.
-fn pa(pascal: f64) -> dewbound_session::sounding::thermo::Pressure {
-    dewbound_session::sounding::thermo::Pressure::from_pa(pascal)
+fn pa(pascal: f64) -> Pressure {
+    Pressure::from_pa(pascal)
 }

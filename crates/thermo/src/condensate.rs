@@ -5,7 +5,8 @@
 //! Peters, Mulholland & Chavas 2022, JAS 79; limits differ; from memory). The limits 0 and -20 °C: common practice,
 //! no source.
 
-use crate::saturation::{E0, e_water, exponent_and_slope};
+use crate::elementary::exp;
+use crate::saturation::{E0, exponent_and_slope};
 use crate::{Condensate, ZERO_CELSIUS};
 
 /// Temperature from which downward all condensate is ice, K.
@@ -64,7 +65,7 @@ impl Branch {
             Self::Water => {
                 let (exponent, dln_e) = exponent_and_slope(t);
                 Phase {
-                    e: E0 * exponent.exp(),
+                    e: E0 * exp(exponent),
                     dln_e,
                     liquid: 1.0,
                     liquid_per_kelvin: 0.0,
@@ -81,7 +82,8 @@ impl Branch {
             }
             Self::Mixture => {
                 let (over_ice, dln_ice) = over_ice(t);
-                let (over_water, dln_water) = (e_water(t), exponent_and_slope(t).1);
+                let (exponent, dln_water) = exponent_and_slope(t);
+                let over_water = E0 * exp(exponent);
                 let per_kelvin = 1.0 / (ZERO_CELSIUS - ALL_ICE);
                 let liquid = (t - ALL_ICE) * per_kelvin;
                 let ice = 1.0 - liquid;
@@ -107,7 +109,7 @@ fn over_ice(t: f64) -> (f64, f64) {
     let above_pole = (t - ZERO_CELSIUS + B_ICE).max(1.0);
     let exponent = A_ICE * (t - ZERO_CELSIUS) / above_pole;
     (
-        E0 * exponent.exp(),
+        E0 * exp(exponent),
         A_ICE * B_ICE / (above_pole * above_pole),
     )
 }

@@ -142,7 +142,7 @@ fn pieces(segment: &Segment, a: f64, b: f64) -> f64 {
         .max(1.0)
 }
 
-/// Adds one step's area, cut at crossings on either side of its middle, or of its extremum where that is of another sign.
+/// Adds one step's area, cut at crossings on either side of its middle and of its extremum.
 fn one_step(runs: &mut Vec<Run>, buoyancy: &impl Fn(f64) -> f64, a: f64, b: f64) {
     let middle = 0.5 * (a + b);
     let mut points = vec![
@@ -151,10 +151,10 @@ fn one_step(runs: &mut Vec<Run>, buoyancy: &impl Fn(f64) -> f64, a: f64, b: f64)
         (b, buoyancy(b)),
     ];
     if let [(_, fa), (_, fm), (_, fb)] = points[..] {
-        // The vertex of the parabola through the three.
+        // The vertex of the parabola through the three. Also where their signs differ: a parcel that starts as its
+        // surroundings are has a zero at the foot, and may have another next to it.
         let (rise, bend) = (fb - fa, fa + fb - 2.0 * fm);
-        let alike = (fa > 0.0) == (fm > 0.0) && (fm > 0.0) == (fb > 0.0);
-        if alike && rise.abs() < 2.0 * bend.abs() && (bend > 0.0) == (fm > 0.0) {
+        if rise.abs() < 2.0 * bend.abs() {
             let vertex = middle - 0.5 * (b - a) * rise / (2.0 * bend);
             let place = if vertex < middle { 1 } else { 2 };
             points.insert(place, (vertex, buoyancy(vertex)));

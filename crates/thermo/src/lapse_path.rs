@@ -5,7 +5,7 @@ use crate::path::{Cubic, Parcel, SPACING, Split};
 use crate::{Buoyancy, Method};
 
 /// Widest step of the integration.
-const WIDEST: f64 = 0.05;
+const WIDEST: f64 = SPACING;
 
 /// Polynomial in the share of a step, lowest power first.
 type Polynomial = [f64; 4];

@@ -21,8 +21,9 @@ pub struct BuoyantLayer {
 /// A parcel lifted through an environment.
 ///
 /// - Below the LCL the parcel keeps its mixing ratio w and its potential temperature with the exponent 0.2854 (1 - 0.28 w);
-///   above it, it follows the [`Method`], with the virtual temperature of its saturation mixing ratio. Eq. 15 and eq. 39
-///   don't quite meet at the LCL: virtual temperature steps by less than 0.05 K there.
+///   above it, it follows the [`Method`], with the virtual temperature of its saturation mixing ratio. Eq. 15 doesn't quite
+///   meet saturation at the LCL: virtual temperature steps by less than 0.05 K there, by more where ice forms at once
+///   ([`Condensate::WaterAndIce`](crate::Condensate::WaterAndIce)).
 /// - Area = -Rd times the integral of (virtual temperature of the parcel minus that of the environment) over ln p;
 ///   virtual temperature on both sides as recommended by Doswell & Rasmussen (1994, WAF 9, 625-629).
 /// - CAPE is the sum of all positive area above the LCL. The EL is the top of the highest buoyant layer.
@@ -62,8 +63,8 @@ const NEGLIGIBLE: f64 = 1e-4;
 /// areas are counted from the bottom up. A dew point above the temperature counts as saturation.
 ///
 /// The parcel's path is tabulated: exact solutions every 0.1 in ln p with analytic slopes, a cubic between them, within
-/// 0.2 mK; a lapse rate is integrated from node to node. CAPE and CIN are within 0.01 % of [`lift_exactly`](crate::lift_exactly) and don't depend on how many levels
-/// the interpolated profile is cut into (1e-6).
+/// 0.2 mK; a lapse rate is integrated from node to node. CAPE and CIN are within 0.01 % of
+/// [`lift_exactly`](crate::lift_exactly) and don't depend on how many levels the interpolated profile is cut into (1e-6).
 ///
 /// `None` when the start lies above the top of the environment or is not finite.
 pub fn lift(environment: &Environment, start: Air, method: Method) -> Option<Ascent> {

@@ -146,7 +146,11 @@ impl Results {
         let motion = document
             .storm_motion()
             .map_or_else(|| analysed.estimated_motion(), Motion::Set);
-        let further = Further::of(&analysed.profile, &working.profile, &numbers, motion);
+        let (received, amended) = (&analysed.profile, &working.profile);
+        let further = match previous {
+            Some(previous) => Further::next(received, amended, &numbers, motion, &previous.further),
+            None => Further::of(received, amended, &numbers, motion),
+        };
         let picked = document
             .picked_level()
             .and_then(|level| picked_ascent(&working.profile, level));

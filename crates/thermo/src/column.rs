@@ -51,7 +51,8 @@ pub(crate) struct Segment {
 /// Share of vapour in the pressure, kept at no more than half so that there is always dry air.
 #[inline(always)]
 fn share(ln_e: f64, z: f64) -> f64 {
-    at_most(E0 * exp(ln_e + z), 0.5)
+    // No vapour is a small number rather than one so small that the processor must slow down for it.
+    at_most(E0 * exp(at_least(ln_e + z, -300.0)), 0.5)
 }
 
 impl Segment {

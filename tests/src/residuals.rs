@@ -126,8 +126,11 @@ impl Report {
         } else if !line.holds() {
             let most = line.numbers[2].map_or_else(String::new, short);
             self.fail(format!(
-                "{}: largest difference {most} {}, {:.1} times the bound of {}",
-                line.what, line.unit, line.used, line.bound
+                "{}: largest difference {most} {}, {} times the bound of {}",
+                line.what,
+                line.unit,
+                short(line.used),
+                line.bound
             ));
         }
         self.text.push(line.text());

@@ -9,12 +9,15 @@ what the tests hold the Rust code to) and where it comes from.
 """
 
 import math
+import sys
 from importlib.metadata import version
 from pathlib import Path
 
 import numpy as np
 from CoolProp.CoolProp import PropsSI
+from CoolProp.HumidAirProp import HAProps_Aux
 from earthkit.meteo.thermo import array as earthkit
+from iapws import IAPWS95
 from iapws._iapws import _Sublimation_Pressure, _Supercooled
 from scipy.integrate import quad, solve_ivp
 from scipy.optimize import brentq
@@ -35,11 +38,12 @@ def write(name, about, provenance, tolerance, columns, rows):
             out.write(f"# {line}\n")
         out.write(f"# tolerance: {tolerance}\n")
         packages = ", ".join(f"{p} {version(p)}" for p in provenance)
-        out.write(f"# made by make_reference.py on {DATE} with {packages}\n")
+        out.write(f"# made by {Path(sys.argv[0]).name} on {DATE} with {packages}\n")
         out.write(",".join(columns) + "\n")
         for row in rows:
-            assert len(row) == len(columns) and all(math.isfinite(v) for v in row), (name, row)
-            out.write(",".join(f"{v:.12g}" for v in row) + "\n")
+            # None: absent, an empty cell.
+            assert len(row) == len(columns) and all(v is None or math.isfinite(v) for v in row), (name, row)
+            out.write(",".join("" if v is None else f"{v:.12g}" for v in row) + "\n")
     print(f"{name}.csv: {len(rows)} rows")
 
 
@@ -87,25 +91,47 @@ def murphy_koop(t):
 
 def saturation():
     below = [c / 2 for c in range(-1, -71, -1)]
-    above = [0.01] + [c / 2 for c in range(1, 71)]
+    above = [c / 2 for c in range(1, 71)]
     rows = list(zip(below, supercooled_pressures(below)))
     worst = max(abs(e / murphy_koop(ZERO + c) - 1) for c, e in rows)
     # At -35 degC the two differ by the latent heat of supercooled water, which was revised in between.
     assert worst < 4e-3, worst
     print(f"   supercooled: within {worst:.1e} of Murphy & Koop")
-    rows += [(c, PropsSI("P", "T", ZERO + c, "Q", 1, "Water")) for c in above]
+    rows += [(c, IAPWS95(T=ZERO + c, x=1).P * 1e6) for c in above]
     write(
         "iapws_water",
         [
             "Saturation vapour pressure over water, pure phase.",
-            "0.01 degC and above: IAPWS-95. Below: Clausius-Clapeyron from the triple point with the enthalpy of supercooled",
+            "Above 0 degC: IAPWS-95. Below: Clausius-Clapeyron from the triple point with the enthalpy of supercooled",
             f"water, IAPWS G12-15; within {worst:.0e} of Murphy & Koop (2005).",
             "units: temperature degC, vapour pressure Pa",
         ],
-        ["CoolProp", "iapws", "scipy"],
+        ["iapws", "scipy"],
         "0.003 relative (stated by Bolton 1980 for -35..35 degC)",
         ["temperature_c", "vapour_pressure_pa"],
         sorted(rows),
+    )
+    write(
+        "coolprop_water",
+        [
+            "Saturation vapour pressure over water, pure phase: CoolProp's equation of state of water.",
+            "units: temperature degC, vapour pressure Pa",
+        ],
+        ["CoolProp"],
+        "0.003 relative (stated by Bolton 1980 for -35..35 degC)",
+        ["temperature_c", "vapour_pressure_pa"],
+        [(c, PropsSI("P", "T", ZERO + c, "Q", 1, "Water")) for c in [0.01] + [k / 4 for k in range(1, 141)]],
+    )
+    write(
+        "coolprop_ice",
+        [
+            "Sublimation pressure of ice, pure phase: CoolProp's humid air (below 0 degC its saturation is over ice).",
+            "units: temperature degC, vapour pressure Pa",
+        ],
+        ["CoolProp"],
+        "0.01 relative (Sonntag on the formula over ice in WMO-No. 8, -65..0 degC; from memory)",
+        ["temperature_c", "vapour_pressure_pa"],
+        [(c / 2, HAProps_Aux("p_ws", ZERO + c / 2, 101325, 0)[0]) for c in range(-130, 0)],
     )
     write(
         "iapws_ice",
@@ -233,177 +259,73 @@ def table_pseudoadiabat():
     )
 
 
+def lapse_rate_slope(x, y):
+    """dT/d ln p of saturated air whose condensate falls out: the AMS Glossary's pseudo-adiabatic lapse rate."""
+    cpd, cpv = 1005.7, 1870.0
+    t, p = y[0], math.exp(x)
+    w = w_of(e_sat(t), p)
+    lv = 2.501e6 - 2370.0 * (t - ZERO)
+    gamma = G * (1 + w) * (1 + lv * w / (RD * t)) / (cpd + w * cpv + lv * lv * w * (EPS + w) / (RD * t * t))
+    return [gamma * RD * tv_of(t, w) / G]
+
+
+def integrated(t, p_from, pressures):
+    """Temperatures at pressures (in the order of the way) on the pseudo-adiabat through t at p_from."""
+    out = solve_ivp(
+        lapse_rate_slope, (math.log(p_from), math.log(pressures[-1])), [t],
+        t_eval=[math.log(p) for p in pressures], method="DOP853", rtol=1e-10, atol=1e-10,
+    )
+    return out.y[0]
+
+
 def table_lapse_rate():
     """The pseudo-adiabatic lapse rate integrated directly: the same physics without eq. 39."""
-    cpd, cpv = 1005.7, 1870.0
-
-    def slope(x, y):
-        t, p = y[0], math.exp(x)
-        w = w_of(e_sat(t), p)
-        lv = 2.501e6 - 2370.0 * (t - ZERO)
-        gamma = G * (1 + w) * (1 + lv * w / (RD * t)) / (cpd + w * cpv + lv * lv * w * (EPS + w) / (RD * t * t))
-        return [gamma * RD * tv_of(t, w) / G]
-
     rows = []
-    for start in range(-10, 31, 5):
-        pressures = [p * 100.0 for p in range(950, 199, -50)]
-        out = solve_ivp(
-            slope, (math.log(1e5), math.log(200e2)), [ZERO + start], t_eval=[math.log(p) for p in pressures],
-            rtol=1e-10, atol=1e-10,
-        )
-        rows += [(ZERO + start, p, t) for p, t in zip(pressures, out.y[0])]
+    for start in range(-30, 36, 5):
+        for p_start in (1050, 1000, 850, 700, 600):
+            t0, p0 = ZERO + start, p_start * 100.0
+            theta_w = t0 if p_start == 1000 else integrated(t0, p0, [1e5])[0]
+            pressures = [p * 100.0 for p in range(1000, 99, -50) if p < p_start]
+            rows += [(p0, t0, theta_w, p, t) for p, t in zip(pressures, integrated(t0, p0, pressures))]
     write(
         "scipy_lapse_rate",
         [
             "Pseudo-adiabatic lapse rate (as in the AMS Glossary of Meteorology, from memory; cpd 1005.7, cpv 1870 J/(kg K),",
-            "L = 2.501e6 - 2370 t J/kg) integrated from saturated air at 1000 hPa. Independent of eq. 39.",
-            "units: start temperature K, pressure Pa, temperature K",
+            "L = 2.501e6 - 2370 t J/kg) integrated upward from saturated air by DOP853 at rtol 1e-10. Independent of eq. 39.",
+            "theta-w: temperature on the same pseudo-adiabat at 1000 hPa, integrated likewise.",
+            "units: pressures Pa, temperatures K",
         ],
         ["scipy"],
-        "0.2 K (error of eq. 39 against exact integration: Davies-Jones 2008)",
-        ["start_temperature_k", "pressure_pa", "temperature_k"],
+        "0.2 K for theta-w of -20..40 degC (error of eq. 39 against exact integration: Davies-Jones 2008)",
+        ["start_pressure_pa", "start_temperature_k", "theta_w_k", "pressure_pa", "temperature_k"],
         rows,
     )
 
 
-# ---- integrated ascents ---------------------------------------------------------------------------------------------------
-
-
-class Kept:
-    """Moist air with its condensate, per kg of dry air, by its enthalpy and density; slopes come from differences.
-
-    Written from conservation, not from a lapse-rate formula: for the closed system d h = V dp with
-    h = cpd T + r_v h_v + r_l h_l + r_i h_i and V = Rd T / p_d; for the pseudo-adiabatic one the condensate leaves with its
-    enthalpy, so that d h minus the enthalpy of what leaves = V dp. Heat capacities and latent heats of Emanuel (1994),
-    Atmospheric Convection (from memory). Enthalpy of vapour at 0 degC is the zero.
-    """
-
-    cpd, cpv, cl, ci = 1005.7, 1870.0, 4190.0, 2106.0
-    lv, lf = 2.501e6, 3.337e5
-    ice_at = ZERO - 20.0
-
-    def __init__(self, ice, total=None):
-        self.ice, self.total, self.formula = ice, total, "water"
-
-    def stay(self, t):
-        """Keeps to the formula that holds from t downward, also a little beyond it: smooth for the integration."""
-        self.formula = "water" if not self.ice or t > ZERO else "mixture" if t > self.ice_at else "ice"
-        return {"water": ZERO, "mixture": self.ice_at, "ice": None}[self.formula] if self.ice else None
-
-    def liquid(self, t):
-        return {"water": 1.0, "mixture": (t - self.ice_at) / (ZERO - self.ice_at), "ice": 0.0}[self.formula]
-
-    def e(self, t):
-        """Bolton eq. 10 over water; WMO-No. 8 annex 4.B over ice (from memory); linear mixture between."""
-        c, f = t - ZERO, self.liquid(t)
-        return f * e_sat(t) + (1 - f) * 611.2 * math.exp(22.46 * c / (c + 272.62))
-
-    def vapour(self, t, p):
-        return w_of(self.e(t), p)
-
-    def h_vapour(self, t):
-        return self.cpv * (t - ZERO)
-
-    def h_condensed(self, t):
-        """A kilogram of condensate."""
-        f, c = self.liquid(t), t - ZERO
-        return f * (self.cl * c - self.lv) + (1 - f) * (self.ci * c - self.lv - self.lf)
-
-    def enthalpy(self, t, vapour, condensed):
-        return self.cpd * (t - ZERO) + vapour * self.h_vapour(t) + condensed * self.h_condensed(t)
-
-    def slope(self, x, t):
-        """dT / d ln p: d h = V dp solved for dT, derivatives of h by central differences."""
-        p = math.exp(x)
-        volume_p = RD * t * p / (p - self.e(t))
-        dt, dx = 1e-3, 1e-5
-        if self.total is not None:
-            h = lambda t, x: self.enthalpy(t, *self.split(t, math.exp(x)))
-        else:
-            # What condenses leaves with its enthalpy at t: no condensate, and its enthalpy counted as of now.
-            gone, base = self.h_condensed(t), self.vapour(t, p)
-            def h(t, x):
-                vapour = self.vapour(t, math.exp(x))
-                return self.enthalpy(t, vapour, 0.0) + (base - vapour) * gone
-        h_t = (h(t + dt, x) - h(t - dt, x)) / (2 * dt)
-        h_x = (h(t, x + dx) - h(t, x - dx)) / (2 * dx)
-        return (volume_p - h_x) / h_t
-
-    def split(self, t, p):
-        vapour = self.vapour(t, p)
-        return vapour, self.total - vapour
-
-    def start(self, t, p):
-        """From saturation over water to saturation over the mixture, at constant pressure and enthalpy."""
-        total = w_of(e_sat(t), p)
-        if not self.ice or t >= ZERO:
-            return t, total
-        before = self.enthalpy(t, total, 0.0)
-        def excess(warmer):
-            self.stay(warmer)
-            vapour = self.vapour(warmer, p)
-            return self.enthalpy(warmer, vapour, total - vapour) - before
-        return brentq(excess, t, ZERO, xtol=1e-12, rtol=1e-14), total
-
-    def ascend(self, t, p, pressures):
-        """Temperatures at falling pressures, restarted at 0 and -20 degC, where the slope jumps."""
-        x, out = math.log(p), []
-        left = [math.log(q) for q in pressures]
-        while left:
-            limit = self.stay(t)
-            event = lambda x, y: y[0] - (limit or 0.0)
-            event.terminal, event.direction = True, -1
-            # Short steps: between its own the method interpolates, and that error is not controlled.
-            run = solve_ivp(
-                lambda x, y: [self.slope(x, y[0])], (x, left[-1]), [t], method="DOP853", rtol=1e-10, atol=1e-10,
-                t_eval=left, events=event, max_step=0.02,
-            )
-            assert run.success, run.message
-            out += [y for y in np.ravel(run.y)]
-            left = left[len(run.t):]
-            if run.status == 1:
-                x, t = run.t_events[0][0], limit
-        assert len(out) == len(pressures)
-        return out
-
-
-def table_ascents():
-    pressures = [50.0, 100.0, 150.0, 200.0, 250.0, 300.0, 400.0, 500.0, 600.0, 700.0, 850.0]
-    pressures = [p * 100.0 for p in reversed(pressures)]
-    for name, keeps, ice in [
-        ("scipy_direct_water", False, False),
-        ("scipy_direct_ice", False, True),
-        ("scipy_reversible_water", True, False),
-        ("scipy_reversible_ice", True, True),
-    ]:
-        rows = []
-        for p0 in (1050e2, 900e2, 750e2, 600e2):
-            for start in range(-30, 36, 5):
-                first, total = Kept(ice).start(ZERO + start, p0)
-                air = Kept(ice, total if keeps else None)
-                above = [p for p in pressures if p < p0]
-                for p, t in zip(above, air.ascend(first, p0, above)):
-                    air.stay(t)
-                    vapour = air.vapour(t, p)
-                    # Emanuel (1994) eq. 4.3.6 (from memory).
-                    density = t * (1 + vapour / EPS) / (1 + (total if keeps else vapour))
-                    rows.append((p0, ZERO + start, p, t, density))
-        write(
-            name,
-            [
-                ("Reversible" if keeps else "Pseudo-adiabatic")
-                + " ascent of air saturated over water at its start, condensing to "
-                + ("water above 0 degC, ice below -20 degC, a linear mixture between." if ice else "water."),
-                "Enthalpy balance (cpd 1005.7, cpv 1870, cl 4190, ci 2106 J/(kg K); latent heats at 0 degC 2.501e6 and 3.337e5",
-                "J/kg; from memory of Emanuel 1994) integrated by DOP853, derivatives of enthalpy by differences.",
-                "units: pressures Pa, temperatures K; density temperature "
-                + ("with the weight of the condensate" if keeps else "= virtual temperature"),
-            ],
-            ["scipy"],
-            "1e-6 K",
-            ["start_pressure_pa", "start_temperature_k", "pressure_pa", "temperature_k", "density_temperature_k"],
-            rows,
-        )
+def table_lcl():
+    """The condensation level from its definition: constant w and theta, saturated by eq. 10."""
+    rows = []
+    for t in range(-35, 36, 5):
+        for depression in (0.5, 1, 2, 4, 7, 11, 16, 22, 30):
+            tk = ZERO + t
+            td = tk - depression
+            p = 1e5
+            w = w_of(e_sat(td), p)
+            kappa = KAPPA * (1 - 0.28 * w)
+            excess = lambda tl: math.log(e_sat(tl) / e_sat(td)) - math.log(tl / tk) / kappa
+            rows.append((p, tk, td, brentq(excess, td - 30, td, xtol=1e-11)))
+    write(
+        "scipy_lcl",
+        [
+            "LCL temperature from its definition: unsaturated air of constant mixing ratio and theta (exponent 0.2854 (1 -",
+            "0.28 w)) cools until it is saturated by eq. 10 of Bolton (1980): Brent's root. Independent of eq. 15.",
+            "units: pressure Pa, temperatures K",
+        ],
+        ["scipy"],
+        "0.1 K (stated by Bolton 1980 for eq. 15, -35..35 degC; from memory)",
+        ["pressure_pa", "temperature_k", "dewpoint_k", "lcl_temperature_k"],
+        rows,
+    )
 
 
 # ---- CAPE of the Weisman & Klemp profile ---------------------------------------------------------------------------------
@@ -571,6 +493,6 @@ if __name__ == "__main__":
     table_earthkit()
     table_pseudoadiabat()
     table_lapse_rate()
-    table_ascents()
+    table_lcl()
     table_weisman_klemp()
     table_standard_atmosphere()

@@ -3,5 +3,7 @@
 pub mod demo;
 pub mod desk;
 pub mod open_data;
+pub mod reference;
+pub mod residuals;
 pub mod slow_parcel;
 pub mod wire;

@@ -11,7 +11,7 @@ use crate::theme::Theme;
 use crate::view::{DialogBox, Gesture, Previewed, View};
 use crate::{
     chart_frame, chart_keys, chart_view, dialogs, findings, fonts, handle, input, keys, menu,
-    numbers, response, status, title, tray, verdict,
+    numbers, quantity, response, status, title, tray, verdict,
 };
 use dewbound_session::chart::{SpeedUnit, TemperatureUnit};
 use dewbound_session::{Action, Command, Item, Session, SurfaceQuantity, wording};
@@ -266,6 +266,7 @@ impl Desk {
             Ask::Action(action) => self.act(ctx, action),
             Ask::Tab(tab) => self.view.tab = tab,
             Ask::Parcel(parcel) => self.view.parcel = Some(parcel),
+            Ask::Group(group) => self.view.toggle_group(group),
             Ask::Units(units) => self.view.units = units,
             Ask::Card(item, card) => self.view.card = card.map(|card| (item, card)),
             Ask::Dialog(dialog) => self.view.dialog = dialog,
@@ -300,7 +301,8 @@ impl Desk {
             }
             Action::CopyNumbers => {
                 if let Some(item) = self.session.current() {
-                    ctx.copy_text(numbers::as_text(item, self.view.units));
+                    let view = &self.view;
+                    ctx.copy_text(quantity::as_text(item, view.units, &view.open_groups));
                 }
             }
             Action::ZoomIn => self.zoom(ctx, self.view.zoom + 0.1),

@@ -4,10 +4,11 @@ use crate::args::ThemeName;
 use crate::preferences::Preferences;
 use crate::timing::Timing;
 use dewbound_session::chart::{Units, View as ChartView};
+use dewbound_session::quantity::Group;
 use dewbound_session::sounding::Parcel;
 use dewbound_session::{Item, ItemId, Preview, RepairId, Revision, SurfaceQuantity};
 use eframe::egui;
-use std::collections::HashMap;
+use std::collections::{BTreeSet, HashMap};
 
 /// Findings or numbers, where only one has room.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
@@ -90,6 +91,8 @@ pub(crate) struct View {
     pub units: Units,
     /// Which tab.
     pub tab: Tab,
+    /// Groups of numbers that are open.
+    pub open_groups: BTreeSet<Group>,
     /// Whose path is drawn; `None`: the one that matters for the sounding as received.
     pub parcel: Option<Parcel>,
     /// Part of the diagram looked at, where it isn't the fitting one.
@@ -124,6 +127,7 @@ impl View {
             zoom: preferences.zoom,
             units: preferences.units,
             tab: Tab::default(),
+            open_groups: BTreeSet::new(),
             parcel: None,
             charts: HashMap::new(),
             card: None,
@@ -159,6 +163,13 @@ impl View {
             .rev()
             .max_by(|&a, &b| cape(a).total_cmp(&cape(b)))
             .unwrap_or(Parcel::Surface)
+    }
+
+    /// Opens a group of numbers, or closes it.
+    pub fn toggle_group(&mut self, group: Group) {
+        if !self.open_groups.remove(&group) {
+            self.open_groups.insert(group);
+        }
     }
 
     /// The open card of a sounding.

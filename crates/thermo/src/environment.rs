@@ -1,6 +1,7 @@
 //! The air a parcel rises through.
 
 mod heights;
+mod integrals;
 mod refill;
 
 use crate::column::{Column, Levels, theta_and_moisture};

@@ -14,7 +14,16 @@ pub const MOST_UNSTABLE_DEPTH: Pressure = Pressure::from_hpa(300.0);
 pub fn mixed_start(environment: &Environment, depth: Pressure) -> Option<Air> {
     let pressure = environment.bottom().pressure;
     let top = Pressure::from_pa(pressure.pa() - depth.pa());
-    let (theta, w) = environment.layer_mean(pressure, top)?;
+    mean_start(environment, pressure, top)
+}
+
+/// The mean parcel of any layer: integral means over p of theta and w between two pressures (`bottom` > `top`), lifted
+/// from its base.
+///
+/// The layer is clipped to the part of the profile whose humidity is known; `None` when nothing of it is left.
+pub fn mean_start(environment: &Environment, bottom: Pressure, top: Pressure) -> Option<Air> {
+    let (theta, w) = environment.layer_mean(bottom, top)?;
+    let pressure = Pressure::from_pa(bottom.pa().min(environment.bottom().pressure.pa()));
     let temperature = temperature_on_dry_adiabat(Temperature::from_k(theta), pressure);
     let dewpoint = dewpoint_from_mixing_ratio(pressure, w);
     Some(Air {

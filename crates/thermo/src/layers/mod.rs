@@ -2,9 +2,25 @@
 //!
 //! Heights are geopotential heights above the lowest level of the environment, from the hypsometric equation.
 
+mod convective;
+mod downdraft;
+mod freezing;
+mod growth_zone;
+mod humidity;
+mod inflow;
+mod judge;
+mod lapse;
+mod mixed_layer;
 mod of_parcel;
 mod of_profile;
+mod theta_e;
+#[cfg(test)]
+mod timing;
+mod walk;
 
+pub use convective::*;
+pub use downdraft::*;
+pub use inflow::*;
 pub use of_parcel::*;
 pub use of_profile::*;
 
@@ -24,5 +40,23 @@ impl LevelAt {
     pub fn of(environment: &Environment, pressure: Pressure) -> Option<Self> {
         let height = environment.height_above_bottom(pressure)?;
         Some(Self { pressure, height })
+    }
+
+    /// The level at z = -ln p inside the profile.
+    fn at_z(environment: &Environment, z: f64) -> Option<Self> {
+        Self::of(environment, pressure_at(environment, z))
+    }
+}
+
+/// Pressure at z = -ln p; never outside the profile, and that of a level where z is one's own.
+fn pressure_at(environment: &Environment, z: f64) -> Pressure {
+    let (pressures, levels) = (environment.pressure(), environment.levels());
+    let level = levels.z.partition_point(|&level| level < z);
+    match (levels.z.get(level), pressures.get(level)) {
+        (Some(&own), Some(&p)) if own == z => Pressure::from_pa(p),
+        _ => {
+            let (bottom, top) = (environment.bottom().pressure.pa(), environment.top().pa());
+            Pressure::from_pa((-z).exp().min(bottom).max(top))
+        }
     }
 }

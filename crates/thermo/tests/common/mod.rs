@@ -1,5 +1,7 @@
-//! Reading reference tables and judging residuals against them.
-#![allow(dead_code)]
+//! Reading reference tables and judging residuals against them; random profiles.
+#![allow(dead_code, clippy::unwrap_used, clippy::expect_used)]
+
+pub mod profiles;
 
 use std::path::PathBuf;
 

@@ -1,0 +1,199 @@
+//! Integrals of moisture over pressure, along the interpolated profile.
+
+use super::{Environment, coordinate};
+use crate::elementary::exp;
+use crate::numeric::{gauss4, hermite_integral};
+use crate::saturation::{E0, exponent_and_slope};
+use crate::{EPSILON, GAS_CONSTANT_DRY, GRAVITY, Pressure};
+
+/// Change of ln of the integrand that one Gauss rule takes: its error is then below 1e-11.
+const GAUSS_CHANGE: f64 = 0.7;
+
+/// A quantity of moist air at one point, with what its slope needs.
+trait Moist: Copy {
+    /// Largest error of a step of the end-corrected trapezium, in units of the quantity; wider steps take the Gauss rule.
+    const STEP_ERROR: f64;
+    /// At a pressure (Pa) with this temperature and dew point (K).
+    fn at(p: f64, t: f64, td: f64) -> Self;
+    fn value(&self) -> f64;
+    /// d value / dz where T and Td have these slopes.
+    fn slope(&self, t_slope: f64, td_slope: f64) -> f64;
+    /// How far the terms of its logarithm that are not ln p move to another point, in size.
+    fn change(&self, other: &Self) -> f64;
+}
+
+#[derive(Clone, Copy)]
+struct MixingRatio {
+    exponent: f64,
+    per_kelvin: f64,
+    w: f64,
+}
+
+/// Over water.
+#[derive(Clone, Copy)]
+struct RelativeHumidity {
+    dew: (f64, f64),
+    dry: (f64, f64),
+    value: f64,
+}
+
+impl Moist for MixingRatio {
+    const STEP_ERROR: f64 = 3e-10;
+
+    #[inline(always)]
+    fn at(p: f64, _t: f64, td: f64) -> Self {
+        let (exponent, per_kelvin) = exponent_and_slope(td);
+        let e = (E0 * exp(exponent)).min(0.5 * p);
+        Self {
+            exponent,
+            per_kelvin,
+            w: EPSILON * e / (p - e),
+        }
+    }
+
+    #[inline(always)]
+    fn value(&self) -> f64 {
+        self.w
+    }
+
+    #[inline(always)]
+    fn slope(&self, _t_slope: f64, td_slope: f64) -> f64 {
+        self.w * (1.0 + self.w * (1.0 / EPSILON)) * (self.per_kelvin * td_slope + 1.0)
+    }
+
+    #[inline(always)]
+    fn change(&self, other: &Self) -> f64 {
+        (other.exponent - self.exponent).abs()
+    }
+}
+
+impl Moist for RelativeHumidity {
+    const STEP_ERROR: f64 = 3e-9;
+
+    #[inline(always)]
+    fn at(_p: f64, t: f64, td: f64) -> Self {
+        let (dew, dry) = (exponent_and_slope(td.min(t)), exponent_and_slope(t));
+        Self {
+            dew,
+            dry,
+            value: exp(dew.0 - dry.0),
+        }
+    }
+
+    #[inline(always)]
+    fn value(&self) -> f64 {
+        self.value
+    }
+
+    #[inline(always)]
+    fn slope(&self, t_slope: f64, td_slope: f64) -> f64 {
+        self.value * (self.dew.1 * td_slope - self.dry.1 * t_slope)
+    }
+
+    #[inline(always)]
+    fn change(&self, other: &Self) -> f64 {
+        (other.dew.0 - self.dew.0).abs() + (other.dry.0 - self.dry.0).abs()
+    }
+}
+
+impl Environment {
+    /// How many levels have humidity, from the lowest: at least one.
+    pub(crate) fn humid_levels(&self) -> usize {
+        self.humid
+    }
+
+    /// Integral of virtual temperature over z from the lowest level to z = -ln p inside the profile, K.
+    pub(crate) fn virtual_integral(&self, z: f64) -> f64 {
+        let column = &self.column;
+        let first = column.tv_integral.first().copied().unwrap_or(0.0);
+        column.integral_in(&self.levels(), column.step_at(z), z) - first
+    }
+
+    /// Geopotential height (m) above the lowest level of z = -ln p inside the profile.
+    pub(crate) fn height_at_z(&self, z: f64) -> f64 {
+        GAS_CONSTANT_DRY / GRAVITY * self.virtual_integral(z)
+    }
+
+    /// Integral of the mixing ratio over p (Pa) from the lowest level to the last known humidity; `None` when only the
+    /// lowest level has any.
+    pub(crate) fn moisture_integral(&self) -> Option<f64> {
+        let last = self.humid - 1;
+        (last > 0).then(|| self.integral::<MixingRatio>(self.z[0], self.z[last]))
+    }
+
+    /// Integral mean over p of the relative humidity over water (1 = saturated) between two pressures (`bottom` > `top`);
+    /// `None` unless the whole layer has known humidity.
+    ///
+    /// ```
+    /// use dewbound_thermo::*;
+    /// let (p, t) = ([100_000.0, 85_000.0, 70_000.0], [298.0, 288.0, 279.0]);
+    /// let td = t.map(|t| Some(dewpoint_from_relative_humidity(Temperature::from_k(t), 0.6).k()));
+    /// let environment = Environment::new(&p, &t, &td)?;
+    /// let layer = [1000.0, 850.0].map(Pressure::from_hpa);
+    /// assert!((environment.mean_relative_humidity(layer[0], layer[1]).unwrap() - 0.6).abs() < 0.002);
+    /// # Ok::<(), EnvironmentError>(())
+    /// ```
+    pub fn mean_relative_humidity(&self, bottom: Pressure, top: Pressure) -> Option<f64> {
+        let (pb, pt) = (bottom.pa(), top.pa());
+        let known = pb <= self.p[0] && pt >= self.p[self.humid - 1] && pb > pt;
+        known.then(|| self.integral::<RelativeHumidity>(coordinate(pb), coordinate(pt)) / (pb - pt))
+    }
+
+    /// Integral over p from `bottom` to `top` in z, inside the humid part.
+    fn integral<M: Moist>(&self, bottom: f64, top: f64) -> f64 {
+        let levels = self.levels();
+        let first = self.z.partition_point(|&z| z <= bottom).saturating_sub(1);
+        let mut sum = 0.0;
+        // The head of a segment is the foot of the next.
+        let mut shared: Option<(f64, M)> = None;
+        for i in first..self.humid - 1 {
+            let (a, b) = (self.z[i].max(bottom), self.z[i + 1].min(top));
+            if b <= a {
+                break;
+            }
+            let segment = levels.segment(i);
+            let Some((td, td_slope)) = segment.td else {
+                break;
+            };
+            let point =
+                |z: f64, p: f64| M::at(p, segment.temperature(z), td + td_slope * (z - segment.z));
+            let (pa, foot) = shared.unwrap_or_else(|| {
+                let p = exp(-a);
+                (p, point(a, p))
+            });
+            let pb = if b == self.z[i + 1] {
+                self.p[i + 1]
+            } else {
+                exp(-b)
+            };
+            let head = point(b, pb);
+            shared = Some((pb, head));
+            let change = foot.change(&head) + (b - a);
+            let square = change * change;
+            let largest = foot.value().max(head.value());
+            sum += if largest * square * square <= 720.0 * M::STEP_ERROR {
+                let end = |p: f64, point: &M| {
+                    let value = point.value();
+                    (
+                        p * value,
+                        p * (point.slope(segment.t_slope, td_slope) - value),
+                    )
+                };
+                hermite_integral(b - a, end(pa, &foot), end(pb, &head))
+            } else {
+                let pieces = (change / GAUSS_CHANGE).ceil().clamp(1.0, 200.0);
+                let h = (b - a) / pieces;
+                (0..pieces as usize)
+                    .map(|k| {
+                        let a = a + k as f64 * h;
+                        gauss4(a, a + h, |z| {
+                            let p = exp(-z);
+                            p * point(z, p).value()
+                        })
+                    })
+                    .sum()
+            };
+        }
+        sum
+    }
+}

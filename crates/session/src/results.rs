@@ -155,7 +155,14 @@ impl Results {
         let amendments = &document.amendments;
         let working = amendments.apply(&analysed.profile, analysed.daylight);
         let numbers = Numbers::of(&working.profile);
-        let further = further_of(analysed, document, &working.profile, &numbers);
+        let previous_further = previous.map(|previous| &previous.further);
+        let further = further_of(
+            analysed,
+            document,
+            &working.profile,
+            &numbers,
+            previous_further,
+        );
         let picked = document
             .picked_level()
             .and_then(|level| picked_ascent(&working.profile, level));
@@ -222,17 +229,22 @@ impl Frame {
     }
 }
 
-/// Further numbers of a working profile, helicity against the storm motion of the document.
+/// Further numbers of a working profile, helicity against the storm motion of the document; what can't have changed since
+/// `previous` is taken from there.
 pub(crate) fn further_of(
     analysed: &Analysed,
     document: &Document,
     working: &Profile,
     numbers: &Numbers,
+    previous: Option<&Further>,
 ) -> Further {
     let motion = document
         .storm_motion()
         .map_or_else(|| analysed.estimated_motion(), Motion::Set);
-    Further::of(&analysed.profile, working, numbers, motion)
+    match previous {
+        Some(previous) => Further::next(&analysed.profile, working, numbers, motion, previous),
+        None => Further::of(&analysed.profile, working, numbers, motion),
+    }
 }
 
 fn picked_ascent(profile: &Profile, level: Pressure) -> Option<Ascent> {

@@ -39,6 +39,7 @@ fn check_results_fit(session: &Session) {
     let shown = item.results();
     assert_eq!(shown.working, afresh.working);
     assert_eq!(shown.numbers, afresh.numbers);
+    assert_eq!(shown.further, afresh.further);
     assert_eq!(shown.picked, afresh.picked);
     assert_eq!(shown.cards, afresh.cards);
     assert_eq!(shown.doubt, afresh.doubt);

@@ -56,60 +56,11 @@ pub(crate) fn apply(amendments: &Amendments, received: &Profile, daylight: Dayli
 #[cfg(test)]
 mod tests {
     use crate::testing::{
-        afternoon, any_fine_levels, any_level, config, received, strictly_falling,
+        afternoon, any_amendments, any_fine_levels, any_level, config, received, strictly_falling,
     };
-    use crate::{Amendment, Amendments, BridgeHumidity, Daylight, Entry, Numbers, Reach};
+    use crate::{Amendments, Daylight, Numbers, Reach};
     use dewbound_thermo::Temperature;
     use proptest::prelude::*;
-
-    fn any_amendment() -> impl Strategy<Value = Amendment> {
-        let p = || prop_oneof![6 => 5_000.0..103_000.0_f64, 1 => Just(f64::NAN), 1 => Just(0.0)];
-        let t = || prop_oneof![6 => 230.0..320.0_f64, 1 => Just(f64::NAN), 1 => Just(1e9)];
-        let keep = prop_oneof![
-            Just(BridgeHumidity::RelativeHumidity),
-            Just(BridgeHumidity::MixingRatio)
-        ];
-        prop_oneof![
-            t().prop_map(|temperature_k| Amendment::SurfaceTemperature { temperature_k }),
-            t().prop_map(|dewpoint_k| Amendment::SurfaceDewpoint { dewpoint_k }),
-            (p(), p(), keep).prop_map(|(bottom_pa, top_pa, humidity)| Amendment::BridgeLayer {
-                bottom_pa,
-                top_pa,
-                humidity
-            }),
-            (p(), p()).prop_map(|(bottom_pa, top_pa)| Amendment::DropLevels { bottom_pa, top_pa }),
-            (p(), p(), prop::option::of(-0.01..0.04_f64)).prop_map(
-                |(bottom_pa, top_pa, mixing_ratio)| {
-                    Amendment::MixMoisture {
-                        bottom_pa,
-                        top_pa,
-                        mixing_ratio,
-                    }
-                }
-            ),
-            p().prop_map(|pressure_pa| Amendment::DisregardAbove { pressure_pa }),
-        ]
-    }
-
-    fn any_amendments() -> impl Strategy<Value = Amendments> {
-        let entries = prop::collection::vec((any_amendment(), prop::bool::weighted(0.8)), 0..7);
-        let reach = prop::option::of(prop_oneof![
-            Just(Reach::Level),
-            Just(Reach::Mixed),
-            Just(Reach::Tapered)
-        ]);
-        (entries, reach).prop_map(|(entries, reach)| Amendments {
-            entries: entries
-                .into_iter()
-                .map(|(amendment, enabled)| Entry {
-                    amendment,
-                    enabled,
-                    from_repair: None,
-                })
-                .collect(),
-            reach,
-        })
-    }
 
     fn any_profile() -> impl Strategy<Value = crate::Profile> {
         prop_oneof![

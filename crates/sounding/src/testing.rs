@@ -1,6 +1,8 @@
 //! Invented soundings for the tests of this crate.
 
-use crate::{Level, Note, Profile, Sounding, Wind};
+use crate::{
+    Amendment, Amendments, BridgeHumidity, Entry, Level, Note, Profile, Reach, Sounding, Wind,
+};
 use proptest::prelude::*;
 
 /// A level in hPa and °C.
@@ -133,6 +135,56 @@ pub fn any_fine_levels() -> impl Strategy<Value = Vec<Level>> {
                 })
                 .collect()
         })
+}
+
+fn any_amendment() -> impl Strategy<Value = Amendment> {
+    let p = || prop_oneof![6 => 5_000.0..103_000.0_f64, 1 => Just(f64::NAN), 1 => Just(0.0)];
+    let t = || prop_oneof![6 => 230.0..320.0_f64, 1 => Just(f64::NAN), 1 => Just(1e9)];
+    let keep = prop_oneof![
+        Just(BridgeHumidity::RelativeHumidity),
+        Just(BridgeHumidity::MixingRatio)
+    ];
+    prop_oneof![
+        t().prop_map(|temperature_k| Amendment::SurfaceTemperature { temperature_k }),
+        t().prop_map(|dewpoint_k| Amendment::SurfaceDewpoint { dewpoint_k }),
+        (p(), p(), keep).prop_map(|(bottom_pa, top_pa, humidity)| Amendment::BridgeLayer {
+            bottom_pa,
+            top_pa,
+            humidity
+        }),
+        (p(), p()).prop_map(|(bottom_pa, top_pa)| Amendment::DropLevels { bottom_pa, top_pa }),
+        (p(), p(), prop::option::of(-0.01..0.04_f64)).prop_map(
+            |(bottom_pa, top_pa, mixing_ratio)| {
+                Amendment::MixMoisture {
+                    bottom_pa,
+                    top_pa,
+                    mixing_ratio,
+                }
+            }
+        ),
+        p().prop_map(|pressure_pa| Amendment::DisregardAbove { pressure_pa }),
+    ]
+}
+
+/// Any list of amendments, mostly plausible, sometimes nonsense.
+pub fn any_amendments() -> impl Strategy<Value = Amendments> {
+    let entries = prop::collection::vec((any_amendment(), prop::bool::weighted(0.8)), 0..7);
+    let reach = prop::option::of(prop_oneof![
+        Just(Reach::Level),
+        Just(Reach::Mixed),
+        Just(Reach::Tapered)
+    ]);
+    (entries, reach).prop_map(|(entries, reach)| Amendments {
+        entries: entries
+            .into_iter()
+            .map(|(amendment, enabled)| Entry {
+                amendment,
+                enabled,
+                from_repair: None,
+            })
+            .collect(),
+        reach,
+    })
 }
 
 pub fn strictly_falling(profile: &Profile) -> bool {

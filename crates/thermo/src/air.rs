@@ -184,12 +184,6 @@ impl Air {
         let w = saturation::mixing_ratio(p, e);
         Temperature::from_k(ln_theta_e(t, p - e, w, lcl_temperature(t, td)).exp())
     }
-
-    /// Wet-bulb temperature: where the pseudo-adiabat of this air's theta-e crosses its own pressure. The
-    /// pseudo-adiabatic one, some tenths of a degree below a psychrometer's in dry air.
-    pub fn wet_bulb(&self) -> Temperature {
-        pseudoadiabat::temperature_on_pseudoadiabat(self.theta_e(), self.pressure)
-    }
 }
 
 #[cfg(test)]

@@ -32,11 +32,15 @@
 #![cfg_attr(test, allow(clippy::unwrap_used, clippy::expect_used))]
 
 mod air;
+mod bare;
 mod column;
+mod condensate;
 mod constants;
 mod elementary;
 mod environment;
 mod exact;
+mod lapse;
+mod lapse_path;
 mod layers;
 mod lift;
 mod method;
@@ -48,6 +52,7 @@ mod saturation;
 mod scan;
 mod thickness;
 mod units;
+mod wet_bulb;
 mod winds;
 
 pub use air::*;
@@ -65,4 +70,5 @@ pub use saturation::{
 };
 pub use thickness::*;
 pub use units::*;
+pub use wet_bulb::*;
 pub use winds::*;

@@ -1,11 +1,11 @@
 //! Parcels and what becomes of them: CAPE, CIN, LCL, LFC, EL.
 
+use crate::bare::Surroundings;
 use crate::environment::coordinate;
 use crate::path::{Cubic, Parcel};
-use crate::pseudoadiabat::{first_guess, solve};
-use crate::saturation::{e_water, mixing_ratio, virtual_temperature};
+use crate::saturation::virtual_temperature;
 use crate::scan::{Run, runs};
-use crate::{Air, Environment, GAS_CONSTANT_DRY, Lcl, Method, Pressure, Process, Temperature};
+use crate::{Air, Environment, GAS_CONSTANT_DRY, Lcl, Method, Pressure, Temperature, exact};
 
 /// A layer above the LCL in which the parcel is warmer (virtually) than its surroundings.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -21,8 +21,9 @@ pub struct BuoyantLayer {
 /// A parcel lifted through an environment.
 ///
 /// - Below the LCL the parcel keeps its mixing ratio w and its potential temperature with the exponent 0.2854 (1 - 0.28 w);
-///   above it, it follows the [`Method`], with the virtual temperature of its saturation mixing ratio. Eq. 15 and eq. 39
-///   don't quite meet at the LCL: virtual temperature steps by less than 0.05 K there.
+///   above it, it follows the [`Method`], with the virtual temperature of its saturation mixing ratio. Eq. 15 doesn't quite
+///   meet saturation at the LCL: virtual temperature steps by less than 0.05 K there, by more where ice forms at once
+///   ([`Condensate::WaterAndIce`](crate::Condensate::WaterAndIce)).
 /// - Area = -Rd times the integral of (virtual temperature of the parcel minus that of the environment) over ln p;
 ///   virtual temperature on both sides as recommended by Doswell & Rasmussen (1994, WAF 9, 625-629).
 /// - CAPE is the sum of all positive area above the LCL. The EL is the top of the highest buoyant layer.
@@ -62,8 +63,8 @@ const NEGLIGIBLE: f64 = 1e-4;
 /// areas are counted from the bottom up. A dew point above the temperature counts as saturation.
 ///
 /// The parcel's path is tabulated: exact solutions every 0.1 in ln p with analytic slopes, a cubic between them, within
-/// 0.2 mK. CAPE and CIN are within 0.01 % of [`lift_exactly`](crate::lift_exactly) and don't depend on how many levels
-/// the interpolated profile is cut into (1e-6).
+/// 0.2 mK; a lapse rate is integrated from node to node. CAPE and CIN are within 0.01 % of
+/// [`lift_exactly`](crate::lift_exactly) and don't depend on how many levels the interpolated profile is cut into (1e-6).
 ///
 /// `None` when the start lies above the top of the environment or is not finite.
 pub fn lift(environment: &Environment, start: Air, method: Method) -> Option<Ascent> {
@@ -75,9 +76,9 @@ pub fn lift(environment: &Environment, start: Air, method: Method) -> Option<Asc
 pub struct Lifted<'e> {
     /// The numbers of the whole ascent.
     pub ascent: Ascent,
-    environment: &'e Environment,
+    surroundings: Surroundings<'e>,
     method: Method,
-    /// Virtual temperature above the LCL; `None` when that lies above the top.
+    /// What counts of the parcel above the LCL; `None` when that lies above the top.
     saturated: Option<Cubic>,
 }
 
@@ -91,15 +92,24 @@ impl<'e> Lifted<'e> {
         let (z_bottom, z_top) = environment.z_range();
         let z_from = parcel.z_start.max(z_bottom);
         let z_lcl = parcel.z_lcl.max(z_from);
-        let (column, levels) = (environment.column(), environment.levels());
-        let below = runs(&parcel.dry(z_top), column, levels, z_from, z_lcl.min(z_top));
+        let surroundings = Surroundings::of(environment, method.buoyancy);
+        let (column, levels) = (surroundings.column(), surroundings.levels());
+        let dry = parcel.dry(method.buoyancy, z_top);
+        let below = runs(&dry, column, levels, z_from, z_lcl.min(z_top));
         let saturated = (z_lcl < z_top).then(|| parcel.saturated(method, z_top));
-        let above = saturated
-            .as_ref()
-            .map_or_else(Vec::new, |path| runs(path, column, levels, z_lcl, z_top));
+        let mut above = Vec::new();
+        if let Some(path) = &saturated {
+            // A scan may take it that the path is smooth.
+            let kinks = path.kinks().filter(|z| z_lcl < *z && *z < z_top);
+            let mut foot = z_lcl;
+            for head in kinks.chain([z_top]) {
+                above.extend(runs(path, column, levels, foot, head));
+                foot = head;
+            }
+        }
         Some(Self {
             ascent: assemble(environment, &parcel, &below, above),
-            environment,
+            surroundings,
             method,
             saturated,
         })
@@ -118,8 +128,8 @@ impl<'e> Lifted<'e> {
         let Some(path) = &self.saturated else {
             return 0.0;
         };
-        let column = self.environment.column();
-        let levels = self.environment.levels();
+        let column = self.surroundings.column();
+        let levels = self.surroundings.levels();
         let integral = |pressure: Pressure| {
             let z = coordinate(pressure.pa());
             path.integral(z) - column.integral_in(&levels, column.step_at(z), z)
@@ -240,36 +250,44 @@ pub struct ParcelState {
     pub pressure: Pressure,
     /// Temperature.
     pub temperature: Temperature,
-    /// Virtual temperature.
+    /// Virtual temperature; with condensate kept, the density temperature.
     pub virtual_temperature: Temperature,
 }
 
+/// Step of an integrated path for drawing, in z; its error is below 1e-6 K.
+const DRAWN: f64 = 0.01;
+
 /// The parcel's path at the given pressures (any order; those below the start are left out), for drawing.
+///
+/// Temperature is that of the process, whatever counts as buoyancy; with condensate kept, the virtual temperature is the
+/// density temperature.
 pub fn parcel_path(start: Air, method: Method, pressures: &[Pressure]) -> Vec<ParcelState> {
     let Some(parcel) = Parcel::new(start) else {
         return Vec::new();
     };
-    let theta_e = parcel.ln_theta_e.exp();
+    let reached = |p: f64| p >= f64::MIN_POSITIVE && p <= parcel.start.pressure.pa();
+    let highest = pressures
+        .iter()
+        .map(|pressure| pressure.pa())
+        .filter(|p| reached(*p))
+        .fold(f64::INFINITY, f64::min);
+    let saturated = exact::Saturated::of(&parcel, method.process, coordinate(highest), DRAWN);
     let state = |pressure: &Pressure| {
         let p = pressure.pa();
-        if !(p >= f64::MIN_POSITIVE && p <= parcel.start.pressure.pa()) {
+        if !reached(p) {
             return None;
         }
         let z = coordinate(p);
-        let (t, w) = if z < parcel.z_lcl {
-            (parcel.dry_temperature(z), parcel.w)
+        let (t, tv) = if z < parcel.z_lcl {
+            let t = parcel.dry_temperature(z);
+            (t, virtual_temperature(t, parcel.w))
         } else {
-            match method.process {
-                Process::ThetaE | Process::Direct(_) | Process::Reversible(_) => {
-                    let t = solve(parcel.ln_theta_e, p, first_guess(theta_e, p), 1e-9).0;
-                    (t, mixing_ratio(p, e_water(t).min(0.5 * p)))
-                }
-            }
+            saturated.at(z, p)
         };
         Some(ParcelState {
             pressure: *pressure,
             temperature: Temperature::from_k(t),
-            virtual_temperature: Temperature::from_k(virtual_temperature(t, w)),
+            virtual_temperature: Temperature::from_k(tv),
         })
     };
     pressures.iter().filter_map(state).collect()

@@ -41,8 +41,16 @@ pub enum Process {
     #[default]
     ThetaE,
     /// The pseudo-adiabatic lapse rate integrated; condensate falls out at once.
+    ///
+    /// `dT/dz = -(p/p_d) (Rd T + L r_v) / (cp + L r_v (p/p_d) d ln e/dT)`, z = -ln p, per kg of dry air, with
+    /// cp = cpd + r_v cpv, p_d = p - e, r_v the saturation mixing ratio, L by Kirchhoff's equation (cpd 1005.7, cpv 1870,
+    /// water 4190, ice 2106 J/(kg K); 2.501e6 and 3.337e5 J/kg at 0 °C: Emanuel 1994, from memory). The pseudo-adiabatic
+    /// lapse rate of the AMS Glossary of Meteorology (from memory), with the slope of the saturation formula in use.
     Direct(Condensate),
     /// All condensate is kept: it stores heat, and its weight counts in the buoyancy.
+    ///
+    /// The same with the condensate's heat in cp, and the density temperature `T (1 + r_v/eps) / (1 + r_t)`, r_t = total
+    /// water (Emanuel 1994, eq. 4.3.6, from memory).
     Reversible(Condensate),
 }
 
@@ -52,7 +60,13 @@ pub enum Condensate {
     /// Water at any temperature.
     #[default]
     Water,
-    /// Water above 0 °C, ice below -20 °C, between them a mixture linear in temperature.
+    /// Water above 0 °C, ice below -20 °C, between them a mixture linear in temperature, of the condensate as of the
+    /// saturation vapour pressure; latent heat of fusion included.
+    ///
+    /// A linear ramp is usual in models (e.g. Bryan & Fritsch 2004, MWR 132; Peters et al. 2022, JAS 79; limits differ;
+    /// from memory); the limits 0 and -20 °C: common practice, no source. The condensation level stays that over water. Where
+    /// it is colder than 0 °C, what can't stay vapour over the mixture condenses there at once, at constant pressure and
+    /// enthalpy: the parcel warms by up to 0.9 K.
     WaterAndIce,
 }
 

@@ -6,7 +6,7 @@
 use crate::environment::coordinate;
 use crate::pseudoadiabat::refine;
 use crate::saturation::{e_water, mixing_ratio, virtual_temperature};
-use crate::{Air, EPSILON, Method, Process, Temperature, air};
+use crate::{Air, Buoyancy, EPSILON, Method, Temperature, air, lapse_path};
 
 /// Spacing of the nodes in z.
 pub(crate) const SPACING: f64 = 0.1;
@@ -19,6 +19,17 @@ pub(crate) struct Cubic {
     start: f64,
     /// Polynomials in the share of the step, lowest power first, and the integral up to the step.
     pieces: Vec<([f64; 4], f64)>,
+    /// Upper parts of steps in which the slope jumps, from the lowest; most paths have none.
+    splits: Vec<Split>,
+}
+
+/// From `z` on another polynomial serves in step `k`.
+#[derive(Debug, Clone)]
+pub(crate) struct Split {
+    pub k: usize,
+    pub z: f64,
+    /// As the step's own: polynomial in the share of the whole step, and the integral as if it served from its foot.
+    pub piece: ([f64; 4], f64),
 }
 
 impl Cubic {
@@ -38,7 +49,29 @@ impl Cubic {
                 Some(piece)
             })
             .collect();
-        Self { start, pieces }
+        Self::of_pieces(start, pieces, Vec::new())
+    }
+
+    pub(crate) fn of_pieces(start: f64, pieces: Vec<([f64; 4], f64)>, splits: Vec<Split>) -> Self {
+        Self {
+            start,
+            pieces,
+            splits,
+        }
+    }
+
+    /// What serves at z in step k, when that isn't the step's own polynomial.
+    #[inline]
+    fn split(&self, k: usize, z: f64) -> Option<&Split> {
+        // Nearly always there is none to look at.
+        self.splits
+            .iter()
+            .rfind(|split| split.k == k && split.z <= z)
+    }
+
+    /// Where the slope jumps, rising.
+    pub fn kinks(&self) -> impl Iterator<Item = f64> + '_ {
+        self.splits.iter().map(|split| split.z)
     }
 
     #[inline]
@@ -46,7 +79,11 @@ impl Cubic {
         const NONE: &([f64; 4], f64) = &([0.0; 4], 0.0);
         let share = (z - self.start) * (1.0 / SPACING);
         let k = (share as usize).min(self.pieces.len().saturating_sub(1));
-        (self.pieces.get(k).unwrap_or(NONE), share - k as f64)
+        let piece = match self.split(k, z) {
+            Some(split) => &split.piece,
+            None => self.pieces.get(k).unwrap_or(NONE),
+        };
+        (piece, share - k as f64)
     }
 
     /// Value at z.
@@ -66,10 +103,15 @@ impl Cubic {
         } else {
             f64::INFINITY
         };
+        let next = self.splits.iter().find(|split| split.k == k && split.z > z);
+        let piece = match self.split(k, z) {
+            Some(split) => Some(&split.piece),
+            None => self.pieces.get(k),
+        };
         (
-            self.pieces.get(k).map_or([0.0; 4], |piece| piece.0),
+            piece.map_or([0.0; 4], |piece| piece.0),
             foot,
-            head,
+            next.map_or(head, |split| split.z),
         )
     }
 
@@ -146,11 +188,14 @@ impl Parcel {
         self.start.temperature.k() * (self.exponent * (self.z_start - z)).exp()
     }
 
-    /// Virtual temperature of the unsaturated ascent from the start to `z_end` or the LCL.
-    pub fn dry(&self, z_end: f64) -> Cubic {
+    /// What counts of the unsaturated ascent from the start to `z_end` or the LCL.
+    pub fn dry(&self, buoyancy: Buoyancy, z_end: f64) -> Cubic {
         let end = z_end.min(self.z_lcl);
         let count = steps(self.z_start, end);
-        let per_kelvin = virtual_temperature(1.0, self.w);
+        let per_kelvin = match buoyancy {
+            Buoyancy::Virtual => virtual_temperature(1.0, self.w),
+            Buoyancy::Temperature => 1.0,
+        };
         let nodes: Vec<_> = (0..=count)
             .map(|k| {
                 let tv = per_kelvin * self.dry_temperature(self.z_start + k as f64 * SPACING);
@@ -160,16 +205,13 @@ impl Parcel {
         Cubic::new(self.z_start, &nodes)
     }
 
-    /// Virtual temperature of the saturated ascent from the LCL to at least `z_end`.
+    /// What counts of the saturated ascent from the LCL to at least `z_end`.
     pub fn saturated(&self, method: Method, z_end: f64) -> Cubic {
-        match method.process {
-            Process::ThetaE | Process::Direct(_) | Process::Reversible(_) => {
-                self.pseudoadiabat(z_end)
-            }
-        }
+        lapse_path::path(self, method, steps(self.z_lcl, z_end))
+            .unwrap_or_else(|| self.pseudoadiabat(method.buoyancy, z_end))
     }
 
-    fn pseudoadiabat(&self, z_end: f64) -> Cubic {
+    fn pseudoadiabat(&self, buoyancy: Buoyancy, z_end: f64) -> Cubic {
         let count = steps(self.z_lcl, z_end);
         let mut nodes = Vec::with_capacity(count + 1);
         let mut guess = self.lcl.temperature.k();
@@ -185,7 +227,10 @@ impl Parcel {
             let share = 1.0 / (1.0 + w);
             let slope = per_kelvin * state.slope
                 + t * (1.0 / EPSILON - 1.0) * share * share * state.w_slope;
-            nodes.push((per_kelvin * t, slope));
+            nodes.push(match buoyancy {
+                Buoyancy::Virtual => (per_kelvin * t, slope),
+                Buoyancy::Temperature => (t, state.slope),
+            });
             slopes = match k {
                 0 => [state.slope; 3],
                 1 => [state.slope, slopes[0], 2.0 * slopes[0] - state.slope],
@@ -220,7 +265,10 @@ mod tests {
         };
         let parcel = Parcel::new(start).unwrap();
         let end = coordinate(1000.0);
-        let (dry, saturated) = (parcel.dry(end), parcel.saturated(Method::default(), end));
+        let (dry, saturated) = (
+            parcel.dry(Buoyancy::Virtual, end),
+            parcel.saturated(Method::default(), end),
+        );
         let points = 20_000;
         let step = (end - parcel.z_start) / f64::from(points);
         let (mut worst, mut area) = (0.0_f64, 0.0);

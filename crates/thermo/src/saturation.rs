@@ -97,7 +97,7 @@ pub fn saturation_vapour_pressure(temperature: Temperature) -> Pressure {
 /// enhancement factor.
 ///
 /// `e_i = 611.2 Pa exp(22.46 t / (t + 272.62))`, t in °C, for -65..0 °C; found against the sublimation pressure of IAPWS
-/// R14-08: 0.2 %. No number of an ascent uses it.
+/// R14-08: 0.2 %. An ascent uses it where its condensate may be ice ([`crate::Condensate::WaterAndIce`]).
 ///
 /// ```
 /// use dewbound_thermo::*;

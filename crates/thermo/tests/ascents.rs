@@ -565,6 +565,16 @@ fn the_step_at_the_lcl_is_small() {
                     (above.virtual_temperature().k() - below).abs() < 0.05,
                     "{p} {t} {depression}"
                 );
+                // An integrated ascent starts saturated by eq. 10 at the LCL of eq. 15.
+                for process in [Process::Direct, Process::Reversible] {
+                    let method = Method::of(process(Condensate::Water));
+                    let just_above = Pressure::from_pa(lcl.pressure.pa() * (1.0 - 1e-12));
+                    let above = parcel_path(start, method, &[just_above])[0].virtual_temperature;
+                    assert!(
+                        (above.k() - below).abs() < 0.05,
+                        "{method:?} {p} {t} {depression}"
+                    );
+                }
             }
         }
     }

@@ -155,7 +155,9 @@ fn weighed(analysed: &Analysed, options: &Weigh) -> Result<String> {
         line.push('\n');
         Ok(line)
     } else {
-        let all = other.map(|other| report::all_numbers(&results, &other));
-        Ok(report::table(analysed, &results) + &all.unwrap_or_default())
+        Ok(match &other {
+            Some(other) => report::table_with_all(analysed, &results, other),
+            None => report::table(analysed, &results),
+        })
     }
 }

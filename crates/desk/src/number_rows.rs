@@ -14,7 +14,7 @@ use eframe::egui::{
 };
 
 /// Width of the names and units beside the parcels' columns.
-pub(crate) const NAMES: f32 = 128.0;
+pub(crate) const NAMES: f32 = 115.0;
 /// The same where there is one column.
 const PROFILE_NAMES: f32 = 200.0;
 const ROW: f32 = 19.0;
@@ -33,7 +33,7 @@ impl Weight {
     fn name(self, name: &str) -> RichText {
         match self {
             Self::Chief => bold(name),
-            Self::Further => RichText::new(name).size(12.0),
+            Self::Further => RichText::new(name).size(11.5),
         }
     }
 
@@ -145,6 +145,7 @@ fn name_ui(ui: &mut Ui, paint: &Paint, quantity: &Quantity, weight: Weight, asks
     asks.describe(&response, || {
         format!("{}: {}", quantity.label, quantity.definition)
     });
+    into_sight(&response);
     explain(&response, |ui| {
         ui.label(bold(quantity.label));
         definition_ui(ui, quantity);
@@ -220,7 +221,7 @@ fn range_ui(
         Some(range) => {
             let text = range_text(range, or_none);
             let hover = format!("{text}\n{}", where_text(range, item, units));
-            let text = RichText::new(range_text(range, false)).size(11.5);
+            let text = RichText::new(range_text(range, false)).size(11.0);
             ui.add(Label::new(text).truncate()).on_hover_text(hover);
         }
         None => {
@@ -315,6 +316,13 @@ fn capital(word: &str) -> String {
     chars.next().map_or_else(String::new, |first| {
         first.to_uppercase().chain(chars).collect()
     })
+}
+
+/// What gets the keyboard is scrolled into sight.
+pub(crate) fn into_sight(response: &Response) {
+    if response.gained_focus() {
+        response.scroll_to_me(None);
+    }
 }
 
 /// A tooltip for the pointer and for the keyboard alike.

@@ -2,7 +2,7 @@
 
 use crate::app::Paint;
 use crate::ask::{Ask, Asks};
-use crate::number_rows::{NAMES, Weight, columns, in_rect, profile_row_ui, row_ui};
+use crate::number_rows::{Weight, columns, in_rect, into_sight, profile_row_ui, row_ui};
 use crate::quantity::{STALE, Sight, in_group, parcel_heading, parcel_name};
 use crate::theme::bold;
 use crate::units;
@@ -48,7 +48,9 @@ pub(crate) fn table_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
         .id_salt("numbers")
         .auto_shrink(false)
         .show(ui, |ui| {
-            ui.spacing_mut().item_spacing.y = 3.0;
+            // Six headings find room below the five numbers on a screen 800 high.
+            ui.spacing_mut().item_spacing.y = 1.0;
+            ui.spacing_mut().interact_size.y = 18.0;
             let sight = Sight::painted(paint, item);
             let glance: Vec<&Quantity> = at_a_glance().collect();
             rows_ui(ui, paint, item, &sight, &glance, Weight::Chief, asks);
@@ -77,7 +79,7 @@ fn rows_ui(
             of_parcels = true;
         } else {
             if std::mem::take(&mut of_parcels) {
-                ui.label(RichText::new("of the whole profile").size(10.5).weak());
+                ui.label(RichText::new("of the whole profile").size(10.0).weak());
             }
             profile_row_ui(ui, paint, sight, quantity, weight, asks);
         }
@@ -101,12 +103,13 @@ fn group_ui(ui: &mut Ui, paint: &Paint, item: &Item, sight: &Sight, group: Group
             rows_ui(ui, paint, item, sight, &quantities, Weight::Further, asks);
         })
         .header_response;
+    into_sight(&header);
     asks.describe(&header, || {
         let what = if open { "closes" } else { "opens" };
         format!("{}: Enter {what} the group", group.title())
     });
     // What has been opened comes into sight, once it is there.
-    let opened = Id::new("group of numbers just opened");
+    let opened = Id::unique("group of numbers just opened");
     if header.clicked() {
         asks.push(Ask::Group(group));
         if !open {
@@ -150,7 +153,7 @@ fn parcels_ui(ui: &mut Ui, paint: &Paint, item: &Item, asks: &mut Asks) {
         let chosen = paint.view.parcel(item) == parcel;
         let response = ui.place(
             rect.shrink2(vec2(0.0, 1.0)),
-            Button::new(RichText::new(parcel_heading(parcel)).size(11.5))
+            Button::new(RichText::new(parcel_heading(parcel)).size(11.0))
                 .selected(chosen)
                 .truncate(),
         );

@@ -162,7 +162,13 @@ impl Item {
         };
         let working = amendments.apply(self.received(), self.daylight());
         let numbers = Numbers::of(&working.profile);
-        let further = further_of(&self.analysed, self.document(), &working.profile, &numbers, Some(&self.results.further));
+        let further = further_of(
+            &self.analysed,
+            self.document(),
+            &working.profile,
+            &numbers,
+            Some(&self.results.further),
+        );
         Some(Preview {
             working,
             numbers,

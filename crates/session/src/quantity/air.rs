@@ -1,6 +1,6 @@
 //! Moisture and temperature.
 
-use super::energy::of_parcel;
+use super::energy::{DOWNDRAFT, DOWNDRAFT_SOURCE, NO_DOWNDRAFT, of_parcel};
 use super::{Group, Needs, Of, Quantity, Unit, Value};
 
 /// All of this group.
@@ -97,7 +97,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         method: "From the convective condensation level down along constant potential temperature.",
         source: "Common practice, no source",
         inputs: "CCL",
-        absent: "there is no parcel, or the profile is nowhere saturated at its mixing ratio",
+        absent: "there is no parcel, or the surroundings are nowhere that cold",
     },
     Quantity {
         key: "precipitable_water_mm",
@@ -115,10 +115,10 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         range: None,
         needs: Needs::Environment,
         definition: "Water vapour over the lowest usable level, as a depth of water.",
-        method: "Integral of specific humidity over pressure, divided by g, up to the last known humidity.",
-        source: "WMO-No. 8, from memory",
+        method: "Integral of the mixing ratio over pressure, divided by g, up to the last known humidity. The mass of vapour itself is about 1 % less.",
+        source: "AMS Glossary of Meteorology, from memory",
         inputs: "pressure and dew point",
-        absent: "humidity is unknown",
+        absent: "humidity is known at the lowest level only",
     },
     Quantity {
         key: "humidity_lowest_100hpa_pct",
@@ -255,11 +255,32 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         }),
         range: None,
         needs: Needs::Environment,
-        definition: "Wet-bulb temperature of the air the downdraft starts with.",
-        method: "As for downdraft CAPE.",
-        source: "Pseudo-adiabat: Bolton 1980 (MWR 108), eq. 39",
-        inputs: "temperature and dew point at the origin of the downdraft",
-        absent: "no such layer is known in the lower troposphere: the profile or its humidity ends too low",
+        definition: "Wet-bulb temperature of the air the downdraft starts with, at its origin.",
+        method: DOWNDRAFT,
+        source: DOWNDRAFT_SOURCE,
+        inputs: "temperature and dew point of the lowest 400 hPa",
+        absent: NO_DOWNDRAFT,
+    },
+    Quantity {
+        key: "downdraft_theta_e_k",
+        label: "Downdraft θe",
+        unit: Unit::Kelvin,
+        decimals: 1,
+        group: Group::Air,
+        of: Of::Profile(|readings| {
+            readings
+                .further
+                .layers
+                .downdraft
+                .map(|downdraft| Value::Number(downdraft.theta_e.k()))
+        }),
+        range: None,
+        needs: Needs::Environment,
+        definition: "Mean equivalent potential temperature of the layer the downdraft starts from.",
+        method: DOWNDRAFT,
+        source: DOWNDRAFT_SOURCE,
+        inputs: "temperature and dew point of the lowest 400 hPa",
+        absent: NO_DOWNDRAFT,
     },
     Quantity {
         key: "humidity_ends_hpa",

@@ -5,6 +5,13 @@ use super::{Group, Needs, Of, Quantity, Readings, Unit, Value};
 use crate::sounding::Parcel;
 use crate::thermo::ParcelNumbers;
 
+pub(super) const DOWNDRAFT: &str = "Of all layers 100 hPa deep in the lowest 400 hPa the one of least mean equivalent potential \
+     temperature; its air, saturated at the centre of the layer, sinks along the pseudo-adiabat; virtual temperature on both \
+     sides; only stretches where it is colder than its surroundings count.";
+pub(super) const DOWNDRAFT_SOURCE: &str =
+    "After Gilmore and Wicker 1998 (MWR 126) and Emanuel 1994, from memory";
+pub(super) const NO_DOWNDRAFT: &str = "humidity is known through less than 400 hPa";
+
 const PSEUDO: &str = "The parcel follows constant potential temperature to its condensation level and constant equivalent \
      potential temperature above; virtual temperature on both sides; exact zero crossings.";
 
@@ -55,7 +62,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
     },
     Quantity {
         key: "cape_at_least",
-        label: "CAPE a lower limit",
+        label: "Lower limit",
         unit: Unit::None,
         decimals: 0,
         group: Group::Energy,
@@ -74,7 +81,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
     },
     Quantity {
         key: "cape_below_3km_jkg",
-        label: "CAPE below 3 km",
+        label: "CAPE to 3 km",
         unit: Unit::Energy,
         decimals: 0,
         group: Group::Energy,
@@ -86,33 +93,32 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         range: None,
         needs: Needs::Parcel,
         definition: "The part of CAPE below 3 km above the lowest usable level.",
-        method: "As CAPE, cut off where the height from the hypsometric equation is 3 km. Zero where the parcel is nowhere lighter below that.",
+        method: "As CAPE, cut off exactly where the height from the hypsometric equation is 3 km. Zero where the parcel is nowhere lighter below that.",
         source: "Height: hypsometric equation. The depth of 3 km is common practice, no source",
         inputs: "temperature and dew point of every level, start of the parcel",
         absent: "there is no parcel, or the profile ends below 3 km",
     },
     Quantity {
         key: "cape_in_growth_zone_jkg",
-        label: "CAPE −10 to −30 °C",
+        label: "Hail-zone CAPE",
         unit: Unit::Energy,
         decimals: 0,
         group: Group::Energy,
         of: Of::Parcel(|readings, parcel| {
-            of_parcel(readings, parcel)?
-                .cape_in_growth_zone
-                .map(Value::Number)
+            let cape = of_parcel(readings, parcel)?.cape_in_growth_zone?;
+            Some(Value::limit(cape, readings.at_least(parcel)))
         }),
         range: None,
         needs: Needs::Parcel,
         definition: "The part of CAPE where the surroundings are between −10 and −30 °C, where hail grows.",
-        method: "As CAPE, between the levels where the temperature of the surroundings crosses −10 and −30 °C.",
+        method: "As CAPE, of every layer whose surroundings are between the two temperatures, cut exactly where they are crossed. A lower limit where CAPE is one.",
         source: "The two temperatures are common practice, no source",
         inputs: "temperature and dew point of every level, start of the parcel",
-        absent: "there is no parcel, or the profile doesn't cross both temperatures",
+        absent: "there is no parcel, or nothing of the profile above its condensation level lies between the two temperatures",
     },
     Quantity {
         key: "cape_humidity_held_jkg",
-        label: "CAPE, humidity held",
+        label: "CAPE, RH held",
         unit: Unit::Energy,
         decimals: 0,
         group: Group::Energy,
@@ -131,7 +137,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
     },
     Quantity {
         key: "normalised_cape_ms2",
-        label: "CAPE over depth",
+        label: "CAPE / depth",
         unit: Unit::Acceleration,
         decimals: 3,
         group: Group::Energy,
@@ -160,7 +166,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         range: None,
         needs: Needs::Parcel,
         definition: "Temperature of the surroundings minus that of the parcel at 500 hPa. Negative: the parcel is warmer.",
-        method: "The parcel of CAPE at 500 hPa; temperatures without the virtual correction.",
+        method: "The parcel of CAPE at 500 hPa by exact solution; plain temperatures, without the virtual correction.",
         source: "Galway 1956 (BAMS 37), from memory; here with the three parcels of this program",
         inputs: "temperature and dew point of every level, start of the parcel",
         absent: "there is no parcel, or the profile doesn't reach 500 hPa, or the parcel starts above it",
@@ -199,10 +205,31 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         }),
         range: None,
         needs: Needs::Environment,
-        definition: "Energy that rain-cooled air gains while it sinks to the lowest usable level, at least 0.",
-        method: "The air of least mean equivalent potential temperature in the lower troposphere, brought to its wet-bulb temperature, sinks along a pseudo-adiabat; the area between it and its surroundings.",
-        source: "Emanuel 1994 (Atmospheric Convection, ch. 6), from memory; choice of the origin: common practice, no source",
-        inputs: "temperature and dew point from the origin down",
-        absent: "no such layer is known in the lower troposphere: the profile or its humidity ends too low",
+        definition: "Energy that air kept saturated by evaporating rain gains while it sinks to the lowest usable level, at least 0.",
+        method: DOWNDRAFT,
+        source: DOWNDRAFT_SOURCE,
+        inputs: "temperature and dew point of the lowest 400 hPa",
+        absent: NO_DOWNDRAFT,
+    },
+    Quantity {
+        key: "downdraft_warmer_jkg",
+        label: "Downdraft, warmer part",
+        unit: Unit::Energy,
+        decimals: 0,
+        group: Group::Energy,
+        of: Of::Profile(|readings| {
+            readings
+                .further
+                .layers
+                .downdraft
+                .map(|downdraft| Value::Number(downdraft.warmer))
+        }),
+        range: None,
+        needs: Needs::Environment,
+        definition: "What the stretches where the sinking air is warmer than its surroundings would take from downdraft CAPE, at most 0; not counted there.",
+        method: DOWNDRAFT,
+        source: DOWNDRAFT_SOURCE,
+        inputs: "temperature and dew point of the lowest 400 hPa",
+        absent: NO_DOWNDRAFT,
     },
 ];

@@ -1,12 +1,13 @@
 //! Levels and heights.
 
-use super::energy::of_parcel;
+use super::energy::{DOWNDRAFT, DOWNDRAFT_SOURCE, NO_DOWNDRAFT, of_parcel};
 use super::{Group, Needs, Of, Quantity, Unit, Value};
 
-const INFLOW: &str = "From the lowest level up, the contiguous levels whose own parcel has at least 100 J/kg of CAPE and at \
-     most 250 J/kg of inhibition.";
-const NO_INFLOW: &str = "no level has enough CAPE with little enough inhibition";
-const MIXED_PARCEL: &str = "virtual potential temperature rises from the lowest level on, or never reaches its value again";
+const INFLOW: &str = "The lowest contiguous air whose own parcels have at least 100 J/kg of CAPE and CIN of at least \
+     −250 J/kg; starts every 5 hPa from the lowest level up, edges refined at the levels between.";
+const NO_INFLOW: &str = "no air has enough CAPE with little enough CIN";
+const MIXED_PARCEL: &str =
+    "virtual potential temperature rises from the ground on, or never above its value there";
 const MIXED_RICHARDSON: &str =
     "there is no wind at the lowest level, or the number never exceeds its limit";
 
@@ -152,10 +153,10 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         range: None,
         needs: Needs::Parcel,
         definition: "Convective condensation level: base of the cumulus that heating from below alone would make.",
-        method: "Where the saturation mixing ratio of the surroundings is that of the parcel.",
+        method: "The lowest level at or above the start where the temperature of the surroundings falls to the dew point of the parcel's mixing ratio; the start itself where they are that cold already.",
         source: "Common practice, no source",
         inputs: "mixing ratio of the parcel, temperature of the levels above",
-        absent: "there is no parcel, or the profile is nowhere saturated at its mixing ratio",
+        absent: "there is no parcel, or the surroundings are nowhere that cold",
     },
     Quantity {
         key: "convective_level_m",
@@ -173,7 +174,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         method: "Height of the pressure level by the hypsometric equation with virtual temperature, above the lowest usable level.",
         source: "Hypsometric equation",
         inputs: "CCL; temperature and dew point up to it",
-        absent: "there is no parcel, or the profile is nowhere saturated at its mixing ratio",
+        absent: "there is no parcel, or the surroundings are nowhere that cold",
     },
     Quantity {
         key: "lowest_usable_hpa",
@@ -226,11 +227,11 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         }),
         range: None,
         needs: Needs::Environment,
-        definition: "Height above the lowest usable level of the lowest level where temperature crosses 0 °C.",
+        definition: "Height above the lowest usable level of the lowest level where temperature falls to 0 °C.",
         method: "Temperature linear in the logarithm of pressure between levels; height by the hypsometric equation.",
         source: "Convention of this program",
         inputs: "temperature and dew point up to it",
-        absent: "temperature nowhere crosses 0 °C",
+        absent: "the lowest level is at 0 °C or colder, or it never freezes above",
     },
     Quantity {
         key: "freezing_level_hpa",
@@ -247,11 +248,11 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         }),
         range: None,
         needs: Needs::Environment,
-        definition: "The lowest level where temperature crosses 0 °C.",
+        definition: "The lowest level where temperature falls to 0 °C.",
         method: "Temperature linear in the logarithm of pressure between levels.",
         source: "Convention of this program",
         inputs: "temperature",
-        absent: "temperature nowhere crosses 0 °C",
+        absent: "the lowest level is at 0 °C or colder, or it never freezes above",
     },
     Quantity {
         key: "wet_bulb_zero_m",
@@ -268,11 +269,11 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         }),
         range: None,
         needs: Needs::Environment,
-        definition: "Height above the lowest usable level of the lowest level where the wet-bulb temperature crosses 0 °C.",
-        method: "Wet-bulb temperature: down from the condensation level along a pseudo-adiabat; height by the hypsometric equation.",
-        source: "Pseudo-adiabat: Bolton 1980 (MWR 108), eq. 39",
+        definition: "Height above the lowest usable level of the lowest level where the wet-bulb temperature falls to 0 °C.",
+        method: "Where equivalent potential temperature is that of saturated air of 0 °C; exact on the interpolated profile; height by the hypsometric equation.",
+        source: "Bolton 1980 (MWR 108), eq. 39",
         inputs: "temperature and dew point up to it",
-        absent: "the wet-bulb temperature nowhere crosses 0 °C where humidity is known",
+        absent: "the wet bulb is at 0 °C or below at the lowest level, or humidity ends first",
     },
     Quantity {
         key: "wet_bulb_zero_hpa",
@@ -289,11 +290,11 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         }),
         range: None,
         needs: Needs::Environment,
-        definition: "The lowest level where the wet-bulb temperature crosses 0 °C.",
-        method: "Wet-bulb temperature: down from the condensation level along a pseudo-adiabat.",
+        definition: "The lowest level where the wet-bulb temperature falls to 0 °C.",
+        method: "Where equivalent potential temperature is that of saturated air of 0 °C; exact on the interpolated profile.",
         source: "Pseudo-adiabat: Bolton 1980 (MWR 108), eq. 39",
         inputs: "temperature and dew point",
-        absent: "the wet-bulb temperature nowhere crosses 0 °C where humidity is known",
+        absent: "the wet bulb is at 0 °C or below at the lowest level, or humidity ends first",
     },
     Quantity {
         key: "inflow_bottom_m",
@@ -416,7 +417,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         range: None,
         needs: Needs::Environment,
         definition: "Top of the mixed layer by the parcel method: how high air from the ground rises without condensing.",
-        method: "Where the virtual potential temperature of the surroundings reaches that of the lowest usable level.",
+        method: "Where virtual potential temperature first rises above that of the lowest usable level.",
         source: "Holzworth 1964 (MWR 92), from memory",
         inputs: "temperature and dew point",
         absent: MIXED_PARCEL,
@@ -458,8 +459,8 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         range: None,
         needs: Needs::Environment,
         definition: "Top of the mixed layer by the bulk Richardson number: how high turbulence of heat and wind together reaches.",
-        method: "Where the bulk Richardson number from the lowest usable level up first exceeds 0.25.",
-        source: "Seidel et al. 2012 (JGR 117), from memory",
+        method: "Where the bulk Richardson number from the lowest usable level up first exceeds 0.25, the wind at the ground set to zero.",
+        source: "Vogelezang and Holtslag 1996, Seidel et al. 2012, from memory",
         inputs: "temperature, dew point and wind",
         absent: MIXED_RICHARDSON,
     },
@@ -479,9 +480,9 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         range: None,
         needs: Needs::Environment,
         definition: "Where the air of the downdraft comes from: centre of the layer of least mean equivalent potential temperature.",
-        method: "As for downdraft CAPE.",
-        source: "Common practice, no source",
-        inputs: "temperature and dew point of the lower troposphere",
-        absent: "no such layer is known in the lower troposphere: the profile or its humidity ends too low",
+        method: DOWNDRAFT,
+        source: DOWNDRAFT_SOURCE,
+        inputs: "temperature and dew point of the lowest 400 hPa",
+        absent: NO_DOWNDRAFT,
     },
 ];

@@ -359,7 +359,7 @@ fn values_of_the_demonstration_soundings_are_finite_or_explained() {
                 seen += 1;
             }
         }
-        let text = report::all_numbers(&results, &other);
+        let text = report::table_with_all(&analysed, &results, &other);
         for quantity in all() {
             assert!(
                 text.contains(quantity.label),

@@ -3,13 +3,14 @@
 use super::{Group, Needs, Of, Quantity, Unit, Value};
 
 const NOT_THAT_HIGH: &str = "the wind doesn't reach from the ground to that height";
-const NO_EFFECTIVE: &str = "there is no effective inflow layer or no equilibrium level, or the wind doesn't reach through that layer";
+const NO_EFFECTIVE: &str = "there is no effective inflow layer or no equilibrium level, that layer is shallower than 1 km, or the wind or its pressure doesn't reach through it";
 const HELICITY: &str = "Integral over height of the vector product of the storm-relative wind and its change with height, \
      against the storm motion used; winds linear in height between levels.";
-const FIXED_MOTION: &str = "7.5 m/s across the wind difference between the lowest 500 m and 5.5 to 6 km, from the mean wind of \
-     the lowest 6 km; means by height.";
-const EFFECTIVE_MOTION: &str = "As the motion from fixed layers, with the layer from the base of the effective inflow layer up \
-     to a share of the height of the most unstable parcel's equilibrium level.";
+const FIXED_MOTION: &str = "The mean wind of 0 to 6 km, and 7.5 m/s from it at a right angle to the vector from the mean wind of 0 \
+     to 500 m to that of 5.5 to 6 km; means by height, not by pressure.";
+const EFFECTIVE_MOTION: &str = "The mean wind by pressure from the base of the effective inflow layer to 65 % of the height of the \
+     most unstable parcel's equilibrium level, and 7.5 m/s from it at a right angle to the vector from the mean wind of the \
+     lowest 500 m of that layer to that of its highest 500 m.";
 
 /// All of this group.
 pub(super) const QUANTITIES: &[Quantity] = &[
@@ -30,15 +31,15 @@ pub(super) const QUANTITIES: &[Quantity] = &[
     },
     Quantity {
         key: "difference_effective_ms",
-        label: "Wind difference, storm",
+        label: "Wind difference, effective",
         unit: Unit::Wind,
         decimals: 1,
         group: Group::Wind,
         of: Of::Profile(|readings| readings.further.winds.difference_effective.map(Value::Wind)),
         range: None,
         needs: Needs::WindAndInflow,
-        definition: "Wind at half the height of the most unstable parcel's equilibrium level minus the wind at the base of the effective inflow layer.",
-        method: "Winds linear in height between levels, by component.",
+        definition: "Effective bulk wind difference: over the lower half of the storm's depth, which reaches from the base of the effective inflow layer to the equilibrium level of the most unstable parcel.",
+        method: "Wind halfway up minus wind at the base; winds linear in height between levels, by component.",
         source: "Thompson, Mead and Edwards 2007 (WAF 22)",
         inputs: "wind of every level of known height, inflow layer, EL of the most unstable parcel",
         absent: "there is no effective inflow layer or no equilibrium level, or the wind doesn't reach that high",
@@ -54,7 +55,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         needs: Needs::Wind,
         definition: "Storm-relative helicity of the lowest 3 km: how far the wind relative to the storm turns with height, weighted by its speed.",
         method: HELICITY,
-        source: "Davies-Jones, Burgess and Foster 1990, from memory",
+        source: "Davies-Jones et al. 1990 (16th Conf. on Severe Local Storms), from memory",
         inputs: "wind of every level of known height, storm motion",
         absent: NOT_THAT_HIGH,
     },
@@ -84,7 +85,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         needs: Needs::Wind,
         definition: "Storm-relative helicity of the lowest 1 km: how far the wind relative to the storm turns with height, weighted by its speed.",
         method: HELICITY,
-        source: "Davies-Jones, Burgess and Foster 1990, from memory",
+        source: "Davies-Jones et al. 1990 (16th Conf. on Severe Local Storms), from memory",
         inputs: "wind of every level of known height, storm motion",
         absent: NOT_THAT_HIGH,
     },
@@ -127,11 +128,11 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         of: Of::Profile(|readings| readings.further.winds.critical_angle.map(Value::Number)),
         range: None,
         needs: Needs::Wind,
-        definition: "Angle between the storm-relative wind at the ground and the wind difference of the lowest 500 m. Near 90°: the air drawn in spins about its own course.",
+        definition: "Angle between the storm-relative wind at the ground and the wind difference of the lowest 500 m. At 90° the air drawn in spins about its own course.",
         method: "Angle of two vectors, 0 to 180°.",
-        source: "Esterheld and Giuliano 2008, from memory",
+        source: "Esterheld and Giuliano 2008 (EJSSM 3), from memory",
         inputs: "wind of every level of known height, storm motion",
-        absent: "there is no storm motion, or the wind doesn't reach from the ground to 500 m",
+        absent: "there is no storm motion, the wind doesn't reach from the ground to 500 m, or one of the two has no direction",
     },
     Quantity {
         key: "mean_0_to_6km_ms",
@@ -264,7 +265,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         needs: Needs::WindAndInflow,
         definition: "Motion of a supercell to the right of the mean wind of the effective layer.",
         method: EFFECTIVE_MOTION,
-        source: "Bunkers et al. 2014, from memory",
+        source: "Bunkers et al. 2014 (J. Operational Meteor. 2), from memory; ends of the shear vector: convention of this program",
         inputs: "wind of every level of known height, inflow layer, EL of the most unstable parcel",
         absent: NO_EFFECTIVE,
     },
@@ -285,7 +286,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         needs: Needs::WindAndInflow,
         definition: "Motion of a supercell to the left of the mean wind of the effective layer.",
         method: EFFECTIVE_MOTION,
-        source: "Bunkers et al. 2014, from memory",
+        source: "Bunkers et al. 2014 (J. Operational Meteor. 2), from memory; ends of the shear vector: convention of this program",
         inputs: "wind of every level of known height, inflow layer, EL of the most unstable parcel",
         absent: NO_EFFECTIVE,
     },
@@ -306,7 +307,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         needs: Needs::WindAndInflow,
         definition: "The mean wind of the effective layer both motions deviate from.",
         method: EFFECTIVE_MOTION,
-        source: "Bunkers et al. 2014, from memory",
+        source: "Bunkers et al. 2014 (J. Operational Meteor. 2), from memory; ends of the shear vector: convention of this program",
         inputs: "wind of every level of known height, inflow layer, EL of the most unstable parcel",
         absent: NO_EFFECTIVE,
     },

@@ -8,7 +8,7 @@ use crate::sounding::{OtherAscents, Parcel};
 use crate::wording::parcel as parcel_name;
 
 /// All numbers of one sounding, group by group, in the units of reports; "none", with the reason, where there is none.
-pub fn all_numbers(results: &Results, other: &OtherAscents) -> String {
+pub(super) fn all_numbers(results: &Results, other: &OtherAscents) -> String {
     let readings = results.readings(Some(other));
     let units = Unit::of_reports();
     let mut text = String::from("\nall numbers; heights are above the lowest usable level\n");

@@ -6,8 +6,7 @@ mod json;
 mod table;
 mod tray;
 
-pub use all::all_numbers;
 pub(crate) use json::rounded;
 pub use json::{SCHEMA, json_line, json_line_with_all};
-pub use table::table;
+pub use table::{table, table_with_all};
 pub use tray::tray;

@@ -14,8 +14,6 @@ mod mixed_layer;
 mod of_parcel;
 mod of_profile;
 mod theta_e;
-#[cfg(test)]
-mod timing;
 mod walk;
 
 pub use convective::*;

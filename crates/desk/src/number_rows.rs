@@ -14,7 +14,7 @@ use eframe::egui::{
 };
 
 /// Width of the names and units beside the parcels' columns.
-pub(crate) const NAMES: f32 = 115.0;
+pub(crate) const NAMES: f32 = 112.0;
 /// The same where there is one column.
 const PROFILE_NAMES: f32 = 200.0;
 const ROW: f32 = 19.0;
@@ -41,7 +41,7 @@ impl Weight {
         bold(text).size(match (self, decisive) {
             (_, true) => 15.0,
             (Self::Chief, false) => 13.0,
-            (Self::Further, false) => 12.5,
+            (Self::Further, false) => 12.0,
         })
     }
 }
@@ -175,7 +175,7 @@ fn cell_ui(
     }
     let shown = ui
         .horizontal(|ui| {
-            ui.spacing_mut().item_spacing.x = 4.0;
+            ui.spacing_mut().item_spacing.x = 3.0;
             if let Some(preview) = &preview {
                 ui.label(text.size(12.0));
                 let preview = bold(format!("→ {}", preview.text())).color(paint.theme.accent);
@@ -245,14 +245,14 @@ fn range_ui(
 /// What stands small beside or beneath a value: the value received where the working one differs, that the number is
 /// absent somewhere in the interval, why there is none.
 fn remark_ui(ui: &mut Ui, paint: &Paint, remark: &str) {
-    let text = RichText::new(remark).size(10.5).color(paint.theme.quiet);
+    let text = RichText::new(remark).size(10.0).color(paint.theme.quiet);
     let shown = ui.add(Label::new(text).truncate());
-    let meaning = if remark.starts_with("was ") || remark.starts_with("or none") {
-        "\"was\": as received; \"or none\": absent somewhere in the interval"
-    } else {
-        remark
-    };
-    shown.on_hover_text(meaning);
+    shown.on_hover_ui(|ui| {
+        ui.label(remark);
+        if remark.contains("was ") || remark.contains("or none") {
+            ui.label("\"was\": as received; \"or none\": absent somewhere in the interval");
+        }
+    });
 }
 
 fn where_text(range: &Extremes, item: &Item, units: Units) -> String {

@@ -139,7 +139,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         key: "normalised_cape_ms2",
         label: "CAPE / depth",
         unit: Unit::Acceleration,
-        decimals: 3,
+        decimals: 2,
         group: Group::Energy,
         of: Of::Parcel(|readings, parcel| {
             of_parcel(readings, parcel)?

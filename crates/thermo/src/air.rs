@@ -3,7 +3,7 @@
 //! T, Td, T_L = temperature, dew point, temperature at the LCL (K); p, e = pressure, vapour pressure; w = mixing ratio
 //! (kg/kg); eps = Rd/Rv. Bolton = Bolton (1980), MWR 108, 1046-1053.
 
-use crate::{KAPPA, Pressure, REFERENCE_PRESSURE, Temperature, pseudoadiabat, saturation};
+use crate::{EPSILON, KAPPA, Pressure, REFERENCE_PRESSURE, Temperature, pseudoadiabat, saturation};
 
 /// One point of moist air.
 ///
@@ -74,16 +74,15 @@ pub(crate) fn ln_theta_e(t: f64, dry_pressure: f64, w: f64, t_lcl: f64) -> f64 {
 /// ln theta-e (eq. 39) of air known to be usable, with the inlined logarithm: for scans of many levels.
 #[inline]
 pub(crate) fn quick_ln_theta_e(p: f64, t: f64, td: f64) -> f64 {
-    use crate::elementary::{exp, ln};
-    let t_lcl = if td >= t || td <= 56.0 {
-        td.min(t)
-    } else {
-        1.0 / (1.0 / (td - 56.0) + ln(t / td) * (1.0 / 800.0)) + 56.0
-    };
-    let e = saturation::E0 * exp(saturation::exponent(td));
-    let w = saturation::mixing_ratio(p, e);
+    use crate::elementary::{at_least, at_most, exp, ln};
+    // Eq. 15 gives the temperature itself for saturated air; the pole at 56 K is as good as dry.
+    let held = at_least(at_most(td, t), 57.0);
     let ln_t = ln(t);
-    ln_t + KAPPA * ln(REFERENCE_PRESSURE / (p - e))
+    let t_lcl = 1.0 / (1.0 / (held - 56.0) + (ln_t - ln(held)) * (1.0 / 800.0)) + 56.0;
+    let e = saturation::E0 * exp(saturation::exponent(td));
+    let per_dry = 1.0 / (p - e);
+    let w = EPSILON * e * per_dry;
+    ln_t + KAPPA * ln(REFERENCE_PRESSURE * per_dry)
         + 0.28 * w * (ln_t - ln(t_lcl))
         + pseudoadiabat::latent_term(t_lcl, w)
 }

@@ -185,10 +185,8 @@ mod tests {
                 last = value;
                 sum += h * value;
                 // What a scan of the pieces reads is the same.
-                let (c, foot, head) = table.piece_at(z);
-                let s = (z - foot) / SPACING;
-                let there = c[0] + s * (c[1] + s * (c[2] + s * c[3]));
-                assert!((there - value).abs() < 1e-9 && head > z);
+                let piece = table.piece_at(z);
+                assert!((piece.value(z) - value).abs() < 1e-9 && piece.head > z);
             }
             let integral = table.integral(to) - table.integral(from);
             assert!(

@@ -21,7 +21,10 @@ pub(crate) fn hermite_integral(h: f64, left: (f64, f64), right: (f64, f64)) -> f
 
 /// A zero of `f` between `a` and `b`, where its values `fa` and `fb` have opposite signs (or one is zero).
 ///
-/// False position with the Illinois weight, falling back on halving: never leaves the bracket, always ends.
+/// Chandrupatla's method (1997, Advances in Engineering Software 28, 145-149; from memory): inverse quadratic
+/// interpolation where the three last points promise that it helps, halving elsewhere. Never leaves the bracket, always ends;
+/// smooth functions take five or six evaluations.
+#[inline]
 pub(crate) fn zero_between(
     mut a: f64,
     mut fa: f64,
@@ -36,47 +39,38 @@ pub(crate) fn zero_between(
         return b;
     }
     let tolerance = 1e-14 * a.abs().max(b.abs()).max(1.0);
-    let mut last_side = 0i8;
-    for step in 0..180 {
-        let width = b - a;
-        if width.abs() <= tolerance {
+    // The first step is that of false position.
+    let mut share = fa / (fa - fb);
+    for _ in 0..120 {
+        let width = (b - a).abs();
+        // At least a tolerance from either end, so that the bracket closes from both sides.
+        let least = tolerance / width;
+        if least >= 0.5 {
             break;
         }
-        let mut x = if step % 3 == 2 {
-            0.5 * (a + b)
-        } else {
-            (a * fb - b * fa) / (fb - fa)
-        };
-        if !(x > a.min(b) && x < a.max(b)) {
-            x = 0.5 * (a + b);
-        }
+        let x = a + share.clamp(least, 1.0 - least) * (b - a);
         let fx = f(x);
         if fx == 0.0 {
             return x;
         }
-        if (fx > 0.0) == (fb > 0.0) {
-            if (b - x).abs() <= tolerance {
-                return x;
-            }
-            b = x;
-            fb = fx;
-            if last_side == 1 {
-                fa *= 0.5;
-            }
-            last_side = 1;
+        // `a` becomes the newest point, `b` the other end of the bracket, `c` the point left behind.
+        let (c, fc);
+        if (fx > 0.0) == (fa > 0.0) {
+            (c, fc) = (a, fa);
         } else {
-            if (x - a).abs() <= tolerance {
-                return x;
-            }
-            a = x;
-            fa = fx;
-            if last_side == -1 {
-                fb *= 0.5;
-            }
-            last_side = -1;
+            (c, fc) = (b, fb);
+            (b, fb) = (a, fa);
         }
+        (a, fa) = (x, fx);
+        let xi = (a - b) / (c - b);
+        let phi = (fa - fb) / (fc - fb);
+        share = if phi * phi < xi && (1.0 - phi) * (1.0 - phi) < 1.0 - xi {
+            fa / (fb - fa) * fc / (fb - fc) + (c - a) / (b - a) * fa / (fc - fa) * fb / (fc - fb)
+        } else {
+            0.5
+        };
     }
-    0.5 * (a + b)
+    if fa.abs() < fb.abs() { a } else { b }
 }
 
 #[cfg(test)]

@@ -1,12 +1,15 @@
 //! Where a parcel starts: mixed and most unstable.
 
 use crate::air::quick_ln_theta_e;
+use crate::saturation::NO_VAPOUR;
 use crate::{
     Air, Environment, Pressure, Temperature, dewpoint_from_mixing_ratio, temperature_on_dry_adiabat,
 };
 
 /// Depth over which the mixed parcel is averaged unless told otherwise.
 pub const MIXED_DEPTH: Pressure = Pressure::from_hpa(100.0);
+/// Levels looked at together.
+const BLOCK: usize = 64;
 /// Depth searched for the most unstable parcel.
 pub const MOST_UNSTABLE_DEPTH: Pressure = Pressure::from_hpa(300.0);
 
@@ -42,34 +45,43 @@ pub fn most_unstable_start(
     candidate: impl Fn(usize) -> bool,
 ) -> Option<(usize, Air)> {
     let limit = environment.bottom().pressure.pa() - depth.pa();
-    let columns = environment
-        .pressure()
-        .iter()
-        .zip(environment.temperature())
-        .zip(environment.dewpoint());
-    let mut best: Option<(f64, usize, Air)> = None;
-    for (level, ((&p, &t), &td)) in columns
-        .enumerate()
-        .take_while(|(_, ((p, _), _))| **p >= limit)
-    {
-        let Some(td) = td else { break };
-        if !candidate(level) {
-            continue;
-        }
-        let ln_theta_e = quick_ln_theta_e(p, t, td);
-        // Strictly greater: of equals the lowest.
-        if best.is_none_or(|(largest, _, _)| ln_theta_e > largest) {
-            let (temperature, dewpoint) = (Temperature::from_k(t), Temperature::from_k(td));
-            best = Some((
-                ln_theta_e,
-                level,
-                Air {
-                    pressure: Pressure::from_pa(p),
-                    temperature,
-                    dewpoint,
-                },
-            ));
+    let (p, t, td) = (
+        environment.pressure(),
+        environment.temperature(),
+        environment.dewpoint(),
+    );
+    let within = p.iter().take_while(|&&p| p >= limit).count();
+    let humid = td[..within].iter().take_while(|td| td.is_some()).count();
+    let mut best: Option<(f64, usize)> = None;
+    // Block by block, first theta-e of all its levels (plain arithmetic, side by side), then the choice.
+    let mut ln_theta_e = [0.0; BLOCK];
+    for begin in (0..humid).step_by(BLOCK) {
+        let end = (begin + BLOCK).min(humid);
+        let block = &mut ln_theta_e[..end - begin];
+        ln_theta_e_of(&p[begin..end], &t[begin..end], &td[begin..end], block);
+        for (level, &value) in (begin..).zip(block.iter()) {
+            // Strictly greater: of equals the lowest.
+            if best.is_none_or(|(largest, _)| value > largest) && candidate(level) {
+                best = Some((value, level));
+            }
         }
     }
-    best.map(|(_, level, air)| (level, air))
+    let (_, level) = best?;
+    let air = Air {
+        pressure: Pressure::from_pa(*p.get(level)?),
+        temperature: Temperature::from_k(*t.get(level)?),
+        dewpoint: Temperature::from_k((*td.get(level)?)?),
+    };
+    Some((level, air))
+}
+
+/// ln theta-e of levels with humidity. Not generic and not inlined, so that it is vectorised once, here.
+#[inline(never)]
+pub(crate) fn ln_theta_e_of(p: &[f64], t: &[f64], td: &[Option<f64>], out: &mut [f64]) {
+    for (out, td) in out.iter_mut().zip(td) {
+        *out = td.unwrap_or(NO_VAPOUR);
+    }
+    for ((out, &p), &t) in out.iter_mut().zip(p).zip(t) {
+        *out = quick_ln_theta_e(p, t, *out);
+    }
 }

@@ -1,12 +1,12 @@
 //! A rising parcel's virtual temperature as a smooth function of z = -ln p.
 //!
-//! Nodes are solved exactly with their analytic slopes; a cubic Hermite polynomial runs between them. A new method
-//! of ascent supplies its own nodes and nothing else changes.
+//! Nodes come from a table that all parcels share ([`adiabats`]) or are solved for, with their analytic slopes; a cubic
+//! Hermite polynomial runs between them. A new process supplies its own nodes and nothing else changes.
 
 use crate::environment::coordinate;
 use crate::pseudoadiabat::refine;
 use crate::saturation::{e_water, mixing_ratio, virtual_temperature};
-use crate::{Air, Buoyancy, EPSILON, Method, Temperature, air, lapse_path};
+use crate::{Air, Buoyancy, EPSILON, Method, Temperature, adiabats, air, lapse_path};
 
 /// Spacing of the nodes in z.
 pub(crate) const SPACING: f64 = 0.1;
@@ -33,22 +33,27 @@ pub(crate) struct Split {
 }
 
 impl Cubic {
-    /// From nodes (value, slope) at `start`, `start + SPACING`, ... Fewer than two nodes give zero everywhere.
-    fn new(start: f64, nodes: &[(f64, f64)]) -> Self {
+    /// From the values and slopes of nodes at `start`, `start + SPACING`, ... Fewer than two nodes give zero everywhere.
+    pub fn new(start: f64, values: &[f64], slopes: &[f64]) -> Self {
         let mut integral = 0.0;
-        let pieces = nodes
-            .windows(2)
-            .filter_map(|pair| {
-                let [(v0, s0), (v1, s1)] = *pair else {
-                    return None;
-                };
-                let (m0, m1, rise) = (s0 * SPACING, s1 * SPACING, v1 - v0);
-                let c = [v0, m0, 3.0 * rise - 2.0 * m0 - m1, m0 + m1 - 2.0 * rise];
-                let piece = (c, integral);
-                integral += SPACING * (c[0] + c[1] / 2.0 + c[2] / 3.0 + c[3] / 4.0);
-                Some(piece)
-            })
-            .collect();
+        let mut pieces = Vec::with_capacity(values.len());
+        let (mut below, mut below_slope) = (
+            values.first().copied().unwrap_or(0.0),
+            slopes.first().copied().unwrap_or(0.0) * SPACING,
+        );
+        for (&value, &slope) in values.iter().zip(slopes).skip(1) {
+            let (rise, slope) = (value - below, slope * SPACING);
+            let c = [
+                below,
+                below_slope,
+                3.0 * rise - 2.0 * below_slope - slope,
+                below_slope + slope - 2.0 * rise,
+            ];
+            pieces.push((c, integral));
+            integral +=
+                SPACING * (c[0] + c[1] * (1.0 / 2.0) + c[2] * (1.0 / 3.0) + c[3] * (1.0 / 4.0));
+            (below, below_slope) = (value, slope);
+        }
         Self::of_pieces(start, pieces, Vec::new())
     }
 
@@ -86,6 +91,28 @@ impl Cubic {
         (piece, share - k as f64)
     }
 
+    /// The polynomial that serves at z, the z its step starts from, and the z up to which it serves.
+    #[inline]
+    pub fn piece_at(&self, z: f64) -> Piece {
+        let share = (z - self.start) * (1.0 / SPACING);
+        let k = (share as usize).min(self.pieces.len().saturating_sub(1));
+        let head = if k + 1 < self.pieces.len() {
+            self.start + (k + 1) as f64 * SPACING
+        } else {
+            f64::INFINITY
+        };
+        let piece = match self.split(k, z) {
+            Some(split) => Some(&split.piece),
+            None => self.pieces.get(k),
+        };
+        let next = self.splits.iter().find(|split| split.k == k && split.z > z);
+        Piece {
+            coefficients: piece.map_or([0.0; 4], |piece| piece.0),
+            foot: self.start + k as f64 * SPACING,
+            head: next.map_or(head, |split| split.z),
+        }
+    }
+
     /// Value at z.
     #[inline]
     pub fn value(&self, z: f64) -> f64 {
@@ -93,33 +120,34 @@ impl Cubic {
         c[0] + s * (c[1] + s * (c[2] + s * c[3]))
     }
 
-    /// The polynomial that serves at z, the z its step starts from, and the z up to which it serves.
-    pub fn piece_at(&self, z: f64) -> ([f64; 4], f64, f64) {
-        let k = (((z - self.start) * (1.0 / SPACING)) as usize)
-            .min(self.pieces.len().saturating_sub(1));
-        let foot = self.start + k as f64 * SPACING;
-        let head = if k + 1 < self.pieces.len() {
-            self.start + (k + 1) as f64 * SPACING
-        } else {
-            f64::INFINITY
-        };
-        let next = self.splits.iter().find(|split| split.k == k && split.z > z);
-        let piece = match self.split(k, z) {
-            Some(split) => Some(&split.piece),
-            None => self.pieces.get(k),
-        };
-        (
-            piece.map_or([0.0; 4], |piece| piece.0),
-            foot,
-            next.map_or(head, |split| split.z),
-        )
-    }
-
     /// Integral from the first node to z.
     #[inline]
     pub fn integral(&self, z: f64) -> f64 {
         let ((c, before), s) = self.locate(z);
-        before + SPACING * s * (c[0] + s * (c[1] / 2.0 + s * (c[2] / 3.0 + s * c[3] / 4.0)))
+        before
+            + SPACING
+                * s
+                * (c[0]
+                    + s * (c[1] * (1.0 / 2.0) + s * (c[2] * (1.0 / 3.0) + s * c[3] * (1.0 / 4.0))))
+    }
+}
+
+/// One polynomial of a [`Cubic`].
+#[derive(Debug, Clone, Copy)]
+pub(crate) struct Piece {
+    coefficients: [f64; 4],
+    foot: f64,
+    /// Up to here it serves.
+    pub head: f64,
+}
+
+impl Piece {
+    /// Value at z.
+    #[inline(always)]
+    pub fn value(&self, z: f64) -> f64 {
+        let c = &self.coefficients;
+        let s = (z - self.foot) * (1.0 / SPACING);
+        (c[0] + s * c[1]) + s * s * (c[2] + s * c[3])
     }
 }
 
@@ -196,13 +224,18 @@ impl Parcel {
             Buoyancy::Virtual => virtual_temperature(1.0, self.w),
             Buoyancy::Temperature => 1.0,
         };
-        let nodes: Vec<_> = (0..=count)
-            .map(|k| {
-                let tv = per_kelvin * self.dry_temperature(self.z_start + k as f64 * SPACING);
-                (tv, -self.exponent * tv)
+        // An exponential's nodes follow from one another; over so few steps rounding stays rounding.
+        let fall = (-self.exponent * SPACING).exp();
+        let mut tv = per_kelvin * self.start.temperature.k();
+        let values: Vec<f64> = (0..=count)
+            .map(|_| {
+                let here = tv;
+                tv *= fall;
+                here
             })
             .collect();
-        Cubic::new(self.z_start, &nodes)
+        let slopes: Vec<f64> = values.iter().map(|tv| -self.exponent * tv).collect();
+        Cubic::new(self.z_start, &values, &slopes)
     }
 
     /// What counts of the saturated ascent from the LCL to at least `z_end`.
@@ -211,9 +244,19 @@ impl Parcel {
             .unwrap_or_else(|| self.pseudoadiabat(method.buoyancy, z_end))
     }
 
+    /// From the common table, or else from nodes of its own.
     fn pseudoadiabat(&self, buoyancy: Buoyancy, z_end: f64) -> Cubic {
+        let shared = match buoyancy {
+            Buoyancy::Virtual => adiabats::path(self.ln_theta_e, self.z_lcl, z_end),
+            Buoyancy::Temperature => None,
+        };
+        shared.unwrap_or_else(|| self.own_pseudoadiabat(buoyancy, z_end))
+    }
+
+    fn own_pseudoadiabat(&self, buoyancy: Buoyancy, z_end: f64) -> Cubic {
         let count = steps(self.z_lcl, z_end);
-        let mut nodes = Vec::with_capacity(count + 1);
+        let mut values = Vec::with_capacity(count + 1);
+        let mut node_slopes = Vec::with_capacity(count + 1);
         let mut guess = self.lcl.temperature.k();
         // Slopes at the node and at the two below it.
         let mut slopes = [0.0; 3];
@@ -227,10 +270,12 @@ impl Parcel {
             let share = 1.0 / (1.0 + w);
             let slope = per_kelvin * state.slope
                 + t * (1.0 / EPSILON - 1.0) * share * share * state.w_slope;
-            nodes.push(match buoyancy {
+            let (value, slope) = match buoyancy {
                 Buoyancy::Virtual => (per_kelvin * t, slope),
                 Buoyancy::Temperature => (t, state.slope),
-            });
+            };
+            values.push(value);
+            node_slopes.push(slope);
             slopes = match k {
                 0 => [state.slope; 3],
                 1 => [state.slope, slopes[0], 2.0 * slopes[0] - state.slope],
@@ -239,7 +284,7 @@ impl Parcel {
             // Three-step Adams-Bashforth lands within a mK or so, so that one Newton step finishes.
             guess = t + SPACING / 12.0 * (23.0 * slopes[0] - 16.0 * slopes[1] + 5.0 * slopes[2]);
         }
-        Cubic::new(self.z_lcl, &nodes)
+        Cubic::new(self.z_lcl, &values, &node_slopes)
     }
 }
 

@@ -3,6 +3,7 @@
 //! e = vapour pressure, p = pressure (Pa); t = temperature in °C, T in K; w = mixing ratio, kg of vapour to a kg of dry
 //! air; eps = Rd/Rv.
 
+use crate::elementary::at_least;
 use crate::{EPSILON, Pressure, Temperature, ZERO_CELSIUS};
 
 /// e_s at 0 °C in eq. 10, Pa.
@@ -41,13 +42,13 @@ pub(crate) fn dln_e_water(t: f64) -> f64 {
 /// Exponent of eq. 10: the logarithm of e_s / 611.2 Pa; so far down at the pole that its exponential is zero.
 #[inline(always)]
 pub(crate) fn exponent(t: f64) -> f64 {
-    A * (t - ZERO_CELSIUS) / (t - NO_VAPOUR).max(TINY)
+    A * (t - ZERO_CELSIUS) / at_least(t - NO_VAPOUR, TINY)
 }
 
 /// [`exponent`] and its derivative with temperature, 1/K.
 #[inline(always)]
 pub(crate) fn exponent_and_slope(t: f64) -> (f64, f64) {
-    let per = 1.0 / (t - NO_VAPOUR).max(TINY);
+    let per = 1.0 / at_least(t - NO_VAPOUR, TINY);
     (A * (t - ZERO_CELSIUS) * per, A * B * per * per)
 }
 

@@ -1,8 +1,8 @@
 //! Signed areas between a parcel and its environment, with exact zero crossings.
 
-use crate::column::{Column, Levels, MOISTURE_BULGE, Segment, WIDEST};
+use crate::column::{Column, Levels, MOISTURE_BULGE, STRETCH, Segment, WIDEST};
 use crate::numeric::zero_between;
-use crate::path::{Cubic, SPACING};
+use crate::path::Cubic;
 
 /// A stretch of one sign of buoyancy.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -54,34 +54,37 @@ pub(crate) fn runs(path: &Cubic, column: &Column, levels: Levels, from: f64, to:
     let mut below = (from, buoyancy_from);
     let mut calm = false;
     let mut node = inner.start;
+    let mut piece = path.piece_at(from);
     while node < inner.end {
-        // One polynomial of the parcel at a time, so that the loop over its nodes is plain arithmetic.
-        let (c, foot, head) = path.piece_at(column.z[node]);
-        // At least one node a turn, whatever rounding says of the piece it belongs to.
-        let end = (node + 1..inner.end.min(node + BLOCK)).find(|&i| column.z[i] >= head);
-        let end = end.unwrap_or(inner.end.min(node + BLOCK));
-        let buoyancy = |z: f64, tv: f64| {
-            let s = (z - foot) * (1.0 / SPACING);
-            c[0] + s * (c[1] + s * (c[2] + s * c[3])) - tv
-        };
-        let (z, tv) = (&column.z[node..end], &column.tv[node..end]);
-        // Far from any crossing a block is passed over as a whole.
-        if calm && all_calm(z, tv, scan.positive, buoyancy) {
-            node = end;
-            let last = z.len() - 1;
-            below = (z[last], buoyancy(z[last], tv[last]));
-            continue;
-        }
-        for (&z, &tv) in z.iter().zip(tv) {
-            let here = buoyancy(z, tv);
-            let calm_here = is_calm(here, scan.positive);
-            if !(calm && calm_here) {
-                scan.step(node - 1, below, (z, here));
-                calm = is_calm(here, scan.positive);
+        // Whole stretches far from any crossing, judged by their ends.
+        if calm && (node - 1) % STRETCH == 0 && node - 1 + STRETCH < inner.end {
+            let head = node - 1 + STRETCH;
+            let z = column.z[head];
+            let here = path.value(z) - column.tv[head];
+            if is_calm_stretch(
+                column,
+                (node - 1) / STRETCH,
+                below,
+                (z, here),
+                scan.positive,
+            ) {
+                below = (z, here);
+                node = head + 1;
+                continue;
             }
-            below = (z, here);
-            node += 1;
         }
+        let z = column.z[node];
+        if z >= piece.head {
+            piece = path.piece_at(z);
+        }
+        let here = piece.value(z) - column.tv[node];
+        let calm_here = is_calm(here, scan.positive);
+        if !(calm && calm_here) {
+            scan.step(node - 1, below, (z, here));
+            calm = is_calm(here, scan.positive);
+        }
+        below = (z, here);
+        node += 1;
     }
     let step = (inner.end - 1).min(column.z.len().saturating_sub(2));
     let buoyancy_to = path.value(to) - levels.segment_at(column.z[step]).virtual_temperature(to);
@@ -89,9 +92,6 @@ pub(crate) fn runs(path: &Cubic, column: &Column, levels: Levels, from: f64, to:
     scan.close(step, to);
     scan.runs
 }
-
-/// Nodes looked at together.
-const BLOCK: usize = 64;
 
 #[inline(always)]
 fn is_calm(buoyancy: f64, positive: bool) -> bool {
@@ -102,25 +102,25 @@ fn is_calm(buoyancy: f64, positive: bool) -> bool {
     }
 }
 
-/// Whether every node's buoyancy has this sign and is far from zero.
+/// Whether the buoyancy of a stretch has this sign and is far from zero throughout, by what it is at the ends and how far
+/// parcel and environment can depart from straight lines between them.
 #[inline]
-fn all_calm(z: &[f64], tv: &[f64], positive: bool, buoyancy: impl Fn(f64, f64) -> f64) -> bool {
-    // Four minima side by side: the compiler may not reorder one.
-    let sign = if positive { 1.0 } else { -1.0 };
-    let mut least = [f64::INFINITY; 4];
-    let (z_fours, z_rest) = z.as_chunks::<4>();
-    let (tv_fours, tv_rest) = tv.as_chunks::<4>();
-    for (z, tv) in z_fours.iter().zip(tv_fours) {
-        for k in 0..4 {
-            let value = sign * buoyancy(z[k], tv[k]);
-            least[k] = if value < least[k] { value } else { least[k] };
-        }
+fn is_calm_stretch(
+    column: &Column,
+    stretch: usize,
+    (foot, at_foot): (f64, f64),
+    (head, at_head): (f64, f64),
+    positive: bool,
+) -> bool {
+    let Some(&(low, high)) = column.departures.get(stretch) else {
+        return false;
+    };
+    let bulge = PARCEL_BULGE * (head - foot) * (head - foot);
+    if positive {
+        at_foot.min(at_head) - high - bulge > CALM
+    } else {
+        at_foot.max(at_head) - low + bulge < -CALM
     }
-    let rest = z_rest
-        .iter()
-        .zip(tv_rest)
-        .map(|(z, tv)| sign * buoyancy(*z, *tv));
-    rest.chain(least).all(|value| value > CALM)
 }
 
 impl Scan<'_> {

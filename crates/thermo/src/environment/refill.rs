@@ -3,6 +3,7 @@
 use super::{Environment, EnvironmentError, HumidityKnown, coordinate};
 use crate::Pressure;
 use crate::column::{Column, Levels};
+use crate::elementary::at_most;
 use crate::saturation::{self, NO_VAPOUR};
 
 /// Usable pressures, Pa.
@@ -64,10 +65,10 @@ impl Environment {
         replace_front(&mut self.p, old_changed, &pressure[..changed]);
         replace_front(&mut self.t, old_changed, &temperature[..changed]);
         replace_front(&mut self.td, old_changed, &dewpoint[..changed]);
-        self.z.splice(
-            ..old_changed,
-            pressure[..changed].iter().map(|p| coordinate(*p)),
-        );
+        replace_front(&mut self.z, old_changed, &pressure[..changed]);
+        for z in &mut self.z[..changed] {
+            *z = coordinate(*z);
+        }
         self.flags
             .splice(..old_changed, std::iter::repeat_n(0, changed));
         if let Some(level) = (1..bound).find(|&i| self.z[i] <= self.z[i - 1]) {
@@ -150,6 +151,12 @@ impl Environment {
     fn take_dewpoints(&mut self, changed: usize) -> Result<(), EnvironmentError> {
         // Vapour at half the pressure or more isn't air; ln(e/p) = exponent + ln 611.2 - ln p.
         let too_moist = (0.5 / saturation::E0).ln();
+        if self.plainly_usable(changed) {
+            for (flags, td) in self.flags[..changed].iter_mut().zip(&self.td) {
+                *flags = if td.is_some() { KNOWN } else { 0 };
+            }
+            return Ok(());
+        }
         let columns = self
             .td
             .iter_mut()
@@ -159,10 +166,7 @@ impl Environment {
         for (level, (((td, flags), t), z)) in columns.enumerate().take(changed) {
             let Some(value) = *td else { continue };
             let held = value.min(*t);
-            // 38 Pa at 240 K, 17,200 Pa at 330 K: nearly all air is seen to be air without a division.
-            let plainly_air = (held < 240.0 && *z < -4.61) || (held < 330.0 && *z < -10.6);
-            let usable = DEWPOINTS.contains(&value)
-                && (plainly_air || saturation::exponent(held) + z < too_moist);
+            let usable = DEWPOINTS.contains(&value) && saturation::exponent(held) + z < too_moist;
             if !usable {
                 return Err(EnvironmentError::Value {
                     level,
@@ -179,6 +183,28 @@ impl Environment {
             *td = Some(held);
         }
         Ok(())
+    }
+
+    /// Whether the dew points of the lowest `changed` levels are seen at a glance to be usable as they are: within reason, not above
+    /// the temperature, and not so moist that it must be looked at more closely. No early end, no division.
+    fn plainly_usable(&self, changed: usize) -> bool {
+        // 17,200 Pa of vapour at 330 K, 611 Pa at 273 K, 38 Pa at 240 K: below half of 40,000, 1,300 and 100 Pa.
+        let below = |z: f64| self.z[..changed].partition_point(|&level| level < z);
+        let ends = [below(-10.6), below(-7.2), below(-4.61)];
+        let mut begin = 0;
+        let usable = ends
+            .into_iter()
+            .zip([330.0, 273.0, 240.0])
+            .all(|(end, limit)| {
+                let levels = self.td[begin..end].iter().zip(&self.t[begin..end]);
+                begin = end;
+                levels.fold(true, |all, (td, t)| {
+                    // A missing one is as good as any other.
+                    let value = td.unwrap_or(NO_VAPOUR);
+                    all & (value >= NO_VAPOUR) & (value <= at_most(*t, limit))
+                })
+            });
+        usable && begin == changed
     }
 
     /// Fills missing dew points among the lowest `bound` levels (the last of which is known, or the column's top), and

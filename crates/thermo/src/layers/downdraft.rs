@@ -1,7 +1,8 @@
 //! Downdraft CAPE: what evaporation could do to the driest-feeling air of the lowest 400 hPa.
 
 use super::theta_e::Running;
-use super::walk::{WIDEST, walk};
+use super::walk::{WIDEST, pieces, walk};
+use crate::column::Segment;
 use crate::environment::coordinate;
 use crate::numeric::zero_between;
 use crate::pseudoadiabat::{refine, saturated};
@@ -16,6 +17,11 @@ const SEARCHED: f64 = 40_000.0;
 const LAYER: f64 = 10_000.0;
 /// Spacing of the layers tried, Pa.
 const SPACING: f64 = 500.0;
+/// Where the air is colder by more than this (K) at both ends of a stretch no deeper (ln p, dew point in K) than these, it
+/// is colder all through: virtual temperatures bend by less than 0.5 K there.
+const CALM: f64 = 1.0;
+const CALM_DEPTH: f64 = 0.1;
+const CALM_DEWPOINT: f64 = 8.0;
 /// Widest step of the descent's table in ln p.
 const TABLE: f64 = 0.1;
 
@@ -169,21 +175,37 @@ impl Descent {
         };
         // Integral up to where the stretch of one sign began, and that sign.
         let mut open: Option<(f64, bool)> = None;
+        let mut step = |segment: &Segment, a: f64, b: f64| {
+            let colder = |z: f64| segment.virtual_temperature(z) - self.at(z).0;
+            let (before, positive) = open.unwrap_or_else(|| (difference(a), colder(a) > 0.0));
+            let head = colder(b);
+            open = Some((before, positive));
+            if (head > 0.0) != positive {
+                let z = zero_between(a, colder(a), b, head, colder);
+                let here = difference(z);
+                add(here - before);
+                open = Some((here, !positive));
+            }
+        };
+        let mut foot: Option<f64> = None;
         walk(
             environment,
             self.bottom,
             self.top,
-            WIDEST,
+            f64::INFINITY,
             |segment, a, b| {
                 let colder = |z: f64| segment.virtual_temperature(z) - self.at(z).0;
-                let (before, positive) = open.unwrap_or_else(|| (difference(a), colder(a) > 0.0));
+                let dew = segment.td.map_or(0.0, |(_, slope)| (slope * (b - a)).abs());
                 let head = colder(b);
-                open = Some((before, positive));
-                if (head > 0.0) != positive {
-                    let z = zero_between(a, colder(a), b, head, colder);
-                    let here = difference(z);
-                    add(here - before);
-                    open = Some((here, !positive));
+                let calm = foot.is_some_and(|foot| foot > CALM && head > CALM)
+                    && b - a <= CALM_DEPTH
+                    && dew <= CALM_DEWPOINT;
+                foot = Some(head);
+                if !calm {
+                    pieces(segment, a, b, WIDEST, |a, b| {
+                        step(segment, a, b);
+                        true
+                    });
                 }
                 true
             },

@@ -9,7 +9,7 @@ pub(super) const LEAST_CAPE: f64 = 100.0;
 /// Most negative CIN of air that feeds a storm, J/kg.
 pub(super) const LEAST_CIN: f64 = -250.0;
 /// Spacing of the starts, Pa.
-const SPACING: f64 = 500.0;
+pub(super) const SPACING: f64 = 500.0;
 /// Rounding of a pressure, Pa.
 const ROUNDING: f64 = 1e-6;
 
@@ -51,11 +51,18 @@ pub(super) fn qualifies_lifted(environment: &Environment, start: Air) -> (bool, 
 
 pub(super) fn inflow_layer(environment: &Environment) -> Option<InflowLayer> {
     let mut judge = Judge::new(environment);
+    let bottom = environment.bottom().pressure.pa();
     let mut first = 0;
     loop {
-        let p = environment.bottom().pressure.pa() - first as f64 * SPACING;
+        let p = bottom - first as f64 * SPACING;
         if judge.is_over(p) {
             return None;
+        }
+        // Straight to the first start above what fails anyway.
+        let reached = judge.fails_up_to(p);
+        if reached < p {
+            first = ((bottom - reached) / SPACING) as usize + 1;
+            continue;
         }
         if judge.qualifies(environment.at(Pressure::from_pa(p))?) {
             break;

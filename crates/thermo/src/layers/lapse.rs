@@ -14,13 +14,3 @@ pub(super) fn lapse_rate(
     let depth = environment.thickness(lower, upper)?;
     (depth > 0.0).then(|| (warm - cold) / depth)
 }
-
-/// The same between two heights (m) above the lowest level.
-pub(super) fn lapse_rate_by_height(
-    environment: &Environment,
-    lower: f64,
-    upper: f64,
-) -> Option<f64> {
-    let pressure = |height: f64| environment.pressure_at_height(height);
-    lapse_rate(environment, pressure(lower)?, pressure(upper)?)
-}

@@ -2,9 +2,11 @@
 //!
 //! Heights are geopotential heights above the lowest level of the environment, from the hypsometric equation.
 
+mod bounds;
 mod convective;
 mod downdraft;
 mod freezing;
+mod grid;
 mod growth_zone;
 mod humidity;
 mod inflow;

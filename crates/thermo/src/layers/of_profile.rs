@@ -5,7 +5,7 @@ use super::downdraft::{Downdraft, downdraft};
 use super::freezing::{freezing_level, wet_bulb_zero};
 use super::humidity::{mean_of_lowest, precipitable_water};
 use super::inflow::{InflowLayer, inflow_layer};
-use super::lapse::{lapse_rate, lapse_rate_by_height};
+use super::lapse::lapse_rate;
 use super::mixed_layer::{by_parcel, by_richardson};
 use crate::winds::WindProfile;
 use crate::{Environment, Pressure};
@@ -54,16 +54,21 @@ impl LayerNumbers {
     /// Of an environment; the wind is needed for the bulk Richardson number only.
     pub fn of(environment: &Environment, winds: Option<&WindProfile>) -> Self {
         let [p850, p700, p500] = [850.0, 700.0, 500.0].map(Pressure::from_hpa);
+        let bottom = environment.bottom().pressure;
+        let [p3km, p6km] = [3_000.0, 6_000.0].map(|height| environment.pressure_at_height(height));
+        let lapse_rate = |lower: Option<Pressure>, upper: Option<Pressure>| {
+            lapse_rate(environment, lower?, upper?)
+        };
         Self {
             inflow: inflow_layer(environment),
             downdraft: downdraft(environment),
             precipitable_water: precipitable_water(environment),
             freezing_level: freezing_level(environment),
             wet_bulb_zero: wet_bulb_zero(environment),
-            lapse_rate_to_3km: lapse_rate_by_height(environment, 0.0, 3_000.0),
-            lapse_rate_3_to_6km: lapse_rate_by_height(environment, 3_000.0, 6_000.0),
-            lapse_rate_850_to_500hpa: lapse_rate(environment, p850, p500),
-            lapse_rate_700_to_500hpa: lapse_rate(environment, p700, p500),
+            lapse_rate_to_3km: lapse_rate(Some(bottom), p3km),
+            lapse_rate_3_to_6km: lapse_rate(p3km, p6km),
+            lapse_rate_850_to_500hpa: lapse_rate(Some(p850), Some(p500)),
+            lapse_rate_700_to_500hpa: lapse_rate(Some(p700), Some(p500)),
             humidity_lowest_100hpa: mean_of_lowest(environment, Pressure::from_hpa(100.0)),
             humidity_700_to_500hpa: environment.mean_relative_humidity(p700, p500),
             mixed_layer_by_parcel: by_parcel(environment),

@@ -8,7 +8,7 @@ use crate::{EPSILON, Environment, KAPPA, REFERENCE_PRESSURE};
 /// Widest piece in ln p.
 const WIDEST: f64 = 0.1;
 /// Error of a piece's mean that is allowed, as a share of theta-e.
-const PIECE_ERROR: f64 = 1e-8;
+const PIECE_ERROR: f64 = 2e-8;
 
 /// Eq. 39 theta-e of one point of air, and how its logarithm changes: d ln theta-e = `per_t` dT + `per_td` dTd + `per_z` dz.
 #[derive(Debug, Clone, Copy, Default)]
@@ -263,7 +263,7 @@ mod tests {
         let mut p = 100_000.0;
         while p >= 58_000.0 {
             assert!(
-                (running.down_to(p).unwrap() - sum).abs() < 1e-5 * 42_000.0,
+                (running.down_to(p).unwrap() - sum).abs() < 3e-5 * 42_000.0,
                 "{p}"
             );
             let h = step / f64::from(slices);

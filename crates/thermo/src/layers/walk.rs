@@ -29,26 +29,32 @@ pub(super) fn walk(
             continue;
         }
         let segment = levels.segment(i);
-        let pieces = if widest.is_finite() {
-            let change = segment.td.map_or(0.0, |(_, slope)| (slope * (b - a)).abs());
-            ((b - a) / widest).max(change / WIDEST_DEWPOINT).ceil()
-        } else {
-            1.0
-        };
-        let pieces = pieces.clamp(1.0, 1_000.0);
-        let h = (b - a) / pieces;
-        for piece in 0..pieces as usize {
-            let left = a + piece as f64 * h;
-            let right = if piece + 1 == pieces as usize {
-                b
-            } else {
-                left + h
-            };
-            if !visit(&segment, left, right) {
-                return;
-            }
+        if !pieces(&segment, a, b, widest, |a, b| visit(&segment, a, b)) {
+            return;
         }
     }
+}
+
+/// The same of one stretch of a segment; `false` when the visitor ended it.
+pub(super) fn pieces(
+    segment: &Segment,
+    a: f64,
+    b: f64,
+    widest: f64,
+    mut visit: impl FnMut(f64, f64) -> bool,
+) -> bool {
+    if widest == f64::INFINITY {
+        return visit(a, b);
+    }
+    let change = segment.td.map_or(0.0, |(_, slope)| (slope * (b - a)).abs());
+    let count = ((b - a) / widest).max(change / WIDEST_DEWPOINT).ceil();
+    let count = count.clamp(1.0, 1_000.0);
+    let h = (b - a) / count;
+    let last = count as usize - 1;
+    (0..=last).all(|piece| {
+        let left = a + piece as f64 * h;
+        visit(left, if piece == last { b } else { left + h })
+    })
 }
 
 /// The lowest z between `from` and `to` where `value` falls from above zero to zero or below; `None` when it isn't above
@@ -77,7 +83,7 @@ pub(super) fn first_fall(
             }
             None => {
                 let foot = value(segment, a);
-                if !(foot > 0.0) {
+                if foot.is_nan() || foot <= 0.0 {
                     return false;
                 }
                 foot

@@ -46,11 +46,17 @@ fn every_group_shows_all_its_numbers_explained_on_focus() {
         for quantity in group.quantities() {
             assert!(has_text(&window, quantity.label), "{}", quantity.key);
         }
+        // Each name says more when it has the keyboard: the last one is reached last.
+        let quantity = &group.quantities()[group.quantities().len() - 1];
+        let source = format!("Source: {}", quantity.source);
+        let explained = (0..60).any(|_| {
+            window.key_press(Key::Tab);
+            window.run();
+            has_text(&window, &source) && has_text(&window, quantity.definition)
+        });
+        assert!(explained, "{}", quantity.key);
+        open(&mut window, group);
     }
-    tab_to(&mut window, "LFC height");
-    let lfc = dewbound_session::quantity::find("lfc_m").unwrap();
-    assert!(has_text(&window, lfc.definition));
-    assert!(has_text(&window, &format!("Source: {}", lfc.source)));
 }
 
 #[test]

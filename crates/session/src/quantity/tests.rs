@@ -169,7 +169,8 @@ fn composite_expected(value: f64) -> Json {
     json!({ "value": value, "terms": [term] })
 }
 
-/// Every field of every struct of numbers set to a value of its own. No field is left to a default: a new one breaks this.
+/// Every field of every struct of numbers set to a value of its own. But for [`Further`], no field is left to a
+/// default: a new one breaks this.
 #[test]
 fn every_field_is_read_by_its_declaration_and_no_other() {
     let firsts = [100.0, 200.0, 300.0];
@@ -198,6 +199,8 @@ fn every_field_is_read_by_its_declaration_and_no_other() {
         }),
         downdraft: Some(Downdraft {
             cape: 505.0,
+            warmer: 523.0,
+            theta_e: Temperature::from_k(524.0),
             origin: pa(506.0),
             wet_bulb: Temperature::from_c(507.0),
         }),
@@ -240,16 +243,16 @@ fn every_field_is_read_by_its_declaration_and_no_other() {
         pressure: None,
         wind: wind(0.0, 1.0),
     });
-    let further = Further {
-        parcels: firsts.map(|first| Some(of_parcel(first))),
-        layers,
-        wind_profile: WindProfile::new(top).map(Arc::new),
-        winds,
-        composites: Composites {
-            supercell: composite(701.0),
-            significant_tornado_fixed: composite(702.0),
-            significant_tornado_effective: composite(703.0),
-        },
+    // Its other field is private: what the winds are made of.
+    let mut further = Further::default();
+    further.parcels = firsts.map(|first| Some(of_parcel(first)));
+    further.layers = layers;
+    further.wind_profile = WindProfile::new(top).map(Arc::new);
+    further.winds = winds;
+    further.composites = Composites {
+        supercell: composite(701.0),
+        significant_tornado_fixed: composite(702.0),
+        significant_tornado_effective: composite(703.0),
     };
     let other = OtherAscents {
         direct: firsts.map(|first| Some(first + 41.0)),
@@ -265,6 +268,7 @@ fn every_field_is_read_by_its_declaration_and_no_other() {
         "levels_counted_saturated": 404.0,
         "inflow_bottom_hpa": 501.0, "inflow_bottom_m": 502.0, "inflow_top_hpa": 503.0, "inflow_top_m": 504.0,
         "downdraft_cape_jkg": 505.0, "downdraft_origin_hpa": 506.0, "downdraft_wet_bulb_c": 507.0,
+        "downdraft_warmer_jkg": 523.0, "downdraft_theta_e_k": 524.0,
         "precipitable_water_mm": 508.0,
         "freezing_level_hpa": 509.0, "freezing_level_m": 510.0,
         "wet_bulb_zero_hpa": 511.0, "wet_bulb_zero_m": 512.0,

@@ -32,15 +32,13 @@ fn parcels(quantities: &[&Quantity], readings: &Readings, units: Units) -> Strin
     if let Some(heading) = rows.first_mut() {
         heading.extend(Parcel::ALL.map(|which| parcel_name(which).to_owned()));
     }
-    let mut reasons = Vec::new();
     for quantity in quantities {
         let mut row = vec![format!("  {}", quantity.heading(units))];
         row.extend(Parcel::ALL.map(|which| cell(quantity, readings, which, units)));
         rows.push(row);
-        reasons.extend(absences(quantity, readings));
     }
     let mut text = aligned(&rows);
-    for reason in reasons {
+    for reason in absences(quantities, readings) {
         text.push_str(&format!("  {reason}\n"));
     }
     text
@@ -52,24 +50,39 @@ fn cell(quantity: &Quantity, readings: &Readings, parcel: Parcel, units: Units) 
         .map_or_else(|| "none".to_owned(), |value| quantity.text(&value, units))
 }
 
-/// Why a number is absent, said once for all parcels that have the same reason: "none, CIN (mixed): no free convection".
-fn absences(quantity: &Quantity, readings: &Readings) -> Vec<String> {
-    let mut reasons: Vec<(String, Vec<&str>)> = Vec::new();
-    for which in Parcel::ALL {
-        if quantity.value(readings, which).is_some() {
-            continue;
+/// Why numbers are absent, one line a reason and the parcels it holds for: "no LFC, EL (mixed): no free convection".
+fn absences(quantities: &[&Quantity], readings: &Readings) -> Vec<String> {
+    let mut reasons: Vec<(String, Vec<&str>, Vec<&str>)> = Vec::new();
+    for quantity in quantities {
+        let mut own: Vec<(String, Vec<&str>)> = Vec::new();
+        for which in Parcel::ALL {
+            if quantity.value(readings, which).is_some() {
+                continue;
+            }
+            let why = quantity.why_absent(readings, which);
+            match own.iter_mut().find(|(reason, _)| *reason == why) {
+                Some((_, parcels)) => parcels.push(parcel_name(which)),
+                None => own.push((why, vec![parcel_name(which)])),
+            }
         }
-        let why = quantity.why_absent(readings, which);
-        match reasons.iter_mut().find(|(reason, _)| *reason == why) {
-            Some((_, parcels)) => parcels.push(parcel_name(which)),
-            None => reasons.push((why, vec![parcel_name(which)])),
+        for (why, parcels) in own {
+            let same = reasons
+                .iter_mut()
+                .find(|(reason, of, _)| *reason == why && *of == parcels);
+            match same {
+                Some((_, _, labels)) => labels.push(quantity.label),
+                None => reasons.push((why, parcels, vec![quantity.label])),
+            }
         }
     }
     reasons
         .into_iter()
-        .map(|(why, parcels)| match parcels.len() {
-            3 => format!("no {}: {why}", quantity.label),
-            _ => format!("no {} ({}): {why}", quantity.label, parcels.join(", ")),
+        .map(|(why, parcels, labels)| {
+            let labels = labels.join(", ");
+            match parcels.len() {
+                3 => format!("no {labels}: {why}"),
+                _ => format!("no {labels} ({}): {why}", parcels.join(", ")),
+            }
         })
         .collect()
 }

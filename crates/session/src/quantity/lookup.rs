@@ -68,7 +68,12 @@ fn near(asked: &str) -> Vec<&'static Quantity> {
             if names.iter().any(|name| name.contains(asked)) {
                 return Some((0, quantity));
             }
-            let least = names.iter().map(|name| slips(asked, name)).min()?;
+            let words = quantity.key.split('_').map(str::to_owned);
+            let least = names
+                .into_iter()
+                .chain(words.filter(|word| word.len() > 3))
+                .map(|name| slips(asked, &name))
+                .min()?;
             (least <= allowed).then_some((least, quantity))
         })
         .collect();
@@ -126,6 +131,7 @@ mod tests {
             ("precipitabel water", "precipitable_water_mm"),
             ("helicity", "helicity_effective_m2s2"),
             ("lifted_indx", "lifted_index_k"),
+            ("helicty", "helicity_effective_m2s2"),
         ] {
             let near = find(asked).unwrap_err().near;
             assert!(near.iter().any(|quantity| quantity.key == key), "{asked}");

@@ -51,6 +51,8 @@ pub(crate) fn table_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
             // Six headings find room below the five numbers on a screen 800 high.
             ui.spacing_mut().item_spacing.y = 1.0;
             ui.spacing_mut().interact_size.y = 18.0;
+            // Headings can be hit over their whole width.
+            ui.visuals_mut().collapsing_header_frame = true;
             let sight = Sight::painted(paint, item);
             let glance: Vec<&Quantity> = at_a_glance().collect();
             rows_ui(ui, paint, item, &sight, &glance, Weight::Chief, asks);

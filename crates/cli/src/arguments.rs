@@ -33,6 +33,9 @@ JSON (--json): one object a sounding, on one line, schema 1. Every key carries i
               a cost is the change of CAPE and CIN for each parcel, null when unknown
   notes       what and why, and where: {\"line\":n} and {\"byte\":n} in the file, lines from 1, bytes from 0;
               {\"level\":n} of the merged profile, from 0 at the bottom; {\"file\":name} for the file as a whole
+  numbers     with --all only: surface, mixed, most_unstable, profile, each with all its numbers by name;
+              \"explain\" lists the names and tells what each is. A wind is an object: from_deg, speed_ms;
+              a composite index too: value, and terms with name, input, unit, factor
 
 Exit codes: 0 all weighed; 1 a file could not be read, or a sounding not weighed; 2 wrong usage.";
 
@@ -42,6 +45,8 @@ pub enum Task {
     /// Numbers with their range, and findings with their cost, for each sounding of the files.
     #[command(after_long_help = JSON)]
     Weigh(Weigh),
+    /// Tells what a number is: definition, method, source, what it is computed from, when it is absent.
+    Explain(Explain),
     /// Lists the rules, with source and thresholds.
     Rules {
         /// JSON lines, one object a rule.
@@ -59,6 +64,9 @@ pub struct Weigh {
     /// JSON lines, one object a sounding.
     #[arg(long)]
     pub json: bool,
+    /// Every number there is, not the chief ones alone; "explain" tells what each is.
+    #[arg(long)]
+    pub all: bool,
     /// Surface dew point to use instead of the received one, degrees Celsius.
     #[arg(long, value_name = "X", allow_negative_numbers = true, value_parser = celsius)]
     pub dewpoint_c: Option<f64>,
@@ -77,6 +85,20 @@ pub struct Weigh {
     /// Thresholds to lay over the built-in ones, JSON.
     #[arg(long, value_name = "FILE")]
     pub thresholds: Option<PathBuf>,
+}
+
+/// Options of `explain`.
+#[derive(Debug, Args)]
+pub struct Explain {
+    /// Name of a number, as in JSON or as shown; capitals don't matter. Without one, all are listed.
+    #[arg(value_name = "NAME")]
+    pub names: Vec<String>,
+    /// JSON lines, one object a number.
+    #[arg(long)]
+    pub json: bool,
+    /// The page of all numbers, as Markdown.
+    #[arg(long, conflicts_with_all = ["json", "names"])]
+    pub markdown: bool,
 }
 
 /// A reach, as written on the command line.

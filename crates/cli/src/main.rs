@@ -4,6 +4,7 @@
 //! sounding not weighed, 2 wrong usage.
 
 mod arguments;
+mod explain;
 mod output;
 mod rules;
 mod weigh;
@@ -19,6 +20,7 @@ fn main() -> ExitCode {
     let mut output = Output::new();
     let result = match arguments.task {
         Task::Weigh(options) => weigh::run(&options, &mut output),
+        Task::Explain(options) => explain::run(&options, &mut output),
         Task::Rules { json } => rules::run(json, &mut output).map(|()| true),
     };
     match result.and_then(|all| output.finish().map(|()| all)) {

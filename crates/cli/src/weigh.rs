@@ -3,6 +3,7 @@
 use crate::arguments::Weigh;
 use crate::output::{Output, say};
 use anyhow::Result;
+use dewbound_session::sounding::OtherAscents;
 use dewbound_session::sounding::thermo::Temperature;
 use dewbound_session::{
     Analysed, Defect, Document, Office, ReadFailure, ReadFile, Results, STATION_TABLE, files_of,
@@ -135,6 +136,9 @@ fn weighed(analysed: &Analysed, options: &Weigh) -> Result<String> {
             .with_surface_dewpoint(Temperature::from_c(dewpoint));
     }
     let results = Results::of(analysed, &document);
+    let other = options
+        .all
+        .then(|| OtherAscents::of(&results.working.profile, &results.numbers));
     if options.json {
         // The table has a place for these; the object is about the sounding, not about what was asked.
         for note in &results.working.notes {
@@ -144,10 +148,16 @@ fn weighed(analysed: &Analysed, options: &Weigh) -> Result<String> {
                 wording::note(note)
             ));
         }
-        let mut line = report::json_line(analysed, &results)?;
+        let mut line = match &other {
+            Some(other) => report::json_line_with_all(analysed, &results, other)?,
+            None => report::json_line(analysed, &results)?,
+        };
         line.push('\n');
         Ok(line)
     } else {
-        Ok(report::table(analysed, &results))
+        Ok(match &other {
+            Some(other) => report::table_with_all(analysed, &results, other),
+            None => report::table(analysed, &results),
+        })
     }
 }

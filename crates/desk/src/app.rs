@@ -12,7 +12,7 @@ use crate::view::{DialogBox, Gesture, Page, Previewed, View};
 use crate::winds_frame::WindsFrame;
 use crate::{
     chart_frame, chart_keys, chart_view, dialogs, findings, fonts, handle, input, keys, menu,
-    motion, numbers, response, status, title, tray, verdict, winds_frame, winds_view,
+    motion, numbers, quantity, response, status, title, tray, verdict, winds_frame, winds_view,
 };
 use dewbound_session::chart::{SpeedUnit, TemperatureUnit};
 use dewbound_session::{Action, Command, Item, Session, SurfaceQuantity, wording};
@@ -277,6 +277,7 @@ impl Desk {
             Ask::Action(action) => self.act(ctx, action),
             Ask::Tab(tab) => self.view.tab = tab,
             Ask::Parcel(parcel) => self.view.parcel = Some(parcel),
+            Ask::Group(group) => self.view.toggle_group(group),
             Ask::Units(units) => self.view.units = units,
             Ask::Card(item, card) => self.view.card = card.map(|card| (item, card)),
             Ask::Dialog(dialog) => self.view.dialog = dialog,
@@ -311,7 +312,8 @@ impl Desk {
             }
             Action::CopyNumbers => {
                 if let Some(item) = self.session.current() {
-                    ctx.copy_text(numbers::as_text(item, self.view.units));
+                    let view = &self.view;
+                    ctx.copy_text(quantity::as_text(item, view.units, &view.open_groups));
                 }
             }
             Action::CopyWinds => {

@@ -3,6 +3,7 @@
 
 use crate::view::{DialogBox, Tab};
 use dewbound_session::chart::Units;
+use dewbound_session::quantity::Group;
 use dewbound_session::sounding::Parcel;
 use dewbound_session::{Action, Command, ItemId, RepairId};
 use eframe::egui;
@@ -18,6 +19,8 @@ pub(crate) enum Ask {
     Tab(Tab),
     /// Whose path and areas are drawn.
     Parcel(Parcel),
+    /// Open a group of numbers, or close it.
+    Group(Group),
     /// Other units.
     Units(Units),
     /// Open a card, or close the open one.

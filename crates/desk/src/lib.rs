@@ -29,6 +29,7 @@ mod layout;
 mod marks;
 mod menu;
 mod motion;
+mod number_rows;
 mod numbers;
 mod preferences;
 mod quantity;
@@ -54,15 +55,13 @@ pub use startup::run;
 /// Strings of the interface that are not in sight all the time, so that a test can ask for their glyphs.
 pub fn interface_strings() -> Vec<String> {
     let mut strings = vec![status::CAUTION.to_owned(), chart_view::HINT.to_owned()];
-    for quantity in quantity::QUANTITIES {
+    for quantity in dewbound_session::quantity::all() {
+        let particulars = quantity.particulars().map(|(_, text)| text);
         strings.extend(
-            [
-                quantity.name,
-                quantity.definition,
-                quantity.method,
-                quantity.source,
-            ]
-            .map(str::to_owned),
+            [quantity.label, quantity.definition, quantity.group.title()]
+                .into_iter()
+                .chain(particulars)
+                .map(str::to_owned),
         );
     }
     let keys = keys::HANDLE_KEYS.iter().chain(keys::CHART_KEYS);

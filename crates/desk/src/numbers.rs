@@ -1,24 +1,19 @@
-//! The table of numbers: one quantity a row, parcels side by side.
+//! The panel of numbers: five at a glance, parcels side by side, then groups that open on demand.
 
 use crate::app::Paint;
 use crate::ask::{Ask, Asks};
-use crate::quantity::{Cell, QUANTITIES, Quantity, cell, parcel_heading, parcel_name, range_text};
+use crate::number_rows::{Weight, columns, in_rect, into_sight, profile_row_ui, row_ui};
+use crate::quantity::{STALE, Sight, in_group, parcel_heading, parcel_name};
 use crate::theme::bold;
 use crate::units;
 use dewbound_session::chart::Units;
+use dewbound_session::quantity::{Group, Quantity, at_a_glance};
 use dewbound_session::sounding::Parcel;
 use dewbound_session::thermo::Pressure;
-use dewbound_session::{Action, Command, Extremes, Item, wording};
+use dewbound_session::{Action, Command, Item, wording};
 use eframe::egui::{
-    Align, Button, Label, Layout, Rect, Response, RichText, ScrollArea, Sense, Tooltip, Ui,
-    UiBuilder, pos2, vec2,
+    Align, Button, CollapsingHeader, Id, Layout, RichText, ScrollArea, Sense, Ui, UiBuilder, vec2,
 };
-use std::fmt::Write as _;
-
-/// Width of the names and units.
-const NAMES: f32 = 80.0;
-const ROW: f32 = 19.0;
-const SMALL_ROW: f32 = 15.0;
 
 /// The whole table.
 pub(crate) fn numbers_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
@@ -34,8 +29,9 @@ pub(crate) fn cape_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
     inset(ui, |ui| {
         ui.spacing_mut().item_spacing.y = 1.0;
         parcels_ui(ui, paint, item, asks);
-        if let Some(cape) = QUANTITIES.first() {
-            row_ui(ui, paint, item, cape, asks);
+        let sight = Sight::painted(paint, item);
+        if let Some(cape) = at_a_glance().next() {
+            row_ui(ui, paint, item, &sight, cape, Weight::Chief, asks);
         }
     });
 }
@@ -52,12 +48,83 @@ pub(crate) fn table_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
         .id_salt("numbers")
         .auto_shrink(false)
         .show(ui, |ui| {
-            for quantity in QUANTITIES {
-                row_ui(ui, paint, item, quantity, asks);
+            // Six headings find room below the five numbers on a screen 800 high.
+            ui.spacing_mut().item_spacing.y = 1.0;
+            ui.spacing_mut().interact_size.y = 18.0;
+            // Headings can be hit over their whole width.
+            ui.visuals_mut().collapsing_header_frame = true;
+            let sight = Sight::painted(paint, item);
+            let glance: Vec<&Quantity> = at_a_glance().collect();
+            rows_ui(ui, paint, item, &sight, &glance, Weight::Chief, asks);
+            for group in Group::ALL {
+                group_ui(ui, paint, item, &sight, group, asks);
             }
             picked_ui(ui, item, asks);
             humidity_ui(ui, item);
         });
+}
+
+/// Those of each parcel, then those of the whole profile.
+fn rows_ui(
+    ui: &mut Ui,
+    paint: &Paint,
+    item: &Item,
+    sight: &Sight,
+    quantities: &[&Quantity],
+    weight: Weight,
+    asks: &mut Asks,
+) {
+    let mut of_parcels = false;
+    for quantity in quantities {
+        if quantity.is_per_parcel() {
+            row_ui(ui, paint, item, sight, quantity, weight, asks);
+            of_parcels = true;
+        } else {
+            if std::mem::take(&mut of_parcels) {
+                ui.label(RichText::new("of the whole profile").size(10.0).weak());
+            }
+            profile_row_ui(ui, paint, sight, quantity, weight, asks);
+        }
+    }
+}
+
+/// A group: closed, its name; open, its rows.
+fn group_ui(ui: &mut Ui, paint: &Paint, item: &Item, sight: &Sight, group: Group, asks: &mut Asks) {
+    let open = paint.view.open_groups.contains(&group);
+    let other = group == Group::OtherAscents;
+    let mark = if other && open && sight.stale {
+        format!(" ({STALE})")
+    } else {
+        String::new()
+    };
+    let header = CollapsingHeader::new(bold(format!("{}{mark}", group.title())).size(12.5))
+        .id_salt(("numbers of", group))
+        .open(Some(open))
+        .show_unindented(ui, |ui| {
+            let quantities: Vec<&Quantity> = in_group(group).collect();
+            rows_ui(ui, paint, item, sight, &quantities, Weight::Further, asks);
+        })
+        .header_response;
+    into_sight(&header);
+    asks.describe(&header, || {
+        let what = if open { "closes" } else { "opens" };
+        format!("{}: Enter {what} the group", group.title())
+    });
+    // What has been opened comes into sight, once it is there.
+    let opened = Id::unique("group of numbers just opened");
+    if header.clicked() {
+        asks.push(Ask::Group(group));
+        if !open {
+            ui.data_mut(|data| data.insert_temp(opened, group));
+        }
+    } else if open && ui.data(|data| data.get_temp(opened)) == Some(group) {
+        ui.data_mut(|data| data.remove::<Group>(opened));
+        header.scroll_to_me(Some(Align::Min));
+    }
+    // Asked for at rest only: they take several times the work of all the rest.
+    if other && open && !item.in_gesture() && item.other_ascents().is_wanting() {
+        asks.command(Command::CompareAscents);
+    }
 }
 
 fn inset(ui: &mut Ui, content: impl FnOnce(&mut Ui)) {
@@ -74,30 +141,6 @@ fn heading_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
     });
 }
 
-/// Splits a row: names, then a column for each parcel.
-fn columns(row: Rect) -> (Rect, [Rect; 3]) {
-    let names = Rect::from_min_size(row.min, vec2(NAMES.min(row.width()), row.height()));
-    let width = ((row.width() - NAMES) / 3.0).max(0.0);
-    let column = |index: f32| {
-        Rect::from_min_size(
-            pos2(names.right() + index * width, row.top()),
-            vec2(width - 2.0, row.height()),
-        )
-    };
-    (names, [column(0.0), column(1.0), column(2.0)])
-}
-
-fn in_rect<R>(ui: &mut Ui, rect: Rect, content: impl FnOnce(&mut Ui) -> R) -> R {
-    let mut child = ui.new_child(
-        UiBuilder::new()
-            .max_rect(rect)
-            .layout(Layout::top_down(Align::Min)),
-    );
-    child.set_clip_rect(rect.intersect(ui.clip_rect()));
-    child.spacing_mut().item_spacing.y = 0.0;
-    content(&mut child)
-}
-
 /// Headings: whose path the chart draws can be chosen here.
 fn parcels_ui(ui: &mut Ui, paint: &Paint, item: &Item, asks: &mut Asks) {
     let (row, _) = ui.allocate_exact_size(vec2(ui.available_width(), 24.0), Sense::hover());
@@ -112,7 +155,7 @@ fn parcels_ui(ui: &mut Ui, paint: &Paint, item: &Item, asks: &mut Asks) {
         let chosen = paint.view.parcel(item) == parcel;
         let response = ui.place(
             rect.shrink2(vec2(0.0, 1.0)),
-            Button::new(RichText::new(parcel_heading(parcel)).size(11.5))
+            Button::new(RichText::new(parcel_heading(parcel)).size(11.0))
                 .selected(chosen)
                 .truncate(),
         );
@@ -148,185 +191,6 @@ fn start_text(item: &Item, parcel: Parcel, units: Units) -> String {
         units::temperature(ascent.start.temperature, units.temperature),
         units::temperature(ascent.start.dewpoint, units.temperature),
     )
-}
-
-fn row_ui(ui: &mut Ui, paint: &Paint, item: &Item, quantity: &Quantity, asks: &mut Asks) {
-    let units = paint.view.units;
-    let ranges = quantity.range;
-    let high = if ranges.is_some() {
-        ROW + 2.0 * SMALL_ROW
-    } else {
-        ROW
-    };
-    let (row, _) = ui.allocate_exact_size(vec2(ui.available_width(), high), Sense::hover());
-    let (names, cells) = columns(row);
-    in_rect(ui, names, |ui| {
-        let unit = (quantity.unit)(units);
-        let response = ui
-            .horizontal(|ui| {
-                ui.spacing_mut().item_spacing.x = 4.0;
-                let name = ui.add(
-                    Label::new(bold(quantity.name))
-                        .sense(Sense::focusable_noninteractive())
-                        .selectable(false),
-                );
-                ui.label(RichText::new(unit).small().weak());
-                name
-            })
-            .inner;
-        asks.describe(&response, || {
-            format!("{}: {}", quantity.name, quantity.definition)
-        });
-        explain(&response, |ui| definition_ui(ui, quantity));
-    });
-    for (parcel, rect) in Parcel::ALL.into_iter().zip(cells) {
-        in_rect(ui, rect, |ui| {
-            cell_ui(ui, paint, item, quantity, parcel);
-        });
-    }
-}
-
-fn cell_ui(ui: &mut Ui, paint: &Paint, item: &Item, quantity: &Quantity, parcel: Parcel) {
-    let units = paint.view.units;
-    let working = cell(quantity, &item.results().numbers, parcel, units);
-    let received = cell(quantity, item.received_numbers(), parcel, units);
-    let preview = paint
-        .view
-        .previewed
-        .as_ref()
-        .filter(|previewed| previewed.item == item.id())
-        .and_then(|previewed| previewed.preview.as_ref())
-        .map(|preview| cell(quantity, &preview.numbers, parcel, units))
-        .filter(|preview| *preview != working);
-    let decisive = quantity.range.is_some();
-    let was = (received != working).then(|| received.text().to_owned());
-    let mut text = bold(working.text()).size(if decisive { 15.0 } else { 13.0 });
-    if preview.is_some() {
-        text = text.color(paint.theme.quiet);
-    }
-    let shown = match &preview {
-        Some(preview) => {
-            ui.horizontal(|ui| {
-                ui.spacing_mut().item_spacing.x = 3.0;
-                ui.label(text.size(12.0));
-                ui.label(bold(format!("→ {}", preview.text())).color(paint.theme.accent))
-            })
-            .inner
-        }
-        None if decisive => ui.add(Label::new(text).truncate()),
-        None => {
-            ui.horizontal(|ui| {
-                ui.spacing_mut().item_spacing.x = 5.0;
-                let value = ui.label(text);
-                if let Some(was) = &was {
-                    remark_ui(ui, paint, &format!("was {was}"));
-                } else if quantity.name == "Start p"
-                    && parcel == Parcel::MostUnstable
-                    && item.results().numbers.most_unstable_is_surface
-                {
-                    ui.label(RichText::new("= surface").small().weak());
-                }
-                value
-            })
-            .inner
-        }
-    };
-    explain_hover(shown, quantity, &working, parcel);
-    if decisive {
-        let range = quantity
-            .range
-            .map(|range| range(item.results().doubt.range(parcel)));
-        match &range {
-            Some((Some(range), or_none)) => {
-                let text = range_text(range, *or_none);
-                let hover = format!("{text}\n{}", where_text(range, item, units));
-                let text = RichText::new(range_text(range, false)).size(11.5);
-                ui.add(Label::new(text).truncate()).on_hover_text(hover);
-            }
-            _ => {
-                ui.label(RichText::new("no range").small().weak());
-            }
-        }
-        let or_none = matches!(range, Some((Some(_), true)));
-        let remarks: Vec<String> = [
-            or_none.then(|| "or none".to_owned()),
-            was.map(|was| format!("was {was}")),
-        ]
-        .into_iter()
-        .flatten()
-        .collect();
-        if !remarks.is_empty() {
-            remark_ui(ui, paint, &remarks.join(" · "));
-        }
-    }
-}
-
-/// What stands small beneath a range: that the number is absent somewhere in it, and the value received where the
-/// working one differs.
-fn remark_ui(ui: &mut Ui, paint: &Paint, remark: &str) {
-    let text = RichText::new(remark).size(10.5).color(paint.theme.quiet);
-    ui.add(Label::new(text).truncate())
-        .on_hover_text("\"was\": as received; \"or none\": absent somewhere in the interval");
-}
-
-fn where_text(range: &Extremes, item: &Item, units: Units) -> String {
-    let ends = item
-        .results()
-        .doubt
-        .interval
-        .as_ref()
-        .map(|interval| {
-            format!(
-                "\nInterval {} to {}: {}",
-                units::temperature(interval.low, units.temperature),
-                units::temperature(interval.high, units.temperature),
-                interval.why
-            )
-        })
-        .unwrap_or_default();
-    format!(
-        "{} at a surface dew point of {}, {} at {}.{ends}",
-        wording::number(range.least, 0),
-        units::temperature(range.least_at, units.temperature),
-        wording::number(range.most, 0),
-        units::temperature(range.most_at, units.temperature),
-    )
-}
-
-fn explain_hover(response: Response, quantity: &Quantity, value: &Cell, parcel: Parcel) {
-    let reason = match value {
-        Cell::Absent(why) => Some(why.clone()),
-        Cell::Value(text) if text.starts_with('≥') => Some(
-            "A lower limit: the parcel is still buoyant where the profile ends, or the profile ends below 200 hPa."
-                .to_owned(),
-        ),
-        Cell::Value(_) => None,
-    };
-    response.ctx.accesskit_node_builder(response.id, |node| {
-        node.set_description(format!("{} of the {}", quantity.name, parcel_name(parcel)));
-    });
-    response.on_hover_ui(|ui| {
-        ui.label(bold(format!("{}, {}", quantity.name, parcel_name(parcel))));
-        if let Some(reason) = &reason {
-            ui.label(reason);
-        }
-        definition_ui(ui, quantity);
-    });
-}
-
-fn definition_ui(ui: &mut Ui, quantity: &Quantity) {
-    ui.label(quantity.definition);
-    ui.label(RichText::new(format!("Method: {}", quantity.method)).weak());
-    ui.label(RichText::new(format!("Source: {}", quantity.source)).weak());
-}
-
-/// A tooltip for the pointer and for the keyboard alike.
-pub(crate) fn explain(response: &Response, content: impl FnOnce(&mut Ui)) {
-    let mut tooltip = Tooltip::for_enabled(response);
-    if response.has_focus() {
-        tooltip.popup = tooltip.popup.open(true);
-    }
-    tooltip.show(content);
 }
 
 /// The parcel of the level picked on the chart.
@@ -394,40 +258,6 @@ fn humidity_ui(ui: &mut Ui, item: &Item) {
     for line in lines {
         ui.label(RichText::new(line).small());
     }
-}
-
-/// The table as text for the clipboard.
-pub(crate) fn as_text(item: &Item, units: Units) -> String {
-    let mut text = format!("{}\n", item.sounding().station.label());
-    if item.demo() {
-        text.push_str(wording::INVENTED);
-        text.push('\n');
-    }
-    text.push_str("Quantity\tUnit");
-    for parcel in Parcel::ALL {
-        let _ = write!(text, "\t{}", parcel_heading(parcel));
-        let _ = write!(text, "\treceived\trange");
-    }
-    text.push('\n');
-    for quantity in QUANTITIES {
-        let _ = write!(text, "{}\t{}", quantity.name, (quantity.unit)(units));
-        for parcel in Parcel::ALL {
-            let working = cell(quantity, &item.results().numbers, parcel, units);
-            let received = cell(quantity, item.received_numbers(), parcel, units);
-            let range = quantity
-                .range
-                .map(|range| range(item.results().doubt.range(parcel)));
-            let range = match range {
-                Some((Some(range), or_none)) => range_text(&range, or_none),
-                _ => "–".to_owned(),
-            };
-            let _ = write!(text, "\t{}\t{}\t{range}", working.text(), received.text());
-        }
-        text.push('\n');
-    }
-    text.push_str(wording::CAUTION);
-    text.push('\n');
-    text
 }
 
 /// Layer in words: "652 to 601 hPa".

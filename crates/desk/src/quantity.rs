@@ -1,186 +1,119 @@
-//! The rows of the table of numbers: one declaration each, from which the table, its tooltips and the copied text come.
+//! The session's declared numbers as they stand in the table: cells, ranges, and the text for the clipboard.
 
-use crate::units;
+use crate::app::Paint;
 use dewbound_session::chart::Units;
-use dewbound_session::sounding::{Numbers, Parcel};
-use dewbound_session::thermo::Ascent;
-use dewbound_session::wording::number;
-use dewbound_session::{Extremes, ParcelRange};
+use dewbound_session::quantity::{Group, Quantity, Readings, Value, at_a_glance};
+use dewbound_session::sounding::Parcel;
+use dewbound_session::wording::{self, number};
+use dewbound_session::{Extremes, Item};
+use std::collections::BTreeSet;
+use std::fmt::Write as _;
 
 /// What stands in a cell: a value, or why there is none.
-#[derive(Debug, Clone, PartialEq, Eq)]
+#[derive(Debug, Clone, PartialEq)]
 pub(crate) enum Cell {
-    /// A value in the unit of the row; ≥ already in front where it is a lower limit.
-    Value(String),
-    /// Nothing, and why.
+    /// A value as text in the unit of the row; ≥ already in front where it is a lower limit.
+    Value {
+        /// As shown.
+        text: String,
+        /// A lower limit only.
+        at_least: bool,
+        /// Terms of a composite index, a line each.
+        terms: Vec<String>,
+    },
+    /// Nothing, and why, in a sentence.
     Absent(String),
 }
 
 impl Cell {
+    /// Of a quantity of a parcel, or of the whole profile.
+    pub fn of(quantity: &Quantity, readings: &Readings, parcel: Parcel, units: Units) -> Self {
+        match quantity.value(readings, parcel) {
+            Some(value) => Self::Value {
+                text: quantity.text(&value, units),
+                at_least: value.is_at_least(),
+                terms: Quantity::terms(&value),
+            },
+            None => {
+                let why = sentence(&quantity.why_absent(readings, parcel));
+                let remedy = match parcel {
+                    Parcel::Surface
+                        if quantity.is_per_parcel()
+                            && readings.numbers.problem.is_none()
+                            && readings.numbers.surface.is_none() =>
+                    {
+                        " Set it with the handle."
+                    }
+                    _ => "",
+                };
+                Self::Absent(format!("{why}{remedy}"))
+            }
+        }
+    }
+
     /// As shown.
     pub fn text(&self) -> &str {
         match self {
-            Self::Value(text) => text,
+            Self::Value { text, .. } => text,
             Self::Absent(_) => "–",
         }
     }
+
+    /// Shows the same; reasons may differ.
+    pub fn looks_like(&self, other: &Self) -> bool {
+        self.text() == other.text()
+    }
 }
 
-/// Range over the interval, where there is one, and whether the quantity is absent somewhere in it.
-type RangeOf = fn(&ParcelRange) -> (Option<Extremes>, bool);
-
-/// One row.
-pub(crate) struct Quantity {
-    /// Name.
-    pub name: &'static str,
-    /// Unit; empty where the value carries its own.
-    pub unit: fn(Units) -> &'static str,
-    /// What it is.
-    pub definition: &'static str,
-    /// How it is computed here.
-    pub method: &'static str,
-    /// Where that comes from.
-    pub source: &'static str,
-    /// Its value for an ascent.
-    pub value: fn(&Ascent, Units) -> Cell,
-    /// Its range over the interval; `None` for rows shown without one.
-    pub range: Option<RangeOf>,
+/// Everything the cells of one frame are read from.
+pub(crate) struct Sight<'a> {
+    pub working: Readings<'a>,
+    pub received: Readings<'a>,
+    /// With the repair that is being looked at.
+    pub preview: Option<Readings<'a>>,
+    /// The other kinds of ascent are those of an earlier revision.
+    pub stale: bool,
 }
 
-const NO_FREE_CONVECTION: &str = "No free convection: nowhere above its condensation level is the parcel lighter than its surroundings.";
+impl<'a> Sight<'a> {
+    /// Of an item; without a preview.
+    pub fn of(item: &'a Item) -> Self {
+        let other = item.other_ascents();
+        Self {
+            working: item.results().readings(other.working),
+            received: item.analysed().readings(other.received),
+            preview: None,
+            stale: other.stale,
+        }
+    }
 
-fn energy(_: Units) -> &'static str {
-    "J/kg"
+    /// The same, with the repair whose button is under the pointer.
+    pub fn painted(paint: &'a Paint, item: &'a Item) -> Self {
+        let preview = paint
+            .view
+            .previewed
+            .as_ref()
+            .filter(|previewed| previewed.item == item.id())
+            .and_then(|previewed| previewed.preview.as_ref());
+        Self {
+            preview: preview.map(|preview| Readings {
+                numbers: &preview.numbers,
+                further: &preview.further,
+                other: None,
+            }),
+            ..Self::of(item)
+        }
+    }
+
+    /// What the preview would make of a cell, where it can be told.
+    pub fn previewed(&self, quantity: &Quantity, parcel: Parcel, units: Units) -> Option<Cell> {
+        if quantity.group == Group::OtherAscents {
+            return None;
+        }
+        let preview = self.preview.as_ref()?;
+        Some(Cell::of(quantity, preview, parcel, units))
+    }
 }
-
-fn pressure(_: Units) -> &'static str {
-    "hPa"
-}
-
-fn hpa(value: Option<dewbound_session::thermo::Pressure>, why: &str) -> Cell {
-    value.map_or_else(
-        || Cell::Absent(why.to_owned()),
-        |value| Cell::Value(number(value.hpa(), 0)),
-    )
-}
-
-const PSEUDO: &str = "The parcel follows constant potential temperature to its condensation level and constant equivalent \
-     potential temperature above; virtual temperature on both sides.";
-
-/// All rows, CAPE first.
-pub(crate) const QUANTITIES: &[Quantity] = &[
-    Quantity {
-        name: "CAPE",
-        unit: energy,
-        definition: "Convective available potential energy: all positive area above the condensation level, up to the \
-                     equilibrium level.",
-        method: PSEUDO,
-        source: "Bolton 1980 (MWR 108), eq. 10, 15 and 39; Doswell and Rasmussen 1994 (WAF 9)",
-        value: |ascent, _| {
-            let sign = if ascent.at_least { "≥ " } else { "" };
-            Cell::Value(format!("{sign}{}", number(ascent.cape, 0)))
-        },
-        range: Some(|range| (range.cape, false)),
-    },
-    Quantity {
-        name: "CIN",
-        unit: energy,
-        definition: "Convective inhibition: all negative area from the start to the level of free convection, as a \
-                     number of at most 0. In the range, the strongest cap comes first.",
-        method: PSEUDO,
-        source: "as for CAPE",
-        value: |ascent, _| {
-            ascent.cin.map_or_else(
-                || Cell::Absent(NO_FREE_CONVECTION.to_owned()),
-                |cin| Cell::Value(number(cin, 0)),
-            )
-        },
-        range: Some(|range| (range.cin, range.sometimes_no_free_convection)),
-    },
-    Quantity {
-        name: "LCL",
-        unit: pressure,
-        definition: "Lifting condensation level: where the rising parcel is first saturated.",
-        method: "Temperature by eq. 15; pressure along the potential temperature of moist air.",
-        source: "Bolton 1980 (MWR 108), eq. 15",
-        value: |ascent, _| hpa(Some(ascent.lcl.pressure), ""),
-        range: None,
-    },
-    Quantity {
-        name: "LFC",
-        unit: pressure,
-        definition: "Level of free convection: base of the buoyant layer with the largest area.",
-        method: "Exact zero crossing of the difference of virtual temperatures.",
-        source: "conventions of this program",
-        value: |ascent, _| hpa(ascent.lfc, NO_FREE_CONVECTION),
-        range: None,
-    },
-    Quantity {
-        name: "EL",
-        unit: pressure,
-        definition: "Equilibrium level: top of the highest buoyant layer.",
-        method: "Exact zero crossing of the difference of virtual temperatures.",
-        source: "conventions of this program",
-        value: |ascent, _| {
-            hpa(
-                ascent.el,
-                if ascent.buoyant.is_empty() {
-                    NO_FREE_CONVECTION
-                } else {
-                    "The parcel is still lighter than its surroundings where the profile ends."
-                },
-            )
-        },
-        range: None,
-    },
-    Quantity {
-        name: "θe",
-        unit: |_| "K",
-        definition: "Equivalent potential temperature of the parcel at its start.",
-        method: "From temperature, pressure and mixing ratio at the start.",
-        source: "Bolton 1980 (MWR 108), eq. 39",
-        value: |ascent, _| Cell::Value(number(ascent.theta_e.k(), 1)),
-        range: None,
-    },
-    Quantity {
-        name: "Start p",
-        unit: pressure,
-        definition: "Pressure where the parcel starts.",
-        method: "Surface level; surface level with the means of the lowest 100 hPa; received level of largest \
-                 equivalent potential temperature in the lowest 300 hPa.",
-        source: "conventions of this program",
-        value: |ascent, _| Cell::Value(number(ascent.start.pressure.hpa(), 0)),
-        range: None,
-    },
-    Quantity {
-        name: "Start T",
-        unit: |units| units::sign(units.temperature),
-        definition: "Temperature of the parcel at its start.",
-        method: "For the mixed parcel from the mean potential temperature.",
-        source: "conventions of this program",
-        value: |ascent, units| {
-            Cell::Value(number(
-                units::shown(ascent.start.temperature, units.temperature),
-                1,
-            ))
-        },
-        range: None,
-    },
-    Quantity {
-        name: "Start Td",
-        unit: |units| units::sign(units.temperature),
-        definition: "Dew point of the parcel at its start.",
-        method: "For the mixed parcel from the mean mixing ratio.",
-        source: "conventions of this program",
-        value: |ascent, units| {
-            Cell::Value(number(
-                units::shown(ascent.start.dewpoint, units.temperature),
-                1,
-            ))
-        },
-        range: None,
-    },
-];
 
 /// In a sentence.
 pub(crate) fn parcel_name(parcel: Parcel) -> &'static str {
@@ -200,21 +133,6 @@ pub(crate) fn parcel_heading(parcel: Parcel) -> &'static str {
     }
 }
 
-/// Value of a quantity for a parcel, or why there is none.
-pub(crate) fn cell(quantity: &Quantity, numbers: &Numbers, parcel: Parcel, units: Units) -> Cell {
-    match numbers.parcel(parcel) {
-        Some(ascent) => (quantity.value)(ascent, units),
-        None => Cell::Absent(match (&numbers.problem, parcel) {
-            (Some(problem), _) => format!("No parcel: {problem}."),
-            (None, Parcel::Surface) => {
-                "No parcel: the surface has no temperature or no dew point. Set it with the handle."
-                    .to_owned()
-            }
-            (None, _) => "No parcel can be formed from this profile.".to_owned(),
-        }),
-    }
-}
-
 /// "1480 to 3120", the same value once; "−52 to 0, or none" where the quantity is absent somewhere in the interval.
 pub(crate) fn range_text(range: &Extremes, or_none: bool) -> String {
     let (least, most) = (number(range.least, 0), number(range.most, 0));
@@ -226,6 +144,103 @@ pub(crate) fn range_text(range: &Extremes, or_none: bool) -> String {
     };
     let or_none = if or_none { ", or none" } else { "" };
     format!("{sign}{least}{to}{or_none}")
+}
+
+/// With a capital and a full stop.
+pub(crate) fn sentence(text: &str) -> String {
+    let mut chars = text.chars();
+    chars.next().map_or_else(String::new, |first| {
+        let first: String = first.to_uppercase().collect();
+        format!("{first}{}.", chars.as_str())
+    })
+}
+
+/// Everything shown at the moment: the numbers at a glance and the open groups. Empty groups are left out.
+pub(crate) fn shown(open: &BTreeSet<Group>) -> Vec<(&'static str, Vec<&'static Quantity>)> {
+    let glance: Vec<&Quantity> = at_a_glance().collect();
+    let groups = Group::ALL
+        .into_iter()
+        .filter(|group| open.contains(group))
+        .map(|group| (group.title(), in_group(group).collect()));
+    std::iter::once(("At a glance", glance))
+        .chain(groups)
+        .collect()
+}
+
+/// The numbers of a group that don't stand at a glance above it.
+pub(crate) fn in_group(group: Group) -> impl Iterator<Item = &'static Quantity> {
+    let above: Vec<&str> = at_a_glance().map(|quantity| quantity.key).collect();
+    group
+        .quantities()
+        .iter()
+        .filter(move |quantity| !above.contains(&quantity.key))
+}
+
+/// The table as text for the clipboard: all that is shown.
+pub(crate) fn as_text(item: &Item, units: Units, open: &BTreeSet<Group>) -> String {
+    let sight = Sight::of(item);
+    let mut text = format!("{}\n", item.sounding().station.label());
+    if item.demo() {
+        text.push_str(wording::INVENTED);
+        text.push('\n');
+    }
+    for (title, quantities) in shown(open) {
+        let (of_parcels, of_profile): (Vec<&Quantity>, Vec<&Quantity>) = quantities
+            .into_iter()
+            .partition(|quantity| quantity.is_per_parcel());
+        let _ = write!(text, "\n{title}\n");
+        if !of_parcels.is_empty() {
+            text.push_str("Quantity\tUnit");
+            for parcel in Parcel::ALL {
+                let _ = write!(text, "\t{}\treceived\trange", parcel_heading(parcel));
+            }
+            text.push('\n');
+        }
+        for quantity in of_parcels {
+            let _ = write!(text, "{}\t{}", quantity.label, quantity.sign(units));
+            for parcel in Parcel::ALL {
+                let range = quantity
+                    .range
+                    .map(|range| range(item.results().doubt.range(parcel)));
+                let range = match range {
+                    Some((Some(range), or_none)) => range_text(&range, or_none),
+                    _ => "–".to_owned(),
+                };
+                let _ = write!(text, "\t{}\t{range}", pair(quantity, &sight, parcel, units));
+            }
+            text.push('\n');
+        }
+        if !of_profile.is_empty() {
+            text.push_str("Quantity\tUnit\tWhole profile\treceived\n");
+        }
+        for quantity in of_profile {
+            let pair = pair(quantity, &sight, Parcel::Surface, units);
+            let (name, sign) = (quantity.label, quantity.sign(units));
+            let _ = writeln!(text, "{name}\t{sign}\t{pair}");
+            let value = quantity.value(&sight.working, Parcel::Surface);
+            for term in value.as_ref().map(Quantity::terms).unwrap_or_default() {
+                let _ = writeln!(text, "  {term}");
+            }
+        }
+    }
+    if sight.stale && open.contains(&Group::OtherAscents) {
+        let _ = writeln!(text, "{}: {STALE}", Group::OtherAscents.title());
+    }
+    text.push_str(wording::CAUTION);
+    text.push('\n');
+    text
+}
+
+/// Said of numbers of an earlier revision.
+pub(crate) const STALE: &str = "as before the drag";
+
+/// Working and received value.
+fn pair(quantity: &Quantity, sight: &Sight, parcel: Parcel, units: Units) -> String {
+    let text = |readings: &Readings| {
+        let value: Option<Value> = quantity.value(readings, parcel);
+        value.map_or_else(|| "–".to_owned(), |value| quantity.text(&value, units))
+    };
+    format!("{}\t{}", text(&sight.working), text(&sight.received))
 }
 
 #[cfg(test)]
@@ -261,16 +276,20 @@ mod tests {
     }
 
     #[test]
-    fn every_row_says_what_it_is() {
-        for quantity in QUANTITIES {
-            for text in [
-                quantity.name,
-                quantity.definition,
-                quantity.method,
-                quantity.source,
-            ] {
-                assert!(!text.is_empty(), "{}", quantity.name);
+    fn reasons_are_sentences() {
+        assert_eq!(sentence("no free convection"), "No free convection.");
+        assert_eq!(sentence(""), "");
+    }
+
+    #[test]
+    fn every_number_stands_in_one_place() {
+        let everything: BTreeSet<Group> = Group::ALL.into_iter().collect();
+        let mut seen = BTreeSet::new();
+        for (_, quantities) in shown(&everything) {
+            for quantity in quantities {
+                assert!(seen.insert(quantity.key), "{} twice", quantity.key);
             }
         }
+        assert_eq!(seen.len(), dewbound_session::quantity::all().count());
     }
 }

@@ -4,11 +4,12 @@ use crate::args::ThemeName;
 use crate::preferences::Preferences;
 use crate::timing::Timing;
 use dewbound_session::chart::{HodographView, Units, View as ChartView, WINDS_TOP};
+use dewbound_session::quantity::Group;
 use dewbound_session::sounding::Parcel;
 use dewbound_session::thermo::Vector;
 use dewbound_session::{Item, ItemId, Preview, RepairId, Revision, SurfaceQuantity};
 use eframe::egui;
-use std::collections::HashMap;
+use std::collections::{BTreeSet, HashMap};
 
 /// Findings or numbers, where only one has room.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
@@ -110,6 +111,8 @@ pub(crate) struct View {
     pub page: Page,
     /// Which tab.
     pub tab: Tab,
+    /// Groups of numbers that are open.
+    pub open_groups: BTreeSet<Group>,
     /// Whose path is drawn; `None`: the one that matters for the sounding as received.
     pub parcel: Option<Parcel>,
     /// Part of the diagram looked at, where it isn't the fitting one.
@@ -153,6 +156,7 @@ impl View {
             units: preferences.units,
             page: Page::default(),
             tab: Tab::default(),
+            open_groups: BTreeSet::new(),
             parcel: None,
             charts: HashMap::new(),
             hodographs: HashMap::new(),
@@ -192,6 +196,13 @@ impl View {
             .rev()
             .max_by(|&a, &b| cape(a).total_cmp(&cape(b)))
             .unwrap_or(Parcel::Surface)
+    }
+
+    /// Opens a group of numbers, or closes it.
+    pub fn toggle_group(&mut self, group: Group) {
+        if !self.open_groups.remove(&group) {
+            self.open_groups.insert(group);
+        }
     }
 
     /// The open card of a sounding.

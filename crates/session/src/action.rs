@@ -142,7 +142,7 @@ actions! {
     Edit session ResetMotion "Estimated motion" "Put the storm motion back to the estimate." None;
     Edit session ClearAmendments "Remove all amendments" "Go back to the sounding as received. Can be undone." None;
     Edit window CopyLine "Copy line" "Copy station, time, verdict, CAPE range, reason and caution as one line." ctrl_shift("C");
-    Edit window CopyNumbers "Copy numbers" "Copy the table of numbers as text." None;
+    Edit window CopyNumbers "Copy numbers" "Copy the numbers shown as text: those at a glance and the open groups." None;
     Edit window CopyWinds "Copy winds" "Copy the wind numbers as text." None;
     Sounding session SelectNext "Next sounding" "Open the next sounding of the tray." plain("Page down");
     Sounding session SelectPrevious "Previous sounding" "Open the sounding above in the tray." plain("Page up");

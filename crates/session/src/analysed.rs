@@ -1,7 +1,10 @@
 //! Everything that follows from a sounding as received, before anybody has touched it.
 
 use crate::bounds::{Candidates, candidates};
-use crate::sounding::{Daylight, Further, Note, Numbers, Profile, Sounding, daylight};
+use crate::quantity::Readings;
+use crate::sounding::{
+    Daylight, Further, Note, Numbers, OtherAscents, Profile, Sounding, daylight,
+};
 use crate::thermo::Motion;
 use crate::trust::{Context, Finding, Thresholds, findings};
 use std::sync::Arc;
@@ -53,6 +56,15 @@ impl Analysed {
             daylight,
             candidates,
             notes,
+        }
+    }
+
+    /// What the declared numbers of the received profile are read from.
+    pub fn readings<'a>(&'a self, other: Option<&'a OtherAscents>) -> Readings<'a> {
+        Readings {
+            numbers: &self.numbers,
+            further: &self.further,
+            other,
         }
     }
 

@@ -135,6 +135,8 @@ impl Session {
             Command::SetInitials(initials) => self.set_initials(&initials),
             Command::Decide => self.decide(),
 
+            Command::CompareAscents => self.compare_ascents(),
+
             Command::SetPosition(position) => self.set_position(position),
             Command::Dismiss(id) => self.messages.retain(|message| message.id != id),
         }

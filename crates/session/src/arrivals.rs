@@ -34,6 +34,7 @@ impl Session {
         let mut results = fresh.results;
         results.revision = self.next_revision();
         self.items.push(Item {
+            other: None,
             id,
             identity: fresh.identity,
             analysed: fresh.analysed,

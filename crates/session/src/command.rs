@@ -110,6 +110,9 @@ pub enum Command {
     /// Keep the drafted verdict in the ledger.
     Decide,
 
+    /// Compute CAPE by other kinds of ascent for the document as it is; no change. Nothing while a drag is under way.
+    CompareAscents,
+
     /// The position of the current sounding's station, typed once; remembered in the office folder.
     SetPosition(Position),
     /// Put a message away.

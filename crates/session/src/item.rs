@@ -1,6 +1,8 @@
 //! One sounding of the tray with everything that belongs to it.
 
 use crate::history::History;
+use crate::other::{OtherKept, OtherShown};
+use crate::results::further_of;
 use crate::sounding::{Daylight, Note, Numbers, Profile, Sounding};
 use crate::thermo::Temperature;
 use crate::trust::{Finding, Repair, applied_repair, with_repair, without_repair};
@@ -24,6 +26,8 @@ pub struct Item {
     pub(crate) analysed: Arc<Analysed>,
     pub(crate) history: History,
     pub(crate) results: Results,
+    /// Other kinds of ascent, where they have been asked for.
+    pub(crate) other: Option<OtherKept>,
     pub(crate) standing: Standing,
     /// The document when nothing is drafted: untouched, or as it was decided.
     pub(crate) baseline: Document,
@@ -87,6 +91,11 @@ impl Item {
     /// Everything computed for that revision.
     pub fn results(&self) -> &Results {
         &self.results
+    }
+
+    /// CAPE by other kinds of ascent, as far as [`crate::Command::CompareAscents`] has asked for it.
+    pub fn other_ascents(&self) -> OtherShown<'_> {
+        OtherShown::of(self)
     }
 
     /// How it stands.
@@ -153,9 +162,17 @@ impl Item {
         };
         let working = amendments.apply(self.received(), self.daylight());
         let numbers = Numbers::of(&working.profile);
+        let further = further_of(
+            &self.analysed,
+            self.document(),
+            &working.profile,
+            &numbers,
+            Some(&self.results.further),
+        );
         Some(Preview {
             working,
             numbers,
+            further,
             applied,
         })
     }

@@ -2,7 +2,8 @@
 
 use crate::doubt::DoubtKey;
 use crate::pricing::Pricing;
-use crate::sounding::{Further, Numbers, Profile, Working};
+use crate::quantity::Readings;
+use crate::sounding::{Further, Numbers, OtherAscents, Profile, Working};
 use crate::thermo::{Ascent, Method, Motion, Pressure, lift};
 use crate::trust::{Cost, Priced};
 use crate::{Analysed, Document, Doubt, sentence};
@@ -94,6 +95,8 @@ pub struct Preview {
     pub working: Working,
     /// Its numbers.
     pub numbers: Numbers,
+    /// Its further numbers.
+    pub further: Further,
     /// The repair is applied at the moment, so this is what it would be without.
     pub applied: bool,
 }
@@ -120,6 +123,15 @@ impl Results {
         results
     }
 
+    /// What the declared numbers are read from.
+    pub fn readings<'a>(&'a self, other: Option<&'a OtherAscents>) -> Readings<'a> {
+        Readings {
+            numbers: &self.numbers,
+            further: &self.further,
+            other,
+        }
+    }
+
     /// Something was left coarse or stale because a drag is under way.
     pub(crate) fn is_hasty(&self) -> bool {
         self.doubt.coarse || self.cards.iter().any(|card| card.stale.contains(&true))
@@ -143,14 +155,14 @@ impl Results {
         let amendments = &document.amendments;
         let working = amendments.apply(&analysed.profile, analysed.daylight);
         let numbers = Numbers::of(&working.profile);
-        let motion = document
-            .storm_motion()
-            .map_or_else(|| analysed.estimated_motion(), Motion::Set);
-        let (received, amended) = (&analysed.profile, &working.profile);
-        let further = match previous {
-            Some(previous) => Further::next(received, amended, &numbers, motion, &previous.further),
-            None => Further::of(received, amended, &numbers, motion),
-        };
+        let previous_further = previous.map(|previous| &previous.further);
+        let further = further_of(
+            analysed,
+            document,
+            &working.profile,
+            &numbers,
+            previous_further,
+        );
         let picked = document
             .picked_level()
             .and_then(|level| picked_ascent(&working.profile, level));
@@ -214,6 +226,24 @@ impl Frame {
             repairs: affordable / 4,
             samples: affordable * 5 / 8,
         }
+    }
+}
+
+/// Further numbers of a working profile, helicity against the storm motion of the document; what can't have changed since
+/// `previous` is taken from there.
+pub(crate) fn further_of(
+    analysed: &Analysed,
+    document: &Document,
+    working: &Profile,
+    numbers: &Numbers,
+    previous: Option<&Further>,
+) -> Further {
+    let motion = document
+        .storm_motion()
+        .map_or_else(|| analysed.estimated_motion(), Motion::Set);
+    match previous {
+        Some(previous) => Further::next(&analysed.profile, working, numbers, motion, previous),
+        None => Further::of(&analysed.profile, working, numbers, motion),
     }
 }
 

@@ -147,7 +147,11 @@ impl Session {
 
     /// Applies a change; results are up to date when this returns.
     pub fn apply(&mut self, command: Command) {
-        if !matches!(command, Command::Dismiss(_) | Command::SetInitials(_)) {
+        let by_the_way = matches!(
+            command,
+            Command::Dismiss(_) | Command::SetInitials(_) | Command::CompareAscents
+        );
+        if !by_the_way {
             self.busy_user = true;
         }
         self.run(command);

@@ -4,6 +4,7 @@
 
 mod glyphs;
 mod keyboard;
+mod numbers;
 mod opening;
 mod pictures;
 mod pointer;

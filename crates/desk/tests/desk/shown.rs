@@ -57,7 +57,7 @@ fn a_narrow_window_has_tabs_and_a_drop_down() {
     let (_folder, mut window) = at(vec2(900.0, 700.0));
     window.get_by_label("Numbers").click();
     window.run();
-    assert!(has_text(&window, "LFC"));
+    assert!(has_text(&window, "LCL height"));
 }
 
 #[test]

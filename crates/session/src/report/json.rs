@@ -1,7 +1,8 @@
 //! One object a sounding, schema 1. Absent values are `null`; every key carries its unit.
 
 use crate::ledger::digests;
-use crate::sounding::{Note, Parcel, Place};
+use crate::quantity::{self, Readings};
+use crate::sounding::{Note, OtherAscents, Parcel, Place};
 use crate::thermo::Ascent;
 use crate::trust::{Change, Cost, Finding, Grade};
 use crate::{Analysed, Card, Extremes, Identity, ParcelRange, Results};
@@ -14,6 +15,22 @@ pub const SCHEMA: u32 = 1;
 /// The object on one line, without the line's end.
 pub fn json_line(analysed: &Analysed, results: &Results) -> Result<String, serde_json::Error> {
     serde_json::to_string(&Weighed::of(analysed, results))
+}
+
+/// The same with one member more, `numbers`: every declared number, of each parcel and of the whole profile.
+pub fn json_line_with_all(
+    analysed: &Analysed,
+    results: &Results,
+    other: &OtherAscents,
+) -> Result<String, serde_json::Error> {
+    let mut weighed = Weighed::of(analysed, results);
+    weighed.numbers = Some(Everything::of(&results.readings(Some(other))));
+    serde_json::to_string(&weighed)
+}
+
+/// A number rounded as it is written; `null` when it is none.
+pub(crate) fn rounded(value: f64, decimals: i32) -> Value {
+    json!(Rounded(value, decimals))
 }
 
 /// A number as written: rounded well below what the method is good for, so that the digits of the machine don't show.
@@ -51,6 +68,38 @@ struct Weighed<'a> {
     parcels: Parcels,
     findings: Vec<FindingOut<'a>>,
     notes: Vec<NoteOut<'a>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    numbers: Option<Everything>,
+}
+
+/// Every declared number under its key; absent is `null`.
+#[derive(Serialize)]
+struct Everything {
+    surface: Map<String, Value>,
+    mixed: Map<String, Value>,
+    most_unstable: Map<String, Value>,
+    profile: Map<String, Value>,
+}
+
+impl Everything {
+    fn of(readings: &Readings) -> Self {
+        let of = |per_parcel: bool, parcel: Parcel| {
+            quantity::all()
+                .filter(|quantity| quantity.is_per_parcel() == per_parcel)
+                .map(|quantity| {
+                    let value = quantity.value(readings, parcel);
+                    let value = value.map_or(Value::Null, |value| quantity.json(&value));
+                    (quantity.key.to_owned(), value)
+                })
+                .collect()
+        };
+        Self {
+            surface: of(true, Parcel::Surface),
+            mixed: of(true, Parcel::Mixed),
+            most_unstable: of(true, Parcel::MostUnstable),
+            profile: of(false, Parcel::Surface),
+        }
+    }
 }
 
 #[derive(Serialize)]
@@ -192,6 +241,7 @@ impl<'a> Weighed<'a> {
                 .iter()
                 .map(|note| NoteOut::of(note, &sounding.source.file))
                 .collect(),
+            numbers: None,
         }
     }
 }

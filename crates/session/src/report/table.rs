@@ -1,7 +1,8 @@
 //! One sounding for people.
 
+use super::all::all_numbers;
 use super::columns::aligned;
-use crate::sounding::{Numbers, Parcel, Profile};
+use crate::sounding::{Numbers, OtherAscents, Parcel, Profile};
 use crate::thermo::{Ascent, Pressure};
 use crate::trust::{Evidence, Finding, Grade};
 use crate::wording::{
@@ -11,6 +12,18 @@ use crate::{Analysed, Card, Extremes, ParcelRange, Results};
 
 /// The table of `weigh` for one sounding.
 pub fn table(analysed: &Analysed, results: &Results) -> String {
+    let text = without_caution(analysed, results);
+    format!("{text}\n{CAUTION}.\n")
+}
+
+/// The same with every declared number.
+pub fn table_with_all(analysed: &Analysed, results: &Results, other: &OtherAscents) -> String {
+    let text = without_caution(analysed, results);
+    let all = all_numbers(results, other);
+    format!("{text}{all}\n{CAUTION}.\n")
+}
+
+fn without_caution(analysed: &Analysed, results: &Results) -> String {
     let mut text = heading(analysed);
     if is_wind_only(analysed) {
         text.push_str(&wind_only(analysed, results));
@@ -27,7 +40,6 @@ pub fn table(analysed: &Analysed, results: &Results) -> String {
     }
     text.push_str(&findings(analysed, results));
     text.push_str(&notes(analysed));
-    text.push_str(&format!("\n{CAUTION}.\n"));
     text
 }
 

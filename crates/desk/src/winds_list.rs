@@ -3,6 +3,7 @@
 use crate::app::Paint;
 use crate::ask::Asks;
 use crate::menu::{asked, small_action_button};
+use crate::number_rows::definition_ui;
 use crate::theme::bold;
 use dewbound_session::{Action, Item, WindLine, wind_lines};
 use eframe::egui::{
@@ -65,7 +66,6 @@ fn tops_ui(ui: &mut Ui, paint: &Paint, asks: &mut Asks) {
 
 fn line_ui(ui: &mut Ui, paint: &Paint, line: &WindLine) {
     let (row, _) = ui.allocate_exact_size(vec2(ui.available_width(), ROW), Sense::hover());
-    let about = format!("{}\n{}", line.text(), line.about);
     let names = row.left() + NAMES;
     let values = names + VALUES;
     let part =
@@ -77,13 +77,14 @@ fn line_ui(ui: &mut Ui, paint: &Paint, line: &WindLine) {
                 .layout(Layout::left_to_right(Align::Center)),
         );
         child.set_clip_rect(rect.intersect(ui.clip_rect()));
-        child
-            .add(Label::new(text).truncate())
-            .on_hover_text(about.as_str());
+        child.add(Label::new(text).truncate()).on_hover_ui(|ui| {
+            ui.label(bold(line.text()));
+            definition_ui(ui, line.quantity);
+        });
     };
     text(
         part(row.left(), names - 4.0),
-        RichText::new(line.name).size(12.0),
+        RichText::new(line.quantity.label).size(12.0),
     );
     let quiet = |text: &str| RichText::new(text).size(11.5).color(paint.theme.quiet);
     let Some(value) = &line.value else {

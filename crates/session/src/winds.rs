@@ -33,6 +33,9 @@ const DIFFERENCES: [&str; 4] = [
     "difference_effective_ms",
 ];
 
+/// A difference below this has no direction worth telling, m/s: half of the last digit shown. Convention of this program.
+const LEAST_DIFFERENCE: f64 = 0.05;
+
 /// Those measured against the motion in use.
 const AGAINST_MOTION: [&str; 4] = [
     "helicity_0_to_1km_m2s2",
@@ -148,14 +151,20 @@ fn note(
 ) -> String {
     let in_use = || motion_in_use(numbers, set, unit).unwrap_or_default();
     match value {
-        Value::Wind(wind) if DIFFERENCES.contains(&key) => format!("from {}", bearing(*wind)),
+        // Next to nothing comes from nowhere.
+        Value::Wind(wind) if DIFFERENCES.contains(&key) => {
+            let known = wind.speed() >= LEAST_DIFFERENCE;
+            known
+                .then(|| format!("from {}", bearing(*wind)))
+                .unwrap_or_default()
+        }
         _ if AGAINST_MOTION.contains(&key) => format!("against {}", in_use()),
         _ if key == "motion_used_ms" => match set {
             Some(_) => "set by you".to_owned(),
             None => {
                 let named = in_use();
                 let side = named.split(' ').next().unwrap_or_default();
-                format!("estimated, {side} of the mean wind")
+                format!("estimated, to the {side}")
             }
         },
         _ => String::new(),

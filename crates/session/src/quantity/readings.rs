@@ -73,9 +73,8 @@ const STILL_BUOYANT: &str =
     "the parcel is still lighter than its surroundings where the profile ends";
 const NO_WIND: &str = "fewer than two winds of known height";
 const NO_INFLOW: &str = "no effective inflow layer: no level has enough CAPE with little CIN";
-const NO_EL: &str = "the most unstable parcel has no EL of known height";
-const UNCHANGED: &str =
-    "the wind is the same in the lowest and the highest 500 m of the lowest 6 km";
+const NO_EL: &str = "the most unstable parcel has no known EL";
+const UNCHANGED: &str = "no shear from 0–500 m to 5.5–6 km";
 
 /// What of the wind is lacking between two heights, m above the ground; `None`: nothing that can be told.
 fn out_of_reach(profile: &WindProfile, from: f64, to: f64) -> Option<String> {

@@ -521,7 +521,7 @@ fn absent_wind_numbers_tell_where_the_wind_ends() {
         "motion_right_ms",
         "the lowest wind is at 1.5 km",
     );
-    let unchanged = "the wind is the same in the lowest and the highest 500 m of the lowest 6 km";
+    let unchanged = "no shear from 0–500 m to 5.5–6 km";
     check([0.0, 9000.0], "motion_left_ms", unchanged);
     let none = "no storm motion: the wind ends at 4.2 km";
     for name in [
@@ -564,7 +564,7 @@ fn absent_numbers_of_the_storms_layer_tell_what_it_lacks() {
         assert!(why.starts_with("no effective inflow layer"), "{why}");
         assert_eq!(
             why_of_winds([0.0, 9000.0], name, with_el(None)),
-            "the most unstable parcel has no EL of known height"
+            "the most unstable parcel has no known EL"
         );
     }
     // Half of the way from 100 m to 10.1 km is 5.1 km.

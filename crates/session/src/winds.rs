@@ -153,10 +153,10 @@ fn note(
     match value {
         // Next to nothing comes from nowhere.
         Value::Wind(wind) if DIFFERENCES.contains(&key) => {
-            let known = wind.speed() >= LEAST_DIFFERENCE;
-            known
-                .then(|| format!("from {}", bearing(*wind)))
-                .unwrap_or_default()
+            if wind.speed() < LEAST_DIFFERENCE {
+                return String::new();
+            }
+            format!("from {}", bearing(*wind))
         }
         _ if AGAINST_MOTION.contains(&key) => format!("against {}", in_use()),
         _ if key == "motion_used_ms" => match set {

@@ -304,7 +304,8 @@ fn explain_hover(response: Response, quantity: &Quantity, value: &Cell, parcel: 
     });
 }
 
-fn definition_ui(ui: &mut Ui, quantity: &Quantity) {
+/// Definition, method, source and the rest of a declaration, in a hover text.
+pub(crate) fn definition_ui(ui: &mut Ui, quantity: &Quantity) {
     ui.label(quantity.definition);
     for (name, content) in quantity.particulars() {
         ui.label(RichText::new(format!("{}: {content}", capital(name))).weak());

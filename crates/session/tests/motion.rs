@@ -187,16 +187,18 @@ fn every_line_has_a_unit_or_a_reason() {
         let line = |desk: &Desk, name: &str| {
             wind_lines(item(&desk.session), SpeedUnit::Knots)
                 .into_iter()
-                .find(|line| line.name == name)
+                .find(|line| line.quantity.label == name)
                 .unwrap()
         };
-        let six = line(&desk, "Difference 0–6 km");
-        let helicity = line(&desk, "Helicity 0–3 km");
+        let six = line(&desk, "Wind difference, 0–6 km");
+        let helicity = line(&desk, "Helicity, 0–3 km");
         if top == 4 {
             assert_eq!(six.value, None);
             assert!(six.note.starts_with("the wind ends at 4.0 km"), "{six:?}");
             assert!(
-                helicity.note.starts_with("no estimate: the wind ends at"),
+                helicity
+                    .note
+                    .starts_with("no storm motion: the wind ends at 4.0 km"),
                 "{helicity:?}"
             );
             // With a motion of one's own there is helicity all the same.
@@ -204,7 +206,7 @@ fn every_line_has_a_unit_or_a_reason() {
                 .apply(Command::SetStormMotion(Some(Vector::from_wind(
                     240.0, 18.0,
                 ))));
-            let helicity = line(&desk, "Helicity 0–3 km");
+            let helicity = line(&desk, "Helicity, 0–3 km");
             assert!(helicity.value.is_some());
             // 18 m/s are 34.99 kt.
             assert_eq!(helicity.note, "against your own 240° 35 kt");
@@ -228,7 +230,7 @@ fn without_wind_a_sentence_says_so() {
     assert_eq!(no_winds(windy), None);
     let text = winds_as_text(windy, SpeedUnit::Knots);
     assert!(
-        text.contains("Difference 0–6 km\t") && text.contains("warnings"),
+        text.contains("Wind difference, 0–6 km\t") && text.contains("warnings"),
         "{text}"
     );
 }

@@ -103,7 +103,7 @@ pub fn bearing(wind: Vector) -> String {
 }
 
 /// "34 kt": whole knots, tenths of m/s.
-pub fn speed_text(metres_per_second: f64, unit: SpeedUnit) -> String {
+fn speed_text(metres_per_second: f64, unit: SpeedUnit) -> String {
     let units = Units {
         speed: unit,
         ..Units::default()

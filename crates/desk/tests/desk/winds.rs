@@ -208,7 +208,7 @@ fn everything_on_the_page_has_a_node() {
         "Mean wind the motions deviate from: ",
         "Rings of the hodograph: every 20 kt",
         "Hatched area 0–1 km: helicity ",
-        "Difference 0–6 km",
+        "Wind difference, 0–6 km",
         "Critical angle",
         "Copy winds",
     ] {
@@ -217,6 +217,21 @@ fn everything_on_the_page_has_a_node() {
     let node = window.get_by_label("Storm motion");
     let value = node.accesskit_node().value().unwrap_or_default();
     assert!(value.ends_with(" kt") && value.contains('°'), "{value}");
+}
+
+#[test]
+fn nothing_in_the_list_is_cut_off() {
+    let (_folder, mut window) = usual();
+    open_page(&mut window);
+    let all = texts(&window);
+    let start = all.iter().position(|text| text == "Storm motion used");
+    let list = &all[start.expect("the list is there")..];
+    let cut: Vec<&String> = list
+        .iter()
+        .take_while(|text| !text.starts_with("Findings"))
+        .filter(|text| text.contains('…'))
+        .collect();
+    assert!(cut.is_empty(), "{cut:?}");
 }
 
 #[test]
@@ -280,5 +295,5 @@ fn the_page_fits_the_smallest_window() {
         "{plane:?}"
     );
     assert!(strips.width() >= 130.0 && strips.right() <= plane.left());
-    assert!(has_text(&window, "Helicity 0–1 km"));
+    assert!(has_text(&window, "Helicity, 0–1 km"));
 }

@@ -167,7 +167,11 @@ pub const AT_A_GLANCE: [&str; 5] = [
 
 /// The declarations of [`AT_A_GLANCE`].
 pub fn at_a_glance() -> impl Iterator<Item = &'static Quantity> {
-    AT_A_GLANCE
-        .into_iter()
-        .filter_map(|key| all().find(|quantity| quantity.key == key))
+    of_keys(&AT_A_GLANCE)
+}
+
+/// The declarations of these keys, in this order; what is no key is left out.
+pub(crate) fn of_keys(keys: &[&str]) -> impl Iterator<Item = &'static Quantity> {
+    keys.iter()
+        .filter_map(|key| all().find(|quantity| quantity.key == *key))
 }

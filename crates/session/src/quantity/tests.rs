@@ -476,3 +476,112 @@ fn absence_is_explained_by_what_this_profile_lacks() {
     });
     assert!(why(&numbers).contains("where the profile ends"));
 }
+
+/// Two winds, at these heights, with everything else absent but what `change` puts there.
+fn why_of_winds(heights: [f64; 2], name: &str, change: impl FnOnce(&mut Further)) -> String {
+    let numbers = Numbers {
+        problem: None,
+        ..Numbers::of(&Profile::default())
+    };
+    let mut further = Further::default();
+    let levels = heights.map(|height| WindLevel {
+        height,
+        pressure: None,
+        wind: wind(200.0, 10.0),
+    });
+    further.wind_profile = WindProfile::new(levels).map(Arc::new);
+    change(&mut further);
+    let readings = Readings {
+        numbers: &numbers,
+        further: &further,
+        other: None,
+    };
+    find(name).unwrap().why_absent(&readings, Parcel::Surface)
+}
+
+#[test]
+fn absent_wind_numbers_tell_where_the_wind_ends() {
+    let check = |heights: [f64; 2], name: &str, expected: &str| {
+        assert_eq!(why_of_winds(heights, name, |_| ()), expected, "{name}");
+    };
+    check(
+        [0.0, 4210.0],
+        "difference_0_to_6km_ms",
+        "the wind ends at 4.2 km",
+    );
+    // Rounded to tenths of a kilometre it would be as high as is needed.
+    check([0.0, 5980.0], "mean_0_to_6km_ms", "the wind ends at 5980 m");
+    check(
+        [450.0, 9000.0],
+        "difference_0_to_1km_ms",
+        "the lowest wind is at 450 m",
+    );
+    check(
+        [1500.0, 9000.0],
+        "motion_right_ms",
+        "the lowest wind is at 1.5 km",
+    );
+    let unchanged = "no shear from 0–500 m to 5.5–6 km";
+    check([0.0, 9000.0], "motion_left_ms", unchanged);
+    let none = "no storm motion: the wind ends at 4.2 km";
+    for name in [
+        "motion_used_ms",
+        "helicity_0_to_1km_m2s2",
+        "critical_angle_deg",
+    ] {
+        check([0.0, 4210.0], name, none);
+    }
+    // With a motion of one's own only the height counts.
+    let own = |further: &mut Further| further.winds.motion_used = Some(wind(240.0, 10.0));
+    assert_eq!(
+        why_of_winds([0.0, 2500.0], "helicity_0_to_3km_m2s2", own),
+        "the wind ends at 2.5 km"
+    );
+}
+
+#[test]
+fn absent_numbers_of_the_storms_layer_tell_what_it_lacks() {
+    let inflow = InflowLayer {
+        bottom: level(950.0, 100.0),
+        top: level(800.0, 1900.0),
+    };
+    let with_el = |el_height: Option<f64>| {
+        move |further: &mut Further| {
+            further.layers.inflow = Some(inflow);
+            further.winds.motion_used = Some(wind(240.0, 10.0));
+            further.parcels = [
+                None,
+                None,
+                Some(ParcelNumbers {
+                    el_height,
+                    ..of_parcel(0.0)
+                }),
+            ];
+        }
+    };
+    for name in ["difference_effective_ms", "motion_effective_right_ms"] {
+        let why = why_of_winds([0.0, 9000.0], name, |_| ());
+        assert!(why.starts_with("no effective inflow layer"), "{why}");
+        assert_eq!(
+            why_of_winds([0.0, 9000.0], name, with_el(None)),
+            "the most unstable parcel has no known EL"
+        );
+    }
+    // Half of the way from 100 m to 10.1 km is 5.1 km.
+    assert_eq!(
+        why_of_winds(
+            [0.0, 5000.0],
+            "difference_effective_ms",
+            with_el(Some(10_100.0))
+        ),
+        "the wind ends at 5.0 km"
+    );
+    assert_eq!(
+        why_of_winds(
+            [0.0, 1800.0],
+            "helicity_effective_m2s2",
+            with_el(Some(10_100.0))
+        ),
+        "the wind ends at 1.8 km"
+    );
+}

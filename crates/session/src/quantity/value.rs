@@ -1,7 +1,7 @@
 //! The value of a declared number, as text and as JSON.
 
 use super::{Quantity, Unit};
-use crate::chart::Units;
+use crate::chart::{Units, bearing};
 use crate::report::rounded;
 use crate::thermo::{Composite, Vector};
 use crate::wording::number;
@@ -78,16 +78,28 @@ impl Quantity {
             Value::Number(value) => plain(*value),
             Value::AtLeast(value) => format!("≥ {}", plain(*value)),
             Value::Wind(wind) => {
-                // 360 rather than 0: the wind code's own word for north, 0 being calm.
-                let from = match wind.direction_from().round() {
-                    north if north == 0.0 && wind.speed() > 0.0 => 360.0,
-                    from => from,
+                // Without speed it comes from nowhere: 0, not the 360 of a north wind.
+                let from = if wind.speed() > 0.0 {
+                    bearing(*wind)
+                } else {
+                    "0°".to_owned()
                 };
-                format!("{}° {}", number(from, 0), plain(wind.speed()))
+                format!("{from} {}", plain(wind.speed()))
             }
             Value::Composite(composite) => plain(composite.value),
             Value::YesNo(true) => "yes".to_owned(),
             Value::YesNo(false) => "no".to_owned(),
+        }
+    }
+
+    /// A value with its unit: "1850 J/kg", "245° 42 kt", "87°", "yes".
+    pub fn text_with_unit(&self, value: &Value, units: Units) -> String {
+        let text = self.text(value, units);
+        match self.sign(units) {
+            "" => text,
+            // The sign of degrees stands close (SI brochure, 9th edition, 5.4.3).
+            "°" => format!("{text}°"),
+            sign => format!("{text} {sign}"),
         }
     }
 
@@ -165,11 +177,20 @@ mod tests {
         let text = |wind| quantity.text(&Value::Wind(wind), Unit::of_reports());
         assert_eq!(text(Vector::from_wind(245.0, 21.6)), "245° 21.6");
         assert_eq!(text(Vector::from_wind(0.0, 5.0)), "360° 5.0");
+        assert_eq!(text(Vector::from_wind(5.0, 5.0)), "005° 5.0");
         assert_eq!(text(Vector::default()), "0° 0.0");
         // 10 m/s = 10 * 3600 / 1852 kt = 19.4 kt.
         let knots = Units::default();
         let wind = Value::Wind(Vector::from_wind(270.0, 10.0));
         assert_eq!(quantity.text(&wind, knots), "270° 19");
+        assert_eq!(quantity.text_with_unit(&wind, knots), "270° 19 kt");
+        let angle = find("critical_angle_deg").unwrap();
+        assert_eq!(angle.text_with_unit(&Value::Number(87.2), knots), "87°");
+        let cape = find("cape_jkg").unwrap();
+        assert_eq!(
+            cape.text_with_unit(&Value::AtLeast(1850.4), knots),
+            "≥ 1850 J/kg"
+        );
         assert_eq!(
             quantity.json(&wind),
             json!({ "from_deg": 270.0, "speed_ms": 10.0 })

@@ -1,8 +1,8 @@
 //! The wind numbers as a short list: the declared ones in the order a forecaster asks for them, and what belongs to each value.
 
 use crate::Item;
-use crate::chart::{SpeedUnit, Units, bearing, drawn_heights, wind_text};
-use crate::quantity::{Quantity, Value, of_keys};
+use crate::chart::{SpeedUnit, Units, drawn_heights, wind_text};
+use crate::quantity::{Quantity, Value, difference_from, of_keys};
 use crate::sounding::Parcel;
 use crate::thermo::{Vector, WindNumbers};
 use std::fmt::Write as _;
@@ -24,17 +24,6 @@ const LIST: [&str; 14] = [
     "motion_effective_right_ms",
     "motion_effective_left_ms",
 ];
-
-/// Those whose speed is asked for first, and where they come from second.
-const DIFFERENCES: [&str; 4] = [
-    "difference_0_to_1km_ms",
-    "difference_0_to_3km_ms",
-    "difference_0_to_6km_ms",
-    "difference_effective_ms",
-];
-
-/// A difference below this has no direction worth telling, m/s: half of the last digit shown. Convention of this program.
-const LEAST_DIFFERENCE: f64 = 0.05;
 
 /// Those measured against the motion in use.
 const AGAINST_MOTION: [&str; 4] = [
@@ -126,15 +115,9 @@ pub fn wind_lines(item: &Item, unit: SpeedUnit) -> Vec<WindLine> {
                 };
             };
             let note = note(quantity.key, &value, &results.further.winds, set, unit);
-            let shown = match &value {
-                Value::Wind(wind) if DIFFERENCES.contains(&quantity.key) => {
-                    Value::Number(wind.speed())
-                }
-                _ => value,
-            };
             WindLine {
                 quantity,
-                value: Some(quantity.text_with_unit(&shown, units)),
+                value: Some(quantity.text_with_unit(&value, units)),
                 note,
             }
         })
@@ -151,13 +134,7 @@ fn note(
 ) -> String {
     let in_use = || motion_in_use(numbers, set, unit).unwrap_or_default();
     match value {
-        // Next to nothing comes from nowhere.
-        Value::Wind(wind) if DIFFERENCES.contains(&key) => {
-            if wind.speed() < LEAST_DIFFERENCE {
-                return String::new();
-            }
-            format!("from {}", bearing(*wind))
-        }
+        Value::Difference(wind) => difference_from(*wind).unwrap_or_default(),
         _ if AGAINST_MOTION.contains(&key) => format!("against {}", in_use()),
         _ if key == "motion_used_ms" => match set {
             Some(_) => "set by you".to_owned(),
@@ -197,7 +174,7 @@ mod tests {
         let keys: Vec<&str> = of_keys(&LIST).map(|quantity| quantity.key).collect();
         assert_eq!(keys, LIST);
         assert!(of_keys(&LIST).all(|quantity| !quantity.is_per_parcel()));
-        for key in DIFFERENCES.iter().chain(&AGAINST_MOTION) {
+        for key in &AGAINST_MOTION {
             assert!(LIST.contains(key), "{key}");
         }
     }

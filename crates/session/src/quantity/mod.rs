@@ -24,6 +24,7 @@ pub use page::markdown;
 pub use readings::{Needs, Readings};
 pub use unit::Unit;
 pub use value::Value;
+pub(crate) use value::difference_from;
 
 use crate::sounding::Parcel;
 use crate::{Extremes, ParcelRange};

@@ -14,8 +14,10 @@ pub enum Value {
     Number(f64),
     /// A number that is only a lower limit: the sounding ends too low.
     AtLeast(f64),
-    /// A wind, a motion or a difference of winds, m/s.
+    /// A wind or a motion, m/s: where it comes from, then how fast.
     Wind(Vector),
+    /// A difference of winds, m/s: its size first, for that is what is asked.
+    Difference(Vector),
     /// An index with its terms.
     Composite(Composite),
     /// Yes or no.
@@ -27,7 +29,7 @@ impl Value {
     pub fn is_finite(&self) -> bool {
         match self {
             Self::Number(value) | Self::AtLeast(value) => value.is_finite(),
-            Self::Wind(wind) => wind.u.is_finite() && wind.v.is_finite(),
+            Self::Wind(wind) | Self::Difference(wind) => wind.u.is_finite() && wind.v.is_finite(),
             Self::Composite(composite) => {
                 composite.value.is_finite()
                     && composite
@@ -68,7 +70,7 @@ impl Quantity {
         }
     }
 
-    /// A value without its unit: "1850", "≥ 1850", "245° 42", "yes".
+    /// A value without its unit: "1850", "≥ 1850", "245° 42", "54 from 262°", "yes".
     pub fn text(&self, value: &Value, units: Units) -> String {
         let plain = |si: f64| {
             let (value, decimals) = self.unit.shown(si, self.decimals, units);
@@ -86,15 +88,23 @@ impl Quantity {
                 };
                 format!("{from} {}", plain(wind.speed()))
             }
+            Value::Difference(wind) => match difference_from(*wind) {
+                Some(from) => format!("{} {from}", plain(wind.speed())),
+                None => plain(wind.speed()),
+            },
             Value::Composite(composite) => plain(composite.value),
             Value::YesNo(true) => "yes".to_owned(),
             Value::YesNo(false) => "no".to_owned(),
         }
     }
 
-    /// A value with its unit: "1850 J/kg", "245° 42 kt", "87°", "yes".
+    /// A value with its unit: "1850 J/kg", "245° 42 kt", "87°", "yes". Of a difference of winds the size alone, whose direction is
+    /// [`difference_from`].
     pub fn text_with_unit(&self, value: &Value, units: Units) -> String {
-        let text = self.text(value, units);
+        let text = match value {
+            Value::Difference(wind) => self.text(&Value::Number(wind.speed()), units),
+            _ => self.text(value, units),
+        };
         match self.sign(units) {
             "" => text,
             // The sign of degrees stands close (SI brochure, 9th edition, 5.4.3).
@@ -133,7 +143,7 @@ impl Quantity {
         let plain = |si: f64| rounded(self.unit.reported(si), decimals);
         match value {
             Value::Number(value) | Value::AtLeast(value) => plain(*value),
-            Value::Wind(wind) => json!({
+            Value::Wind(wind) | Value::Difference(wind) => json!({
                 "from_deg": rounded(wind.direction_from(), 2),
                 "speed_ms": rounded(Unit::Wind.reported(wind.speed()), decimals),
             }),
@@ -155,6 +165,15 @@ impl Quantity {
             Value::YesNo(value) => json!(value),
         }
     }
+}
+
+/// A difference of winds below this has no direction worth telling, m/s: half of the last digit shown. Convention of this
+/// program.
+const LEAST_DIFFERENCE: f64 = 0.05;
+
+/// "from 262°"; `None` for a difference that is next to nothing and comes from nowhere.
+pub(crate) fn difference_from(wind: Vector) -> Option<String> {
+    (wind.speed() >= LEAST_DIFFERENCE).then(|| format!("from {}", bearing(wind)))
 }
 
 /// Decimals of a term's input, whose unit says too little about its size.
@@ -184,6 +203,12 @@ mod tests {
         let wind = Value::Wind(Vector::from_wind(270.0, 10.0));
         assert_eq!(quantity.text(&wind, knots), "270° 19");
         assert_eq!(quantity.text_with_unit(&wind, knots), "270° 19 kt");
+        let difference = find("difference_0_to_6km_ms").unwrap();
+        let size = Value::Difference(Vector::from_wind(262.0, 27.9));
+        assert_eq!(difference.text(&size, Unit::of_reports()), "27.9 from 262°");
+        assert_eq!(difference.text_with_unit(&size, knots), "54 kt");
+        let nothing = Value::Difference(Vector::from_wind(262.0, 0.04));
+        assert_eq!(difference.text(&nothing, Unit::of_reports()), "0.0");
         let angle = find("critical_angle_deg").unwrap();
         assert_eq!(angle.text_with_unit(&Value::Number(87.2), knots), "87°");
         let cape = find("cape_jkg").unwrap();

@@ -24,7 +24,13 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         unit: Unit::Wind,
         decimals: 1,
         group: Group::Wind,
-        of: Of::Profile(|readings| readings.further.winds.difference_0_to_6km.map(Value::Wind)),
+        of: Of::Profile(|readings| {
+            readings
+                .further
+                .winds
+                .difference_0_to_6km
+                .map(Value::Difference)
+        }),
         range: None,
         needs: Needs::WindTo(6_000),
         definition: "Wind at 6 km above the lowest usable level minus the wind there: the bulk shear of that layer as a vector.",
@@ -39,7 +45,13 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         unit: Unit::Wind,
         decimals: 1,
         group: Group::Wind,
-        of: Of::Profile(|readings| readings.further.winds.difference_effective.map(Value::Wind)),
+        of: Of::Profile(|readings| {
+            readings
+                .further
+                .winds
+                .difference_effective
+                .map(Value::Difference)
+        }),
         range: None,
         needs: Needs::LowerHalfOfStorm,
         definition: "Effective bulk wind difference: over the lower half of the storm's depth, which reaches from the base of the effective inflow layer to the equilibrium level of the most unstable parcel.",
@@ -99,7 +111,13 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         unit: Unit::Wind,
         decimals: 1,
         group: Group::Wind,
-        of: Of::Profile(|readings| readings.further.winds.difference_0_to_1km.map(Value::Wind)),
+        of: Of::Profile(|readings| {
+            readings
+                .further
+                .winds
+                .difference_0_to_1km
+                .map(Value::Difference)
+        }),
         range: None,
         needs: Needs::WindTo(1_000),
         definition: "Wind at 1 km above the lowest usable level minus the wind there: the bulk shear of that layer as a vector.",
@@ -114,7 +132,13 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         unit: Unit::Wind,
         decimals: 1,
         group: Group::Wind,
-        of: Of::Profile(|readings| readings.further.winds.difference_0_to_3km.map(Value::Wind)),
+        of: Of::Profile(|readings| {
+            readings
+                .further
+                .winds
+                .difference_0_to_3km
+                .map(Value::Difference)
+        }),
         range: None,
         needs: Needs::WindTo(3_000),
         definition: "Wind at 3 km above the lowest usable level minus the wind there: the bulk shear of that layer as a vector.",

@@ -12,7 +12,7 @@ use crate::view::{DialogBox, Gesture, Page, Previewed, View};
 use crate::winds_frame::WindsFrame;
 use crate::{
     chart_frame, chart_keys, chart_view, dialogs, findings, fonts, handle, input, keys, menu,
-    motion, numbers, quantity, response, status, title, tray, verdict, winds_frame, winds_view,
+    numbers, quantity, response, status, title, tray, verdict, winds_frame, winds_keys, winds_view,
 };
 use dewbound_session::chart::{SpeedUnit, TemperatureUnit};
 use dewbound_session::{Action, Command, Item, Session, SurfaceQuantity, wording};
@@ -165,7 +165,7 @@ impl Desk {
         }
         handle::keys(ctx, self);
         chart_keys::keys(ctx, self);
-        motion::keys(ctx, self);
+        winds_keys::keys(ctx, self);
         input::pointer(ctx, self);
         self.focus_for_hint(ctx);
         let held = ctx.input(|input| input.pointer.any_down() || !input.keys_down.is_empty())

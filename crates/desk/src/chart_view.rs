@@ -5,6 +5,7 @@ use crate::ask::{Ask, Asks};
 use crate::chart_frame::{ChartFrame, chart_id, to_point};
 use crate::chart_paint::{self, to_pos, to_rect};
 use crate::handle;
+use crate::marks;
 use crate::quantity::parcel_name;
 use crate::theme::bold;
 use crate::units;
@@ -13,8 +14,8 @@ use dewbound_session::chart::{Ink, Readout};
 use dewbound_session::sounding::Reach;
 use dewbound_session::{Item, wording};
 use eframe::egui::{
-    Align, Align2, Color32, CursorIcon, FontId, Id, Label, Layout, Rect, RichText, Role, Sense,
-    Stroke, StrokeKind, Ui, UiBuilder, WidgetInfo, pos2, vec2,
+    Align, Color32, CursorIcon, FontId, Id, Label, Layout, Rect, RichText, Role, Sense, Stroke,
+    StrokeKind, Ui, UiBuilder, WidgetInfo, pos2, vec2,
 };
 
 /// The one line of help, until the first drag.
@@ -219,20 +220,9 @@ fn typing_ui(ui: &Ui, paint: &Paint, frame: &ChartFrame) {
             typing.text,
             units::sign(paint.view.units.temperature)
         );
-        let galley = painter.layout_no_wrap(text, FontId::proportional(15.0), theme.ink);
-        let mut rect = Align2::CENTER_BOTTOM.anchor_size(at, galley.size());
-        // Never beyond the edge of the plot.
-        let shift = (plot.left() + 8.0 - rect.left()).max(0.0)
-            - (rect.right() - plot.right() + 8.0).max(0.0);
-        rect = rect.translate(vec2(shift, 0.0));
-        painter.rect_filled(rect.expand(4.0), 2.0, theme.card);
-        painter.galley(rect.min, galley, theme.ink);
-        painter.rect_stroke(
-            rect.expand(4.0),
-            2.0,
-            Stroke::new(2.0, theme.accent),
-            StrokeKind::Outside,
-        );
+        // Held between left and right, not at the top.
+        let within = plot.with_min_y(f32::NEG_INFINITY);
+        marks::typed_box(&painter, theme, at, within, text);
     }
 }
 

@@ -3,13 +3,14 @@
 use crate::app::{Desk, Paint};
 use crate::ask::Asks;
 use crate::response::response_id;
+use crate::strokes::{self, ARROWS, Press};
 use crate::units;
 use crate::view::Typing;
 use dewbound_session::chart::{self, HIT_RADIUS};
 use dewbound_session::thermo::Temperature;
 use dewbound_session::{Command, Item, SurfaceQuantity};
 use eframe::egui::{
-    Context, Event, EventFilter, Id, Key, Modifiers, Rect, Role, Sense, Ui, WidgetInfo,
+    Context, EventFilter, Id, Key, Rect, Role, Sense, Ui, WidgetInfo,
     accesskit::{self, ActionData},
     pos2, vec2,
 };
@@ -70,17 +71,11 @@ enum Stroke {
     Drop,
 }
 
-fn stroke(key: Key, modifiers: Modifiers, repeat: bool, typing: bool) -> Option<Stroke> {
-    let size = if modifiers.command {
-        1.0
-    } else if modifiers.shift {
-        0.5
-    } else {
-        0.1
-    };
-    match key {
-        Key::ArrowRight | Key::ArrowUp => Some(Stroke::Step(size, repeat)),
-        Key::ArrowLeft | Key::ArrowDown => Some(Stroke::Step(-size, repeat)),
+fn stroke(press: Press, typing: bool) -> Option<Stroke> {
+    let size = press.step([0.1, 0.5, 1.0]);
+    match press.key {
+        Key::ArrowRight | Key::ArrowUp => Some(Stroke::Step(size, press.repeat)),
+        Key::ArrowLeft | Key::ArrowDown => Some(Stroke::Step(-size, press.repeat)),
         Key::Home => Some(Stroke::Received),
         Key::Backspace if typing => Some(Stroke::Rubout),
         Key::Enter if typing => Some(Stroke::Set),
@@ -113,45 +108,17 @@ pub(crate) fn keys(ctx: &Context, desk: &mut Desk) {
     {
         set_typed(desk, &typing);
     }
-    let busy = desk.view.typing.is_some() || desk.dragging();
-    ctx.memory_mut(|memory| {
-        memory.set_focus_lock_filter(
-            id,
-            EventFilter {
-                tab: false,
-                horizontal_arrows: true,
-                vertical_arrows: true,
-                escape: busy,
-            },
-        );
-    });
+    let typing = desk.view.typing.is_some();
+    let kept = EventFilter {
+        escape: typing || desk.dragging(),
+        ..ARROWS
+    };
+    strokes::keep(ctx, id, kept);
     if desk.dragging() {
         return;
     }
-    let mut strokes = Vec::new();
-    let mut typing = desk.view.typing.is_some();
-    ctx.input_mut(|input| {
-        input.events.retain(|event| match event {
-            Event::Key {
-                key,
-                pressed: true,
-                repeat,
-                modifiers,
-                ..
-            } => match stroke(*key, *modifiers, *repeat, typing) {
-                Some(found) => {
-                    strokes.push(found);
-                    false
-                }
-                None => true,
-            },
-            Event::Text(text) if text.chars().all(belongs_to_number) => {
-                typing = true;
-                strokes.extend(text.chars().map(Stroke::Character));
-                false
-            }
-            _ => true,
-        });
+    let strokes = strokes::take_strokes(ctx, typing, stroke, |c| {
+        belongs_to_number(c).then_some(Stroke::Character(c))
     });
     for stroke in strokes {
         carry_out(desk, quantity, stroke);
@@ -326,11 +293,17 @@ fn rounded(value: f64) -> f64 {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use eframe::egui::Modifiers;
 
     #[test]
     fn steps() {
+        let press = |key, modifiers| Press {
+            key,
+            modifiers,
+            repeat: false,
+        };
         let check = |key, modifiers, expect| {
-            assert_eq!(stroke(key, modifiers, false, false), expect, "{key:?}");
+            assert_eq!(stroke(press(key, modifiers), false), expect, "{key:?}");
         };
         check(
             Key::ArrowRight,
@@ -351,7 +324,7 @@ mod tests {
         check(Key::Enter, Modifiers::NONE, None);
         check(Key::Tab, Modifiers::NONE, None);
         assert_eq!(
-            stroke(Key::Enter, Modifiers::NONE, false, true),
+            stroke(press(Key::Enter, Modifiers::NONE), true),
             Some(Stroke::Set)
         );
     }

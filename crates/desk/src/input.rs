@@ -3,10 +3,11 @@
 use crate::app::Desk;
 use crate::chart_frame::{chart_id, to_point};
 use crate::handle::{handle_id, quantity_of};
-use crate::motion;
+use crate::paper;
 use crate::response::response_id;
 use crate::view::Gesture;
 use crate::winds_frame::plane_id;
+use crate::winds_pointer;
 use dewbound_session::{Command, SurfaceQuantity};
 use eframe::egui::{Context, Pos2};
 
@@ -42,7 +43,7 @@ pub(crate) fn pointer(ctx: &Context, desk: &mut Desk) {
     }
     scroll(ctx, desk);
     pick(ctx, desk);
-    motion::wheel_and_double_click(ctx, desk);
+    winds_pointer::wheel_and_double_click(ctx, desk);
 }
 
 /// A double click lifts a parcel from that level too.
@@ -74,7 +75,7 @@ fn take_hold(ctx: &Context, desk: &mut Desk, position: Pos2) {
         return;
     };
     if hit(ctx, plane_id()) {
-        motion::take_hold(ctx, desk, position);
+        winds_pointer::take_hold(ctx, desk, position);
     } else if hit(ctx, chart_id())
         && let Some(seen) = &desk.seen
     {
@@ -150,8 +151,8 @@ fn move_to(ctx: &Context, desk: &mut Desk, position: Pos2) {
                 desk.view.charts.insert(seen.item, view);
             }
         }
-        Some(Gesture::Motion { grab_ms }) => motion::drag_to(ctx, desk, position, grab_ms),
-        Some(Gesture::PanWinds) => motion::pan(ctx, desk),
+        Some(Gesture::Motion { grab_ms }) => winds_pointer::drag_to(ctx, desk, position, grab_ms),
+        Some(Gesture::PanWinds) => winds_pointer::pan(ctx, desk),
         Some(Gesture::GivenUp) | None => {}
     }
 }
@@ -168,19 +169,13 @@ fn scroll(ctx: &Context, desk: &mut Desk) {
     let Some(response) = ctx.read_response(chart_id()) else {
         return;
     };
-    if !response.contains_pointer() || desk.dragging() {
+    if desk.dragging() {
         return;
     }
-    let Some(position) = response.hover_pos() else {
-        return;
-    };
-    let (scrolled, pinched) =
-        ctx.input(|input| (input.smooth_scroll_delta().y, input.zoom_delta()));
-    let factor = f64::from(pinched) * (f64::from(scrolled) / 300.0).exp();
     if let Some(seen) = &desk.seen
-        && (factor - 1.0).abs() > 1e-6
+        && let Some((about, factor)) = paper::enlarged(ctx, &response)
     {
-        let view = seen.geometry.zoomed(to_point(position), factor);
+        let view = seen.geometry.zoomed(about, factor);
         desk.view.charts.insert(seen.item, view);
     }
 }

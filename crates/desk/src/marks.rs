@@ -5,7 +5,8 @@ use crate::theme::Theme;
 use dewbound_session::trust::Grade;
 use dewbound_session::{Standing, Weight};
 use eframe::egui::{
-    Align2, Color32, FontId, Painter, Pos2, Rect, Sense, Shape, Stroke, Ui, Vec2, pos2, vec2,
+    Align2, Color32, FontId, Painter, Pos2, Rect, Sense, Shape, Stroke, StrokeKind, Ui, Vec2, pos2,
+    vec2,
 };
 
 /// A finding's number in the shape of its grade: a square for erroneous, a diamond for doubtful, a circle for
@@ -176,4 +177,23 @@ pub(crate) fn weight_mark(painter: &Painter, theme: &Theme, centre: Pos2, weight
 pub(crate) fn mark_space(ui: &mut Ui) -> Pos2 {
     let (rect, _) = ui.allocate_exact_size(vec2(18.0, 18.0), Sense::hover());
     rect.center()
+}
+
+/// Text being typed, above a point; never beyond the left, the right and the top of `within`.
+pub(crate) fn typed_box(painter: &Painter, theme: &Theme, at: Pos2, within: Rect, text: String) {
+    let galley = painter.layout_no_wrap(text, FontId::proportional(15.0), theme.ink);
+    let rect = Align2::CENTER_BOTTOM.anchor_size(at, galley.size());
+    let rect = rect.translate(vec2(
+        (within.left() + 8.0 - rect.left()).max(0.0)
+            - (rect.right() - within.right() + 8.0).max(0.0),
+        (within.top() + 8.0 - rect.top()).max(0.0),
+    ));
+    painter.rect_filled(rect.expand(4.0), 2.0, theme.card);
+    painter.galley(rect.min, galley, theme.ink);
+    painter.rect_stroke(
+        rect.expand(4.0),
+        2.0,
+        Stroke::new(2.0, theme.accent),
+        StrokeKind::Outside,
+    );
 }

@@ -4,6 +4,7 @@ use crate::app::Paint;
 use crate::ask::Asks;
 use crate::chart_frame::to_point;
 use crate::chart_paint::{self, to_pos, to_rect};
+use crate::marks;
 use crate::motion::{self, motion_id, motion_of};
 use crate::theme::bold;
 use crate::view::Gesture;
@@ -14,8 +15,7 @@ use dewbound_session::chart::{
 };
 use dewbound_session::{Item, motion_in_use, no_winds, wording};
 use eframe::egui::{
-    Align2, CursorIcon, FontId, Id, Pos2, Rect, Role, Sense, Stroke, StrokeKind, Ui, WidgetInfo,
-    accesskit, vec2,
+    CursorIcon, Id, Pos2, Rect, Role, Sense, Stroke, StrokeKind, Ui, WidgetInfo, accesskit, vec2,
 };
 
 /// Paints the page and lays out its nodes.
@@ -201,19 +201,5 @@ fn typing_ui(ui: &Ui, paint: &Paint, frame: &WindsFrame) {
         speed_sign(paint.view.units.speed)
     );
     let painter = ui.painter().with_clip_rect(frame.places.plane);
-    let galley = painter.layout_no_wrap(text, FontId::proportional(15.0), theme.ink);
-    let mut rect = Align2::CENTER_BOTTOM.anchor_size(at - vec2(0.0, 18.0), galley.size());
-    let shift = vec2(
-        (plot.left() + 8.0 - rect.left()).max(0.0) - (rect.right() - plot.right() + 8.0).max(0.0),
-        (plot.top() + 8.0 - rect.top()).max(0.0),
-    );
-    rect = rect.translate(shift);
-    painter.rect_filled(rect.expand(4.0), 2.0, theme.card);
-    painter.galley(rect.min, galley, theme.ink);
-    painter.rect_stroke(
-        rect.expand(4.0),
-        2.0,
-        Stroke::new(2.0, theme.accent),
-        StrokeKind::Outside,
-    );
+    marks::typed_box(&painter, theme, at - vec2(0.0, 18.0), plot, text);
 }

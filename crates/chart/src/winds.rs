@@ -83,7 +83,8 @@ fn select(geometry: &Geometry, profile: &Profile, southern: bool) -> Vec<(Point,
             continue;
         };
         let room = Rect {
-            top: plot.top - 6.0,
+            // In a frame too low for anything the plot reaches above it.
+            top: (plot.top - 6.0).max(frame.top),
             ..frame
         };
         let mine = strokes(foot, &drawn);

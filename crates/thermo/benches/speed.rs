@@ -192,7 +192,7 @@ fn measure(levels: usize) {
         }
     };
     table.row(
-        "environment, refilled, all of it different",
+        "environment, another profile at the same pressures",
         1.0,
         None,
         || {
@@ -200,7 +200,7 @@ fn measure(levels: usize) {
         },
     );
     table.row(
-        "environment, refilled, lowest tenth different",
+        "environment, lowest tenth of the profile different",
         1.0,
         None,
         || {
@@ -224,16 +224,21 @@ fn measure(levels: usize) {
     let goal = (levels >= 1_000).then_some(1.5);
     let three = |environment: &Environment| lift_all(environment, &starts(environment));
     table.row(
-        "new environment + starts + 3 lifts, a parcel",
+        "three parcels: new environment, starts, lifts; a parcel",
         3.0,
         goal,
         || three(&build()),
     );
-    table.row("the same, refilled, all of it different", 3.0, goal, || {
-        refill(&top_moved, &three);
-    });
     table.row(
-        "the same, refilled, lowest tenth different",
+        "the same, another profile at the same pressures",
+        3.0,
+        goal,
+        || {
+            refill(&top_moved, &three);
+        },
+    );
+    table.row(
+        "the same, lowest tenth of the profile different",
         3.0,
         goal,
         || {

@@ -47,7 +47,11 @@ impl Environment {
         }
         // The kept levels were found usable before; the lowest of them bounds the changed ones.
         let bound = n.min(changed + 1);
-        if !usable(&pressure[..bound], &temperature[..bound]) {
+        // While values are dragged, pressures stay; their logarithms too, then.
+        let same_pressures = n == self.p.len() && self.p[..bound] == pressure[..bound];
+        if !((same_pressures || pressures_usable(&pressure[..bound]))
+            && temperatures_usable(&temperature[..bound]))
+        {
             return Err(first_unusable(pressure, temperature));
         }
         if dewpoint.first().copied().flatten().is_none() {
@@ -62,22 +66,24 @@ impl Environment {
             Some(&z) if kept > 0 => self.column.z.partition_point(|&node| node < z),
             _ => self.column.z.len(),
         };
-        replace_front(&mut self.p, old_changed, &pressure[..changed]);
         replace_front(&mut self.t, old_changed, &temperature[..changed]);
         replace_front(&mut self.td, old_changed, &dewpoint[..changed]);
-        replace_front(&mut self.z, old_changed, &pressure[..changed]);
-        for z in &mut self.z[..changed] {
-            *z = coordinate(*z);
-        }
         self.flags
             .splice(..old_changed, std::iter::repeat_n(0, changed));
-        if let Some(level) = (1..bound).find(|&i| self.z[i] <= self.z[i - 1]) {
-            // Different in the last bit only: no layer between them.
-            return Err(EnvironmentError::Order {
-                level,
-                pressure: pressure[level],
-                previous: pressure[level - 1],
-            });
+        if !same_pressures {
+            replace_front(&mut self.p, old_changed, &pressure[..changed]);
+            replace_front(&mut self.z, old_changed, &pressure[..changed]);
+            for z in &mut self.z[..changed] {
+                *z = coordinate(*z);
+            }
+            if let Some(level) = (1..bound).find(|&i| self.z[i] <= self.z[i - 1]) {
+                // Different in the last bit only: no layer between them.
+                return Err(EnvironmentError::Order {
+                    level,
+                    pressure: pressure[level],
+                    previous: pressure[level - 1],
+                });
+            }
         }
         self.take_dewpoints(changed)?;
         self.fill_gaps(bound);
@@ -269,21 +275,23 @@ fn replace_front<T: Copy>(values: &mut Vec<T>, old: usize, new: &[T]) {
     }
 }
 
-/// Whether pressures fall strictly and all values are within reason. No early end: this way it vectorises.
-fn usable(pressure: &[f64], temperature: &[f64]) -> bool {
+/// Whether pressures fall strictly and are within reason. No early end: this way it vectorises.
+fn pressures_usable(pressure: &[f64]) -> bool {
     let falls = pressure
         .windows(2)
         .fold(true, |all, pair| all & matches!(pair, [a, b] if b < a));
     let ends = [pressure.first(), pressure.last()];
-    let within = ends.into_iter().flatten().all(|p| PRESSURES.contains(p));
-    falls
-        && within
-        && temperature
-            .iter()
-            .fold(true, |all, t| all & TEMPERATURES.contains(t))
+    falls && ends.into_iter().flatten().all(|p| PRESSURES.contains(p))
 }
 
-/// The first thing wrong with columns that are not [`usable`].
+/// Whether temperatures are within reason, likewise.
+fn temperatures_usable(temperature: &[f64]) -> bool {
+    temperature
+        .iter()
+        .fold(true, |all, t| all & TEMPERATURES.contains(t))
+}
+
+/// The first thing wrong with columns that are not usable.
 fn first_unusable(pressure: &[f64], temperature: &[f64]) -> EnvironmentError {
     let mut previous = f64::INFINITY;
     for (level, (&p, &t)) in pressure.iter().zip(temperature).enumerate() {

@@ -99,7 +99,7 @@ impl Quantity {
     }
 
     /// A value with its unit: "1850 J/kg", "245° 42 kt", "87°", "yes". Of a difference of winds the size alone, whose direction is
-    /// [`difference_from`].
+    /// told apart.
     pub fn text_with_unit(&self, value: &Value, units: Units) -> String {
         let text = match value {
             Value::Difference(wind) => self.text(&Value::Number(wind.speed()), units),

@@ -9,10 +9,8 @@
 //! **Bound:** within 0.2 mK of the exact pseudo-adiabat wherever the table serves: theta-e 230..430 K, 1100..1 hPa. (The
 //! part in q is below 0.05 mK: h⁴/384 times the fourth derivative.) Elsewhere each parcel solves for its own nodes.
 
-use crate::EPSILON;
 use crate::path::{Cubic, SPACING};
 use crate::pseudoadiabat::{first_guess, solve};
-use crate::saturation::virtual_temperature;
 use std::sync::OnceLock;
 
 /// Spacing of the nodes in q.
@@ -42,11 +40,7 @@ struct Row {
 fn exactly(q: f64, z: f64) -> (f64, f64) {
     let p = (-z).exp();
     let (t, state) = solve(q, p, first_guess(q.exp(), p), 1e-9);
-    let share = 1.0 / (1.0 + state.w);
-    let per_kelvin = virtual_temperature(1.0, state.w);
-    let slope =
-        per_kelvin * state.slope + t * (1.0 / EPSILON - 1.0) * share * share * state.w_slope;
-    (per_kelvin * t, slope)
+    state.virtual_temperature_and_slope(t)
 }
 
 impl Row {

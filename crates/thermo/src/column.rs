@@ -399,16 +399,8 @@ impl Column {
             for (z_two, tv_two) in nodes {
                 for k in 0..2 {
                     let departure = tv_two[k] - tv[foot] - slope * (z_two[k] - z[foot]);
-                    low[k] = if departure < low[k] {
-                        departure
-                    } else {
-                        low[k]
-                    };
-                    high[k] = if departure > high[k] {
-                        departure
-                    } else {
-                        high[k]
-                    };
+                    low[k] = at_most(low[k], departure);
+                    high[k] = at_least(high[k], departure);
                 }
             }
             let at_head = tv[head] - tv[foot] - slope * h;

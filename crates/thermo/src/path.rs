@@ -6,7 +6,7 @@
 use crate::environment::coordinate;
 use crate::pseudoadiabat::{first_guess, refine};
 use crate::saturation::{e_water, mixing_ratio, virtual_temperature};
-use crate::{Air, Buoyancy, EPSILON, Method, Temperature, adiabats, air, lapse_path};
+use crate::{Air, Buoyancy, Method, Temperature, adiabats, air, lapse_path};
 
 /// Spacing of the nodes in z.
 pub(crate) const SPACING: f64 = 0.1;
@@ -267,13 +267,8 @@ fn solved_pseudoadiabat(ln_theta_e: f64, buoyancy: Buoyancy, z_from: f64, z_end:
     for k in 0..=count {
         let (t, state) = refine(ln_theta_e, p, guess, STEP);
         p *= thinner;
-        let w = state.w;
-        let per_kelvin = virtual_temperature(1.0, w);
-        let share = 1.0 / (1.0 + w);
-        let slope =
-            per_kelvin * state.slope + t * (1.0 / EPSILON - 1.0) * share * share * state.w_slope;
         let (value, slope) = match buoyancy {
-            Buoyancy::Virtual => (per_kelvin * t, slope),
+            Buoyancy::Virtual => state.virtual_temperature_and_slope(t),
             Buoyancy::Temperature => (t, state.slope),
         };
         values.push(value);

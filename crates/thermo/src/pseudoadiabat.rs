@@ -5,7 +5,7 @@
 //! of its two partial derivatives.
 
 use crate::elementary::{exp, ln};
-use crate::saturation::{E0, dln_e_water, e_water, exponent_and_slope};
+use crate::saturation::{E0, dln_e_water, e_water, exponent_and_slope, virtual_temperature};
 use crate::{EPSILON, KAPPA, Pressure, REFERENCE_PRESSURE, Temperature};
 
 /// Exponent of the latent heat in eq. 39: (3036/T_L - 1.78) w (1 + 0.448 w).
@@ -27,6 +27,18 @@ pub(crate) struct Saturated {
     pub w: f64,
     /// Its derivative dw/dz along the pseudo-adiabat.
     pub w_slope: f64,
+}
+
+impl Saturated {
+    /// Virtual temperature of this air at its temperature `t`, and its derivative dTv/dz along the pseudo-adiabat, K.
+    #[inline]
+    pub fn virtual_temperature_and_slope(&self, t: f64) -> (f64, f64) {
+        let per_kelvin = virtual_temperature(1.0, self.w);
+        let share = 1.0 / (1.0 + self.w);
+        let slope =
+            per_kelvin * self.slope + t * (1.0 / EPSILON - 1.0) * share * share * self.w_slope;
+        (per_kelvin * t, slope)
+    }
 }
 
 /// Saturated air at a temperature and pressure; `None` at and beyond boiling.

@@ -12,27 +12,38 @@ const GAUSS_CHANGE: f64 = 0.5;
 /// Where the outer points of the Gauss rule are: the square root of 3/5.
 const ASIDE: f64 = 0.774_596_669_241_483_4;
 
-/// A quantity of moist air at one point, with what its slope needs.
-trait Moist: Copy {
-    /// Largest error of a step of the end-corrected trapezium, in units of the quantity; wider steps take the Gauss rule.
-    const STEP_ERROR: f64;
-    /// At a pressure (Pa) with this temperature and dew point (K).
-    fn at(p: f64, t: f64, td: f64) -> Self;
-    fn value(&self) -> f64;
-    /// d value / dz where T and Td have these slopes.
-    fn slope(&self, t_slope: f64, td_slope: f64) -> f64;
-    /// How far the terms of its logarithm that are not ln p move to another point, in size.
-    fn change(&self, other: &Self) -> f64;
-}
+/// Largest error of a step of the end-corrected trapezium, in units of the quantity: mixing ratio, relative humidity.
+const MIXING_RATIO_ERROR: f64 = 3e-9;
+const HUMIDITY_ERROR: f64 = 3e-9;
 
+/// Mixing ratio at one point, with what its slope needs.
 #[derive(Clone, Copy)]
 struct MixingRatio {
-    exponent: f64,
     per_kelvin: f64,
     w: f64,
 }
 
-/// Over water.
+impl MixingRatio {
+    /// At a pressure (Pa) with this dew point (K).
+    #[inline(always)]
+    fn at(p: f64, td: f64) -> Self {
+        let (exponent, per_kelvin) = exponent_and_slope(td);
+        let e = (E0 * exp(exponent)).min(0.5 * p);
+        Self {
+            per_kelvin,
+            w: EPSILON * e / (p - e),
+        }
+    }
+
+    /// p w and its derivative with z where the dew point has this slope.
+    #[inline(always)]
+    fn times_pressure(&self, p: f64, td_slope: f64) -> (f64, f64) {
+        let share = (1.0 + self.w * (1.0 / EPSILON)) * (self.per_kelvin * td_slope + 1.0);
+        (p * self.w, p * self.w * (share - 1.0))
+    }
+}
+
+/// Relative humidity over water at one point, with what its slope needs.
 #[derive(Clone, Copy)]
 struct RelativeHumidity {
     dew: (f64, f64),
@@ -40,41 +51,10 @@ struct RelativeHumidity {
     value: f64,
 }
 
-impl Moist for MixingRatio {
-    const STEP_ERROR: f64 = 3e-9;
-
+impl RelativeHumidity {
+    /// With this temperature and dew point (K).
     #[inline(always)]
-    fn at(p: f64, _t: f64, td: f64) -> Self {
-        let (exponent, per_kelvin) = exponent_and_slope(td);
-        let e = (E0 * exp(exponent)).min(0.5 * p);
-        Self {
-            exponent,
-            per_kelvin,
-            w: EPSILON * e / (p - e),
-        }
-    }
-
-    #[inline(always)]
-    fn value(&self) -> f64 {
-        self.w
-    }
-
-    #[inline(always)]
-    fn slope(&self, _t_slope: f64, td_slope: f64) -> f64 {
-        self.w * (1.0 + self.w * (1.0 / EPSILON)) * (self.per_kelvin * td_slope + 1.0)
-    }
-
-    #[inline(always)]
-    fn change(&self, other: &Self) -> f64 {
-        (other.exponent - self.exponent).abs()
-    }
-}
-
-impl Moist for RelativeHumidity {
-    const STEP_ERROR: f64 = 3e-9;
-
-    #[inline(always)]
-    fn at(_p: f64, t: f64, td: f64) -> Self {
+    fn at(t: f64, td: f64) -> Self {
         let (dew, dry) = (exponent_and_slope(td.min(t)), exponent_and_slope(t));
         Self {
             dew,
@@ -83,16 +63,13 @@ impl Moist for RelativeHumidity {
         }
     }
 
-    #[inline(always)]
-    fn value(&self) -> f64 {
-        self.value
-    }
-
+    /// Its derivative with z where T and Td have these slopes.
     #[inline(always)]
     fn slope(&self, t_slope: f64, td_slope: f64) -> f64 {
         self.value * (self.dew.1 * td_slope - self.dry.1 * t_slope)
     }
 
+    /// How far its logarithm's terms move to another point, in size.
     #[inline(always)]
     fn change(&self, other: &Self) -> f64 {
         (other.dew.0 - self.dew.0).abs() + (other.dry.0 - self.dry.0).abs()
@@ -122,7 +99,7 @@ impl Environment {
     pub(crate) fn moisture_integral(&self) -> Option<f64> {
         /// Segments worked on at a time, in plain loops that vectorise.
         const BLOCK: usize = 64;
-        const MOST_STRAIN: f64 = 720.0 * MixingRatio::STEP_ERROR;
+        const MOST_STRAIN: f64 = 720.0 * MIXING_RATIO_ERROR;
         let last = self.humid - 1;
         if last == 0 {
             return None;
@@ -150,8 +127,8 @@ impl Environment {
                 let h = z[i + 1] - z[i];
                 let td_slope = (td[i + 1] - td[i]) / h;
                 let at = |i: usize| {
-                    let share = (1.0 + w[i] * (1.0 / EPSILON)) * (per_kelvin[i] * td_slope + 1.0);
-                    (p[i] * w[i], p[i] * w[i] * (share - 1.0))
+                    let (per_kelvin, w) = (per_kelvin[i], w[i]);
+                    MixingRatio { per_kelvin, w }.times_pressure(p[i], td_slope)
                 };
                 parts[i] = hermite_integral(h, at(i), at(i + 1));
                 let change = (exponents[i + 1] - exponents[i]).abs() + h;
@@ -166,17 +143,13 @@ impl Environment {
                     let pieces = (strain[i] / MOST_STRAIN).sqrt().sqrt().ceil();
                     let h = (z[i + 1] - z[i]) / pieces;
                     let td_slope = (td[i + 1] - td[i]) / (z[i + 1] - z[i]);
-                    let end = |p: f64, point: &MixingRatio| {
-                        let value = point.value();
-                        (p * value, p * (point.slope(0.0, td_slope) - value))
-                    };
-                    let mut foot = end(p[i], &MixingRatio::at(p[i], 0.0, td[i]));
+                    let at = |p: f64, td: f64| MixingRatio::at(p, td).times_pressure(p, td_slope);
+                    let mut foot = at(p[i], td[i]);
                     let mut part = 0.0;
                     for k in 1..=pieces as usize {
                         let above = k as f64 * h;
                         let here = p[i] * exp(-above);
-                        let point = MixingRatio::at(here, 0.0, td[i] + td_slope * above);
-                        let head = end(here, &point);
+                        let head = at(here, td[i] + td_slope * above);
                         part += hermite_integral(h, foot, head);
                         foot = head;
                     }
@@ -203,16 +176,16 @@ impl Environment {
     pub fn mean_relative_humidity(&self, bottom: Pressure, top: Pressure) -> Option<f64> {
         let (pb, pt) = (bottom.pa(), top.pa());
         let known = pb <= self.p[0] && pt >= self.p[self.humid - 1] && pb > pt;
-        known.then(|| self.integral::<RelativeHumidity>(coordinate(pb), coordinate(pt)) / (pb - pt))
+        known.then(|| self.humidity_integral(coordinate(pb), coordinate(pt)) / (pb - pt))
     }
 
-    /// Integral over p from `bottom` to `top` in z, inside the humid part.
-    fn integral<M: Moist>(&self, bottom: f64, top: f64) -> f64 {
+    /// Integral of relative humidity over p from `bottom` to `top` in z, inside the humid part.
+    fn humidity_integral(&self, bottom: f64, top: f64) -> f64 {
         let levels = self.levels();
         let first = self.z.partition_point(|&z| z <= bottom).saturating_sub(1);
         let mut sum = 0.0;
         // The head of a segment is the foot of the next.
-        let mut shared: Option<(f64, M)> = None;
+        let mut shared: Option<(f64, RelativeHumidity)> = None;
         for i in first..self.humid - 1 {
             let (a, b) = (self.z[i].max(bottom), self.z[i + 1].min(top));
             if b <= a {
@@ -222,29 +195,27 @@ impl Environment {
             let Some((td, td_slope)) = segment.td else {
                 break;
             };
-            let point =
-                |z: f64, p: f64| M::at(p, segment.temperature(z), td + td_slope * (z - segment.z));
+            let point = |z: f64| {
+                RelativeHumidity::at(segment.temperature(z), td + td_slope * (z - segment.z))
+            };
             let (pa, foot) = shared.unwrap_or_else(|| {
                 let p = exp(-a);
-                (p, point(a, p))
+                (p, point(a))
             });
             let pb = if b == self.z[i + 1] {
                 self.p[i + 1]
             } else {
                 exp(-b)
             };
-            let head = point(b, pb);
+            let head = point(b);
             shared = Some((pb, head));
             let change = foot.change(&head) + (b - a);
             let square = change * change;
-            let largest = foot.value().max(head.value());
-            sum += if largest * square * square <= 720.0 * M::STEP_ERROR {
-                let end = |p: f64, point: &M| {
-                    let value = point.value();
-                    (
-                        p * value,
-                        p * (point.slope(segment.t_slope, td_slope) - value),
-                    )
+            let largest = foot.value.max(head.value);
+            sum += if largest * square * square <= 720.0 * HUMIDITY_ERROR {
+                let end = |p: f64, point: &RelativeHumidity| {
+                    let slope = point.slope(segment.t_slope, td_slope);
+                    (p * point.value, p * (slope - point.value))
                 };
                 hermite_integral(b - a, end(pa, &foot), end(pb, &head))
             } else {
@@ -256,7 +227,7 @@ impl Environment {
                 let mut part = 0.0;
                 for k in 0..pieces as usize {
                     let z = a + (2.0 * k as f64 + 1.0) * half;
-                    let at = |z: f64, p: f64| p * point(z, p).value();
+                    let at = |z: f64, p: f64| p * point(z).value;
                     let sides = at(z - ASIDE * half, p / aside) + at(z + ASIDE * half, p * aside);
                     part += half * (8.0 * at(z, p) + 5.0 * sides) * (1.0 / 9.0);
                     p *= onward;

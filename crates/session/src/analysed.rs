@@ -34,8 +34,9 @@ impl Analysed {
     /// Orders the levels, computes the numbers, runs the rules.
     pub fn of(sounding: Sounding, thresholds: &Thresholds) -> Self {
         let (profile, merging) = Profile::received(&sounding);
-        let numbers = Numbers::of(&profile);
-        let further = Further::of(&profile, &profile, &numbers, estimated_motion(&sounding));
+        let (numbers, environment) = Numbers::and_environment(&profile);
+        let motion = estimated_motion(&sounding);
+        let further = Further::of(&profile, &profile, environment.as_ref(), &numbers, motion);
         let daylight = daylight(&sounding);
         let findings = findings(&Context {
             sounding: &sounding,

@@ -161,11 +161,12 @@ impl Item {
             with_repair(amendments, finding, repair)
         };
         let working = amendments.apply(self.received(), self.daylight());
-        let numbers = Numbers::of(&working.profile);
+        let (numbers, environment) = Numbers::and_environment(&working.profile);
         let further = further_of(
             &self.analysed,
             self.document(),
             &working.profile,
+            environment.as_ref(),
             &numbers,
             Some(&self.results.further),
         );

@@ -4,7 +4,7 @@ use crate::doubt::DoubtKey;
 use crate::pricing::Pricing;
 use crate::quantity::Readings;
 use crate::sounding::{Further, Numbers, OtherAscents, Profile, Working};
-use crate::thermo::{Ascent, Method, Motion, Pressure, lift};
+use crate::thermo::{Ascent, Environment, Method, Motion, Pressure, lift};
 use crate::trust::{Cost, Priced};
 use crate::{Analysed, Document, Doubt, sentence};
 use std::sync::Arc;
@@ -154,18 +154,20 @@ impl Results {
         let started = Instant::now();
         let amendments = &document.amendments;
         let working = amendments.apply(&analysed.profile, analysed.daylight);
-        let numbers = Numbers::of(&working.profile);
+        let (numbers, environment) = Numbers::and_environment(&working.profile);
+        let environment = environment.as_ref();
         let previous_further = previous.map(|previous| &previous.further);
         let further = further_of(
             analysed,
             document,
             &working.profile,
+            environment,
             &numbers,
             previous_further,
         );
         let picked = document
             .picked_level()
-            .and_then(|level| picked_ascent(&working.profile, level));
+            .and_then(|level| picked_ascent(environment?, level));
         let frame = Frame::of(&working.profile);
         let Pricing { cards, ranked } = match (previous, effort) {
             (Some(previous), Effort::InFrame) => Pricing::in_frame(
@@ -235,20 +237,20 @@ pub(crate) fn further_of(
     analysed: &Analysed,
     document: &Document,
     working: &Profile,
+    environment: Option<&Environment>,
     numbers: &Numbers,
     previous: Option<&Further>,
 ) -> Further {
     let motion = document
         .storm_motion()
         .map_or_else(|| analysed.estimated_motion(), Motion::Set);
+    let received = &analysed.profile;
     match previous {
-        Some(previous) => Further::next(&analysed.profile, working, numbers, motion, previous),
-        None => Further::of(&analysed.profile, working, numbers, motion),
+        Some(previous) => Further::next(received, working, environment, numbers, motion, previous),
+        None => Further::of(received, working, environment, numbers, motion),
     }
 }
 
-fn picked_ascent(profile: &Profile, level: Pressure) -> Option<Ascent> {
-    let environment = profile.environment().ok()?;
-    let start = environment.at(level)?;
-    lift(&environment, start, Method::default())
+fn picked_ascent(environment: &Environment, level: Pressure) -> Option<Ascent> {
+    lift(environment, environment.at(level)?, Method::default())
 }

@@ -4,8 +4,8 @@
 use crate::wind_profile::WindSource;
 use crate::{Numbers, Parcel, Profile};
 use dewbound_thermo::{
-    Buoyancy, CompositeInputs, Composites, Condensate, EffectiveLayer, LayerNumbers, Lifted,
-    Method, Motion, ParcelNumbers, Process, Vector, WindNumbers, WindProfile, lift,
+    Buoyancy, CompositeInputs, Composites, Condensate, EffectiveLayer, Environment, LayerNumbers,
+    Lifted, Method, Motion, ParcelNumbers, Process, Vector, WindNumbers, WindProfile, lift,
 };
 use std::sync::Arc;
 
@@ -32,15 +32,21 @@ pub struct Further {
 
 impl Further {
     /// Of a working profile and its numbers. `received` is the profile as received: winds and their heights are its own, whatever is
-    /// done to temperature and humidity.
-    pub fn of(received: &Profile, working: &Profile, numbers: &Numbers, motion: Motion) -> Self {
+    /// done to temperature and humidity. `environment` is that of [`Numbers::and_environment`] of the working profile.
+    pub fn of(
+        received: &Profile,
+        working: &Profile,
+        environment: Option<&Environment>,
+        numbers: &Numbers,
+        motion: Motion,
+    ) -> Self {
         let wind_source = WindSource::of(working).map(Arc::new);
         let wind_profile = wind_source
             .as_deref()
             .and_then(|source| source.profile(received))
             .map(Arc::new);
         Self::with_winds(
-            working,
+            environment,
             numbers,
             (wind_source, wind_profile),
             |winds, layer| WindNumbers::of(winds, layer, motion),
@@ -52,38 +58,36 @@ impl Further {
     pub fn next(
         received: &Profile,
         working: &Profile,
+        environment: Option<&Environment>,
         numbers: &Numbers,
         motion: Motion,
         previous: &Self,
     ) -> Self {
         let wind_source = WindSource::of(working);
         if wind_source.as_ref() != previous.wind_source.as_deref() {
-            return Self::of(received, working, numbers, motion);
+            return Self::of(received, working, environment, numbers, motion);
         }
         let winds = (previous.wind_source.clone(), previous.wind_profile.clone());
-        Self::with_winds(working, numbers, winds, |winds, layer| {
+        Self::with_winds(environment, numbers, winds, |winds, layer| {
             WindNumbers::next(winds, layer, motion, &previous.winds)
         })
     }
 
     fn with_winds(
-        working: &Profile,
+        environment: Option<&Environment>,
         numbers: &Numbers,
         (wind_source, wind_profile): (Option<Arc<WindSource>>, Option<Arc<WindProfile>>),
         wind_numbers: impl FnOnce(&WindProfile, EffectiveLayer) -> WindNumbers,
     ) -> Self {
-        let environment = working.environment().ok();
         let parcels = Parcel::ALL.map(|which| {
-            let environment = environment.as_ref()?;
+            let environment = environment?;
             let start = numbers.parcel(which)?.start;
             let lifted = Lifted::of(environment, start, Method::default())?;
             Some(ParcelNumbers::of(environment, &lifted))
         });
-        let layers = environment
-            .as_ref()
-            .map_or_else(LayerNumbers::default, |environment| {
-                LayerNumbers::of(environment, wind_profile.as_deref())
-            });
+        let layers = environment.map_or_else(LayerNumbers::default, |environment| {
+            LayerNumbers::of(environment, wind_profile.as_deref())
+        });
         let effective = EffectiveLayer {
             inflow: layers.inflow,
             el_height: parcels[2].and_then(|parcel| parcel.el_height),
@@ -192,10 +196,14 @@ mod tests {
 
     fn further(list: &Amendments, received: &Profile, previous: Option<&Further>) -> Further {
         let working = list.apply(received, Daylight::Day).profile;
-        let numbers = Numbers::of(&working);
+        let (numbers, environment) = Numbers::and_environment(&working);
+        let environment = environment.as_ref();
+        let motion = Motion::Right;
         match previous {
-            Some(previous) => Further::next(received, &working, &numbers, Motion::Right, previous),
-            None => Further::of(received, &working, &numbers, Motion::Right),
+            Some(previous) => {
+                Further::next(received, &working, environment, &numbers, motion, previous)
+            }
+            None => Further::of(received, &working, environment, &numbers, motion),
         }
     }
 
@@ -347,13 +355,13 @@ mod tests {
         ) {
             let working = |list: &Amendments| {
                 let working = list.apply(&profile, Daylight::Day).profile;
-                let numbers = Numbers::of(&working);
-                (working, numbers)
+                let (numbers, environment) = Numbers::and_environment(&working);
+                (working, environment, numbers)
             };
             let (first, second) = (working(&lists.0), working(&lists.1));
-            let previous = Further::of(&profile, &first.0, &first.1, motions.0);
-            let next = Further::next(&profile, &second.0, &second.1, motions.1, &previous);
-            prop_assert_eq!(next, Further::of(&profile, &second.0, &second.1, motions.1));
+            let previous = Further::of(&profile, &first.0, first.1.as_ref(), &first.2, motions.0);
+            let next = Further::next(&profile, &second.0, second.1.as_ref(), &second.2, motions.1, &previous);
+            prop_assert_eq!(next, Further::of(&profile, &second.0, second.1.as_ref(), &second.2, motions.1));
         }
     }
 }

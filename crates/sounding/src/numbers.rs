@@ -2,8 +2,8 @@
 
 use crate::Profile;
 use dewbound_thermo::{
-    Ascent, EnvironmentError, HumidityKnown, MIXED_DEPTH, MOST_UNSTABLE_DEPTH, Method, Pressure,
-    lift, mixed_start, most_unstable_start,
+    Ascent, Environment, EnvironmentError, HumidityKnown, MIXED_DEPTH, MOST_UNSTABLE_DEPTH, Method,
+    Pressure, lift, mixed_start, most_unstable_start,
 };
 
 /// Which of the three parcels.
@@ -55,7 +55,25 @@ impl Numbers {
     /// The mixed parcel starts at the lowest level of the environment: the surface, or the lowest complete level, see [`Numbers::starts_at`].
     /// The most unstable parcel chooses among received levels; inserted rows are not candidates.
     pub fn of(profile: &Profile) -> Self {
-        let mut numbers = Self {
+        Self::and_environment(profile).0
+    }
+
+    /// The same, with the environment they were computed in, for what else is asked of it; `None` when there is no environment.
+    pub fn and_environment(profile: &Profile) -> (Self, Option<Environment>) {
+        match profile.environment() {
+            Ok(environment) => (Self::within(profile, &environment), Some(environment)),
+            Err(problem) => {
+                let none = Self {
+                    problem: Some(problem),
+                    ..Self::none()
+                };
+                (none, None)
+            }
+        }
+    }
+
+    fn none() -> Self {
+        Self {
             surface: None,
             mixed: None,
             most_unstable: None,
@@ -65,14 +83,11 @@ impl Numbers {
             cape_humidity_held: None,
             starts_at: None,
             problem: None,
-        };
-        let environment = match profile.environment() {
-            Ok(environment) => environment,
-            Err(problem) => {
-                numbers.problem = Some(problem);
-                return numbers;
-            }
-        };
+        }
+    }
+
+    fn within(profile: &Profile, environment: &Environment) -> Self {
+        let mut numbers = Self::none();
         let method = Method::default();
         let rows = profile.environment_rows();
         let surface = profile.surface_air();
@@ -80,14 +95,14 @@ impl Numbers {
             numbers.starts_at = Some(environment.bottom().pressure);
         }
         let surface_row = surface.and(profile.surface);
-        let mixed = mixed_start(&environment, MIXED_DEPTH);
+        let mixed = mixed_start(environment, MIXED_DEPTH);
         let candidate = |level: usize| {
             rows.get(level)
                 .is_some_and(|&row| matches!(profile.received.get(row), Some(Some(_))))
         };
-        let unstable = most_unstable_start(&environment, MOST_UNSTABLE_DEPTH, candidate);
-        numbers.surface = surface.and_then(|start| lift(&environment, start, method));
-        numbers.mixed = mixed.and_then(|start| lift(&environment, start, method));
+        let unstable = most_unstable_start(environment, MOST_UNSTABLE_DEPTH, candidate);
+        numbers.surface = surface.and_then(|start| lift(environment, start, method));
+        numbers.mixed = mixed.and_then(|start| lift(environment, start, method));
         if let Some((level, start)) = unstable {
             numbers.most_unstable_row = rows.get(level).copied();
             numbers.most_unstable_is_surface =
@@ -95,7 +110,7 @@ impl Numbers {
             numbers.most_unstable = if numbers.most_unstable_is_surface {
                 numbers.surface.clone()
             } else {
-                lift(&environment, start, method)
+                lift(environment, start, method)
             };
         }
         let humidity = environment.humidity();

@@ -1,7 +1,8 @@
 //! CAPE by other kinds of ascent: how much the choice of method is worth.
 
 use super::readings::index;
-use super::{Group, Needs, Of, Quantity, Unit, Value};
+use super::{Group, Needs, Of, Quantity, Readings, Unit, Value};
+use crate::sounding::{OtherAscents, Parcel};
 
 /// All of this group.
 pub(super) const QUANTITIES: &[Quantity] = &[
@@ -11,15 +12,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         unit: Unit::Energy,
         decimals: 0,
         group: Group::OtherAscents,
-        of: Of::Parcel(|readings, parcel| {
-            let cape = readings
-                .other?
-                .direct
-                .get(index(parcel))
-                .copied()
-                .flatten()?;
-            Some(Value::limit(cape, readings.at_least(parcel)))
-        }),
+        of: Of::Parcel(|readings, parcel| of_other(readings, parcel, |other| other.direct)),
         range: None,
         needs: Needs::OtherAscents,
         definition: "CAPE of the same parcel by the pseudo-adiabatic lapse rate, integrated step by step.",
@@ -34,15 +27,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         unit: Unit::Energy,
         decimals: 0,
         group: Group::OtherAscents,
-        of: Of::Parcel(|readings, parcel| {
-            let cape = readings
-                .other?
-                .reversible
-                .get(index(parcel))
-                .copied()
-                .flatten()?;
-            Some(Value::limit(cape, readings.at_least(parcel)))
-        }),
+        of: Of::Parcel(|readings, parcel| of_other(readings, parcel, |other| other.reversible)),
         range: None,
         needs: Needs::OtherAscents,
         definition: "CAPE of the same parcel when all condensate is kept and its weight counts.",
@@ -58,13 +43,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         decimals: 0,
         group: Group::OtherAscents,
         of: Of::Parcel(|readings, parcel| {
-            let cape = readings
-                .other?
-                .without_virtual
-                .get(index(parcel))
-                .copied()
-                .flatten()?;
-            Some(Value::limit(cape, readings.at_least(parcel)))
+            of_other(readings, parcel, |other| other.without_virtual)
         }),
         range: None,
         needs: Needs::OtherAscents,
@@ -81,13 +60,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         decimals: 0,
         group: Group::OtherAscents,
         of: Of::Parcel(|readings, parcel| {
-            let cape = readings
-                .other?
-                .direct_with_ice
-                .get(index(parcel))
-                .copied()
-                .flatten()?;
-            Some(Value::limit(cape, readings.at_least(parcel)))
+            of_other(readings, parcel, |other| other.direct_with_ice)
         }),
         range: None,
         needs: Needs::OtherAscents,
@@ -104,13 +77,7 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         decimals: 0,
         group: Group::OtherAscents,
         of: Of::Parcel(|readings, parcel| {
-            let cape = readings
-                .other?
-                .reversible_with_ice
-                .get(index(parcel))
-                .copied()
-                .flatten()?;
-            Some(Value::limit(cape, readings.at_least(parcel)))
+            of_other(readings, parcel, |other| other.reversible_with_ice)
         }),
         range: None,
         needs: Needs::OtherAscents,
@@ -121,3 +88,16 @@ pub(super) const QUANTITIES: &[Quantity] = &[
         absent: "no parcel can be formed: no temperature or no humidity where it would start",
     },
 ];
+
+/// CAPE of one parcel by one of the other kinds; a lower limit where that of the default ascent is one.
+fn of_other(
+    readings: &Readings,
+    parcel: Parcel,
+    kind: fn(&OtherAscents) -> [Option<f64>; 3],
+) -> Option<Value> {
+    let cape = kind(readings.other?)
+        .get(index(parcel))
+        .copied()
+        .flatten()?;
+    Some(Value::limit(cape, readings.at_least(parcel)))
+}
